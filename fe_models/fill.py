@@ -1,0 +1,146 @@
+"""Triangles inside polygons with given boundary points: the one place that runs the mesh generator."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .band import Array
+from .errors import SolveError
+
+SYSTEM_LIBRARIES = "apt-get install -y libglu1-mesa libxrender1 libxcursor1 libxft2 libxinerama1 libgomp1"
+
+
+@dataclass(frozen=True)
+class Region:
+    """Closed loops of boundary points, and the sizes wanted inside.
+
+    Parameters
+    ----------
+    loops : tuple of (k, 2) arrays
+        Boundary points [L]; every two in a row become one element edge.
+    corners : tuple of (int, float)
+        Points among all loops' points from which sizes grow, and the size at each [L].
+    largest : float
+        Largest size inside [L].
+    slope : float
+        Growth of the size with distance from a corner [-].
+    """
+
+    loops: tuple[Array, ...]
+    corners: tuple[tuple[int, float], ...]
+    largest: float
+    slope: float
+
+
+@dataclass(frozen=True)
+class Filling:
+    """Triangles of a region: the first vertices are the loops' points in order, the rest are inside."""
+
+    vertices: Array
+    triangles: NDArray[np.int64]
+
+
+def fill(regions: list[Region]) -> list[Filling]:
+    """Triangulate regions; no point is added on a boundary.
+
+    Raises
+    ------
+    SolveError
+        When the generator is missing, fails, or leaves a region unmeshed.
+    """
+    try:
+        import gmsh
+    except (ImportError, OSError) as fault:
+        raise SolveError(
+            f"the mesh generator cannot be loaded ({fault}); its system libraries: {SYSTEM_LIBRARIES}"
+        ) from None
+    started = bool(gmsh.isInitialized())
+    if not started:
+        gmsh.initialize(readConfigFiles=False, interruptible=False)
+    try:
+        gmsh.option.setNumber("General.Terminal", 0)
+        gmsh.option.setNumber("General.NumThreads", 1)
+        gmsh.option.setNumber("Mesh.Algorithm", 6)
+        gmsh.option.setNumber("Mesh.MeshSizeExtendFromBoundary", 0)
+        gmsh.option.setNumber("Mesh.MeshSizeFromPoints", 0)
+        gmsh.option.setNumber("Mesh.Optimize", 0)
+        return [_fill_one(gmsh, region) for region in regions]
+    except SolveError:
+        raise
+    except Exception as fault:  # the generator raises bare Exception
+        raise SolveError(f"meshing a joint failed: {fault}") from None
+    finally:
+        if not started:
+            gmsh.clear()
+
+
+def _fill_one(gmsh, region: Region) -> Filling:  # type: ignore[no-untyped-def]
+    gmsh.model.add("joint")
+    try:
+        geo = gmsh.model.geo
+        points = np.concatenate(region.loops)
+        centre, size = points.mean(axis=0), np.ptp(points, axis=0).max()
+        scaled = (points - centre) / size
+        tags = [geo.addPoint(float(x), float(y), 0.0) for x, y in scaled]
+        loops, first = [], 0
+        for loop in region.loops:
+            own = tags[first : first + len(loop)]
+            first += len(loop)
+            lines = [geo.addLine(a, b) for a, b in zip(own, own[1:] + own[:1], strict=True)]
+            for line in lines:
+                geo.mesh.setTransfiniteCurve(line, 2)
+            loops.append(geo.addCurveLoop(lines))
+        surface = geo.addPlaneSurface(loops)
+        geo.synchronize()
+        _sizes(gmsh, region, tags, size)
+        gmsh.model.mesh.generate(2)
+        node_tags, coordinates, _ = gmsh.model.mesh.getNodes()
+        place = np.zeros((int(node_tags.max()) + 1, 2))
+        place[node_tags] = coordinates.reshape(-1, 3)[:, :2]
+        corner_nodes = np.array([gmsh.model.mesh.getNodes(0, t)[0][0] for t in tags], dtype=np.int64)
+        _, element_nodes = gmsh.model.mesh.getElementsByType(2, surface)
+        triangles = element_nodes.reshape(-1, 3).astype(np.int64)
+        inside = np.setdiff1d(np.unique(triangles), corner_nodes)
+        number = np.full(place.shape[0], -1, dtype=np.int64)
+        number[corner_nodes] = np.arange(len(corner_nodes))
+        number[inside] = len(corner_nodes) + np.arange(len(inside))
+        vertices = np.concatenate([points, place[inside] * size + centre])
+        triangles = number[triangles]
+        if triangles.size == 0 or (triangles < 0).any():
+            raise SolveError("the mesh generator left a joint unmeshed")
+        return Filling(vertices, _anticlockwise(vertices, triangles))
+    finally:
+        gmsh.model.remove()
+
+
+def _sizes(gmsh, region: Region, tags: list[int], size: float) -> None:  # type: ignore[no-untyped-def]
+    """Background field: the least of the sizes that grow from each corner."""
+    field = gmsh.model.mesh.field
+    grown = []
+    for index, least in region.corners:
+        if least >= region.largest:
+            continue
+        distance, size_at = field.add("Distance"), field.add("Threshold")
+        field.setNumbers(distance, "PointsList", [tags[index]])
+        field.setNumber(size_at, "InField", distance)
+        field.setNumber(size_at, "SizeMin", least / size)
+        field.setNumber(size_at, "SizeMax", region.largest / size)
+        field.setNumber(size_at, "DistMin", 0.0)
+        field.setNumber(size_at, "DistMax", (region.largest - least) / region.slope / size)
+        grown.append(size_at)
+    gmsh.option.setNumber("Mesh.MeshSizeMax", region.largest / size)
+    if grown:
+        least_of_all = field.add("Min")
+        field.setNumbers(least_of_all, "FieldsList", grown)
+        field.setAsBackgroundMesh(least_of_all)
+
+
+def _anticlockwise(vertices: Array, triangles: NDArray[np.int64]) -> NDArray[np.int64]:
+    a, b, c = (vertices[triangles[:, i]] for i in range(3))
+    turned = (b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0] < 0
+    triangles = triangles.copy()
+    triangles[turned] = triangles[turned][:, [0, 2, 1]]
+    return triangles

@@ -1,0 +1,235 @@
+"""The real outline of a section: bands joined at their points, and the shapes that are refused."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass, field
+
+import numpy as np
+import shapely
+from shapely.geometry import Polygon
+
+from .band import Array, Band, WallEnd, band
+from .boundary import Piece, Ring, polyline, rings
+from .errors import OutlineError
+from .joint import Joint, joints
+from .partition import Partition, partition, solid
+from .section import Section
+
+# More walls than this are refused: each joint is meshed on its own.
+WALL_LIMIT = 2000
+# Overlaps smaller than this share of the squared thickness are round-off.
+OVERLAP = 1e-6
+
+
+@dataclass(frozen=True)
+class Moments:
+    """Integrals over a region in the file's axes: area and first and second moments about ``pole``.
+
+    ``first`` holds the integrals of (x, y), ``second`` those of (y^2, x^2, x y).
+    """
+
+    area: float
+    first: Array
+    second: Array
+
+
+@dataclass(frozen=True)
+class Outline:
+    """The solid of a section.
+
+    Parameters
+    ----------
+    section : Section
+    bands : dict of wall name to Band
+    joints : dict of point name to Joint
+    parts : Partition
+        Strips and clusters.
+    loops : tuple of (n, 2) arrays
+        Closed polygons, the outer one first; curved faces in steps [L].
+    extent : float
+        Larger overall dimension D [L].
+    notes : tuple of str
+        Bevels, steps and short walls, in words.
+    """
+
+    section: Section
+    bands: dict[str, Band]
+    joints: dict[str, Joint]
+    parts: Partition = field(repr=False)
+    loops: tuple[Array, ...] = field(repr=False)
+    extent: float
+    notes: tuple[str, ...]
+
+    def moments(self, pole: Array) -> Moments:
+        """Exact moments of the solid about a pole, from its boundary by Green's theorem."""
+        total = np.zeros(6)
+        for cluster in self.parts.clusters:
+            for ring in cluster.rings:
+                total += _ring_moments(ring, pole)
+        for strip in self.parts.strips.values():
+            total += _ring_moments(_strip_ring(strip.band, strip.span), pole)
+        return Moments(float(total[0]), total[1:3], total[3:])
+
+    @property
+    def curved(self) -> bool:
+        """True where a face is an arc, so that elements only interpolate the outline."""
+        return any(not b.straight for b in self.bands.values())
+
+
+def outline(section: Section) -> Outline:
+    """Build and check the solid of a section.
+
+    Raises
+    ------
+    OutlineError
+        Too many walls, unconnected walls, bands that overlap away from a shared point, a lost cell, a
+        swallowed wall.
+    """
+    if len(section.walls) > WALL_LIMIT:
+        names = (section.walls[0].name,)
+        raise OutlineError("limit", names, f"{len(section.walls)} walls, at most {WALL_LIMIT} are meshed")
+    bands = {w.name: band(w, section) for w in section.walls}
+    _refuse_overlaps(bands)
+    points = {name: np.array(place, dtype=float) for name, place in section.points.items()}
+    at = joints(points, bands.values())
+    parts = partition(at, bands)
+    _refuse_parts_in_each_other(parts)
+    found = _loops(at, bands, parts)
+    expected = len(bands) - len(at) + 2
+    if len(found) != expected:
+        raise OutlineError(
+            "lost cell", tuple(bands), f"the outline has {len(found)} boundaries, the walls make {expected}"
+        )
+    extent = float(np.ptp(found[0], axis=0).max())
+    return Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts))
+
+
+def _notes(at: dict[str, Joint], parts: Partition) -> tuple[str, ...]:
+    made = []
+    for joint in at.values():
+        for chain in joint.chains:
+            pair = f"walls {chain.first.band.name} and {chain.second.band.name} at {joint.point}"
+            if chain.kind == "bevel":
+                made.append(f"sharp turn bevelled: {pair}")
+            if chain.kind == "step":
+                made.append(f"step left between {pair}")
+    for cluster in parts.clusters:
+        if cluster.walls:
+            made.append(f"meshed as part of its joint, without a strip: {', '.join(cluster.walls)}")
+    return tuple(made)
+
+
+def _loops(at: dict[str, Joint], bands: dict[str, Band], parts: Partition) -> list[Array]:
+    """Closed polygons of the solid's boundary, the outer one first."""
+    if not any(c.united for c in parts.clusters):
+        found, _ = rings(at, {}, list(at))
+        polygons = [polyline(r) for r in found]
+    else:
+        pieces = [c.polygon() for c in parts.clusters]
+        pieces += [Polygon(polyline(_strip_ring(s.band, s.span))) for s in parts.strips.values()]
+        # strips and clusters meet along their cuts: closing the hairline gaps that round-off leaves there
+        size = 1e-7 * min(min(b.thickness) for b in bands.values())
+        union = shapely.union_all([p.buffer(size, join_style="mitre") for p in pieces])
+        union = union.buffer(-size, join_style="mitre")
+        if union.geom_type != "Polygon":
+            raise OutlineError("lost cell", tuple(bands), "the solid falls apart")
+        polygons = [np.array(r.coords)[:-1] for r in (union.exterior, *union.interiors)]
+    polygons.sort(key=lambda p: -float(np.prod(np.ptp(p, axis=0))))
+    return polygons
+
+
+def _strip_ring(of: Band, span: tuple[float, float]) -> Ring:
+    """The closed boundary of a strip, anticlockwise."""
+    start, end = WallEnd(of, False), span[1]
+    right = Piece("face", start.side(span[0], -1.0), start.side(end, -1.0), of, -1.0, (span[0], end))
+    left = Piece("face", start.side(end, 1.0), start.side(span[0], 1.0), of, 1.0, (end, span[0]))
+    return [right, Piece("cut", right.end, left.start), left, Piece("cut", left.end, right.start)]
+
+
+def _ring_moments(ring: Ring, pole: Array) -> Array:
+    """(A, Sy, Sx, Ixx, Iyy, Ixy) enclosed by a ring, by Gauss quadrature of boundary integrals."""
+    total = np.zeros(6)
+    for piece in ring:
+        count = 3 if piece.straight else 20
+        g, w = np.polynomial.legendre.leggauss(count)
+        u = 0.5 * (g + 1.0)
+        x, y = (piece.at(u) - pole).T
+        if piece.straight or piece.band is None:
+            dy = np.full(count, (piece.end - piece.start)[1]) * 0.5 * w
+        else:
+            s = piece.span[0] + u * (piece.span[1] - piece.span[0])
+            seen = WallEnd(piece.band, False)
+            rate = np.array([seen.side_slope(float(v), piece.side)[1] for v in s])
+            dy = rate * (piece.span[1] - piece.span[0]) * 0.5 * w
+        kernel = np.stack([x, 0.5 * x**2, x * y, x * y**2, x**3 / 3.0, 0.5 * x**2 * y])
+        total += kernel @ dy
+    return total
+
+
+def _refuse_overlaps(bands: dict[str, Band]) -> None:
+    """Refuse bands of walls without a shared point that overlap.
+
+    Where a wall shorter than the thickness joins two others, these overlap beside it at the inner side of
+    the bend: that much is the joint.
+    """
+    names = list(bands)
+    shapes = [solid(WallEnd(b, False), b.length) for b in bands.values()]
+    ends = [{b.start, b.end} for b in bands.values()]
+    for i, j in _pairs(shapes):
+        if ends[i] & ends[j]:
+            continue
+        common = shapes[i].intersection(shapes[j])
+        least = min(*bands[names[i]].thickness, *bands[names[j]].thickness)
+        if common.area <= OVERLAP * least * least:
+            continue
+        largest = max(*bands[names[i]].thickness, *bands[names[j]].thickness)
+        link = [
+            b for b, e in zip(bands.values(), ends, strict=True)
+            if b.length <= largest and e & ends[i] and e & ends[j]
+        ]  # fmt: skip
+        if any(_beside(common, b, largest) for b in link):
+            continue
+        x, y = common.centroid.coords[0]
+        raise OutlineError(
+            "overlap",
+            (names[i], names[j]),
+            f"bands overlap near ({x:.6g}, {y:.6g}), away from a shared point",
+        )
+
+
+def _beside(common: shapely.Geometry, link: Band, reach: float) -> bool:
+    """True where an overlap keeps within ``reach`` of a short wall."""
+    line = shapely.LineString(link.midline(np.array([0.0, link.length])))
+    return bool(shapely.hausdorff_distance(common, line) <= 2.0 * reach and line.buffer(reach).covers(common))
+
+
+def _refuse_parts_in_each_other(parts: Partition) -> None:
+    """Refuse strips and joints that overlap: mitres that reach into a neighbour, folded arcs."""
+    shapes = [c.polygon() for c in parts.clusters]
+    names: list[tuple[str, ...]] = [
+        tuple({e.cut[0] for r in c.rings for e in r if e.cut} | set(c.walls)) for c in parts.clusters
+    ]
+    least = [min((b.length for b in c.rings[0]), default=0.0) for c in parts.clusters]
+    for name, strip in parts.strips.items():
+        shapes.append(Polygon(polyline(_strip_ring(strip.band, strip.span))))
+        names.append((name,))
+        least.append(min(strip.band.thickness))
+    thin = [min(min(s.band.thickness) for s in parts.strips.values())] if parts.strips else least
+    limit = OVERLAP * min(thin) ** 2
+    for shape, walls in zip(shapes, names, strict=True):
+        if not shape.is_valid:
+            raise OutlineError(
+                "overlap", walls, f"the outline crosses itself: {shapely.is_valid_reason(shape)}"
+            )
+    for i, j in _pairs(shapes):
+        if shapes[i].intersection(shapes[j]).area > limit:
+            walls = tuple(sorted({*names[i], *names[j]}))
+            raise OutlineError("overlap", walls, "parts of the outline overlap away from a shared point")
+
+
+def _pairs(shapes: list[Polygon]) -> Iterable[tuple[int, int]]:
+    """Numbers of shapes whose interiors may meet, each pair once."""
+    tree = shapely.STRtree(shapes)
+    first, second = tree.query(shapes, predicate="intersects")
+    return [(int(i), int(j)) for i, j in zip(first, second, strict=True) if i < j]

@@ -1,0 +1,44 @@
+"""The section as the finite-element side sees it: points joined by walls of real thickness."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+
+@dataclass(frozen=True)
+class Wall:
+    """One wall between two points.
+
+    Parameters
+    ----------
+    name : str
+        Unique name.
+    start, end : str
+        Names of the points it joins; its own direction runs from start to end.
+    thickness : (float, float)
+        Thickness at start and at end, linear between [L].
+    arc_through : (float, float), optional
+        A third point of a circular midline [L]; straight without.
+    e, g : float
+        Moduli over those of the base material [-].
+    direct_share : float
+        Share of the wall that carries direct stress, 0 to 1 [-].
+    """
+
+    name: str
+    start: str
+    end: str
+    thickness: tuple[float, float]
+    arc_through: tuple[float, float] | None = None
+    e: float = 1.0
+    g: float = 1.0
+    direct_share: float = 1.0
+
+
+@dataclass(frozen=True)
+class Section:
+    """Points [L] and the walls that join them, one connected graph."""
+
+    points: Mapping[str, tuple[float, float]]
+    walls: tuple[Wall, ...]

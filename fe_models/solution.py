@@ -1,0 +1,248 @@
+"""The finite-element answer for a section, and the loop that refines until it is accurate enough."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from .band import Array
+from .bridges import open_walls
+from .checks import Check, self_checks
+from .errors import SolveError
+from .fields import Fields, Inertia, Moduli, inertia
+from .fields import solve as solve_fields
+from .intervals import Interval
+from .mesh import Density, Index, Mesh, mesh
+from .outline import Outline, outline
+from .quantities import quantities
+from .recovery import FlowSamples, flow_samples
+from .section import Section
+from .space import space
+
+DEFAULT_ACCURACY = 1e-5
+# Accuracies that may be asked for: finer ones drown in round-off, coarser ones are no reference.
+ACCURACY_RANGE = (1e-8, 1e-2)
+MOST_UNKNOWNS = 400_000
+MOST_PASSES = 8
+# Mean length over thickness of the walls below which the first mesh is made finer.
+STOUT = 12.0
+
+Progress = Callable[[str], None]
+
+
+@dataclass(frozen=True)
+class MeshSummary:
+    """What was solved: order, unknowns of the larger field, elements, strips, joints, refinement passes."""
+
+    order: int
+    unknowns: int
+    elements: int
+    strips: int
+    joints: int
+    passes: int
+
+
+@dataclass(frozen=True)
+class PictureMesh:
+    """Nodes and triangles for pictures.
+
+    Parameters
+    ----------
+    vertices : (v, 2) array
+        In the file's axes [L].
+    triangles : (e, 3) array of int
+    """
+
+    vertices: Array
+    triangles: Index
+
+
+@dataclass(frozen=True)
+class Solution:
+    """The finite-element answer.
+
+    Parameters
+    ----------
+    quantities : mapping of name to Interval
+        Names as in the comparison's list; positions in the file's axes.
+    strips : mapping of wall name to (from, to) or None
+        Fractions of each wall between which flows can be asked for.
+    checks : tuple of Check
+    mesh : MeshSummary
+    outline : Outline
+    met : bool
+        True where the asked accuracy was reached for J and both shear-centre coordinates.
+    accuracy_note : str
+        What was asked and what was reached.
+    """
+
+    quantities: Mapping[str, Interval]
+    strips: Mapping[str, tuple[float, float] | None]
+    checks: tuple[Check, ...]
+    mesh: MeshSummary
+    outline: Outline
+    met: bool
+    accuracy_note: str
+    fields: Fields = field(repr=False)
+    open_walls: frozenset[str] = field(repr=False)
+
+    def flow_at(self, wall: str, fractions: ArrayLike) -> FlowSamples:
+        """Flows of the three unit loads at fractions of a wall.
+
+        Raises
+        ------
+        ValueError
+            The wall has no strip, or a fraction lies outside it.
+        """
+        strip = self.fields.space.mesh.strips.get(wall)
+        if strip is None:
+            raise ValueError(f"wall {wall} has no strip: it is part of its joints")
+        at = np.asarray(fractions, dtype=float) * strip.band.length
+        return flow_samples(self.fields, strip, at, open_wall=wall in self.open_walls)
+
+    def picture_mesh(self) -> PictureMesh:
+        """The mesh in the file's axes."""
+        m = self.fields.space.mesh
+        return PictureMesh(m.vertices, m.triangles)
+
+
+def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progress | None = None) -> Solution:
+    """Solve a section until J and the shear centre are known to the asked accuracy.
+
+    Parameters
+    ----------
+    section : Section
+    accuracy : float
+        Largest half-width of J over J, and of a shear-centre coordinate over the
+        larger overall dimension [-].
+    progress : callable, optional
+        Told each pass in a few words.
+
+    Raises
+    ------
+    OutlineError
+        The walls do not make a solid.
+    SolveError
+        The mesh or the equations failed.
+    ValueError
+        An accuracy out of range.
+    """
+    low, high = ACCURACY_RANGE
+    if not low <= accuracy <= high:
+        raise ValueError(f"accuracy must be from {low:g} to {high:g}, got {accuracy:g}")
+    solid = outline(section)
+    solved, found, passes = _refinement(solid, accuracy, progress)
+    worst = _excess(found, solid.extent, accuracy)
+    note = f"asked {accuracy:g}, reached {worst * accuracy:.1e}"
+    if worst > 1.0:
+        note += ": NOT REACHED, stopped at the mesh's limit"
+    m = solved.space.mesh
+    summary = MeshSummary(
+        solved.space.element.order,
+        solved.unknowns,
+        len(m.triangles),
+        len(m.strips),
+        len(solid.parts.clusters),
+        passes,
+    )
+    checks = self_checks(solved, solid, found)
+    return Solution(
+        found, _spans(solid, m), checks, summary, solid, worst <= 1.0, note, solved, open_walls(section)
+    )  # fmt: skip
+
+
+def _refinement(
+    solid: Outline, accuracy: float, progress: Progress | None
+) -> tuple[Fields, dict[str, Interval], int]:
+    """Last fields, the intersection of all passes' intervals, and the number of passes."""
+    order, density = _start(solid, accuracy)
+    levels: dict[str, float] = {}
+    solved = _fields(solid, density, levels, order)
+    found = quantities(solved, solid)
+    for passes in range(1, MOST_PASSES + 1):
+        worst = _excess(found, solid.extent, accuracy)
+        if progress is not None:
+            progress(f"pass {passes}: {solved.unknowns} unknowns, {worst:.2g} of the asked half-width")
+        if worst <= 1.0 or solved.unknowns > MOST_UNKNOWNS or passes == MOST_PASSES:
+            break
+        levels = _refined(solved, levels, worst)
+        try:
+            solved = _fields(solid, density, levels, order)
+        except SolveError:
+            # a mesh that grew too fine to be made leaves the last good answer standing
+            break
+        found = {n: q.meet(found[n]) for n, q in quantities(solved, solid).items()}
+    return solved, found, passes
+
+
+def _spans(solid: Outline, m: Mesh) -> dict[str, tuple[float, float] | None]:
+    """Fractions of every wall between which it is a strip."""
+    made: dict[str, tuple[float, float] | None] = {}
+    for name, b in solid.bands.items():
+        strip = m.strips.get(name)
+        made[name] = None if strip is None else (float(strip.s[0] / b.length), float(strip.s[-1] / b.length))
+    return made
+
+
+def _start(solid: Outline, accuracy: float) -> tuple[int, Density]:
+    """Order and density that usually reach an accuracy in one pass.
+
+    What corners and ends cost is compared with what the walls hold, so stout walls start finer.
+    """
+    slenderness = float(np.mean([b.length / max(b.thickness) for b in solid.bands.values()]))
+    level = float(np.clip(0.5 * np.log2(STOUT / slenderness), 0.0, 1.5))
+    if accuracy >= 3e-6:
+        return 3, Density().finer(level)
+    return 4, Density(eta=1e-5, largest=0.5, slope=0.7, layers=2, first=0.5).finer(level)
+
+
+def _fields(solid: Outline, density: Density, levels: Mapping[str, float], order: int) -> Fields:
+    thickness: dict[str, float] = {}
+    for w in solid.section.walls:
+        for p in (w.start, w.end):
+            thickness[p] = min(thickness.get(p, np.inf), *w.thickness)
+    made = mesh(solid.parts, thickness, density, levels)
+    moduli = _moduli(solid, made)
+    rough = made.vertices.mean(axis=0)
+    section: Inertia = inertia(space(made, 2, rough), moduli, rough)
+    on = space(made, order, section.centroid)
+    return solve_fields(on, moduli, inertia(on, moduli, section.centroid))
+
+
+def _moduli(solid: Outline, made: Mesh) -> Moduli:
+    """Modulus ratios of every element."""
+    ratios = {(w.e * w.direct_share, w.g) for w in solid.section.walls}
+    if len(ratios) > 1:
+        raise SolveError("walls of different moduli are not supported yet")
+    ((e, g),) = ratios
+    ones = np.ones(len(made.triangles))
+    return Moduli(g * ones, e * ones)
+
+
+def _excess(found: Mapping[str, Interval], extent: float, accuracy: float) -> float:
+    """Largest half-width over the asked one."""
+    j = found["torsion_constant"]
+    widths = [j.half_width / abs(j.known)]
+    widths += [found[n].half_width / extent for n in ("shear_centre_x", "shear_centre_y")]
+    return max(widths) / accuracy
+
+
+def _refined(solved: Fields, levels: Mapping[str, float], worst: float) -> dict[str, float]:
+    """Levels one up for the parts that hold most of the gaps, so that the rest is below half the wish."""
+    m = solved.space.mesh
+    share = np.zeros(len(m.labels))
+    for pair in (solved.torsion, *solved.flexure):
+        gap = np.bincount(m.region, solved.gap(pair), len(m.labels))
+        if gap.sum() > 0.0:
+            share = np.maximum(share, gap / gap.sum())
+    share /= share.sum()
+    order = np.argsort(-share)
+    left = 1.0 - np.cumsum(share[order])
+    count = 1 + int(np.argmax(left <= 0.4 / max(worst, 1.0)))
+    made = dict(levels)
+    for i in order[:count]:
+        made[m.labels[i]] = made.get(m.labels[i], 0) + 1
+    return made
