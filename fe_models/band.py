@@ -89,6 +89,13 @@ class Band:
         n = np.asarray(n, dtype=float)
         return self.midline(s) + n[..., None] * self.normal(s)
 
+    def face_slope(self, s: ArrayLike, sign: float) -> Array:
+        """Derivative of the left (+1) or right (-1) face with s, shape (..., 2)."""
+        s = np.asarray(s, dtype=float)
+        curvature = np.where((s >= 0.0) & (s <= self.length), self.curvature, 0.0)
+        stretch = 1.0 - curvature * sign * self.half(s)
+        return stretch[..., None] * self.direction(s) + sign * self.slope * self.normal(s)
+
     @property
     def straight(self) -> bool:
         """True where the faces are straight lines."""
@@ -166,10 +173,5 @@ class WallEnd:
 
     def side_slope(self, s: float, sign: float) -> Array:
         """Derivative of ``side`` with s, (2,)."""
-        own = self.along(s)
-        n_sign = -sign if self.reverse else sign
-        b = self.band
-        inside = 0.0 < own < b.length
-        stretch = 1.0 - (b.curvature if inside else 0.0) * n_sign * float(b.half(own))
-        d = stretch * b.direction(own) + n_sign * b.slope * b.normal(own)
-        return -d if self.reverse else d
+        slope = self.band.face_slope(self.along(s), -sign if self.reverse else sign)
+        return -slope if self.reverse else slope

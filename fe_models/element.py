@@ -77,7 +77,7 @@ def _monomials(order: int, at: Array) -> Array:
 
 @cache
 def _inverse(order: int) -> Array:
-    return np.linalg.inv(_monomials(order, _nodes(order)))
+    return np.asarray(np.linalg.inv(_monomials(order, _nodes(order))), dtype=np.float64)
 
 
 def _nodes(order: int) -> Array:

@@ -12,7 +12,7 @@ the error of the mean is half the difference of two products, each bounded by Ca
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -58,6 +58,16 @@ class Interval:
         if self.value is None:
             raise ValueError(self.reason or "the quantity is not defined")
         return self.value
+
+    def widened(self, share: float) -> Interval:
+        """The interval widened by a share of its value."""
+        return self.padded(share * abs(self.value or 0.0))
+
+    def padded(self, by: float) -> Interval:
+        """The interval widened by an amount at both ends [the quantity's own unit]."""
+        if by == 0.0 or self.low is None or self.high is None:
+            return self
+        return replace(self, low=self.low - by, high=self.high + by)
 
     def meet(self, other: Interval) -> Interval:
         """Intersection of two bounds for one quantity; this one where they are not bounds."""

@@ -10,10 +10,11 @@ import shapely
 from shapely.geometry import Polygon
 
 from .band import Array, Band, WallEnd, band
-from .boundary import Piece, Ring, polyline, rings
+from .boundary import Piece, Ring, polyline
 from .errors import OutlineError
 from .joint import Joint, joints
 from .partition import Partition, partition, solid
+from .rings import rings
 from .section import Section
 
 # More walls than this are refused: each joint is meshed on its own.
@@ -73,8 +74,9 @@ class Outline:
 
     @property
     def curved(self) -> bool:
-        """True where a face is an arc, so that elements only interpolate the outline."""
-        return any(not b.straight for b in self.bands.values())
+        """True where the boundary is curved, so that elements only interpolate the outline."""
+        rounded = any(not p.straight for c in self.parts.clusters for r in c.rings for p in r)
+        return rounded or any(not b.straight for b in self.bands.values())
 
 
 def outline(section: Section) -> Outline:
@@ -92,7 +94,7 @@ def outline(section: Section) -> Outline:
     bands = {w.name: band(w, section) for w in section.walls}
     _refuse_overlaps(bands)
     points = {name: np.array(place, dtype=float) for name, place in section.points.items()}
-    at = joints(points, bands.values())
+    at = joints(points, bands.values(), section.corners)
     parts = partition(at, bands)
     _refuse_parts_in_each_other(parts)
     found = _loops(at, bands, parts)
@@ -155,13 +157,7 @@ def _ring_moments(ring: Ring, pole: Array) -> Array:
         g, w = np.polynomial.legendre.leggauss(count)
         u = 0.5 * (g + 1.0)
         x, y = (piece.at(u) - pole).T
-        if piece.straight or piece.band is None:
-            dy = np.full(count, (piece.end - piece.start)[1]) * 0.5 * w
-        else:
-            s = piece.span[0] + u * (piece.span[1] - piece.span[0])
-            seen = WallEnd(piece.band, False)
-            rate = np.array([seen.side_slope(float(v), piece.side)[1] for v in s])
-            dy = rate * (piece.span[1] - piece.span[0]) * 0.5 * w
+        dy = piece.rate(u)[:, 1] * 0.5 * w
         kernel = np.stack([x, 0.5 * x**2, x * y, x * y**2, x**3 / 3.0, 0.5 * x**2 * y])
         total += kernel @ dy
     return total

@@ -15,9 +15,10 @@ import shapely
 from shapely.geometry import MultiPoint, Polygon
 
 from .band import Array, Band, WallEnd
-from .boundary import EndKey, Piece, Ring, polyline, rings
+from .boundary import EndKey, Piece, Ring, polyline
 from .errors import OutlineError
 from .joint import Joint
+from .rings import rings
 
 # Distance from the last corner to the cut, and the least length of a strip, over the thickness.
 MARGIN = 1.0
@@ -133,14 +134,32 @@ def solid(end: WallEnd, stop: float) -> Polygon:
 
 
 def fills(joint: Joint) -> list[Polygon]:
-    """What mitres, bevels and steps add to the bands at a joint."""
+    """What mitres, bevels, steps and fillets add to the bands at a joint."""
     parts = []
     for chain in joint.chains:
+        if chain.kind == "fillet":
+            feet = chain.first.side(chain.reach[0], 1.0), chain.second.side(chain.reach[1], -1.0)
+            parts.append(Polygon([joint.place, feet[0], *polyline(list(chain.pieces))[1:], feet[1]]))
         if chain.kind in ("mitre", "bevel", "step"):
             ends = [chain.first.side(0.0, 1.0), chain.second.side(0.0, -1.0)]
-            hull = MultiPoint(np.array([joint.place, *ends, *chain.vertices])).convex_hull
+            vertices = [chain.first.side(chain.reach[0], 1.0), chain.second.side(chain.reach[1], -1.0)]
+            vertices += [p.start for p in chain.pieces]
+            hull = MultiPoint(np.array([joint.place, *ends, *vertices])).convex_hull
             if hull.geom_type == "Polygon":
                 parts.append(hull)
+    return parts
+
+
+def trims(joint: Joint) -> list[Polygon]:
+    """What rounded outer sides take off the mitred bands at a joint."""
+    parts = []
+    for chain in joint.chains:
+        if chain.kind == "rounding":
+            arc = chain.pieces[0].at(np.linspace(0.0, 1.0, 2 + int(chain.pieces[0].turn / 0.05)))
+            # the tangents at the ends of the arc meet at the tip that is taken off
+            ends = chain.pieces[0].rate(np.array([0.0, 1.0]))
+            lengths = np.linalg.solve(np.column_stack([ends[0], ends[1]]), arc[-1] - arc[0])
+            parts.append(Polygon([*arc[::-1], arc[0] + lengths[0] * ends[0]]))
     return parts
 
 
@@ -163,6 +182,8 @@ def _united(
     size = min(max(bands[w].thickness) for w in cluster.walls)
     _refuse_swallowed(parts, own, size)
     union = shapely.union_all([*parts, *own.values()])
+    for p in cluster.points:
+        union = union.difference(shapely.union_all(trims(joints[p])))
     union = shapely.simplify(union, 1e-9 * size)
     expected = len(cluster.walls) - len(cluster.points) + 2
     if union.geom_type != "Polygon" or 1 + len(union.interiors) != expected:

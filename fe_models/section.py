@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 
 @dataclass(frozen=True)
@@ -37,8 +37,25 @@ class Wall:
 
 
 @dataclass(frozen=True)
+class Rounding:
+    """Radii at a point.
+
+    Parameters
+    ----------
+    inner : float
+        Radius of every re-entrant corner at the point [L]; 0 leaves it sharp.
+    outer : float, optional
+        Radius of the outer side of a bend [L]; inner radius plus thickness without.
+    """
+
+    inner: float
+    outer: float | None = None
+
+
+@dataclass(frozen=True)
 class Section:
-    """Points [L] and the walls that join them, one connected graph."""
+    """Points [L] and the walls that join them, one connected graph; rounding by point name."""
 
     points: Mapping[str, tuple[float, float]]
     walls: tuple[Wall, ...]
+    corners: Mapping[str, Rounding] = field(default_factory=dict)

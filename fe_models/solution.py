@@ -11,11 +11,12 @@ from numpy.typing import ArrayLike
 from .band import Array
 from .bridges import open_walls
 from .checks import Check, self_checks
+from .density import Density
 from .errors import SolveError
-from .fields import Fields, Inertia, Moduli, inertia
+from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
-from .mesh import Density, Index, Mesh, mesh
+from .mesh import Index, Mesh, mesh
 from .outline import Outline, outline
 from .quantities import quantities
 from .recovery import FlowSamples, flow_samples
@@ -207,9 +208,9 @@ def _fields(solid: Outline, density: Density, levels: Mapping[str, float], order
     made = mesh(solid.parts, thickness, density, levels)
     moduli = _moduli(solid, made)
     rough = made.vertices.mean(axis=0)
-    section: Inertia = inertia(space(made, 2, rough), moduli, rough)
-    on = space(made, order, section.centroid)
-    return solve_fields(on, moduli, inertia(on, moduli, section.centroid))
+    centroid = inertia(space(made, order, rough), moduli, rough).centroid
+    on = space(made, order, centroid)
+    return solve_fields(on, moduli, inertia(on, moduli, centroid))
 
 
 def _moduli(solid: Outline, made: Mesh) -> Moduli:

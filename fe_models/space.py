@@ -161,7 +161,9 @@ def space(mesh: Mesh, order: int, centre: Array) -> Space:
 
 
 def _bend(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:
-    """Move the nodes of elements in curved strips onto the wall's own map."""
+    """Move nodes onto curved boundaries: those of curved strips by the wall's own map, those of clusters
+    by blending the displacement of their curved edges into the element."""
+    _follow(places, mesh, el, centre)
     for strip in mesh.strips.values():
         if strip.band.straight:
             continue
@@ -169,6 +171,34 @@ def _bend(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:
         lin = _linear(el)
         at_s, at_n = s @ lin.T, n @ lin.T
         places[strip.triangles.ravel()] = strip.band.place(at_s, at_n * strip.band.half(at_s)) - centre
+
+
+def _follow(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:
+    """Put the nodes of clusters' curved edges on their pieces.
+
+    At a node with corner weights (l0, l1, l2) the displacement of edge 0-1 at l1 / (l0 + l1) enters
+    with the factor (l0 + l1)^p, which keeps the order of the element.
+    """
+    if not mesh.bends:
+        return
+    t = mesh.triangles
+    edge = {(int(t[e, a]), int(t[e, b])): (e, a, b) for e in _touching(mesh) for a, b in EDGES}
+    weight = _linear(el)
+    for bend in mesh.bends:
+        e, a, b = edge[bend.start, bend.end]
+        share = weight[:, a] + weight[:, b]
+        along = np.divide(weight[:, b], share, out=np.zeros(len(share)), where=share > 0.0)
+        chord = bend.piece.at(np.array(bend.u))
+        u = bend.u[0] + along * (bend.u[1] - bend.u[0])
+        off = bend.piece.at(u) - (chord[0] + along[:, None] * (chord[1] - chord[0]))
+        places[e] += share[:, None] ** el.order * off
+
+
+def _touching(mesh: Mesh) -> list[int]:
+    """Triangles with a vertex on a curved edge."""
+    on = np.zeros(len(mesh.vertices), dtype=bool)
+    on[[b.start for b in mesh.bends]] = True
+    return [int(e) for e in np.flatnonzero(on[mesh.triangles].any(axis=1))]
 
 
 def strip_coordinates(s: Array, n: Array) -> tuple[Array, Array]:

@@ -1,0 +1,92 @@
+"""Graded points on the rings of a cluster, and the sizes that grow from them into it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from .band import Array
+from .boundary import EndKey, Piece
+from .density import Density
+from .fill import Region
+from .grading import corner_size, graded
+from .partition import Cluster
+
+
+@dataclass(frozen=True)
+class BoundaryPoints:
+    """What the mesh of a cluster starts from.
+
+    Parameters
+    ----------
+    region : Region
+        Points of all rings, in order, with the sizes wanted inside.
+    cuts : dict of wall end to array of int
+        Numbers of the points on each cut, from its right to its left.
+    bends : list of (int, int, Piece, (float, float))
+        Edges on curved pieces: two point numbers, the piece, and the fractions of it between which they run.
+    """
+
+    region: Region
+    cuts: dict[EndKey, NDArray[np.int64]]
+    bends: list[tuple[int, int, Piece, tuple[float, float]]]
+
+
+def boundary_points(cluster: Cluster, scale: float, density: Density) -> BoundaryPoints:
+    """Points on a cluster's rings; ``scale`` is the least thickness of its walls [L]."""
+    loops, corners, cuts, bends = [], [], {}, []
+    base, thickest = 0, scale
+    for ring in cluster.rings:
+        n = len(ring)
+        sizes = [_corner(ring[i - 1], ring[i], scale, density) for i in range(n)]
+        fractions = [_fractions(p, sizes[i], sizes[(i + 1) % n], scale, density) for i, p in enumerate(ring)]
+        total = sum(len(u) - 1 for u in fractions)
+        first = 0
+        for i, (piece, u) in enumerate(zip(ring, fractions, strict=True)):
+            numbers = base + (first + np.arange(len(u))) % total
+            corners.append((int(numbers[0]), sizes[i]))
+            thickest = max(thickest, _thickness(piece, scale))
+            if piece.cut is not None:
+                cuts[piece.cut] = numbers
+            if not piece.straight:
+                spans = zip(u[:-1].tolist(), u[1:].tolist(), strict=True)
+                edges = zip(numbers[:-1].tolist(), numbers[1:].tolist(), spans, strict=True)
+                bends += [(a, b, piece, span) for a, b, span in edges]
+                corners += [(int(k), piece.length * float(np.diff(u).max())) for k in numbers[1:-1]]
+            first += len(u) - 1
+        loops.append(np.concatenate([p.at(u[:-1]) for p, u in zip(ring, fractions, strict=True)]))
+        base += total
+    region = Region(tuple(loops), tuple(corners), density.largest * thickest, density.slope)
+    return BoundaryPoints(region, cuts, bends)
+
+
+def _fractions(piece: Piece, first: float, last: float, scale: float, density: Density) -> Array:
+    """Fractions 0 ... 1 of a piece at which points lie."""
+    if piece.cut is not None:
+        return np.linspace(0.0, 1.0, density.layers + 1)
+    u = graded(piece.length, first, last, density.largest * _thickness(piece, scale), density.slope)
+    least = int(np.ceil(piece.turn / density.turn))
+    if len(u) - 1 < least:
+        return np.linspace(0.0, 1.0, least + 1)
+    return u
+
+
+def _thickness(piece: Piece, scale: float) -> float:
+    """Thickness that sets the size along a piece [L]."""
+    if piece.band is None:
+        return max(scale, piece.length if piece.cut is not None else 0.0)
+    return 2.0 * float(min(piece.band.half(piece.span[0]), piece.band.half(piece.span[1])))
+
+
+def _corner(before: Piece, after: Piece, scale: float, density: Density) -> float:
+    """Wanted size at the vertex between two pieces [L]."""
+    own = min(_thickness(before, scale), _thickness(after, scale))
+    if before.cut is not None or after.cut is not None:
+        return own / density.layers
+    a, b = before.rate(np.array([1.0]))[0], after.rate(np.array([0.0]))[0]
+    turn = np.arctan2(a[0] * b[1] - a[1] * b[0], a @ b)
+    size = corner_size(np.pi - float(turn), own, density.eta)
+    steps = [p.length * min(1.0, density.turn / p.turn) for p in (before, after) if not p.straight]
+    return min(size, before.length, after.length, density.largest * own, *steps)
