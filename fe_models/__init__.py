@@ -4,13 +4,13 @@ from .checks import Check
 from .errors import FeError, OutlineError, SolveError
 from .intervals import Interval
 from .outline import Outline
+from .picture import PictureMesh
 from .recovery import FlowSamples
-from .section import Section, Wall
+from .section import Rounding, Section, Wall
 from .solution import (
     ACCURACY_RANGE,
     DEFAULT_ACCURACY,
     MeshSummary,
-    PictureMesh,
     Solution,
     solve,
 )
@@ -26,6 +26,7 @@ __all__ = [
     "Outline",
     "OutlineError",
     "PictureMesh",
+    "Rounding",
     "Section",
     "Solution",
     "SolveError",

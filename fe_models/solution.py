@@ -8,7 +8,6 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import ArrayLike
 
-from .band import Array
 from .bridges import open_walls
 from .checks import Check, self_checks
 from .density import Density
@@ -16,8 +15,9 @@ from .errors import SolveError
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
-from .mesh import Index, Mesh, mesh
+from .mesh import Mesh, mesh
 from .outline import Outline, outline
+from .picture import PictureMesh, picture_mesh
 from .quantities import quantities
 from .recovery import FlowSamples, flow_samples
 from .section import Section
@@ -44,21 +44,6 @@ class MeshSummary:
     strips: int
     joints: int
     passes: int
-
-
-@dataclass(frozen=True)
-class PictureMesh:
-    """Nodes and triangles for pictures.
-
-    Parameters
-    ----------
-    vertices : (v, 2) array
-        In the file's axes [L].
-    triangles : (e, 3) array of int
-    """
-
-    vertices: Array
-    triangles: Index
 
 
 @dataclass(frozen=True)
@@ -105,9 +90,9 @@ class Solution:
         return flow_samples(self.fields, strip, at, open_wall=wall in self.open_walls)
 
     def picture_mesh(self) -> PictureMesh:
-        """The mesh in the file's axes."""
-        m = self.fields.space.mesh
-        return PictureMesh(m.vertices, m.triangles)
+        """The mesh in the file's axes, with the warping function about the shear centre."""
+        centre = np.array([self.quantities["shear_centre_x"].known, self.quantities["shear_centre_y"].known])
+        return picture_mesh(self.fields, centre)
 
 
 def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progress | None = None) -> Solution:
