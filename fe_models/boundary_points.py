@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -13,6 +14,7 @@ from .density import Density
 from .fill import Region
 from .grading import corner_size, graded
 from .partition import Cluster
+from .seams import Seam
 
 
 @dataclass(frozen=True)
@@ -34,8 +36,10 @@ class BoundaryPoints:
     bends: list[tuple[int, int, Piece, tuple[float, float]]]
 
 
-def boundary_points(cluster: Cluster, scale: float, density: Density) -> BoundaryPoints:
-    """Points on a cluster's rings; ``scale`` is the least thickness of its walls [L]."""
+def boundary_points(
+    cluster: Cluster, scale: float, density: Density, seams: Sequence[Seam] = ()
+) -> BoundaryPoints:
+    """Points on a cluster's rings and seams; ``scale`` is the least thickness of its walls [L]."""
     loops, corners, cuts, bends = [], [], {}, []
     base, thickest = 0, scale
     for ring in cluster.rings:
@@ -58,8 +62,30 @@ def boundary_points(cluster: Cluster, scale: float, density: Density) -> Boundar
             first += len(u) - 1
         loops.append(np.concatenate([p.at(u[:-1]) for p, u in zip(ring, fractions, strict=True)]))
         base += total
-    region = Region(tuple(loops), tuple(corners), density.largest * thickest, density.slope)
+    inner, lines = _seam_points(np.concatenate(loops), dict(corners), seams, scale, density)
+    region = Region(tuple(loops), inner, lines, tuple(corners), density.largest * thickest, density.slope)
     return BoundaryPoints(region, cuts, bends)
+
+
+def _seam_points(
+    outline: Array, sizes: Mapping[int, float], seams: Sequence[Seam], scale: float, density: Density
+) -> tuple[Array, tuple[tuple[int, ...], ...]]:
+    """Points inside along seams, and the rows of numbers that they make."""
+    inner: list[Array] = []
+    centre: dict[str, int] = {}
+    lines = []
+    for seam in seams:
+        if seam.point not in centre:
+            centre[seam.point] = len(outline) + len(inner)
+            inner.append(seam.place)
+        first = int(np.argmin(np.hypot(*(outline - seam.corner).T)))
+        length = float(np.hypot(*(seam.place - outline[first])))
+        largest = density.largest * scale
+        u = graded(length, sizes.get(first, largest), largest, largest, density.slope)[1:-1]
+        numbers = len(outline) + len(inner) + np.arange(len(u))
+        inner += list(outline[first] + u[:, None] * (seam.place - outline[first]))
+        lines.append((first, *(int(i) for i in numbers), centre[seam.point]))
+    return np.array(inner).reshape(-1, 2), tuple(lines)
 
 
 def _fractions(piece: Piece, first: float, last: float, scale: float, density: Density) -> Array:
@@ -68,6 +94,9 @@ def _fractions(piece: Piece, first: float, last: float, scale: float, density: D
         return np.linspace(0.0, 1.0, density.layers + 1)
     u = graded(piece.length, first, last, density.largest * _thickness(piece, scale), density.slope)
     least = int(np.ceil(piece.turn / density.turn))
+    if piece.arc is not None:
+        # an even number, so that a seam can end in the middle
+        least = 2 * int(np.ceil(max(least, len(u) - 1) / 2))
     if len(u) - 1 < least:
         return np.linspace(0.0, 1.0, least + 1)
     return u

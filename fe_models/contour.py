@@ -1,14 +1,12 @@
-"""Boundary loops of a mesh, and cut paths between them along which a stress function may jump."""
+"""Boundary loops of a mesh, and rows of edges that connect them."""
 
 from __future__ import annotations
 
 from collections import deque
-from dataclasses import dataclass, field
-from itertools import pairwise
+from dataclasses import dataclass
 
 import numpy as np
 
-from .band import Array
 from .element import EDGES
 from .errors import SolveError
 from .mesh import Index, Mesh
@@ -32,28 +30,6 @@ class Loop:
     elements: Index
     sides: Index
     area: float
-
-
-@dataclass(frozen=True)
-class Path:
-    """A row of mesh edges from one loop to another, and the triangles that see its nodes from the left.
-
-    Parameters
-    ----------
-    vertices : tuple of int
-    loops : (int, int)
-        Loop at its start and at its end.
-    left : tuple of (int, int)
-        (triangle, local node of order 1 or the edge's number + 3) are resolved by ``Cuts.offset``: pairs of
-        triangle and vertex on the path.
-    edges : tuple of (int, int)
-        Triangle to the left of each edge and the number of that edge in it.
-    """
-
-    vertices: tuple[int, ...]
-    loops: tuple[int, int]
-    left: tuple[tuple[int, int], ...] = field(repr=False)
-    edges: tuple[tuple[int, int], ...] = field(repr=False)
 
 
 def loops(mesh: Mesh) -> list[Loop]:
@@ -88,17 +64,18 @@ def loops(mesh: Mesh) -> list[Loop]:
     return found
 
 
-def cut_paths(mesh: Mesh, boundary: list[Loop]) -> list[Path]:
-    """One path per hole such that all loops are connected by paths.
+def cut_paths(mesh: Mesh, boundary: list[Loop], joined: list[set[int]]) -> list[list[int]]:
+    """Rows of vertices along mesh edges that connect all loops, one row per gap.
 
-    Each hole is joined by the shortest row of edges to a loop that is not yet connected with it.
+    Parameters
+    ----------
+    joined : list of set of int
+        Loops that are connected already by edges at which the stress function jumps.
+
+    Notes
+    -----
+    Each group of loops reaches for the nearest loop of another group, so rows are short: across one wall.
     """
-    if len(boundary) == 1:
-        return []
-    of_vertex = np.full(len(mesh.vertices), -1, dtype=np.int64)
-    for i, loop in enumerate(boundary):
-        of_vertex[loop.vertices] = i
-    neighbours, around = _adjacency(mesh)
     head = list(range(len(boundary)))
 
     def root(i: int) -> int:
@@ -107,31 +84,41 @@ def cut_paths(mesh: Mesh, boundary: list[Loop]) -> list[Path]:
             i = head[i]
         return i
 
+    for together in joined:
+        for i in together:
+            head[root(i)] = root(min(together))
+    if len({root(i) for i in range(len(boundary))}) == 1:
+        return []
+    of_vertex = loop_of_vertex(mesh, boundary)
+    neighbours = _neighbours(mesh)
     made = []
-    while len({root(i) for i in range(len(boundary))}) > 1:
-        # every group of loops other than the outer one reaches out once per round
-        for group in sorted({root(i) for i in range(len(boundary))} - {root(0)}):
+    while len(groups := {root(i) for i in range(len(boundary))}) > 1:
+        for group in sorted(groups - {root(0)}):
             if root(group) != group or group == root(0):
                 continue
             members = {i for i in range(len(boundary)) if root(i) == group}
             row = _reach(boundary, members, of_vertex, neighbours)
-            first, last = int(of_vertex[row[0]]), int(of_vertex[row[-1]])
-            made.append(_path(mesh, row, (first, last), around))
-            head[root(first)] = root(last)
-            if root(0) != root(last):
-                continue
+            made.append(row)
+            head[group] = root(int(of_vertex[row[-1]]))
     return made
 
 
-def _adjacency(mesh: Mesh) -> tuple[list[list[int]], list[list[int]]]:
-    """Neighbours of every vertex, and the triangles around it."""
-    around: list[list[int]] = [[] for _ in range(len(mesh.vertices))]
-    neighbours: list[list[int]] = [[] for _ in range(len(mesh.vertices))]
-    for e, (a, b, c) in enumerate(mesh.triangles.tolist()):
-        for v, (p, q) in ((a, (b, c)), (b, (c, a)), (c, (a, b))):
-            around[v].append(e)
-            neighbours[v] += (p, q)
-    return neighbours, around
+def loop_of_vertex(mesh: Mesh, boundary: list[Loop]) -> Index:
+    """Number of the loop that each vertex lies on, -1 inside, (v,)."""
+    number = np.full(len(mesh.vertices), -1, dtype=np.int64)
+    for i, loop in enumerate(boundary):
+        number[loop.vertices] = i
+    return number
+
+
+def _neighbours(mesh: Mesh) -> list[list[int]]:
+    """Vertices joined to every vertex by an edge."""
+    made: list[list[int]] = [[] for _ in range(len(mesh.vertices))]
+    for a, b, c in mesh.triangles.tolist():
+        made[a] += (b, c)
+        made[b] += (c, a)
+        made[c] += (a, b)
+    return made
 
 
 def _reach(
@@ -153,54 +140,3 @@ def _reach(
                 return row[::-1]
             queue.append(v)
     raise SolveError("a hole of the mesh cannot be joined to its outer boundary")
-
-
-def _path(mesh: Mesh, row: list[int], ends: tuple[int, int], around: list[list[int]]) -> Path:
-    """The path along a row of vertices, with the triangles on its left."""
-    t = mesh.triangles
-    steps = set(pairwise(row))
-    edges = []
-    for a, b in pairwise(row):
-        for e in around[a]:
-            for i, (p, q) in enumerate(EDGES):
-                if t[e, p] == a and t[e, q] == b:
-                    edges.append((e, i))
-    left: set[tuple[int, int]] = set()
-    for (a, b), (e, _) in zip(pairwise(row), edges, strict=True):
-        for v in (a, b):
-            # all triangles round v that are reached from e without crossing the path
-            queue = [e]
-            while queue:
-                here = queue.pop()
-                if (here, v) in left:
-                    continue
-                left.add((here, v))
-                for p, q in EDGES:
-                    i, j = int(t[here, p]), int(t[here, q])
-                    if v not in (i, j) or (i, j) in steps or (j, i) in steps:
-                        continue
-                    queue += [f for f in around[v] if f != here and i in t[f] and j in t[f]]
-    return Path(tuple(row), ends, tuple(sorted(left)), tuple(edges))
-
-
-def offsets(mesh: Mesh, paths: list[Path], jumps: Array, nodes: int, inner: int) -> Array:
-    """Element values of the step functions that rise by ``jumps`` from right to left of each path.
-
-    Parameters
-    ----------
-    jumps : (paths,) array
-    nodes, inner : int
-        Nodes of an element, and inner nodes of an edge.
-
-    Returns
-    -------
-    (e, k) array
-        Zero except at nodes on a path seen from its left.
-    """
-    made = np.zeros((len(mesh.triangles), nodes))
-    for path, jump in zip(paths, jumps, strict=True):
-        for e, v in path.left:
-            made[e, int(np.flatnonzero(mesh.triangles[e] == v)[0])] += jump
-        for e, side in path.edges:
-            made[e, 3 + side * inner : 3 + (side + 1) * inner] += jump
-    return made

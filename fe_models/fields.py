@@ -111,7 +111,7 @@ def solve(space: Space, moduli: Moduli, section: Inertia) -> Fields:
     g = moduli.g[:, None, None]
     arm = np.stack([-p[..., 1], p[..., 0]], axis=-1)
     slopes = [section.slopes(1.0, 0.0), section.slopes(0.0, 1.0)]
-    on = contours(space)
+    on = contours(space, moduli.e)
     held = np.arange(space.count) - 1
     above = equations(space, moduli.g, held)
     below = equations(space, 1.0 / moduli.g, on.unknown)
@@ -121,7 +121,7 @@ def solve(space: Space, moduli: Moduli, section: Inertia) -> Fields:
     start = [g * arm, np.zeros(p.shape), np.zeros(p.shape)]
     potentials, kinematic, left = _compatible(above, g, start, loads)
 
-    lifts = [boundary_values(on, moduli.e, s) for s in slopes]
+    lifts = [boundary_values(on, s) for s in slopes]
     particular = [-0.5 * moduli.e[:, None, None] * s * p**2 for s in slopes]
     first = [np.zeros(p.shape)] + [t + _curl(space, lift) for t, lift in zip(particular, lifts, strict=True)]
     pull = [arm, np.zeros(p.shape), np.zeros(p.shape)]

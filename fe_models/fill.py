@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
 
 from .band import Array
 from .errors import SolveError
+
+Index = NDArray[np.int64]
 
 SYSTEM_LIBRARIES = "apt-get install -y libglu1-mesa libxrender1 libxcursor1 libxft2 libxinerama1 libgomp1"
 
@@ -21,6 +24,10 @@ class Region:
     ----------
     loops : tuple of (k, 2) arrays
         Boundary points [L]; every two in a row become one element edge.
+    inner : (k, 2) array
+        Points that must be vertices inside [L].
+    lines : tuple of tuple of int
+        Rows of points (numbers among the loops' points, then the inner ones) whose steps must be edges.
     corners : tuple of (int, float)
         Points among all loops' points from which sizes grow, and the size at each [L].
     largest : float
@@ -30,6 +37,8 @@ class Region:
     """
 
     loops: tuple[Array, ...]
+    inner: Array
+    lines: tuple[tuple[int, ...], ...]
     corners: tuple[tuple[int, float], ...]
     largest: float
     slope: float
@@ -37,10 +46,10 @@ class Region:
 
 @dataclass(frozen=True)
 class Filling:
-    """Triangles of a region: the first vertices are the loops' points in order, the rest are inside."""
+    """Triangles of a region: first the loops' points in order, then the inner ones, then the rest."""
 
     vertices: Array
-    triangles: NDArray[np.int64]
+    triangles: Index
 
 
 def fill(regions: list[Region]) -> list[Filling]:
@@ -81,7 +90,7 @@ def _fill_one(gmsh, region: Region) -> Filling:  # type: ignore[no-untyped-def]
     gmsh.model.add("joint")
     try:
         geo = gmsh.model.geo
-        points = np.concatenate(region.loops)
+        points = np.concatenate([*region.loops, region.inner])
         centre, size = points.mean(axis=0), np.ptp(points, axis=0).max()
         scaled = (points - centre) / size
         tags = [geo.addPoint(float(x), float(y), 0.0) for x, y in scaled]
@@ -94,7 +103,12 @@ def _fill_one(gmsh, region: Region) -> Filling:  # type: ignore[no-untyped-def]
                 geo.mesh.setTransfiniteCurve(line, 2)
             loops.append(geo.addCurveLoop(lines))
         surface = geo.addPlaneSurface(loops)
+        seams = [geo.addLine(tags[a], tags[b]) for row in region.lines for a, b in pairwise(row)]
+        for line in seams:
+            geo.mesh.setTransfiniteCurve(line, 2)
         geo.synchronize()
+        if seams:
+            gmsh.model.mesh.embed(1, seams, 2, surface)
         _sizes(gmsh, region, tags, size)
         gmsh.model.mesh.generate(2)
         node_tags, coordinates, _ = gmsh.model.mesh.getNodes()
@@ -138,7 +152,7 @@ def _sizes(gmsh, region: Region, tags: list[int], size: float) -> None:  # type:
         field.setAsBackgroundMesh(least_of_all)
 
 
-def _anticlockwise(vertices: Array, triangles: NDArray[np.int64]) -> NDArray[np.int64]:
+def _anticlockwise(vertices: Array, triangles: Index) -> Index:
     a, b, c = (vertices[triangles[:, i]] for i in range(3))
     turned = (b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0] < 0
     triangles = triangles.copy()

@@ -2,20 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
 
 from .band import Array, Band
+from .booms import breaks
 from .boundary import EndKey, Piece
 from .boundary_points import boundary_points
 from .density import Density
 from .errors import SolveError
-from .fill import Region, fill
+from .fill import Filling, Region, fill
 from .grading import stretched
-from .partition import Cluster, Partition, Strip
+from .outline import Outline
+from .partition import Cluster, Strip
+from .seams import Seam, owners, seams
+from .section import Wall
 
 Index = NDArray[np.int64]
 
@@ -62,6 +67,10 @@ class Mesh:
         Anticlockwise.
     region : (e,) array of int
         Number of the part (clusters first, then strips).
+    owner : (e,) array of int
+        Number of the wall that each triangle belongs to.
+    boom : (e,) array
+        e that booms add to the wall's own [-].
     strips : mapping of wall name to StripMesh
     labels : tuple of str
         Name of each part.
@@ -72,20 +81,19 @@ class Mesh:
     vertices: Array
     triangles: Index
     region: Index
+    owner: Index
+    boom: Array
     strips: dict[str, StripMesh]
     labels: tuple[str, ...]
     bends: tuple[Bend, ...] = ()
 
 
-def mesh(
-    parts: Partition, thickness: Mapping[str, float], density: Density, levels: Mapping[str, float]
-) -> Mesh:
-    """Mesh a partition.
+def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
+    """Mesh the parts of a solid.
 
     Parameters
     ----------
-    thickness : mapping of point name to float
-        Least thickness of the walls at each point [L].
+    solid : Outline
     levels : mapping of part label to float
         Refinement level of each part (0 where absent).
 
@@ -94,52 +102,118 @@ def mesh(
     SolveError
         When the mesh generator fails or a part is not covered by its triangles.
     """
-    vertices: list[Array] = []
+    parts = solid.parts
+    walls = {w.name: w for w in solid.section.walls}
+    number_of = {w.name: i for i, w in enumerate(solid.section.walls)}
+    thickness = _least_thickness(solid)
+
+    def differ(a: str, b: str) -> bool:
+        return moduli_of(walls[a]) != moduli_of(walls[b])
+
+    made = _Rows([], [], [], [], [])
     cut_vertices: dict[EndKey, Index] = {}
-    triangles: list[Index] = []
-    region: list[Index] = []
     bends: list[Bend] = []
     labels = [cluster_label(c) for c in parts.clusters] + [strip_label(w) for w in parts.strips]
-    count = 0
-    prepared = []
-    for i, cluster in enumerate(parts.clusters):
-        scale = min(thickness[p] for p in cluster.points)
-        prepared.append(boundary_points(cluster, scale, density.finer(levels.get(labels[i], 0))))
+    seams_of = [seams(c, solid.joints, differ) for c in parts.clusters]
+    prepared = [
+        boundary_points(c, min(thickness[p] for p in c.points), density.finer(levels.get(label, 0)), lines)
+        for c, label, lines in zip(parts.clusters, labels, seams_of, strict=False)
+    ]
     fillings = fill([p.region for p in prepared])
     for i, (cluster, points, filled) in enumerate(zip(parts.clusters, prepared, fillings, strict=True)):
-        _check_cover(cluster, points.region, filled.vertices, filled.triangles)
-        number = np.full(len(filled.vertices), -1, dtype=np.int64)
+        _check_cover(cluster, points.region, filled)
+        base = made.count
         for key, at in points.cuts.items():
-            if key in cut_vertices:
-                number[at] = cut_vertices[key]
-        new = number < 0
-        number[new] = count + np.arange(new.sum())
-        vertices.append(filled.vertices[new])
-        count += int(new.sum())
-        for key, at in points.cuts.items():
-            cut_vertices[key] = number[at]
-        bends += [Bend(int(number[a]), int(number[b]), piece, u) for a, b, piece, u in points.bends]
-        triangles.append(number[filled.triangles])
-        region.append(np.full(len(filled.triangles), i))
+            cut_vertices[key] = base + at
+        bends += [Bend(base + a, base + b, piece, u) for a, b, piece, u in points.bends]
+        names = owners(
+            cluster,
+            filled.triangles,
+            filled.vertices,
+            _seam_edges(points.region.lines, seams_of[i]),
+            {(int(a), int(b)): key for key, at in points.cuts.items() for a, b in pairwise(at)},
+            solid.bands,
+        )
+        area = cluster_area(cluster)
+        made.add(
+            filled.vertices, base + filled.triangles, i, [number_of[n] for n in names], cluster.boom / area
+        )
     strips = {}
-    total = sum(len(t) for t in triangles)
     for j, (name, strip) in enumerate(parts.strips.items()):
         fineness = density.finer(levels.get(strip_label(name), 0))
-        made, inner, own = _strip(strip, fineness, cut_vertices, count, total)
-        vertices.append(inner)
-        count += len(inner)
-        total += len(own)
-        strips[name] = made
-        triangles.append(own)
-        region.append(np.full(len(own), len(parts.clusters) + j))
+        grid, inner, own = _strip(strip, fineness, cut_vertices, made.count, made.total)
+        strips[name] = grid
+        booms = np.repeat(_patch_density(strip, grid.s), own.shape[0] // (len(grid.s) - 1))
+        made.add(inner, own, len(parts.clusters) + j, [number_of[name]] * len(own), booms)
     return Mesh(
-        np.concatenate(vertices),
-        np.concatenate(triangles),
-        np.concatenate(region),
+        np.concatenate(made.vertices),
+        np.concatenate(made.triangles),
+        np.concatenate(made.region),
+        np.concatenate(made.owner),
+        np.concatenate(made.boom),
         strips,
         tuple(labels),
         tuple(bends),
     )
+
+
+@dataclass
+class _Rows:
+    """Arrays of the parts of a mesh under construction."""
+
+    vertices: list[Array]
+    triangles: list[Index]
+    region: list[Index]
+    owner: list[Index]
+    boom: list[Array]
+    count: int = 0
+    total: int = 0
+
+    def add(
+        self, vertices: Array, triangles: Index, region: int, owner: Sequence[int], boom: float | Array
+    ) -> None:
+        """Append a part: its new vertices, its triangles, their part, their walls, their booms' e."""
+        self.vertices.append(vertices)
+        self.triangles.append(triangles)
+        self.region.append(np.full(len(triangles), region))
+        self.owner.append(np.array(owner, dtype=np.int64))
+        self.boom.append(np.broadcast_to(boom, len(triangles)))
+        self.count += len(vertices)
+        self.total += len(triangles)
+
+
+def moduli_of(wall: Wall) -> tuple[float, float]:
+    """e (with the share that carries direct stress) and g of a wall."""
+    return wall.e * wall.direct_share, wall.g
+
+
+def _least_thickness(solid: Outline) -> dict[str, float]:
+    """Least thickness of the walls at each point [L]."""
+    found: dict[str, float] = {}
+    for w in solid.section.walls:
+        for p in (w.start, w.end):
+            found[p] = min(found.get(p, np.inf), *w.thickness)
+    return found
+
+
+def _seam_edges(lines: Sequence[tuple[int, ...]], of: Sequence[Seam]) -> dict[tuple[int, int], str]:
+    """The wall to the left of every directed edge along seams."""
+    made: dict[tuple[int, int], str] = {}
+    for row, seam in zip(lines, of, strict=True):
+        for a, b in pairwise(row):
+            made[a, b], made[b, a] = seam.left, seam.right
+    return made
+
+
+def _patch_density(strip: Strip, s: Array) -> Array:
+    """e that booms add to each column of a strip [-]."""
+    middle = 0.5 * (s[:-1] + s[1:])
+    made = np.zeros(len(middle))
+    for patch in strip.patches:
+        low, high = patch.span
+        area = (high - low) * 2.0 * float(strip.band.half(0.5 * (low + high)))
+        made[(middle > low) & (middle < high)] += patch.area / area
+    return made
 
 
 def cluster_label(cluster: Cluster) -> str:
@@ -150,10 +224,15 @@ def strip_label(wall: str) -> str:
     return "strip " + wall
 
 
-def _check_cover(cluster: Cluster, region: Region, vertices: Array, triangles: Index) -> None:
+def cluster_area(cluster: Cluster) -> float:
+    """Area of a cluster, curved faces in fine steps [L^2]."""
+    return float(cluster.polygon().area)
+
+
+def _check_cover(cluster: Cluster, region: Region, filled: Filling) -> None:
     """The triangles must cover the polygon: a region that was left out gives plausible, wrong numbers."""
     wanted = sum(_shoelace(p) for p in region.loops)
-    a, b, c = (vertices[triangles[:, i]] for i in range(3))
+    a, b, c = (filled.vertices[filled.triangles[:, i]] for i in range(3))
     found = 0.5 * ((b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0]).sum()
     if abs(found - wanted) > 1e-9 * abs(wanted):
         raise SolveError(f"mesh of joint {' '.join(cluster.points)} covers {found:.6g} of {wanted:.6g}")
@@ -171,14 +250,19 @@ def _strip(
     band, (a, b) = strip.band, strip.span
     least = 2.0 * float(min(band.half(a), band.half(b)))
     limit = density.turn / abs(band.curvature) if band.curvature else np.inf
-    s = a + (b - a) * stretched(b - a, density.first * least, density.ratio, limit)
+    bounds = breaks(strip)
+    rows = [
+        low + (high - low) * stretched(high - low, density.first * least, density.ratio, limit)[:-1]
+        for low, high in pairwise(bounds)
+    ]
+    s = np.append(np.concatenate(rows), b)
     n = np.linspace(-1.0, 1.0, density.layers + 1)
     inner = s[1:-1]
     grid_s, grid_n = np.meshgrid(inner, n, indexing="ij")
     points = band.place(grid_s, grid_n * band.half(grid_s)).reshape(-1, 2)
-    rows = [cuts[band.name, False][None], count + np.arange(len(points)).reshape(len(inner), len(n)),
+    grid = [cuts[band.name, False][None], count + np.arange(len(points)).reshape(len(inner), len(n)),
             cuts[band.name, True][::-1][None]]  # fmt: skip
-    ids = np.concatenate(rows)
+    ids = np.concatenate(grid)
     p, q, r, t = ids[:-1, :-1], ids[1:, :-1], ids[1:, 1:], ids[:-1, 1:]
     quads = np.stack([np.stack([p, q, r], -1), np.stack([p, r, t], -1)], axis=2)
     columns = len(s) - 1

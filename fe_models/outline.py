@@ -10,6 +10,7 @@ import shapely
 from shapely.geometry import Polygon
 
 from .band import Array, Band, WallEnd, band
+from .booms import with_booms
 from .boundary import Piece, Ring, polyline
 from .errors import OutlineError
 from .joint import Joint, joints
@@ -95,7 +96,7 @@ def outline(section: Section) -> Outline:
     _refuse_overlaps(bands)
     points = {name: np.array(place, dtype=float) for name, place in section.points.items()}
     at = joints(points, bands.values(), section.corners)
-    parts = partition(at, bands)
+    parts = with_booms(partition(at, bands), section.booms, bands)
     _refuse_parts_in_each_other(parts)
     found = _loops(at, bands, parts)
     expected = len(bands) - len(at) + 2

@@ -33,16 +33,26 @@ class Strip:
 
     band: Band
     span: tuple[float, float]
+    patches: tuple[Patch, ...] = ()
+
+
+@dataclass(frozen=True)
+class Patch:
+    """Part of a strip, from s = span[0] to span[1] [L], over which a boom of e times area [L^2] is spread."""
+
+    span: tuple[float, float]
+    area: float
 
 
 @dataclass(frozen=True)
 class Cluster:
-    """One compact region: its points, the walls wholly inside it, and its closed rings."""
+    """One compact region: its points, the walls wholly inside it, its closed rings, its booms' e area."""
 
     points: tuple[str, ...]
     walls: tuple[str, ...]
     rings: list[Ring] = field(repr=False)
     united: bool = False
+    boom: float = 0.0
 
     def polygon(self) -> Polygon:
         """The region as a polygon; curved faces in steps."""

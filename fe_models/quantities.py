@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from . import intervals
-from .fields import Fields
+from .fields import Fields, Moduli, inertia
 from .intervals import Interval, around
 from .outline import Outline
 
@@ -41,41 +41,47 @@ def quantities(fields: Fields, solid: Outline) -> dict[str, Interval]:
 
 def geometry_error(fields: Fields, solid: Outline) -> float:
     """Largest relative difference of the mesh's area and second moments from the outline's exact ones [-]."""
-    section = fields.inertia
+    ones = np.ones(len(fields.moduli.e))
+    section = inertia(fields.space, Moduli(ones, ones), fields.inertia.centroid)
     m = solid.moments(section.centroid)
-    e = float(fields.moduli.e[0])
     second = np.array([section.xx, section.yy, section.xy])
-    off = np.abs(second - e * m.second).max() / max(section.xx, section.yy)
-    return float(max(off, abs(section.area / (e * m.area) - 1.0)))
+    off = np.abs(second - m.second).max() / max(section.xx, section.yy)
+    return float(max(off, abs(section.area / m.area - 1.0)))
 
 
 def _exact(fields: Fields, solid: Outline) -> dict[str, Interval]:
-    """Area to principal axes from the outline's boundary."""
-    e = float(fields.moduli.e[0])
-    pole = fields.inertia.centroid
-    m = solid.moments(pole)
-    shift = m.first / m.area
-    xx, yy, xy = e * (m.second - m.area * np.array([shift[1] ** 2, shift[0] ** 2, shift[0] * shift[1]]))
+    """Area to principal axes: from the outline's boundary where e is uniform, else from the mesh."""
+    e, section, size = fields.moduli.e, fields.inertia, solid.extent
+    if np.all(e == e[0]):
+        m = solid.moments(section.centroid)
+        shift = m.first / m.area
+        area, place, off = float(e[0]) * m.area, section.centroid + shift, 0.0
+        steiner = m.area * np.array([shift[1] ** 2, shift[0] ** 2, shift[0] * shift[1]])
+        xx, yy, xy = float(e[0]) * (m.second - steiner)
+    else:
+        off = GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0
+        area, place = section.area, section.centroid
+        xx, yy, xy = section.xx, section.yy, section.xy
+    tolerance = EXACT_ROUND_OFF + off
     centre, radius = 0.5 * (xx + yy), float(np.hypot(0.5 * (xx - yy), xy))
-    size = solid.extent
     plain = {
-        "area": e * m.area,
+        "area": area,
         "second_moment_xx": xx,
         "second_moment_yy": yy,
         "principal_moment_u": centre + radius,
         "principal_moment_v": centre - radius,
     }
-    made = {n: _exactly(float(v), EXACT_ROUND_OFF * abs(float(v))) for n, v in plain.items()}
-    made["product_moment_xy"] = _exactly(float(xy), EXACT_ROUND_OFF * float(np.sqrt(xx * yy)))
+    made = {n: _exactly(float(v), tolerance * abs(float(v))) for n, v in plain.items()}
+    made["product_moment_xy"] = _exactly(float(xy), tolerance * float(np.sqrt(xx * yy)))
     for i, axis in enumerate("xy"):
-        made[f"centroid_{axis}"] = _exactly(float(pole[i] + shift[i]), EXACT_ROUND_OFF * size)
+        made[f"centroid_{axis}"] = _exactly(float(place[i]), tolerance * size)
     if radius <= SAME_MOMENTS * centre:
         made["principal_angle"] = Interval(None, None, None, "exact", "both principal moments are equal")
     else:
         # axis u, of the larger moment: I_u = Ixx cos^2 + Iyy sin^2 - 2 Ixy sin cos
         angle = 0.5 * float(np.arctan2(-2.0 * xy, xx - yy))
         angle = angle + np.pi if angle <= -0.5 * np.pi else angle
-        made["principal_angle"] = _exactly(angle, EXACT_ROUND_OFF * centre / radius)
+        made["principal_angle"] = _exactly(angle, tolerance * centre / radius)
     return made
 
 

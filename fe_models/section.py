@@ -37,6 +37,26 @@ class Wall:
 
 
 @dataclass(frozen=True)
+class Boom:
+    """A concentrated area, spread over its joint or over a patch of its wall.
+
+    Parameters
+    ----------
+    area : float
+        e times area [L^2].
+    point : str, optional
+        Name of the point it sits at.
+    wall, at : str and float, optional
+        Or the wall and the fraction of it.
+    """
+
+    area: float
+    point: str | None = None
+    wall: str | None = None
+    at: float = 0.0
+
+
+@dataclass(frozen=True)
 class Rounding:
     """Radii at a point.
 
@@ -59,3 +79,4 @@ class Section:
     points: Mapping[str, tuple[float, float]]
     walls: tuple[Wall, ...]
     corners: Mapping[str, Rounding] = field(default_factory=dict)
+    booms: tuple[Boom, ...] = ()

@@ -15,7 +15,7 @@ from .errors import SolveError
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
-from .mesh import Mesh, mesh
+from .mesh import Mesh, mesh, moduli_of
 from .outline import Outline, outline
 from .picture import PictureMesh, picture_mesh
 from .quantities import quantities
@@ -186,26 +186,13 @@ def _start(solid: Outline, accuracy: float) -> tuple[int, Density]:
 
 
 def _fields(solid: Outline, density: Density, levels: Mapping[str, float], order: int) -> Fields:
-    thickness: dict[str, float] = {}
-    for w in solid.section.walls:
-        for p in (w.start, w.end):
-            thickness[p] = min(thickness.get(p, np.inf), *w.thickness)
-    made = mesh(solid.parts, thickness, density, levels)
-    moduli = _moduli(solid, made)
+    made = mesh(solid, density, levels)
+    own = np.array([moduli_of(w) for w in solid.section.walls])[made.owner]
+    moduli = Moduli(own[:, 1], own[:, 0] + made.boom)
     rough = made.vertices.mean(axis=0)
     centroid = inertia(space(made, order, rough), moduli, rough).centroid
     on = space(made, order, centroid)
     return solve_fields(on, moduli, inertia(on, moduli, centroid))
-
-
-def _moduli(solid: Outline, made: Mesh) -> Moduli:
-    """Modulus ratios of every element."""
-    ratios = {(w.e * w.direct_share, w.g) for w in solid.section.walls}
-    if len(ratios) > 1:
-        raise SolveError("walls of different moduli are not supported yet")
-    ((e, g),) = ratios
-    ones = np.ones(len(made.triangles))
-    return Moduli(g * ones, e * ones)
 
 
 def _excess(found: Mapping[str, Interval], extent: float, accuracy: float) -> float:
