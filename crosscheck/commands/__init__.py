@@ -1,0 +1,1 @@
+"""Sub-commands, one file each: ``add`` declares arguments, ``run`` works and returns the status."""

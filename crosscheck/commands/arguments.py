@@ -1,0 +1,67 @@
+"""Arguments and steps that several sub-commands share."""
+
+from __future__ import annotations
+
+import argparse
+import math
+import sys
+from collections.abc import Iterable
+from contextlib import contextmanager
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from crosscheck.comparison import Progress
+
+FINEST_ACCURACY = 1e-7
+COARSEST_ACCURACY = 1e-3
+
+
+def accuracy(text: str) -> float:
+    """Accuracy asked for, between 1e-7 and 1e-3."""
+    try:
+        value = float(text)
+    except ValueError:
+        value = math.nan
+    if not FINEST_ACCURACY <= value <= COARSEST_ACCURACY:
+        raise argparse.ArgumentTypeError(f"must be a number from 1e-7 to 1e-3, got {text!r}")
+    return value
+
+
+def add_model_arguments(command: argparse.ArgumentParser) -> None:
+    """Accuracy and overriding of parameters."""
+    command.add_argument(
+        "--accuracy",
+        type=accuracy,
+        default=1e-5,
+        metavar="1e-5",
+        help="half-width asked of FE's intervals, of J and of the larger overall dimension (default 1e-5)",
+    )
+    command.add_argument(
+        "--set",
+        dest="overrides",
+        action="append",
+        default=[],
+        metavar='"t = 2.5"',
+        help="replace a parameter of the section file; may be given several times",
+    )
+
+
+def complain(lines: Iterable[str]) -> None:
+    """Faults, one line each, on the error stream."""
+    for line in lines:
+        sys.stderr.write(" ".join(str(line).split()) + "\n")
+
+
+@contextmanager
+def told_progress() -> Iterator[Progress]:
+    """Progress on the error stream where that is a terminal; silent otherwise."""
+    if not sys.stderr.isatty():
+        yield lambda _: None
+        return
+    from rich.console import Console
+
+    console = Console(stderr=True, highlight=False, markup=False)
+    with console.status("starting") as status:
+        yield lambda text: status.update(text)

@@ -1,0 +1,193 @@
+"""``crosscheck compare``: both sides of one or more section files."""
+
+from __future__ import annotations
+
+import argparse
+import os
+import sys
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from crosscheck.commands.arguments import add_model_arguments, complain, told_progress
+from crosscheck.exit_status import ExitStatus
+
+if TYPE_CHECKING:
+    from crosscheck.comparison import Progress
+    from crosscheck.result import Result
+
+DESCRIPTION = """\
+Solve section files by classical theory and by finite elements and report every difference, worst first.
+A folder stands for the section files (*.toml) in it."""
+EPILOG = """\
+examples:
+  crosscheck compare cases/lipped_channel.toml
+  crosscheck compare cases/lipped_channel.toml --out report --set "t = 2.5"
+  crosscheck compare cases --json results.json"""
+
+
+def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    """Declare the sub-command."""
+    command = commands.add_parser(
+        "compare",
+        help="hand methods beside finite elements, quantity by quantity",
+        description=DESCRIPTION,
+        epilog=EPILOG,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+        allow_abbrev=False,
+    )
+    command.add_argument("paths", nargs="+", metavar="FILE", help="section file, or a folder of them")
+    command.add_argument(
+        "--out", metavar="DIR", help="draw the pictures (SVG and PNG) and write result.json into this folder"
+    )
+    command.add_argument(
+        "--json", dest="json_path", metavar="PATH", help="write the result as JSON; - for standard output"
+    )
+    add_model_arguments(command)
+    command.set_defaults(run=run)
+
+
+def run(arguments: argparse.Namespace) -> int:
+    """Compare every section; one that cannot be read or solved does not stop the others."""
+    paths, missing = section_paths(arguments.paths)
+    complain(missing)
+    status = ExitStatus.BAD_INPUT if missing else ExitStatus.WITHIN
+    folders = output_folders(paths, arguments.out)
+    results: list[Result] = []
+    for path, folder in zip(paths, folders, strict=True):
+        with told_progress() as tell:
+            result, found = compare_file(
+                path, arguments.overrides, arguments.accuracy, tell, pictures=folder is not None
+            )
+            status = max(status, found)
+            if result is None:
+                continue
+            if folder is not None:
+                found = write_pictures(result, folder, tell)
+                status = max(status, found)
+        results.append(result)
+        # Standard output belongs to the JSON when that is asked for.
+        stream = sys.stderr if arguments.json_path == "-" else sys.stdout
+        show(result, str(folder) if folder is not None and found < ExitStatus.BAD_INPUT else None, stream)
+    if arguments.json_path is not None and results:
+        status = max(status, write_json(results, arguments.json_path))
+    return status
+
+
+def section_paths(given: Sequence[str]) -> tuple[list[str], list[str]]:
+    """Section files meant by the arguments, and a line for each argument that means none."""
+    paths: list[str] = []
+    faults: list[str] = []
+    for name in given:
+        if not os.path.isdir(name):
+            paths.append(name)
+            continue
+        inside = sorted(str(path) for path in Path(name).glob("*.toml"))
+        if not inside:
+            faults.append(
+                f"{name}: must be a section file or a folder with *.toml files, got a folder with none"
+            )
+        paths += inside
+    return paths, faults
+
+
+def output_folders(paths: Sequence[str], out: str | None) -> list[Path | None]:
+    """Folder of each section's output: ``out`` itself for one, a folder named after the file for several."""
+    if out is None:
+        return [None] * len(paths)
+    if len(paths) == 1:
+        return [Path(out)]
+    folders: list[Path | None] = []
+    for path in paths:
+        stem, folder, number = Path(path).stem, Path(out) / Path(path).stem, 1
+        while folder in folders:
+            number += 1
+            folder = Path(out) / f"{stem}_{number}"
+        folders.append(folder)
+    return folders
+
+
+def compare_file(
+    path: str, overrides: Sequence[str], accuracy: float, tell: Progress, *, pictures: bool
+) -> tuple[Result | None, ExitStatus]:
+    """Read and compare one file; its faults go to the error stream."""
+    tell(f"{path}: reading")
+    from crosscheck.faults import SectionFaults
+    from crosscheck.section_file import read_section
+
+    try:
+        section = read_section(path, tuple(overrides))
+    except SectionFaults as faults:
+        complain(faults.lines)
+        return None, ExitStatus.BAD_INPUT
+
+    import beam_theory
+    import fe_models
+    from crosscheck.comparison import compare
+
+    try:
+        result = compare(section, accuracy, lambda text: tell(f"{path}: {text}"), pictures=pictures)
+    except fe_models.OutlineError as fault:
+        walls = ", ".join(fault.walls)
+        complain([f"{path}: walls: {walls}: {fault.message}" if walls else f"{path}: walls: {fault.message}"])
+        return None, ExitStatus.BAD_INPUT
+    except beam_theory.SectionError as fault:
+        complain(f"{path}: {line}" for line in fault.faults)
+        return None, ExitStatus.BAD_INPUT
+    except (fe_models.FeError, beam_theory.TheoryError) as fault:
+        side = "finite elements" if isinstance(fault, fe_models.FeError) else "classical theory"
+        complain([f"{path}: {side}: {fault}"])
+        return None, ExitStatus.FAILED
+    return result, result_status(result)
+
+
+def result_status(result: Result) -> ExitStatus:
+    """0 when every verdict is within and every self-check passed, else 1; nulls do not count."""
+    held = all(row.verdict in ("within", None) for row in result.quantities)
+    sound = all(check.passed for check in result.checks)
+    return ExitStatus.WITHIN if held and sound else ExitStatus.NOT_WITHIN
+
+
+def write_pictures(result: Result, folder: Path, tell: Progress) -> ExitStatus:
+    """Pictures and result.json of one section, all made before the first is written."""
+    from crosscheck.pictures import every_picture
+    from crosscheck.result_json import json_text
+    from crosscheck.whole_files import write_folder
+
+    tell(f"{result.title}: pictures")
+    files = every_picture(result)
+    files["result.json"] = json_text([result]).encode()
+    try:
+        write_folder(folder, files)
+    except OSError as fault:
+        complain([f"{folder}: must be a folder that can be written, got: {fault.strerror or fault}"])
+        return ExitStatus.BAD_INPUT
+    return ExitStatus.WITHIN
+
+
+def write_json(results: Sequence[Result], path: str) -> ExitStatus:
+    """The JSON to a file, whole or not at all, or to standard output."""
+    from crosscheck.result_json import json_text
+    from crosscheck.whole_files import write_whole
+
+    text = json_text(results)
+    if path == "-":
+        sys.stdout.write(text)
+        return ExitStatus.WITHIN
+    try:
+        write_whole(Path(path), text.encode())
+    except OSError as fault:
+        complain([f"{path}: must be a file that can be written, got: {fault.strerror or fault}"])
+        return ExitStatus.BAD_INPUT
+    return ExitStatus.WITHIN
+
+
+def show(result: Result, pictures: str | None, stream: object) -> None:
+    """The first screen, on standard output or on the error stream."""
+    from rich.console import Console
+
+    from crosscheck.screen import console_for, first_screen
+
+    console = Console(stderr=stream is sys.stderr, highlight=False, markup=False, emoji=False)
+    width, unicode = console_for(console)
+    console.print(first_screen(result, width, unicode=unicode, pictures=pictures))

@@ -1,0 +1,76 @@
+"""Pictures of a result: vector and raster, for 80 mm columns and 160 mm pages."""
+
+from __future__ import annotations
+
+import re
+
+from matplotlib.figure import Figure
+
+from crosscheck.pictures.both_sides import both_sides_picture
+from crosscheck.pictures.canvas import picture_bytes
+from crosscheck.pictures.criteria import criteria_picture
+from crosscheck.pictures.flow import flow_picture
+from crosscheck.pictures.joints import joints_picture
+from crosscheck.pictures.section import section_picture
+from crosscheck.pictures.warping import warping_picture
+from crosscheck.quantities import UNIT_LOADS
+from crosscheck.result import Result
+
+__all__ = [
+    "both_sides_picture",
+    "criteria_picture",
+    "every_picture",
+    "flow_picture",
+    "joints_picture",
+    "picture_bytes",
+    "section_picture",
+    "warping_picture",
+]
+
+WIDTHS = (160, 80)
+
+
+def every_picture(result: Result) -> dict[str, bytes]:
+    """All pictures of a result as files: name to bytes, SVG and PNG, both widths.
+
+    Parameters
+    ----------
+    result : Result
+        What a comparison found.
+
+    Returns
+    -------
+    dict of file name to bytes
+        ``section.svg`` is 160 mm wide, ``section_80mm.svg`` 80 mm.
+    """
+    files: dict[str, bytes] = {}
+    for width in WIDTHS:
+        suffix = "" if width == WIDTHS[0] else f"_{width}mm"
+        for name, figure in figures(result, width).items():
+            for kind in ("svg", "png"):
+                files[f"{name}{suffix}.{kind}"] = picture_bytes(figure, kind)
+    return files
+
+
+def figures(result: Result, width_mm: int) -> dict[str, Figure]:
+    """Every figure that has something to show, by the name of its file."""
+    drawn: dict[str, Figure | None] = {
+        "section": section_picture(result, width_mm),
+        "both_sides": both_sides_picture(result, width_mm),
+        "criteria": criteria_picture(result, width_mm),
+    }
+    for load in (*UNIT_LOADS, *(line.name for line in result.require_drawing().loads)):
+        drawn[free_name(f"flow_{load}", drawn)] = flow_picture(result, load, width_mm)
+    drawn["warping"] = warping_picture(result, width_mm)
+    drawn["joints"] = joints_picture(result, width_mm)
+    return {name: figure for name, figure in drawn.items() if figure is not None}
+
+
+def free_name(words: str, taken: dict[str, Figure | None]) -> str:
+    """A plain file name of the words, with a number where it is taken; no folder, no odd letters."""
+    name = re.sub(r"[^A-Za-z0-9-]+", "_", words).strip("_")[:60] or "flow"
+    number, free = 1, name
+    while free in taken:
+        number += 1
+        free = f"{name}_{number}"
+    return free

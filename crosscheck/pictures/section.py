@@ -1,0 +1,238 @@
+"""The section as drawn: outline, midlines, names, centroid, both shear centres, loads, signs."""
+
+from __future__ import annotations
+
+import math
+
+import matplotlib as mpl
+import numpy as np
+from matplotlib.axes import Axes
+from matplotlib.figure import Figure
+
+from crosscheck.faults import one_line
+from crosscheck.pictures.canvas import (
+    FE,
+    FONT,
+    HAND,
+    INK,
+    SOFT,
+    STYLE,
+    WIDE_PAPER,
+    Lettering,
+    frame_of,
+    scale_drawing,
+    size_text,
+)
+from crosscheck.pictures.walls import (
+    centre_of,
+    draw_arrow,
+    draw_dimension,
+    draw_direction,
+    draw_midlines,
+    draw_solid,
+    draw_torque,
+    outward,
+    overall,
+)
+from crosscheck.result import Array, LoadLine, Result
+from crosscheck.wording import number_text
+
+Place = tuple[float, float]
+FEW_WALLS = 6
+MANY_WALLS = 16
+TOO_MANY_WALLS = 48
+# Length of a force arrow and radius of a couple's, over the larger overall dimension.
+ARROW = 0.13
+CIRCLE = 0.07
+SIGNS = (
+    "Seen: the face whose outward normal points at the viewer; V and T are resultants of the stress on it, "
+    "T > 0 anticlockwise. Arrowheads: each wall's own direction, q > 0 along it."
+)
+
+
+def section_picture(result: Result, width_mm: int = 160) -> Figure:
+    """Picture of the section itself.
+
+    Parameters
+    ----------
+    result : Result
+        What a comparison found.
+    width_mm : int
+        Width of the paper: 80 or 160.
+
+    Returns
+    -------
+    Figure
+    """
+    drawing = result.require_drawing()
+    unit = result.length_unit
+    x0, y0, x1, y1 = overall(drawing.loops)
+    hand, fe = shear_centres(result)
+    groups = [drawing.loops[0], *(np.array([place]) for place in (hand, fe) if place is not None)]
+    groups += [reach for load in drawing.loads if (reach := _reach_of(load, drawing.extent)) is not None]
+    gap = 0.16 * drawing.extent if width_mm >= WIDE_PAPER else 0.22 * drawing.extent
+    frame = frame_of(groups).grown(gap)
+    caption = f"{SIGNS} {_offset_text(result, hand, fe)}".strip()
+    figure, axes = scale_drawing(width_mm, frame, one_line(result.title, 200), caption, unit)
+    with mpl.rc_context(STYLE):
+        draw_solid(axes, drawing.loops)
+        draw_midlines(axes, drawing)
+        lettering = Lettering(axes)
+        for loop in drawing.loops:
+            lettering.keep_clear(np.vstack((loop, loop[:1])))
+        for wall in drawing.walls:
+            draw_direction(axes, wall, 1.0, colour=SOFT, at=0.62)
+            lettering.keep_clear(wall.points)
+        _draw_overall(axes, (x0, y0, x1, y1), 0.55 * gap, unit, lettering)
+        for place in (hand, fe):
+            if place is not None:
+                lettering.keep_clear_of_mark(place)
+        for load in drawing.loads:
+            _keep_clear_of_load(load, drawing.extent, centre_of(drawing), lettering)
+        for load in drawing.loads:
+            _draw_load(axes, result, load, lettering)
+        _mark_centres(axes, result, hand, fe, lettering)
+        _name_walls(result, lettering, short=width_mm < WIDE_PAPER)
+    return figure
+
+
+def shear_centres(result: Result) -> tuple[Place | None, Place | None]:
+    """Shear centre of theory and of FE [L]; None where a side has none."""
+    x, y = result.quantity("shear_centre_x"), result.quantity("shear_centre_y")
+    hand = (x.judged_theory, y.judged_theory)
+    fe = (x.fe.value, y.fe.value)
+    return (
+        None if hand[0] is None or hand[1] is None else (hand[0], hand[1]),
+        None if fe[0] is None or fe[1] is None else (fe[0], fe[1]),
+    )
+
+
+def _draw_overall(
+    axes: Axes, box: tuple[float, float, float, float], off: float, unit: str, lettering: Lettering
+) -> None:
+    """Overall width and height."""
+    x0, y0, x1, y1 = box
+    draw_dimension(axes, (x0, y0 - off), (x1, y0 - off), f"{size_text(x1 - x0)} {unit}", (0, -1))
+    draw_dimension(axes, (x1 + off, y0), (x1 + off, y1), f"{size_text(y1 - y0)} {unit}", (1, 0))
+    along = np.linspace(0, 1, 15)[:, None]
+    lettering.keep_clear_of_mark((x1 + off * 1.15, (y0 + y1) / 2), 16.0)
+    lettering.keep_clear_of_mark(((x0 + x1) / 2, y0 - off * 1.15), 14.0)
+    lettering.keep_clear(np.array([[x0, y0 - off]]) * (1 - along) + np.array([[x1, y0 - off]]) * along)
+    lettering.keep_clear(np.array([[x1 + off, y0]]) * (1 - along) + np.array([[x1 + off, y1]]) * along)
+
+
+def _mark_centres(
+    axes: Axes, result: Result, hand: Place | None, fe: Place | None, lettering: Lettering
+) -> None:
+    """Centroid and both shear centres, the offset between them in words."""
+    centroid = (result.quantity("centroid_x").fe.value, result.quantity("centroid_y").fe.value)
+    if centroid[0] is not None and centroid[1] is not None:
+        axes.plot(centroid[0], centroid[1], marker="+", ms=7, mew=1.0, color=INK, zorder=5)
+        lettering.keep_clear_of_mark((centroid[0], centroid[1]))
+        lettering.write("C centroid", (centroid[0], centroid[1]), (1, 1))
+    if fe is not None:
+        axes.plot(*fe, marker="o", ms=6.5, mfc="none", mec=FE, mew=1.1, zorder=5)
+    if hand is not None:
+        axes.plot(*hand, marker="x", ms=5, mew=1.1, color=HAND, zorder=5)
+    if hand is None or fe is None:
+        for name, place, colour in (("S hand", hand, HAND), ("S FE", fe, FE)):
+            if place is not None:
+                lettering.write(name, place, (-1, 1), colour=colour)
+        return
+    dx, dy = hand[0] - fe[0], hand[1] - fe[1]
+    if math.hypot(dx, dy) < 0.05 * result.require_drawing().extent:
+        middle = centre_of(result.require_drawing())
+        away = (fe[0] - middle[0], fe[1] - middle[1])
+        text = "S shear centre\n(x hand, o FE)"
+        lettering.write((text, text.replace("\n", " ")), fe, away if any(away) else (-1, 1))
+    else:
+        axes.plot((hand[0], fe[0]), (hand[1], fe[1]), color=SOFT, lw=0.6, zorder=4)
+        lettering.write("S hand", hand, (dx, dy), colour=HAND)
+        lettering.write("S FE", fe, (-dx, -dy), colour=FE)
+
+
+def _offset_text(result: Result, hand: Place | None, fe: Place | None) -> str:
+    """Offset of the shear centre by hand from FE's; 0 where the FE error hides it."""
+    if hand is None or fe is None:
+        return ""
+    told = []
+    for axis, name in enumerate(("shear_centre_x", "shear_centre_y")):
+        row = result.quantity(name)
+        offset = hand[axis] - fe[axis]
+        hidden = abs(offset) <= max(row.fe.half_width or 0.0, 1e-6 * result.require_drawing().extent)
+        told.append("0" if hidden else number_text(offset, 3))
+    return f"Shear centre, hand minus FE: x {told[0]}, y {told[1]} {result.length_unit}."
+
+
+def _reach_of(load: LoadLine, extent: float) -> Array | None:
+    """Places (n, 2) [L] that a load's arrows reach."""
+    if load.through is None:
+        return None
+    through, force = np.array(load.through), math.hypot(*load.shear)
+    places = [through]
+    if force > 0:
+        places.append(through + ARROW * extent * np.array(load.shear) / force)
+    if load.torque:
+        places += [through - CIRCLE * extent, through + CIRCLE * extent]
+    return np.vstack(places)
+
+
+def _keep_clear_of_load(load: LoadLine, extent: float, middle: Place, lettering: Lettering) -> None:
+    """Line of action and arrow of a load, before any label is written."""
+    force = math.hypot(*load.shear)
+    if force > 0 and load.through is not None:
+        direction, through = np.array(load.shear) / force, np.array(load.through)
+        lettering.keep_clear(through + np.linspace(-2.0, 2.0, 120)[:, None] * extent * direction)
+        lettering.keep_clear(through + np.linspace(0.0, ARROW, 20)[:, None] * extent * direction)
+    if load.torque:
+        lettering.keep_clear_of_circle(load.through or middle, CIRCLE * extent)
+
+
+def _draw_load(axes: Axes, result: Result, load: LoadLine, lettering: Lettering) -> None:
+    """Line of action, arrow and size of a load; a couple as a round arrow."""
+    extent = result.require_drawing().extent
+    force = math.hypot(*load.shear)
+    words = one_line(load.name, 30)
+    if force > 0 and load.through is not None:
+        direction = np.array(load.shear) / force
+        through = np.array(load.through)
+        axes.axline(
+            tuple(through),
+            tuple(through + direction * extent),
+            color=INK,
+            lw=0.4,
+            ls=(0, (8, 2, 1, 2)),
+            zorder=2,
+        )
+        tail, head = through, through + ARROW * extent * direction
+        draw_arrow(axes, tail, head, INK)
+        middle = (tail + head) / 2
+        size = f"{number_text(force, 4)} {result.force_unit}"
+        lettering.write(
+            (f"{words}\n{size}", f"{words} {size}"),
+            (float(middle[0]), float(middle[1])),
+            (1.0, 0.0) if abs(direction[1]) > 0.5 else (0.0, 1.0),
+        )
+    if load.torque:
+        place = load.through or centre_of(result.require_drawing())
+        draw_torque(axes, place, CIRCLE * extent, load.torque, INK)
+        couple = f"{number_text(abs(load.torque), 4)} {result.force_unit} {result.length_unit}"
+        top = (place[0], place[1] + CIRCLE * extent)
+        lettering.write((f"{words} T\n{couple}", f"{words} T {couple}"), top, (0.3, 1.0))
+
+
+def _name_walls(result: Result, lettering: Lettering, *, short: bool) -> None:
+    """Name and thickness beside each wall, fewer words where there are many walls."""
+    walls = result.require_drawing().walls
+    if len(walls) > TOO_MANY_WALLS:
+        return
+    centre = centre_of(result.require_drawing())
+    for wall in walls:
+        text = one_line(wall.name, 24)
+        if len(walls) <= (FEW_WALLS if short else MANY_WALLS):
+            first, last = (size_text(float(wall.thickness[end])) for end in (0, -1))
+            text += f"\nt {first}" if first == last else f"\nt {first} to {last}"
+        i = len(wall.points) // 2
+        place = (float(wall.points[i, 0]), float(wall.points[i, 1]))
+        texts = (text, text.replace("\n", ", "))
+        lettering.write(texts, place, outward(wall, centre), size=FONT - 0.5)

@@ -1,0 +1,181 @@
+"""The result as JSON: schema ``crosscheck.result/1``, full precision, stable order."""
+
+from __future__ import annotations
+
+import json
+import math
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+from crosscheck.result import SCHEMA, QuantityResult, Result, WallFlow
+
+SEVERAL_SCHEMA = "crosscheck.results/1"
+
+
+def document(result: Result) -> dict[str, Any]:
+    """Result as plain mappings, lists, numbers and text, in the order of the schema.
+
+    Parameters
+    ----------
+    result : Result
+        What a comparison found; the drawing is left out.
+
+    Returns
+    -------
+    dict
+        Ready for :func:`json.dumps`; no time stamp outside ``provenance``.
+    """
+    origin = result.provenance
+    return {
+        "schema": SCHEMA,
+        "title": result.title,
+        "units": {"length": result.length_unit, "force": result.force_unit},
+        "per_modulus": result.per_modulus,
+        "judged": result.judged,
+        "quantities": [_quantity(row) for row in result.quantities],
+        "flows": [_flow(flow) for flow in result.flows],
+        "theory_peaks": [
+            {
+                "load": peak.load,
+                "wall": peak.wall,
+                "s": peak.s,
+                "x": peak.x,
+                "y": peak.y,
+                "value": peak.value,
+                "has_fe": peak.has_fe,
+            }
+            for peak in result.theory_peaks
+        ],
+        "stated": [
+            {
+                "quantity": stated.quantity,
+                "value": stated.value,
+                "source": stated.source,
+                "theory": stated.theory,
+                "fe": stated.fe,
+                "difference_fe": stated.difference_fe,
+                "difference_theory": stated.difference_theory,
+                "verdict": stated.verdict,
+            }
+            for stated in result.stated
+        ],
+        "causes": [
+            {
+                "quantity": cause.quantity,
+                "load": cause.load,
+                "step": cause.step,
+                "change": cause.change,
+                "uncertainty": cause.uncertainty,
+                "note": cause.note,
+            }
+            for cause in result.causes
+        ],
+        "working": result.working,
+        "mesh": {
+            "order": result.mesh.order,
+            "unknowns": result.mesh.unknowns,
+            "elements": result.mesh.elements,
+            "strips": result.mesh.strips,
+            "joints": result.mesh.joints,
+        },
+        "accuracy": {
+            "asked": result.accuracy,
+            "met": result.accuracy_met,
+            "note": result.accuracy_note,
+        },
+        "outline_notes": list(result.outline_notes),
+        "checks": [
+            {"name": check.name, "value": check.value, "allowed": check.allowed, "passed": check.passed}
+            for check in result.checks
+        ],
+        "provenance": {
+            "section_file": origin.section_file,
+            "sha256": origin.sha256,
+            "tables": dict(origin.tables),
+            "version": origin.version,
+            "packages": dict(origin.packages),
+            "python": origin.python,
+            "seconds": dict(origin.seconds),
+        },
+    }
+
+
+def _quantity(row: QuantityResult) -> dict[str, Any]:
+    """One row."""
+    return {
+        "name": row.name,
+        "symbol": row.symbol,
+        "unit": row.unit,
+        "load": row.load,
+        "theory": dict(row.theory),
+        "fe": {
+            "value": row.fe.value,
+            "low": row.fe.low,
+            "high": row.fe.high,
+            "basis": row.fe.basis,
+            "with_nu": row.fe.with_nu,
+        },
+        "difference": dict(row.difference),
+        "normaliser": row.normaliser,
+        "uncertainty": row.uncertainty,
+        "criterion": row.criterion,
+        "criterion_source": row.criterion_source,
+        "verdict": row.verdict,
+        "effect": None if row.effect is None else dict(row.effect),
+        "factor": row.factor,
+        "reason": row.reason,
+        "note": row.note,
+    }
+
+
+def _flow(flow: WallFlow) -> dict[str, Any]:
+    """Flows of one load in one wall."""
+    return {
+        "load": flow.load,
+        "wall": flow.wall,
+        "unit": flow.unit,
+        "difference": flow.difference,
+        "normaliser": flow.normaliser,
+        "reason": flow.reason,
+        "probes": [
+            {
+                "s": probe.s,
+                "x": probe.x,
+                "y": probe.y,
+                "theory": probe.theory,
+                "fe": probe.fe,
+                "fe_error": probe.fe_error,
+                "label": probe.label,
+            }
+            for probe in flow.probes
+        ],
+    }
+
+
+def json_text(results: Sequence[Result]) -> str:
+    """JSON of one result, or of several wrapped in a list under ``results``; ends with a newline.
+
+    Raises
+    ------
+    ValueError
+        Where a number is not finite: JSON has no word for it, and no result should hold it.
+    """
+    content: Mapping[str, Any]
+    if len(results) == 1:
+        content = document(results[0])
+    else:
+        content = {"schema": SEVERAL_SCHEMA, "results": [document(result) for result in results]}
+    _refuse_not_finite(content, "result")
+    return json.dumps(content, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
+
+
+def _refuse_not_finite(content: Any, where: str) -> None:
+    """Name the place of a NaN or infinity instead of only refusing it."""
+    if isinstance(content, Mapping):
+        for key, value in content.items():
+            _refuse_not_finite(value, f"{where}.{key}")
+    elif isinstance(content, list):
+        for i, value in enumerate(content):
+            _refuse_not_finite(value, f"{where}[{i}]")
+    elif isinstance(content, float) and not math.isfinite(content):
+        raise ValueError(f"{where} is {content}: a result holds finite numbers or null with a reason")

@@ -1,0 +1,97 @@
+"""What section files may hold for the time being: keys not built yet, limits."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import Any
+
+from crosscheck.faults import FaultList, KeyPath, shown
+
+# Keys that the file format reserves and that are refused until they are built. Taking a row out
+# switches its key on; schema, reading and checks are ready for it unless the row says "reserved".
+# "key" is the key itself, indices and free names left out; "key{}" its form as a table;
+# 'key="text"' one of its values. The text beside it says what works today.
+MIXED_MATERIALS = "walls of different material"
+NOT_BUILT: dict[str, str] = {
+    'judged="corrected"': 'judged = "midline" works',
+    'judged="lumped"': 'judged = "midline" works',
+    "walls.arc": "walls are straight",
+    "walls.thickness{}": "thickness is one value, or a list with one value per wall of the path",
+    "walls.direct_share": "every wall carries direct stress in full",
+    "walls.seen_by": "both sides see every wall",
+    "walls.line": "paths are midlines",  # reserved: faces are not turned into midlines
+    "walls.smooth": "corners are sharp",  # reserved
+    "booms": "walls alone make the section",
+    "corners": "corners are sharp",
+    "loads.axial": "shear, through and torque work",
+    "loads.moment": "shear, through and torque work",
+    "loads.bimoment": "shear, through and torque work",
+    "stated": "quantities are compared without stated values",
+    "mirror": "write every point and wall",  # reserved
+    "tables": "write points and loads in this file",  # reserved
+    "tolerances": "leave the table out",  # reserved
+    "allowables": "leave the table out",  # reserved
+    "document": "leave the table out",  # reserved
+    "outline": "give the section by its walls",  # reserved
+    MIXED_MATERIALS: "all walls are of the base material",
+}
+
+# Limits of one file; a fault names the limit that is passed.
+FILE_LIMIT = 4_000_000  # bytes
+KEY_PARTS_LIMIT = 16  # dotted parts of one key
+ENTRY_LIMITS: dict[str, int] = {
+    "parameters": 2_000,
+    "materials": 1_000,
+    "points": 20_000,
+    "walls": 20_000,
+    "booms": 20_000,
+    "corners": 20_000,
+    "loads": 1_000,
+    "cuts": 5_000,
+    "probes": 5_000,
+    "stated": 1_000,
+}
+WALL_LIMIT = 20_000  # after paths are taken apart
+NUMBER_LIMIT = 1e30  # magnitude of a number; its inverse is the smallest other than zero
+OFFSET_LIMIT = 1e6  # distance from the origin over the overall dimension: digits are lost beyond
+SLENDERNESS_LIMIT = 1e6  # overall dimension over the thinnest wall
+
+_TABLES_OF_FREE_NAMES = ("parameters", "materials", "points", "corners", "criteria")
+
+
+def refuse_unbuilt(document: dict[str, Any], faults: FaultList) -> None:
+    """Note every key of NOT_BUILT in a document as a fault and take it out of the document."""
+    for path, parent, key in list(_nodes((), document, 3)):
+        value = parent[key]
+        pattern = _pattern(path)
+        spellings = [pattern]
+        if isinstance(value, dict):
+            spellings.append(pattern + "{}")
+        elif isinstance(value, str) and len(value) < 40:
+            spellings.append(f'{pattern}="{value}"')
+        for spelling in spellings:
+            if spelling in NOT_BUILT:
+                words = "left out" if spelling == pattern else "given otherwise"
+                faults.add(path, shown(value), words, f"not supported yet: {NOT_BUILT[spelling]}")
+                del parent[key]
+                break
+
+
+def _nodes(path: KeyPath, node: Any, depth: int) -> Iterator[tuple[KeyPath, dict[str, Any], str]]:
+    """Path, table and key of every entry of every table, down to a depth."""
+    if isinstance(node, dict):
+        for key, child in node.items():
+            yield (*path, key), node, key
+            if depth > 0:
+                yield from _nodes((*path, key), child, depth - 1)
+    elif isinstance(node, list) and depth > 0:
+        for index, child in enumerate(node):
+            yield from _nodes((*path, index), child, depth - 1)
+
+
+def _pattern(path: KeyPath) -> str:
+    """A key path without indices and free names, as NOT_BUILT spells it."""
+    parts = [part for part in path if isinstance(part, str)]
+    if len(parts) > 1 and parts[0] in _TABLES_OF_FREE_NAMES:
+        parts[1] = "*"
+    return ".".join(parts)

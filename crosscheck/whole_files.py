@@ -1,0 +1,78 @@
+"""Output files written whole or not at all."""
+
+from __future__ import annotations
+
+import os
+import tempfile
+from collections.abc import Mapping
+from pathlib import Path
+
+
+def write_whole(path: Path, content: bytes) -> None:
+    """Write a file so that it is either the old one or the whole new one, whatever happens meanwhile.
+
+    Parameters
+    ----------
+    path : Path
+        Where; its folder must exist.
+    content : bytes
+        What.
+
+    Raises
+    ------
+    OSError
+        Where the folder cannot be written; nothing is left behind.
+    """
+    descriptor, name = tempfile.mkstemp(prefix=f".{path.name}.", suffix=".part", dir=path.parent)
+    temporary = Path(name)
+    try:
+        with os.fdopen(descriptor, "wb") as stream:
+            stream.write(content)
+            stream.flush()
+            os.fsync(stream.fileno())
+        # mkstemp makes the file private to its owner; a report is as readable as any other file.
+        temporary.chmod(0o666 & ~_umask())
+        temporary.replace(path)
+    except BaseException:
+        temporary.unlink(missing_ok=True)
+        raise
+
+
+def write_folder(folder: Path, files: Mapping[str, bytes]) -> tuple[Path, ...]:
+    """Write files into a folder, made where missing; each appears whole, in the given order.
+
+    Parameters
+    ----------
+    folder : Path
+        Where.
+    files : mapping of name to bytes
+        What; names without any folder part.
+
+    Returns
+    -------
+    tuple of Path
+        The files written.
+
+    Raises
+    ------
+    ValueError
+        Where a name would leave the folder.
+    OSError
+        Where the folder cannot be made or written.
+    """
+    for name in files:
+        if name in ("", ".", "..") or Path(name).name != name:
+            raise ValueError(f"{name!r} is not a plain file name")
+    folder.mkdir(parents=True, exist_ok=True)
+    written = []
+    for name, content in files.items():
+        write_whole(folder / name, content)
+        written.append(folder / name)
+    return tuple(written)
+
+
+def _umask() -> int:
+    """The process's mask; reading it needs setting it."""
+    mask = os.umask(0)
+    os.umask(mask)
+    return mask
