@@ -6,7 +6,7 @@ from .intervals import Interval
 from .outline import Outline
 from .picture import PictureMesh
 from .recovery import FlowSamples
-from .section import Rounding, Section, Wall
+from .section import Boom, Rounding, Section, Wall
 from .solution import (
     ACCURACY_RANGE,
     DEFAULT_ACCURACY,
@@ -18,6 +18,7 @@ from .solution import (
 __all__ = [
     "ACCURACY_RANGE",
     "DEFAULT_ACCURACY",
+    "Boom",
     "Check",
     "FeError",
     "FlowSamples",

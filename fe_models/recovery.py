@@ -58,8 +58,9 @@ class _Chords:
 def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, *, open_wall: bool) -> FlowSamples:
     """Flow at distances ``at`` [L] along a wall, inside its strip.
 
-    The static field gives the value. Its difference from the kinematic one is the error of a wall in a cell;
-    in an open wall the static flow follows from equilibrium alone and only round-off remains.
+    The static field gives the value. In a wall of a cell its error is what it and the kinematic field
+    disagree on, the closing flow; in an open wall it follows from equilibrium alone and only round-off
+    remains.
 
     Raises
     ------
@@ -70,42 +71,52 @@ def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, *, open_wall: 
     span = strip.s[-1] - strip.s[0]
     if (s < strip.s[0] - 1e-9 * span).any() or (s > strip.s[-1] + 1e-9 * span).any():
         raise ValueError(f"place outside the strip of wall {strip.band.name}: {strip.s[0]} to {strip.s[-1]}")
-    values, other = _flows(fields, _chords(fields, strip, s), len(s))
+    values = _static_flows(fields, _chords(fields, strip, s), len(s))
     scale = np.abs(values).max(axis=1, keepdims=True)
     errors = np.full(values.shape, ROUND_OFF) * scale
     if not open_wall:
-        errors = errors + np.abs(values - other)
+        errors = errors + np.abs(_disagreement(fields, strip))[:, None]
     return FlowSamples(values, errors)
 
 
-def _flows(fields: Fields, chords: _Chords, count: int) -> tuple[Array, Array]:
-    """Static and kinematic flow of the three unit loads at every place, two (3, count) arrays."""
+def _disagreement(fields: Fields, strip: StripMesh) -> Array:
+    """Mean over a strip of the kinematic less the static flow for each unit load, (3,).
+
+    Along a wall both flows change alike by equilibrium; what may differ is the closing flow, constant along
+    it. Its mean over the strip is far more accurate than its value at one section line.
+    """
+    space, rows = fields.space, strip.triangles.ravel()
+    s_mid = np.repeat(0.5 * (strip.s[:-1] + strip.s[1:]), strip.triangles.shape[1])
+    along = strip.band.direction(s_mid)[:, None, :]
+    length = float(strip.s[-1] - strip.s[0])
+    twist = fields.energy(fields.torsion.kinematic)
+    found = []
+    for pair, unit in (*((p, 1.0) for p in fields.flexure), (fields.torsion, twist)):
+        difference = np.sum((pair.kinematic[rows] - pair.static[rows]) * along, axis=-1)
+        found.append(float(np.sum(space.weights[rows] * difference)) / length / unit)
+    return np.array(found)
+
+
+def _static_flows(fields: Fields, chords: _Chords, count: int) -> Array:
+    """Static flow of the three unit loads at every place, (3, count)."""
     space, e = fields.space, chords.elements
     c, q, _ = chords.reference.shape
     slopes = gradients(space.element.order, chords.reference.reshape(-1, 2)).reshape(c, q, -1, 2)
     inverse = np.linalg.inv(np.einsum("cka,cqkb->cqab", space.places[e], slopes))
-    arm = np.stack([-chords.at[..., 1], chords.at[..., 0]], axis=-1)
-    static, kinematic = np.zeros((3, count)), np.zeros((3, count))
     twist = fields.energy(fields.torsion.kinematic)
+    flows = []
     for row, pair in enumerate((*fields.flexure, fields.torsion)):
-
-        def gradient(local: Array) -> Array:
-            reference = np.einsum("ck,cqkb->cqb", local - local[:, :1], slopes)
-            return np.asarray(np.einsum("cqb,cqba->cqa", reference, inverse))
-
-        g = fields.moduli.g[e][:, None, None]
-        phi, u = gradient(pair.function[e]), gradient(pair.potential[e])
+        local = pair.function[e]
+        phi = np.einsum("cqb,cqba->cqa", np.einsum("ck,cqkb->cqb", local - local[:, :1], slopes), inverse)
         s = np.stack([phi[..., 1], -phi[..., 0]], axis=-1)
+        unit = twist
         if row < 2:
             a_b = fields.inertia.slopes(1.0 - row, float(row))
             s = s - 0.5 * fields.moduli.e[e][:, None, None] * a_b * chords.at**2
-            k, unit = g * u, 1.0
-        else:
-            k, unit = g * (u + arm), twist
-        for field, out in ((s, static), (k, kinematic)):
-            part = np.sum(chords.weights * np.sum(field * chords.along, axis=-1), axis=1) / unit
-            out[row] = np.bincount(chords.places, part, count)
-    return static, kinematic
+            unit = 1.0
+        part = np.sum(chords.weights * np.sum(s * chords.along, axis=-1), axis=1) / unit
+        flows.append(np.bincount(chords.places, part, count))
+    return np.array(flows)
 
 
 def _chords(fields: Fields, strip: StripMesh, s: Array) -> _Chords:
