@@ -77,7 +77,9 @@ def chain(place: Array, first: WallEnd, second: WallEnd) -> Chain:
         return _step(place, first, second, wide_first=h1 > h2)
     if min(theta, 2.0 * np.pi - theta) < COLLINEAR:
         raise OutlineError(
-            "overlap", (first.band.name, second.band.name), "walls leave a shared point in one direction"
+            "overlap",
+            (first.band.name, second.band.name),
+            "two walls that leave a shared point in one direction",
         )
     guess = (h2 + h1 * cosine) / sine, (h1 + h2 * cosine) / sine
     reflex = theta > np.pi
@@ -121,7 +123,7 @@ def _meet(first: WallEnd, second: WallEnd, guess: tuple[float, float]) -> tuple[
     if np.hypot(*miss) <= 1e-9 * size:
         return float(s[0]), float(s[1])
     names = (first.band.name, second.band.name)
-    raise OutlineError("swallowed", names, "the faces of two neighbouring walls do not meet")
+    raise OutlineError("swallowed", names, "neighbours whose faces do not meet")
 
 
 def _reach_plane(end: WallEnd, sign: float, place: Array, towards: Array, limit: float) -> float:

@@ -12,24 +12,41 @@ class FeError(Exception):
     """Base of every error raised by this package."""
 
 
+ALLOWED = {
+    "overlap": "clear of other walls' bands except at shared points",
+    "swallowed": "a wall that shows outside its neighbours",
+    "lost cell": "thin enough to leave every cell open",
+    "radius": "a radius that the walls at the point have room for",
+    "limit": "a section of at most 2000 walls",
+}
+
+
 class OutlineError(FeError):
     """The walls do not bound a solid that the model can stand for.
 
     Parameters
     ----------
     kind : str
-        Short name of the fault: ``overlap``, ``swallowed``, ``lost cell``, ``limit`` ...
+        A key of ``ALLOWED``.
     walls : tuple of str
         Names of the walls concerned.
-    message : str
-        What was found and what is allowed.
+    found : str
+        What was found; what is allowed follows from the kind.
     """
 
-    def __init__(self, kind: str, walls: tuple[str, ...], message: str) -> None:
-        super().__init__(message)
+    def __init__(self, kind: str, walls: tuple[str, ...], found: str) -> None:
+        super().__init__(kind, walls, found)
         self.kind = kind
         self.walls = walls
-        self.message = message
+        self.found = found
+
+    @property
+    def allowed(self) -> str:
+        """Completes the sentence "must be ..."."""
+        return ALLOWED[self.kind]
+
+    def __str__(self) -> str:
+        return f"must be {self.allowed}, got {self.found}"
 
 
 class SolveError(FeError):

@@ -22,6 +22,8 @@ from .section import Section
 WALL_LIMIT = 2000
 # Overlaps smaller than this share of the squared thickness are round-off.
 OVERLAP = 1e-6
+# Cosine of the angle between neighbours below which they may not overlap along a whole wall.
+SHARP = 0.75
 
 
 @dataclass(frozen=True)
@@ -91,18 +93,21 @@ def outline(section: Section) -> Outline:
     """
     if len(section.walls) > WALL_LIMIT:
         names = (section.walls[0].name,)
-        raise OutlineError("limit", names, f"{len(section.walls)} walls, at most {WALL_LIMIT} are meshed")
+        raise OutlineError("limit", names, f"{len(section.walls)} walls")
     bands = {w.name: band(w, section) for w in section.walls}
     _refuse_overlaps(bands)
     points = {name: np.array(place, dtype=float) for name, place in section.points.items()}
     at = joints(points, bands.values(), section.corners)
+    _refuse_folded(at)
     parts = with_booms(partition(at, bands), section.booms, bands)
     _refuse_parts_in_each_other(parts)
     found = _loops(at, bands, parts)
     expected = len(bands) - len(at) + 2
     if len(found) != expected:
         raise OutlineError(
-            "lost cell", tuple(bands), f"the outline has {len(found)} boundaries, the walls make {expected}"
+            "lost cell",
+            tuple(bands),
+            f"an outline of {len(found)} boundaries where the walls make {expected}",
         )
     extent = float(np.ptp(found[0], axis=0).max())
     return Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts))
@@ -136,7 +141,7 @@ def _loops(at: dict[str, Joint], bands: dict[str, Band], parts: Partition) -> li
         union = shapely.union_all([p.buffer(size, join_style="mitre") for p in pieces])
         union = union.buffer(-size, join_style="mitre")
         if union.geom_type != "Polygon":
-            raise OutlineError("lost cell", tuple(bands), "the solid falls apart")
+            raise OutlineError("lost cell", tuple(bands), "a solid that falls apart")
         polygons = [np.array(r.coords)[:-1] for r in (union.exterior, *union.interiors)]
     polygons.sort(key=lambda p: -float(np.prod(np.ptp(p, axis=0))))
     return polygons
@@ -191,8 +196,21 @@ def _refuse_overlaps(bands: dict[str, Band]) -> None:
         raise OutlineError(
             "overlap",
             (names[i], names[j]),
-            f"bands overlap near ({x:.6g}, {y:.6g}), away from a shared point",
+            f"bands that overlap near ({x:.6g}, {y:.6g})",
         )
+
+
+def _refuse_folded(at: dict[str, Joint]) -> None:
+    """Refuse neighbours at a sharp angle that still overlap where the shorter one ends."""
+    for joint in at.values():
+        for chain in joint.chains:
+            lengths = chain.first.band.length, chain.second.band.length
+            sharp = chain.kind == "corner" and chain.first.direction @ chain.second.direction > SHARP
+            if sharp and min(chain.reach) >= min(lengths):
+                names = (chain.first.band.name, chain.second.band.name)
+                raise OutlineError(
+                    "overlap", names, f"bands that overlap along a whole wall from {joint.point}"
+                )
 
 
 def _beside(common: shapely.Geometry, link: Band, reach: float) -> bool:
@@ -217,12 +235,12 @@ def _refuse_parts_in_each_other(parts: Partition) -> None:
     for shape, walls in zip(shapes, names, strict=True):
         if not shape.is_valid:
             raise OutlineError(
-                "overlap", walls, f"the outline crosses itself: {shapely.is_valid_reason(shape)}"
+                "overlap", walls, f"an outline that crosses itself: {shapely.is_valid_reason(shape)}"
             )
     for i, j in _pairs(shapes):
         if shapes[i].intersection(shapes[j]).area > limit:
             walls = tuple(sorted({*names[i], *names[j]}))
-            raise OutlineError("overlap", walls, "parts of the outline overlap away from a shared point")
+            raise OutlineError("overlap", walls, "joints or bands that overlap")
 
 
 def _pairs(shapes: list[Polygon]) -> Iterable[tuple[int, int]]:

@@ -197,14 +197,14 @@ def _united(
     union = shapely.simplify(union, 1e-9 * size)
     expected = len(cluster.walls) - len(cluster.points) + 2
     if union.geom_type != "Polygon" or 1 + len(union.interiors) != expected:
-        raise OutlineError("lost cell", cluster.walls, "the walls' bands fill or split a cell of the midline")
+        raise OutlineError("lost cell", cluster.walls, "bands that fill or split a cell of the midline")
     outlines = [np.array(union.exterior.coords)[:-1], *(np.array(r.coords)[:-1] for r in union.interiors)]
     made: list[Ring] = []
     for i, o in enumerate(outlines):
         signed = shapely.LinearRing(o).is_ccw
         made.append(_ring(o if signed == (i == 0) else o[::-1], kept, size))
     if sum(p.kind == "cut" for r in made for p in r) != len(kept):
-        raise OutlineError("overlap", cluster.walls, "a wall leaves the joint through its neighbours")
+        raise OutlineError("overlap", cluster.walls, "a wall that leaves its joint through its neighbours")
     return Cluster(cluster.points, cluster.walls, made, united=True)
 
 
@@ -214,7 +214,7 @@ def _refuse_swallowed(parts: list[Polygon], own: Mapping[str, Polygon], size: fl
         others = shapely.union_all([*parts, *(b for n, b in own.items() if n != name)])
         left = band.difference(others).area
         if left <= 1e-6 * size * size:
-            raise OutlineError("swallowed", (name,), "the wall lies wholly inside its neighbours")
+            raise OutlineError("swallowed", (name,), "a wall wholly inside its neighbours")
 
 
 def _ring(outline: Array, kept: list[tuple[EndKey, Array, Array]], size: float) -> Ring:

@@ -57,11 +57,11 @@ def _arc(chain: Chain, radius: float, *, out: float, kind: str) -> Chain:
         s = s - np.linalg.solve(np.column_stack(columns), miss)
     else:
         if np.hypot(*miss) > 1e-9 * size:
-            raise OutlineError("radius", names, f"no arc of radius {radius:g} touches both faces")
+            raise OutlineError("radius", names, f"{radius:g}, which touches both faces nowhere")
     for end, reach in ((first, s[0]), (second, s[1])):
         if reach > end.band.length:
             found = f"{reach:.4g} of wall {end.band.name}, it has {end.band.length:.4g}"
-            raise OutlineError("radius", names, f"radius {radius:g} needs {found}")
+            raise OutlineError("radius", names, f"{radius:g}, which needs {found}")
     start, centre = moved(first, s[0], 1.0)
     finish = second.side(s[1], -1.0)
     from_angle = float(np.arctan2(*(start - centre)[::-1]))

@@ -13,17 +13,20 @@ from crosscheck.commands.arguments import add_model_arguments, complain, told_pr
 from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
+    import fe_models
     from crosscheck.comparison import Progress
+    from crosscheck.faults import Fault
     from crosscheck.result import Result
+    from crosscheck.section_model import SectionFile
 
 DESCRIPTION = """\
 Solve section files by classical theory and by finite elements and report every difference, worst first.
 A folder stands for the section files (*.toml) in it."""
 EPILOG = """\
 examples:
-  crosscheck compare cases/lipped_channel.toml
-  crosscheck compare cases/lipped_channel.toml --out report --set "t = 2.5"
-  crosscheck compare cases --json results.json"""
+  crosscheck compare cases/sections/lipped_channel_floor_beam.toml
+  crosscheck compare cases/sections/lipped_channel_floor_beam.toml --out report --set "t = 2.5"
+  crosscheck compare cases/sections --json results.json"""
 
 
 def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
@@ -128,8 +131,7 @@ def compare_file(
     try:
         result = compare(section, accuracy, lambda text: tell(f"{path}: {text}"), pictures=pictures)
     except fe_models.OutlineError as fault:
-        walls = ", ".join(fault.walls)
-        complain([f"{path}: walls: {walls}: {fault.message}" if walls else f"{path}: walls: {fault.message}"])
+        complain([outline_fault(path, section, fault).text])
         return None, ExitStatus.BAD_INPUT
     except beam_theory.SectionError as fault:
         complain(f"{path}: {line}" for line in fault.faults)
@@ -139,6 +141,20 @@ def compare_file(
         complain([f"{path}: {side}: {fault}"])
         return None, ExitStatus.FAILED
     return result, result_status(result)
+
+
+def outline_fault(path: str, section: SectionFile, fault: fe_models.OutlineError) -> Fault:
+    """A solid that cannot be built, as a fault of the file: at its first wall, both named."""
+    from crosscheck.faults import Fault
+
+    known = {wall.name: wall for wall in section.walls}
+    named = [name for name in fault.walls if name in known]
+    key = {"radius": "corners", "limit": "walls"}.get(fault.kind) or (
+        known[named[0]].key if named else "walls"
+    )
+    shown = ", ".join(f'"{name}"' for name in named[:4]) + (" and more" if len(named) > 4 else "")
+    found = fault.found if fault.kind == "limit" or not shown else f"{fault.found} (walls {shown})"
+    return Fault(path, key, found, fault.allowed)
 
 
 def result_status(result: Result) -> ExitStatus:
