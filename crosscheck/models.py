@@ -105,7 +105,17 @@ def fe_section(section: SectionFile) -> fe_models.Section:
         for boom in section.booms
         if boom.seen_by != "theory"
     )
-    return fe_models.Section(_used_points(section, walls), walls, corners, booms)
+    return fe_models.Section(_used_points(section, walls), walls, corners, booms, _shared_nu(section, walls))
+
+
+def _shared_nu(section: SectionFile, walls: tuple[fe_models.Wall, ...]) -> float | None:
+    """Poisson's ratio of the material of all FE walls [-]; None where they differ."""
+    names = {wall.name for wall in walls}
+    materials = {wall.material for wall in section.walls if wall.name in names}
+    if len(materials) != 1:
+        return None
+    (name,) = materials
+    return NU_WITHOUT_MATERIAL if name is None else section.materials[name].nu
 
 
 def rounded_points(

@@ -2,9 +2,11 @@
 
 from .checks import Check
 from .errors import FeError, OutlineError, SolveError
+from .faces import Actions, FaceStress, Peak
 from .intervals import Interval
 from .outline import Outline
 from .picture import PictureMesh
+from .poisson import PoissonFlexure
 from .recovery import FlowSamples
 from .section import Boom, Rounding, Section, Wall
 from .solution import (
@@ -18,15 +20,19 @@ from .solution import (
 __all__ = [
     "ACCURACY_RANGE",
     "DEFAULT_ACCURACY",
+    "Actions",
     "Boom",
     "Check",
+    "FaceStress",
     "FeError",
     "FlowSamples",
     "Interval",
     "MeshSummary",
     "Outline",
     "OutlineError",
+    "Peak",
     "PictureMesh",
+    "PoissonFlexure",
     "Rounding",
     "Section",
     "Solution",

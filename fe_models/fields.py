@@ -77,7 +77,13 @@ class Fields:
     torsion: Pair
     flexure: tuple[Pair, Pair]
     residual: float
-    unknowns: int
+    above: Equations
+    below: Equations
+
+    @property
+    def unknowns(self) -> int:
+        """Unknowns of the larger of the two systems."""
+        return max(self.above.size, self.below.size)
 
     def gap(self, pair: Pair) -> Array:
         """|k - s|^2 / g integrated over each element, (e,)."""
@@ -108,30 +114,39 @@ def inertia(space: Space, moduli: Moduli, centre: Array) -> Inertia:
 def solve(space: Space, moduli: Moduli, section: Inertia) -> Fields:
     """Solve torsion and flexure on a space whose origin is the centroid."""
     p = space.points
-    g = moduli.g[:, None, None]
     arm = np.stack([-p[..., 1], p[..., 0]], axis=-1)
-    slopes = [section.slopes(1.0, 0.0), section.slopes(0.0, 1.0)]
     on = contours(space, moduli.e)
-    held = np.arange(space.count) - 1
-    above = equations(space, moduli.g, held)
+    above = equations(space, moduli.g, np.arange(space.count) - 1)
     below = equations(space, 1.0 / moduli.g, on.unknown)
+    still = np.zeros(p.shape)
+    slopes = [np.zeros(2), section.slopes(1.0, 0.0), section.slopes(0.0, 1.0)]
+    pairs, left = solve_pairs(above, below, on, moduli, slopes, [arm, still, still])
+    return Fields(space, moduli, section, on, pairs[0], (pairs[1], pairs[2]), left, above, below)
 
-    loads = [np.zeros(space.count)]
-    loads += [space.load(moduli.e[:, None] * (p @ s)) for s in slopes]
-    start = [g * arm, np.zeros(p.shape), np.zeros(p.shape)]
-    potentials, kinematic, left = _compatible(above, g, start, loads)
 
-    lifts = [boundary_values(on, s) for s in slopes]
+def solve_pairs(
+    above: Equations, below: Equations, on: Contours, moduli: Moduli, slopes: list[Array], strain: list[Array]
+) -> tuple[list[Pair], float]:
+    """Pairs k = g (grad u + strain), s = curl phi + tau_p for loads f = a x + b y, and the residual left.
+
+    Parameters
+    ----------
+    slopes : list of (2,) arrays
+        (a, b) of each problem.
+    strain : list of (e, q, 2) arrays
+        Prescribed strain of each problem: R in torsion, nothing or the Poisson term in flexure.
+    """
+    space = above.space
+    p = space.points
+    g = moduli.g[:, None, None]
+    loads = [space.load(moduli.e[:, None] * (p @ s)) for s in slopes]
+    potentials, kinematic, left = _compatible(above, g, [g * r for r in strain], loads)
+    lifts = [boundary_values(on, s) if s.any() else np.zeros(space.nodes.shape) for s in slopes]
     particular = [-0.5 * moduli.e[:, None, None] * s * p**2 for s in slopes]
-    first = [np.zeros(p.shape)] + [t + _curl(space, lift) for t, lift in zip(particular, lifts, strict=True)]
-    pull = [arm, np.zeros(p.shape), np.zeros(p.shape)]
-    functions, static = _equilibrated(below, g, first, pull)
-    functions = [functions[0], functions[1] + lifts[0], functions[2] + lifts[1]]
-
-    pairs = [Pair(*each) for each in zip(potentials, kinematic, static, functions, strict=True)]
-    return Fields(
-        space, moduli, section, on, pairs[0], (pairs[1], pairs[2]), left, max(above.size, below.size)
-    )  # fmt: skip
+    first = [t + _curl(space, lift) for t, lift in zip(particular, lifts, strict=True)]
+    functions, static = _equilibrated(below, g, first, strain)
+    functions = [phi + lift for phi, lift in zip(functions, lifts, strict=True)]
+    return [Pair(*each) for each in zip(potentials, kinematic, static, functions, strict=True)], left
 
 
 def warping(space: Space, moduli: Moduli) -> Array:
@@ -159,7 +174,8 @@ def _compatible(
             potentials[i] = potentials[i] + local
             fields[i] = fields[i] + g * space.gradient(local)
     left = [
-        np.abs(load - space.flux_load(k)).max() / (np.abs(load).max() or np.abs(space.flux_load(s)).max())
+        np.abs(load - space.flux_load(k)).max()
+        / max(np.abs(load).max(), np.abs(space.flux_load(s)).max(), np.finfo(float).tiny)
         for load, k, s in zip(loads, fields, start, strict=True)
     ]
     return potentials, fields, float(max(left))

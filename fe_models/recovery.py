@@ -8,9 +8,9 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from .band import Array
-from .element import gradients
 from .fields import Fields
 from .mesh import Index, StripMesh
+from .sampling import Samples, stresses
 from .space import strip_coordinates
 
 # Gauss points on each element's part of a section line: exact for straight strips up to order 6.
@@ -39,18 +39,17 @@ class _Chords:
 
     Parameters
     ----------
-    elements, places : (c,) arrays of int
-        Triangle, and number of the section line.
-    reference, at, along : (c, q, 2) arrays
-        Reference coordinates, points relative to the centroid [L], direction of the wall.
+    samples : Samples
+    places : (c,) array of int
+        Number of the section line.
+    along : (c, q, 2) array
+        Direction of the wall.
     weights : (c, q) array
         [L]
     """
 
-    elements: Index
+    samples: Samples
     places: Index
-    reference: Array
-    at: Array
     along: Array
     weights: Array
 
@@ -71,7 +70,10 @@ def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, *, open_wall: 
     span = strip.s[-1] - strip.s[0]
     if (s < strip.s[0] - 1e-9 * span).any() or (s > strip.s[-1] + 1e-9 * span).any():
         raise ValueError(f"place outside the strip of wall {strip.band.name}: {strip.s[0]} to {strip.s[-1]}")
-    values = _static_flows(fields, _chords(fields, strip, s), len(s))
+    chords = _chords(strip, s)
+    static, _ = stresses(fields, chords.samples)
+    parts = np.sum(chords.weights * np.sum(static * chords.along, axis=-1), axis=2)
+    values = np.array([np.bincount(chords.places, part, len(s)) for part in parts])
     scale = np.abs(values).max(axis=1, keepdims=True)
     errors = np.full(values.shape, ROUND_OFF) * scale
     if not open_wall:
@@ -97,29 +99,7 @@ def _disagreement(fields: Fields, strip: StripMesh) -> Array:
     return np.array(found)
 
 
-def _static_flows(fields: Fields, chords: _Chords, count: int) -> Array:
-    """Static flow of the three unit loads at every place, (3, count)."""
-    space, e = fields.space, chords.elements
-    c, q, _ = chords.reference.shape
-    slopes = gradients(space.element.order, chords.reference.reshape(-1, 2)).reshape(c, q, -1, 2)
-    inverse = np.linalg.inv(np.einsum("cka,cqkb->cqab", space.places[e], slopes))
-    twist = fields.energy(fields.torsion.kinematic)
-    flows = []
-    for row, pair in enumerate((*fields.flexure, fields.torsion)):
-        local = pair.function[e]
-        phi = np.einsum("cqb,cqba->cqa", np.einsum("ck,cqkb->cqb", local - local[:, :1], slopes), inverse)
-        s = np.stack([phi[..., 1], -phi[..., 0]], axis=-1)
-        unit = twist
-        if row < 2:
-            a_b = fields.inertia.slopes(1.0 - row, float(row))
-            s = s - 0.5 * fields.moduli.e[e][:, None, None] * a_b * chords.at**2
-            unit = 1.0
-        part = np.sum(chords.weights * np.sum(s * chords.along, axis=-1), axis=1) / unit
-        flows.append(np.bincount(chords.places, part, count))
-    return np.array(flows)
-
-
-def _chords(fields: Fields, strip: StripMesh, s: Array) -> _Chords:
+def _chords(strip: StripMesh, s: Array) -> _Chords:
     """Chords of the section lines at distances s."""
     columns = np.clip(np.searchsorted(strip.s, s, side="right") - 1, 0, len(strip.s) - 2)
     corner_s, corner_n = strip_coordinates(strip.s, strip.n)
@@ -133,16 +113,19 @@ def _chords(fields: Fields, strip: StripMesh, s: Array) -> _Chords:
     at_s, low, high = at_s[kept], low[kept], high[kept]
     x, w = np.polynomial.legendre.leggauss(LINE_POINTS)
     n = low[:, None] + 0.5 * (x + 1.0) * (high - low)[:, None]
+    reference = in_triangles(cs, cn, np.broadcast_to(at_s[:, None], n.shape), n)
+    half = strip.band.half(at_s)
+    weights = 0.5 * w * ((high - low) * half)[:, None]
+    along = strip.band.direction(np.broadcast_to(at_s[:, None], n.shape))
+    return _Chords(Samples(strip.triangles.ravel()[rows], reference), place, along, weights)
+
+
+def in_triangles(cs: Array, cn: Array, s: Array, n: Array) -> Array:
+    """Reference coordinates (c, q, 2) of points (s, n), (c, q), in triangles with (c, 3) corners."""
     first = np.stack([cs[:, 1] - cs[:, 0], cs[:, 2] - cs[:, 0]], -1)
     second = np.stack([cn[:, 1] - cn[:, 0], cn[:, 2] - cn[:, 0]], -1)
-    matrix = np.stack([first, second], axis=1)
-    offset = np.stack([np.broadcast_to((at_s - cs[:, 0])[:, None], n.shape), n - cn[:, :1]], axis=-1)
-    reference = np.einsum("cab,cqb->cqa", np.linalg.inv(matrix), offset)
-    half = strip.band.half(at_s)
-    full_s = np.broadcast_to(at_s[:, None], n.shape)
-    at = strip.band.place(full_s, n * half[:, None]) - fields.inertia.centroid
-    weights = 0.5 * w * ((high - low) * half)[:, None]
-    return _Chords(strip.triangles.ravel()[rows], place, reference, at, strip.band.direction(full_s), weights)
+    offset = np.stack([s - cs[:, :1], n - cn[:, :1]], axis=-1)
+    return np.asarray(np.einsum("cab,cqb->cqa", np.linalg.inv(np.stack([first, second], axis=1)), offset))
 
 
 def _range(cs: Array, cn: Array, s: Array) -> tuple[Array, Array]:

@@ -74,9 +74,13 @@ class Rounding:
 
 @dataclass(frozen=True)
 class Section:
-    """Points [L] and the walls that join them, one connected graph; rounding by point name."""
+    """Points [L] and the walls that join them, one connected graph.
+
+    ``corners`` holds rounding by point name; ``nu`` is Poisson's ratio where all walls share it.
+    """
 
     points: Mapping[str, tuple[float, float]]
     walls: tuple[Wall, ...]
     corners: Mapping[str, Rounding] = field(default_factory=dict)
     booms: tuple[Boom, ...] = ()
+    nu: float | None = None

@@ -3,21 +3,24 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 from numpy.typing import ArrayLike
 
+from .band import Array
 from .bridges import open_walls
 from .checks import Check, self_checks
 from .density import Density
 from .errors import SolveError
+from .faces import Actions, FaceStress, Peak, boundary_peaks, face_stress
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
-from .mesh import Mesh, mesh, moduli_of
+from .mesh import Mesh, StripMesh, mesh, moduli_of
 from .outline import Outline, outline
 from .picture import PictureMesh, picture_mesh
+from .poisson import PoissonFlexure, poisson_flexure
 from .quantities import quantities
 from .recovery import FlowSamples, flow_samples
 from .section import Section
@@ -63,6 +66,8 @@ class Solution:
         True where the asked accuracy was reached for J and both shear-centre coordinates.
     accuracy_note : str
         What was asked and what was reached.
+    poisson : PoissonFlexure or None
+        Flexure with Poisson's ratio; None where the section has none that all walls share.
     """
 
     quantities: Mapping[str, Interval]
@@ -74,6 +79,7 @@ class Solution:
     accuracy_note: str
     fields: Fields = field(repr=False)
     open_walls: frozenset[str] = field(repr=False)
+    poisson: PoissonFlexure | None = field(default=None, repr=False)
 
     def flow_at(self, wall: str, fractions: ArrayLike) -> FlowSamples:
         """Flows of the three unit loads at fractions of a wall.
@@ -83,16 +89,40 @@ class Solution:
         ValueError
             The wall has no strip, or a fraction lies outside it.
         """
-        strip = self.fields.space.mesh.strips.get(wall)
-        if strip is None:
-            raise ValueError(f"wall {wall} has no strip: it is part of its joints")
+        strip = self._strip(wall)
         at = np.asarray(fractions, dtype=float) * strip.band.length
         return flow_samples(self.fields, strip, at, open_wall=wall in self.open_walls)
 
+    def face_stress(self, wall: str, fractions: ArrayLike, actions: Actions) -> FaceStress:
+        """Direct and shear stress on both faces of a wall at fractions of it, for stress resultants.
+
+        Raises
+        ------
+        ValueError
+            The wall has no strip.
+        """
+        strip = self._strip(wall)
+        at = np.asarray(fractions, dtype=float) * strip.band.length
+        return face_stress(self.fields, strip, at, self.shear_centre, actions)
+
+    def boundary_peaks(self, actions: Actions) -> list[Peak]:
+        """Largest shear stress on each joint's filleted and curved boundary, largest first."""
+        return boundary_peaks(self.fields, actions)
+
+    @property
+    def shear_centre(self) -> Array:
+        """(x_s, y_s) in the file's axes, (2,) [L]."""
+        return np.array([self.quantities["shear_centre_x"].known, self.quantities["shear_centre_y"].known])
+
+    def _strip(self, wall: str) -> StripMesh:
+        strip = self.fields.space.mesh.strips.get(wall)
+        if strip is None:
+            raise ValueError(f"wall {wall} has no strip: it is part of its joints")
+        return strip
+
     def picture_mesh(self) -> PictureMesh:
         """The mesh in the file's axes, with the warping function about the shear centre."""
-        centre = np.array([self.quantities["shear_centre_x"].known, self.quantities["shear_centre_y"].known])
-        return picture_mesh(self.fields, centre)
+        return picture_mesh(self.fields, self.shear_centre)
 
 
 def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progress | None = None) -> Solution:
@@ -121,6 +151,8 @@ def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progre
         raise ValueError(f"accuracy must be from {low:g} to {high:g}, got {accuracy:g}")
     solid = outline(section)
     solved, found, passes = _refinement(solid, accuracy, progress)
+    uniform = len({moduli_of(w) for w in section.walls}) == 1 and not section.booms
+    poisson = poisson_flexure(solved, section.nu) if section.nu is not None and uniform else None
     worst = _excess(found, solid.extent, accuracy)
     note = f"asked {accuracy:g}, reached {worst * accuracy:.1e}"
     if worst > 1.0:
@@ -136,8 +168,17 @@ def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progre
     )
     checks = self_checks(solved, solid, found)
     return Solution(
-        found, _spans(solid, m), checks, summary, solid, worst <= 1.0, note, solved, open_walls(section)
-    )  # fmt: skip
+        quantities=_with_nu(found, poisson),
+        strips=_spans(solid, m),
+        checks=checks,
+        mesh=summary,
+        outline=solid,
+        met=worst <= 1.0,
+        accuracy_note=note,
+        fields=solved,
+        open_walls=open_walls(section),
+        poisson=poisson,
+    )
 
 
 def _refinement(
@@ -162,6 +203,21 @@ def _refinement(
             break
         found = {n: q.meet(found[n]) for n, q in quantities(solved, solid).items()}
     return solved, found, passes
+
+
+def _with_nu(found: Mapping[str, Interval], poisson: PoissonFlexure | None) -> dict[str, Interval]:
+    """Intervals with the values for Poisson's ratio beside them."""
+    made = dict(found)
+    if poisson is not None:
+        area = found["area"].known
+        beside = {
+            "shear_centre_x": poisson.shear_centre[0],
+            "shear_centre_y": poisson.shear_centre[1],
+            "shear_area_x": poisson.energy_coefficient[0] * area,
+            "shear_area_y": poisson.energy_coefficient[1] * area,
+        }
+        made.update({n: replace(made[n], with_nu=float(v)) for n, v in beside.items()})
+    return made
 
 
 def _spans(solid: Outline, m: Mesh) -> dict[str, tuple[float, float] | None]:
