@@ -13,7 +13,11 @@ from .errors import SolveError
 
 Index = NDArray[np.int64]
 
-SYSTEM_LIBRARIES = "apt-get install -y libglu1-mesa libxrender1 libxcursor1 libxft2 libxinerama1 libgomp1"
+# the README's line; a test compares them
+SYSTEM_LIBRARIES = (
+    "sudo apt-get install -y python3-venv libglu1-mesa libgl1 libx11-6 libxcursor1 libxext6 libxfixes3 "
+    "libxft2 libxinerama1 libxrender1 libfontconfig1 libgomp1"
+)
 
 
 @dataclass(frozen=True)
