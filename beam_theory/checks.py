@@ -79,8 +79,7 @@ def _moment_closing_error(solution: Solution, sectorial: complex, size: float) -
     assert found is not None
     p = graph.pieces
     arm = p.curves.moved(-mass.centroid).arm(p.u)
-    closed = graph.cell_sum(found.closing.real) + 1j * graph.cell_sum(found.closing.imag)
-    basic = found.flow - closed[:, None]
+    basic = found.flow - found.start[:, None] + found.basic[:, None]
     moment = complex((p.ds * arm * basic).sum())
     worst = 0.0
     for vx, vy in ((1.0, 0.0), (0.0, 1.0)):

@@ -3,15 +3,15 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from beam_theory.network import Network
 
-__all__ = ["Inertia", "inertia"]
+__all__ = ["FLAT", "Inertia", "inertia"]
 
-_FLAT = 1e-12
+FLAT = 1e-11
 _ROUND = 1e-10
 
 
@@ -22,6 +22,9 @@ class Inertia:
     area [L^2] weighted; plain_area [L^2] unweighted, full walls and booms; centroid complex [L] in the file's
     axes; xx of y^2, yy of x^2, xy [L^4] about the centroid; reason: why shear and
     bending are undefined, None where they are defined.
+
+    frame: unit vector of axes close to the principal ones, and the moments of eta^2, xi^2 and xi eta about
+    them; a flat section that lies askew keeps its small moment there. None: the file's axes do.
     """
 
     area: float
@@ -31,6 +34,7 @@ class Inertia:
     yy: float
     xy: float
     reason: str | None
+    frame: tuple[complex, float, float, float] | None = None
 
     @property
     def radius(self) -> float:
@@ -40,8 +44,15 @@ class Inertia:
     @property
     def principal(self) -> tuple[float, float]:
         """Largest and smallest second moment [L^4]."""
-        mean = 0.5 * (self.xx + self.yy)
-        return mean + self.radius, mean - self.radius
+        _, xx, yy, xy = self._axes
+        u = 0.5 * (xx + yy) + math.hypot(0.5 * (xx - yy), xy)
+        # The determinant over the largest loses no digit of a flat section along the axes.
+        return u, (xx * yy - xy**2) / u if u > 0.0 else 0.0
+
+    @property
+    def _axes(self) -> tuple[complex, float, float, float]:
+        """Axes to solve in and the moments about them."""
+        return (1.0 + 0.0j, self.xx, self.yy, self.xy) if self.frame is None else self.frame
 
     @property
     def angle(self) -> float | None:
@@ -55,16 +66,18 @@ class Inertia:
 
     def slope(self, of_x: float, of_y: float) -> complex:
         """a + i b from [Iyy Ixy; Ixy Ixx][a b] = [of_x of_y]; defined only where `reason` is None."""
-        det = self.xx * self.yy - self.xy**2
-        a = (self.xx * of_x - self.xy * of_y) / det
-        b = (self.yy * of_y - self.xy * of_x) / det
-        return complex(a, b)
+        axis, xx, yy, xy = self._axes
+        given = complex(of_x, of_y) * axis.conjugate()
+        det = xx * yy - xy**2
+        a = (xx * given.real - xy * given.imag) / det
+        b = (yy * given.imag - xy * given.real) / det
+        return complex(a, b) * axis
 
 
 def inertia(graph: Network) -> Inertia:
     """Area to second moments by quadrature exact to round-off.
 
-    A second moment counts as zero below 1e-12 of the largest one: what is left then is round-off.
+    A second moment counts as zero below 1e-11 of the largest one: what is left then is round-off.
     """
     pieces = graph.pieces
     weight = pieces.eta
@@ -81,11 +94,23 @@ def inertia(graph: Network) -> Inertia:
     yy = float((weight * place.real**2).sum() + (graph.boom * node.real**2).sum())
     xy = float((weight * place.real * place.imag).sum() + (graph.boom * node.real * node.imag).sum())
     found = Inertia(area, plain, origin + shift, xx, yy, xy, None)
+    angle = found.angle
+    if angle is not None and xy != 0.0:
+        axis = complex(math.cos(angle), math.sin(angle))
+        turned, at_node = place * axis.conjugate(), node * axis.conjugate()
+        moments = (
+            float((weight * turned.imag**2).sum() + (graph.boom * at_node.imag**2).sum()),
+            float((weight * turned.real**2).sum() + (graph.boom * at_node.real**2).sum()),
+            float(
+                (weight * turned.real * turned.imag).sum() + (graph.boom * at_node.real * at_node.imag).sum()
+            ),
+        )
+        found = replace(found, frame=(axis, *moments))
     u, v = found.principal
-    if v > _FLAT * u:
+    if v > FLAT * u:
         return found
     reason = (
         "all direct-stress material lies on one straight line: thin-walled theory has no bending stiffness "
         "across it"
     )
-    return Inertia(area, plain, origin + shift, xx, yy, xy, reason)
+    return replace(found, reason=reason)

@@ -118,7 +118,7 @@ def _quantities(base: Solution, parts: int, out: dict[str, Quantity]) -> tuple[C
     _, yy, _ = moments(_bending(base, 1.0))
     out["second_moment_xx"], out["second_moment_yy"] = Quantity(xx), Quantity(yy)
     out["product_moment_xy"] = Quantity(xy)
-    full = replace(mass, xx=xx, yy=yy, xy=xy)
+    full = replace(mass, xx=xx, yy=yy, xy=xy, frame=None)
     u, v = full.principal
     out["principal_moment_u"], out["principal_moment_v"] = Quantity(u), Quantity(v)
     angle = full.angle

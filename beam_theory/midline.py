@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import replace
 
 from beam_theory.checks import checks
-from beam_theory.inertia import Inertia, inertia
+from beam_theory.inertia import FLAT, Inertia, inertia
 from beam_theory.network import network
 from beam_theory.quantity import Quantity
 from beam_theory.section import Section
@@ -54,7 +54,7 @@ def _quantities(
         out[name] = Quantity(None if value is None or reason is not None else float(value), reason)
 
     u, v = mass.principal
-    flat = 1e-12 * u
+    flat = FLAT * u
     put("area", mass.area, weightless)
     put("centroid_x", mass.centroid.real, weightless)
     put("centroid_y", mass.centroid.imag, weightless)

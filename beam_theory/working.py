@@ -145,7 +145,9 @@ class Working:
     area to product: e-weighted section properties; determinant = Ixx Iyy - Ixy^2; a, b from
     [Iyy Ixy; Ixy Ixx][a b] = [Vx Vy]. basic, shear, total: flow of every stretch with the cells cut, closed
     at zero twist, and with the torque. resultant: sums of `forces`, the torque about the origin of the file's
-    axes with what open walls carry.
+    axes with what open walls carry. basic_torque: moment of the basic flow about the centroid.
+    closing_by_moments: of a single cell, (moment of the load about the centroid - basic_torque - what open
+    walls carry)/(2 A), to be compared with closing + torque_flow of the cell; None for other sections.
     """
 
     load: Load
@@ -170,6 +172,8 @@ class Working:
     forces: tuple[ForceRow, ...]
     resultant: tuple[float, float, float]
     applied: tuple[float, float, float]
+    basic_torque: float
+    closing_by_moments: float | None
 
 
 def working(solution: Solution, load: Load) -> Working:
@@ -205,6 +209,13 @@ def working(solution: Solution, load: Load) -> Working:
         BoomRow(_pair(graph.node[i] - mass.centroid), float(graph.boom[i]), float(boom_step[i])) for i in has
     )
     forces, resultant = _forces(solved, flow)
+    applied = _applied(solved, load)
+    basic_torque = sum(row.torque for row in forces) - _closing_torque(solved, flow, basic)
+    by_moments = None
+    if graph.cells.count == 1:
+        about_centroid = applied[2] - mass.centroid.real * applied[1] + mass.centroid.imag * applied[0]
+        rest = about_centroid - basic_torque - flow.open_torque
+        by_moments = rest / (2.0 * float(graph.cell_area[0]))
     return Working(
         load,
         solved.level,
@@ -227,7 +238,9 @@ def working(solution: Solution, load: Load) -> Working:
         wall_flows(flow, flow.shear_start + flow.torque_flow),
         forces,
         resultant,
-        _applied(solved, load),
+        applied,
+        basic_torque,
+        by_moments,
     )
 
 
@@ -341,6 +354,13 @@ def _forces(solved: Solution, flow: Flow) -> tuple[tuple[ForceRow, ...], tuple[f
         for i, number in enumerate(p.wall.tolist())
     )  # fmt: skip
     return rows, flow.resultant()
+
+
+def _closing_torque(solved: Solution, flow: Flow, basic: Floats) -> float:
+    """Moment about the centroid of what the final flow has more than the basic one."""
+    p = solved.graph.pieces
+    more = flow.shear_start + flow.torque_flow - basic
+    return float((p.ds * p.curves.moved(-solved.mass.centroid).arm(p.u) * more[:, None]).sum())
 
 
 def _applied(solved: Solution, load: Load) -> tuple[float, float, float]:

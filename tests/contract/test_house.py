@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import shutil
 import subprocess
 from pathlib import Path
 
@@ -15,8 +16,16 @@ FOLDERS = {"crosscheck", "beam_theory", "fe_models", "cases", "tests"}
 
 
 def tracked() -> list[Path]:
-    listed = subprocess.run(["git", "ls-files"], cwd=ROOT, capture_output=True, text=True, check=True)
-    return [Path(line) for line in listed.stdout.splitlines()]
+    """Files of the project relative to its root: as git lists them, or all of a copy without git."""
+    if shutil.which("git") and (ROOT / ".git").exists():
+        listed = subprocess.run(["git", "ls-files"], cwd=ROOT, capture_output=True, text=True, check=True)
+        return [path for line in listed.stdout.splitlines() if (ROOT / (path := Path(line))).exists()]
+    return [
+        path.relative_to(ROOT)
+        for name in FILES | FOLDERS
+        for path in ((ROOT / name).rglob("*") if name in FOLDERS else [ROOT / name])
+        if path.is_file() and path.suffix != ".pyc"
+    ]
 
 
 def test_top_level_holds_only_what_the_design_says():

@@ -233,3 +233,52 @@ def test_shear_only_skins_give_steps() -> None:
         q = flow.at(wall, np.linspace(0.0, 1.0, 5))
         assert_allclose(np.abs(q), want, rtol=TIGHT)
         assert len(flow.stationary(wall)) == 0
+
+
+def test_surface_shear_follows_the_shear_modulus() -> None:
+    """g T t/J in each wall of its own material, linear in t along a taper."""
+    points = {"a": (0.0, 0.0), "b": (60.0, 0.0), "c": (60.0, 80.0)}
+    walls = (Wall("ab", "a", "b", (2.0, 4.0), g=3.0), Wall("bc", "b", "c", (5.0, 5.0)))
+    solution = solve(Section(points, walls))
+    j = 3.0 * 60 * (8 + 16 + 32 + 64) / 4 / 3 + 80 * 125 / 3
+    assert_allclose(value(solution, "torsion_constant"), j, rtol=TIGHT)
+    assert_allclose(
+        solution.surface_shear(7.0, "ab", np.array([0.0, 0.5, 1.0])), 21.0 * np.array([2, 3, 4]) / j
+    )
+    assert_allclose(solution.surface_shear(7.0, "bc", np.array([0.5])), [35.0 / j], rtol=TIGHT)
+
+
+@pytest.mark.parametrize("order", [(0, 1, 2, 3), (1, 0, 2, 3), (3, 2, 1, 0), (2, 3, 0, 1)])
+@pytest.mark.parametrize("turned", [False, True])
+def test_walls_that_leave_along_one_tangent(order: tuple[int, ...], turned: bool) -> None:
+    """Two arcs and a straight wall leave a point along x; a web closes two cells between them."""
+    half = math.sqrt(0.5)
+    points = {"a": (0.0, 0.0), "b": (1.0, 1.0), "c": (2.0, 0.0), "d": (1.5, -1.5)}
+    walls = [
+        Wall("tight", "a", "b", (0.01, 0.01), (half, 1.0 - half)),
+        Wall("flat", "a", "c", (0.01, 0.01)),
+        Wall("down", "a", "d", (0.01, 0.01), (1.5 * half, -1.5 * (1.0 - half))),
+        Wall("web", "b", "c", (0.01, 0.01)),
+    ]
+    if turned:
+        walls = [Wall(w.name, w.end, w.start, w.thickness, w.arc_through) for w in walls]
+    section = Section(points, (*(walls[i] for i in order), Wall("edge", "d", "c", (0.01, 0.01))))
+    solution = solve(section)
+    # Under the tight arc: a - (2,0) - (1,1) less the arc's side; and the one below the straight wall.
+    above = 1.0 - math.pi / 4 + 0.5
+    below = 1.5**2 * (1.0 - math.pi / 4) + 0.5 * 0.5 * 1.5
+    assert_allclose(sorted(solution.cell_areas), sorted([above, below]), rtol=TIGHT)
+    assert all(check.passed for check in solution.checks)
+
+
+def test_stationary_places_of_a_long_arc() -> None:
+    """Circular tube: under Vy the flow is stationary where the wall crosses the x axis, twice on one arc."""
+    at = {name: (math.cos(a), math.sin(a)) for name, a in (("p", -0.3), ("m", 1.6), ("q", 3.5), ("n", 4.7))}
+    points = {"p": at["p"], "q": at["q"]}
+    walls = (Wall("long", "p", "q", (0.01, 0.01), at["m"]), Wall("short", "q", "p", (0.01, 0.01), at["n"]))
+    flow = solve(Section(points, walls)).unit_flow("Vy")
+    assert_allclose(flow.stationary("long"), [0.3 / 3.8, (math.pi + 0.3) / 3.8], rtol=1e-9)
+    assert len(flow.stationary("short")) == 0
+    peaks = flow.at("long", flow.stationary("long"))
+    assert_allclose(np.abs(peaks), 1 / math.pi, rtol=TIGHT)
+    assert_allclose(abs(flow.peak("long").flow), 1 / math.pi, rtol=TIGHT)

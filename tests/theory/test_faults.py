@@ -22,6 +22,7 @@ from beam_theory import (
     Wall,
     solve,
 )
+from beam_theory.checks import checks
 
 P = {"a": (0.0, 0.0), "b": (10.0, 0.0), "c": (0.0, 10.0)}
 
@@ -209,3 +210,34 @@ def test_boom_steps_along_a_wall() -> None:
     first, second = flow.polynomial("w1")
     assert_allclose((first.last, second.first), (0.25, 0.25), rtol=1e-12)
     assert_allclose([sum(first.coefficients), second.coefficients[0]], [before, after], rtol=1e-8)
+
+
+def test_built_in_checks_can_fail() -> None:
+    """Each check notices the fault it is there for."""
+    points = {"a": (0.0, 0.0), "b": (60.0, 0.0), "c": (60.0, 40.0), "d": (0.0, 55.0), "e": (90.0, 5.0)}
+    walls = [("a", "b", 2), ("b", "c", 2.5), ("c", "d", 2), ("d", "a", 3), ("b", "e", 6)]
+    good = solve(joined(points, walls))
+    assert good.shear is not None
+    assert good.warp is not None
+    pole = good.warp.pole
+    assert all(check.passed for check in checks(good, pole))
+
+    def failing(**changes: object) -> set[str]:
+        bad = replace(good, **changes)  # type: ignore[arg-type]
+        return {check.name for check in checks(bad, pole) if not check.passed}
+
+    twist = replace(good.twist, cell_flow=good.twist.cell_flow * 1.001)
+    assert "resultant of unit T" in failing(twist=twist)
+    assert "no gap in warping round the cells" in failing(twist=twist)
+    bent = replace(good.shear, start=good.shear.start * 1.001)
+    assert "resultant of unit Vx" in failing(shear=bent)
+    assert "resultant of unit Vy" in failing(shear=bent)
+    assert "single cell closed by moment equilibrium" in failing(
+        shear=replace(good.shear, closing=good.shear.closing * 1.001)
+    )
+    assert "node balance" in failing(shear=replace(good.shear, imbalance=1e-6))
+    moved_pole = replace(good.warp, pole=pole + 1e-3)
+    assert "shear centre from flow moments and from sectorial moments" in failing(warp=moved_pole)
+    tilted = replace(good.warp, at_quadrature=good.warp.at_quadrature + 1e-3 * good.graph.pieces.u * 60**2)
+    assert "warping makes no bending moment" in failing(warp=tilted)
+    assert "warping function closes round the cells" in failing(warp=replace(good.warp, gap=1e-6))

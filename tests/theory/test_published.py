@@ -374,7 +374,8 @@ def test_every_thin_walled_row_is_accounted_for() -> None:
         name for name in thin_rows() if name not in {*CASES, *MIDLINE_ONLY, *TABLES, *NOT_RUN, *CORRECTED}
     }
     allowed = {
-        "D020", "D021", "D040", "D041", "D06s", "D300", "D303", "D330", "D332", "D340", "D400", "D402", "D403", "D410", "D411", "D412", "D413", "D420", "D422", "D55",
+        "D020", "D021", "D040", "D041", "D06s", "D300", "D303", "D330", "D332", "D340",
+        "D400", "D402", "D403", "D410", "D411", "D412", "D413", "D420", "D422", "D55",
         "D600", "D602",
     }  # fmt: skip
     assert solids == allowed

@@ -1,8 +1,8 @@
 """Printed properties of rolled and cold-formed sections that come from a classical formula.
 
 cases/reference/rolled_sections.json says for each printed value whether a classical formula stands behind it
-and how well that agrees ("classical_formula_tolerance_percent"). Printed I_t of European I sections uses another
-joint formula (alpha = (tw/tf)(0.145 + 0.1 r/tf), from memory) than ours and is not judged here.
+and how well that agrees ("classical_formula_tolerance_percent"). Printed I_t of European I sections uses
+another joint formula (alpha = (tw/tf)(0.145 + 0.1 r/tf), from memory) than ours and is not judged here.
 """
 
 from __future__ import annotations

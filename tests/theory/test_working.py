@@ -102,6 +102,13 @@ def torque(sheet: Working, peak: float) -> None:
     assert_allclose(t.open_torque, t.twist * opened, rtol=1e-9)
     for cell in sheet.cells:
         assert_allclose(cell.torque_flow, t.twist * cell.twist_flow, rtol=1e-9)
+    if len(sheet.cells) == 1:
+        (cell,) = sheet.cells
+        assert sheet.closing_by_moments is not None
+        both = cell.closing + cell.torque_flow
+        assert_allclose(sheet.closing_by_moments, both, rtol=1e-8, atol=1e-9 * peak)
+    else:
+        assert sheet.closing_by_moments is None
 
 
 @pytest.mark.parametrize("seed", range(40))
