@@ -1,42 +1,61 @@
 """Finite-element side of the cross-check: the real outline, two-sided warping solutions, error bars."""
 
 from .checks import Check
-from .errors import FeError, OutlineError, SolveError
+from .edges import Chained, Edge, circle_edges, closed_lines, fitted_edges
+from .errors import FeError, LibraryError, OutlineError, SolveError
 from .faces import Actions, FaceStress, Peak
 from .intervals import Interval
+from .location import PointStress
+from .mesh_file import rings_of_mesh, write_fields
 from .outline import Outline
 from .picture import PictureMesh
 from .poisson import PoissonFlexure
 from .recovery import FlowSamples
 from .section import Boom, Rounding, Section, Wall
+from .solid import ClosedLine, Solid
 from .solution import (
     ACCURACY_RANGE,
     DEFAULT_ACCURACY,
     MeshSummary,
     Solution,
     solve,
+    solve_solid,
 )
+from .step_face import rings_of_step
 
 __all__ = [
     "ACCURACY_RANGE",
     "DEFAULT_ACCURACY",
     "Actions",
     "Boom",
+    "Chained",
     "Check",
+    "ClosedLine",
+    "Edge",
     "FaceStress",
     "FeError",
     "FlowSamples",
     "Interval",
+    "LibraryError",
     "MeshSummary",
     "Outline",
     "OutlineError",
     "Peak",
     "PictureMesh",
+    "PointStress",
     "PoissonFlexure",
     "Rounding",
     "Section",
+    "Solid",
     "Solution",
     "SolveError",
     "Wall",
+    "circle_edges",
+    "closed_lines",
+    "fitted_edges",
+    "rings_of_mesh",
+    "rings_of_step",
     "solve",
+    "solve_solid",
+    "write_fields",
 ]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -42,6 +42,10 @@ class Piece:
     cut : (str, bool), optional
         Key of the wall end that a cut leads to.
     arc : Arc, optional
+    width : float, optional
+        Width of the solid across the piece, where no wall tells it [L].
+    calm : bool
+        True where another piece faces this one all along at that width, so that long elements serve.
     """
 
     kind: str
@@ -52,6 +56,8 @@ class Piece:
     span: tuple[float, float] = (0.0, 0.0)
     cut: EndKey | None = None
     arc: Arc | None = None
+    width: float | None = None
+    calm: bool = False
 
     @property
     def straight(self) -> bool:
@@ -66,6 +72,13 @@ class Piece:
             return 0.0
         inside = np.clip(self.span, 0.0, self.band.length)
         return abs(self.band.curvature * float(inside[1] - inside[0]))
+
+    @property
+    def radius(self) -> float:
+        """Radius of a curved piece, of its wall's midline for a face [L]; infinite for a straight one."""
+        if self.arc is not None:
+            return self.arc.radius
+        return np.inf if self.straight or self.band is None else 1.0 / abs(self.band.curvature)
 
     @property
     def length(self) -> float:
@@ -98,6 +111,17 @@ class Piece:
             return np.broadcast_to(self.end - self.start, (*u.shape, 2))
         s = self.span[0] + u * (self.span[1] - self.span[0])
         return self.band.face_slope(s, self.side) * (self.span[1] - self.span[0])
+
+    def part(self, first: float, last: float, width: float, calm: bool) -> Piece:
+        """Fractions ``first`` to ``last`` of a line or an arc, with the width of the solid there."""
+        start, end = self.start, self.end
+        if (first, last) != (0.0, 1.0):
+            start, end = self.at(np.array([first, last]))
+        arc = self.arc
+        if arc is not None:
+            sweep = arc.last - arc.first
+            arc = replace(arc, first=arc.first + first * sweep, last=arc.first + last * sweep)
+        return replace(self, start=start, end=end, arc=arc, width=width, calm=calm)
 
 
 Ring = list[Piece]

@@ -16,6 +16,11 @@ from .grading import corner_size, graded
 from .partition import Cluster
 from .seams import Seam
 
+# Length of elements over the width of the solid between pieces that face each other all along.
+CALM = 8.0
+# Rise of an element's arc over the width of the solid.
+RISE = 0.05
+
 
 @dataclass(frozen=True)
 class BoundaryPoints:
@@ -41,7 +46,7 @@ def boundary_points(
 ) -> BoundaryPoints:
     """Points on a cluster's rings and seams; ``scale`` is the least thickness of its walls [L]."""
     loops, corners, cuts, bends = [], [], {}, []
-    base, thickest = 0, scale
+    base, largest = 0, density.largest * scale
     for ring in cluster.rings:
         n = len(ring)
         sizes = [_corner(ring[i - 1], ring[i], scale, density) for i in range(n)]
@@ -51,7 +56,7 @@ def boundary_points(
         for i, (piece, u) in enumerate(zip(ring, fractions, strict=True)):
             numbers = base + (first + np.arange(len(u))) % total
             corners.append((int(numbers[0]), sizes[i]))
-            thickest = max(thickest, _thickness(piece, scale))
+            largest = max(largest, _longest(piece, scale, density))
             if piece.cut is not None:
                 cuts[piece.cut] = numbers
             if not piece.straight:
@@ -63,7 +68,7 @@ def boundary_points(
         loops.append(np.concatenate([p.at(u[:-1]) for p, u in zip(ring, fractions, strict=True)]))
         base += total
     inner, lines = _seam_points(np.concatenate(loops), dict(corners), seams, scale, density)
-    region = Region(tuple(loops), inner, lines, tuple(corners), density.largest * thickest, density.slope)
+    region = Region(tuple(loops), inner, lines, tuple(corners), largest, density.slope)
     return BoundaryPoints(region, cuts, bends)
 
 
@@ -92,8 +97,8 @@ def _fractions(piece: Piece, first: float, last: float, scale: float, density: D
     """Fractions 0 ... 1 of a piece at which points lie."""
     if piece.cut is not None:
         return np.linspace(0.0, 1.0, density.layers + 1)
-    u = graded(piece.length, first, last, density.largest * _thickness(piece, scale), density.slope)
-    least = int(np.ceil(piece.turn / density.turn))
+    u = graded(piece.length, first, last, _longest(piece, scale, density), density.slope)
+    least = int(np.ceil(piece.turn / density.arc_step(piece.radius, _thickness(piece, scale))))
     if piece.arc is not None:
         # an even number, so that a seam can end in the middle
         least = 2 * int(np.ceil(max(least, len(u) - 1) / 2))
@@ -102,8 +107,20 @@ def _fractions(piece: Piece, first: float, last: float, scale: float, density: D
     return u
 
 
+def _longest(piece: Piece, scale: float, density: Density) -> float:
+    """Longest edge along a piece [L]."""
+    longest = density.largest * _thickness(piece, scale) * (CALM if piece.calm else 1.0)
+    if piece.width is not None and piece.arc is not None:
+        # the rise of each edge's arc stays a small share of the width
+        rise = float(np.sqrt(8.0 * RISE * piece.width * piece.arc.radius))
+        longest = min(longest, density.turn * piece.arc.radius, rise)
+    return longest
+
+
 def _thickness(piece: Piece, scale: float) -> float:
     """Thickness that sets the size along a piece [L]."""
+    if piece.width is not None:
+        return piece.width
     if piece.band is None:
         return max(scale, piece.length if piece.cut is not None else 0.0)
     return 2.0 * float(min(piece.band.half(piece.span[0]), piece.band.half(piece.span[1])))
@@ -116,6 +133,15 @@ def _corner(before: Piece, after: Piece, scale: float, density: Density) -> floa
         return own / density.layers
     a, b = before.rate(np.array([1.0]))[0], after.rate(np.array([0.0]))[0]
     turn = np.arctan2(a[0] * b[1] - a[1] * b[0], a @ b)
-    size = corner_size(np.pi - float(turn), own, density.eta)
-    steps = [p.length * min(1.0, density.turn / p.turn) for p in (before, after) if not p.straight]
+    reach, eta = own, density.eta
+    if before.width is not None:
+        # the singular field of a corner between short edges reaches no farther than these
+        reach = min(own, before.length, after.length)
+        eta = min(1.0, eta * (own / reach) ** 2)
+    size = corner_size(np.pi - float(turn), reach, eta)
+    steps = [
+        p.length * min(1.0, density.arc_step(p.radius, own) / p.turn)
+        for p in (before, after)
+        if not p.straight
+    ]
     return min(size, before.length, after.length, density.largest * own, *steps)

@@ -26,6 +26,7 @@ MITRE_LIMIT = 4.0
 COLLINEAR = 1e-7
 # Half thicknesses that differ by less than this (relative) are equal.
 SAME_HALF = 1e-9
+NEWTON_STEPS = 40
 
 
 @dataclass(frozen=True)
@@ -110,7 +111,7 @@ def _meet(first: WallEnd, second: WallEnd, guess: tuple[float, float]) -> tuple[
     """Distances from the point at which the left face of first meets the right face of second."""
     s = np.array(guess)
     size = first.half() + second.half()
-    for _ in range(40):
+    for _ in range(NEWTON_STEPS):
         miss = first.side(s[0], 1.0) - second.side(s[1], -1.0)
         slopes = np.column_stack([first.side_slope(s[0], 1.0), -second.side_slope(s[1], -1.0)])
         try:
@@ -122,8 +123,8 @@ def _meet(first: WallEnd, second: WallEnd, guess: tuple[float, float]) -> tuple[
             return float(s[0]), float(s[1])
     if np.hypot(*miss) <= 1e-9 * size:
         return float(s[0]), float(s[1])
-    names = (first.band.name, second.band.name)
-    raise OutlineError("swallowed", names, "neighbours whose faces do not meet")
+    # faces that never meet eat up both walls: their joint is then made by polygon union
+    return first.band.length, second.band.length
 
 
 def _reach_plane(end: WallEnd, sign: float, place: Array, towards: Array, limit: float) -> float:
@@ -135,9 +136,12 @@ def _reach_plane(end: WallEnd, sign: float, place: Array, towards: Array, limit:
 def _step(place: Array, first: WallEnd, second: WallEnd, *, wide_first: bool) -> Chain:
     """The narrower wall's face run on to the square end of the wider wall."""
     wide, narrow, sign = (first, second, -1.0) if wide_first else (second, first, 1.0)
-    base, slope = narrow.side(0.0, sign), narrow.side_slope(0.0, sign)
-    across = float(slope @ wide.direction)
-    s = -float((base - place) @ wide.direction) / across
+    s = 0.0
+    for _ in range(NEWTON_STEPS):
+        off = float((narrow.side(s, sign) - place) @ wide.direction)
+        if abs(off) <= 1e-14 * wide.half():
+            break
+        s -= off / float(narrow.side_slope(s, sign) @ wide.direction)
     corner, foot = wide.side(0.0, -sign), narrow.side(s, sign)
     if wide_first:
         return Chain(first, second, _lines(corner, foot), (0.0, s), "step")

@@ -4,6 +4,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+# Largest angle of an arc in one element [rad].
+TURN = 0.2
+# Largest (radius / thickness) angle^(p + 1) of a curved side of order p: what a side and the boundary values
+# on it stray by, as a share of the thickness, is some hundredth of it.
+STRAY = {3: 3e-4, 4: 5e-3}
+
 
 @dataclass(frozen=True)
 class Density:
@@ -11,6 +17,8 @@ class Density:
 
     Parameters
     ----------
+    order : int
+        Of the elements, 3 or 4.
     eta : float
         Energy share lost at a corner's first element [-], see grading.
     largest : float
@@ -27,17 +35,29 @@ class Density:
         Largest angle of an arc in one element [rad].
     """
 
+    order: int = 3
     eta: float = 1e-4
     largest: float = 0.8
     slope: float = 1.0
     layers: int = 1
     first: float = 1.0
     ratio: float = 2.0
-    turn: float = 0.2
+    turn: float = TURN
+
+    def arc_step(self, radius: float, thickness: float) -> float:
+        """Largest angle of an element on an arc [rad].
+
+        A side of order p strays from the arc by a multiple of radius angle^(p + 1).
+        """
+        if radius == float("inf"):
+            return self.turn
+        stray = STRAY[self.order] * thickness / radius
+        return min(self.turn, float(stray ** (1.0 / (self.order + 1))) * self.turn / TURN)
 
     def finer(self, level: float) -> Density:
         """The density of a refinement level (0: this one)."""
         return Density(
+            self.order,
             self.eta * 10.0 ** (-2 * level),
             self.largest * 0.7**level,
             max(0.35, self.slope * 0.8**level),

@@ -1,7 +1,8 @@
 """The errors of the finite-element side.
 
 FeError
-|-- OutlineError   the walls do not make a solid that can be analysed (bad input)
+|-- OutlineError   walls or rings do not make a solid that can be analysed (bad input)
+|-- LibraryError   a library that only this task needs is not installed
 `-- SolveError     the mesh or the equations could not be made or solved
 """
 
@@ -18,18 +19,27 @@ ALLOWED = {
     "lost cell": "thin enough to leave every cell open",
     "radius": "a radius that the walls at the point have room for",
     "limit": "a section of at most 2000 walls",
+    "ring": "closed by at least three lines, or two edges of which one is an arc, at finite places",
+    "zero length": "edges between different places",
+    "arc": "a third point off both ends of the arc, between them where all three lie on one line",
+    "crossing": "clear of itself and of every other ring",
+    "gap": "closed: every edge joined to the next within the stated gap",
+    "branch": "made of closed lines that share no point: two edges at each",
+    "step": "a STEP file of one plane face across x, y or z",
+    "mesh": "a mesh file of one flat sheet of triangles",
+    "opening": "inside the outer ring and not inside another opening",
 }
 
 
 class OutlineError(FeError):
-    """The walls do not bound a solid that the model can stand for.
+    """The walls, or the rings of an outline, do not bound a solid that the model can stand for.
 
     Parameters
     ----------
     kind : str
         A key of ``ALLOWED``.
     walls : tuple of str
-        Names of the walls concerned.
+        Names of the walls or rings concerned.
     found : str
         What was found; what is allowed follows from the kind.
     """
@@ -47,6 +57,10 @@ class OutlineError(FeError):
 
     def __str__(self) -> str:
         return f"must be {self.allowed}, got {self.found}"
+
+
+class LibraryError(FeError):
+    """An optional library is missing; the message says which and how to install it."""
 
 
 class SolveError(FeError):

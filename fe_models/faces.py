@@ -16,6 +16,7 @@ from .element import EDGES
 from .fields import Fields
 from .intervals import warping_function
 from .mesh import StripMesh
+from .poisson import PoissonFlexure
 from .recovery import in_triangles
 from .sampling import Samples, function_values, places, stresses
 from .space import strip_coordinates
@@ -122,10 +123,18 @@ def _on_faces(strip: StripMesh, s: Array) -> Samples:
 
 def _shear(fields: Fields, samples: Samples, along: Array, actions: Actions) -> tuple[Array, Array]:
     """Stress along a direction for a load, and half the difference of the two fields, (c, q)."""
-    factors = np.array([*actions.shear, actions.torque])
-    static, kinematic = (np.tensordot(factors, f, axes=1) for f in stresses(fields, samples))
+    static, kinematic = load_stress(fields, samples, actions)
     s, k = np.sum(static * along, axis=-1), np.sum(kinematic * along, axis=-1)
     return 0.5 * (s + k), 0.5 * np.abs(s - k)
+
+
+def load_stress(
+    fields: Fields, samples: Samples, actions: Actions, poisson: PoissonFlexure | None = None
+) -> tuple[Array, Array]:
+    """Static and kinematic shear stress of a load at sampled points, two (c, q, 2) arrays."""
+    factors = np.array([*actions.shear, actions.torque])
+    static, kinematic = stresses(fields, samples, poisson)
+    return np.tensordot(factors, static, axes=1), np.tensordot(factors, kinematic, axes=1)
 
 
 def _direct(fields: Fields, points: Array, actions: Actions) -> Array:

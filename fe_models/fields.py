@@ -174,9 +174,8 @@ def _compatible(
             potentials[i] = potentials[i] + local
             fields[i] = fields[i] + g * space.gradient(local)
     left = [
-        np.abs(load - space.flux_load(k)).max()
-        / max(np.abs(load).max(), np.abs(space.flux_load(s)).max(), np.finfo(float).tiny)
-        for load, k, s in zip(loads, fields, start, strict=True)
+        np.abs(load - space.flux_load(k)).max() / max(space.flux_scale(k), np.finfo(float).tiny)
+        for load, k in zip(loads, fields, strict=True)
     ]
     return potentials, fields, float(max(left))
 

@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+from contextlib import contextmanager
 from dataclasses import dataclass
 from itertools import pairwise
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,6 +21,10 @@ SYSTEM_LIBRARIES = (
     "sudo apt-get install -y python3-venv libglu1-mesa libgl1 libx11-6 libxcursor1 libxext6 libxfixes3 "
     "libxft2 libxinerama1 libxrender1 libfontconfig1 libgomp1"
 )
+
+# More different sizes than this are rounded down to powers of the ratio: each size is a field to evaluate.
+MOST_SIZES = 40
+SIZE_RATIO = 1.25
 
 
 @dataclass(frozen=True)
@@ -64,6 +71,28 @@ def fill(regions: list[Region]) -> list[Filling]:
     SolveError
         When the generator is missing, fails, or leaves a region unmeshed.
     """
+    with generator() as gmsh:
+        try:
+            gmsh.option.setNumber("Mesh.Algorithm", 6)
+            gmsh.option.setNumber("Mesh.MeshSizeExtendFromBoundary", 0)
+            gmsh.option.setNumber("Mesh.MeshSizeFromPoints", 0)
+            gmsh.option.setNumber("Mesh.Optimize", 0)
+            return [_fill_one(gmsh, region) for region in regions]
+        except SolveError:
+            raise
+        except Exception as fault:  # the generator raises bare Exception
+            raise SolveError(f"meshing a joint failed: {fault}") from None
+
+
+@contextmanager
+def generator() -> Iterator[Any]:
+    """The mesh generator, silent and on one thread; left as it was found.
+
+    Raises
+    ------
+    SolveError
+        When it is missing.
+    """
     try:
         import gmsh
     except (ImportError, OSError) as fault:
@@ -76,21 +105,13 @@ def fill(regions: list[Region]) -> list[Filling]:
     try:
         gmsh.option.setNumber("General.Terminal", 0)
         gmsh.option.setNumber("General.NumThreads", 1)
-        gmsh.option.setNumber("Mesh.Algorithm", 6)
-        gmsh.option.setNumber("Mesh.MeshSizeExtendFromBoundary", 0)
-        gmsh.option.setNumber("Mesh.MeshSizeFromPoints", 0)
-        gmsh.option.setNumber("Mesh.Optimize", 0)
-        return [_fill_one(gmsh, region) for region in regions]
-    except SolveError:
-        raise
-    except Exception as fault:  # the generator raises bare Exception
-        raise SolveError(f"meshing a joint failed: {fault}") from None
+        yield gmsh
     finally:
         if not started:
             gmsh.clear()
 
 
-def _fill_one(gmsh, region: Region) -> Filling:  # type: ignore[no-untyped-def]
+def _fill_one(gmsh: Any, region: Region) -> Filling:
     gmsh.model.add("joint")
     try:
         geo = gmsh.model.geo
@@ -134,15 +155,13 @@ def _fill_one(gmsh, region: Region) -> Filling:  # type: ignore[no-untyped-def]
         gmsh.model.remove()
 
 
-def _sizes(gmsh, region: Region, tags: list[int], size: float) -> None:  # type: ignore[no-untyped-def]
-    """Background field: the least of the sizes that grow from each corner."""
+def _sizes(gmsh: Any, region: Region, tags: list[int], size: float) -> None:
+    """Background field: the least of the sizes that grow from each corner, one field for equal sizes."""
     field = gmsh.model.mesh.field
     grown = []
-    for index, least in region.corners:
-        if least >= region.largest:
-            continue
+    for least, indices in _groups(region).items():
         distance, size_at = field.add("Distance"), field.add("Threshold")
-        field.setNumbers(distance, "PointsList", [tags[index]])
+        field.setNumbers(distance, "PointsList", [tags[i] for i in indices])
         field.setNumber(size_at, "InField", distance)
         field.setNumber(size_at, "SizeMin", least / size)
         field.setNumber(size_at, "SizeMax", region.largest / size)
@@ -154,6 +173,17 @@ def _sizes(gmsh, region: Region, tags: list[int], size: float) -> None:  # type:
         least_of_all = field.add("Min")
         field.setNumbers(least_of_all, "FieldsList", grown)
         field.setAsBackgroundMesh(least_of_all)
+
+
+def _groups(region: Region) -> dict[float, list[int]]:
+    """Points by the size that grows from them; many different sizes are rounded down to a coarse scale."""
+    small = [(i, size) for i, size in region.corners if size < region.largest]
+    if len({size for _, size in small}) > MOST_SIZES:
+        small = [(i, float(SIZE_RATIO ** np.floor(np.log(s) / np.log(SIZE_RATIO)))) for i, s in small]
+    made: dict[float, list[int]] = {}
+    for i, size in small:
+        made.setdefault(size, []).append(i)
+    return made
 
 
 def _anticlockwise(vertices: Array, triangles: Index) -> Index:

@@ -16,6 +16,8 @@ from .band import Array
 
 # Corners flatter than this [rad] are no corners.
 FLAT = 0.02
+# No element is smaller than this share of the thickness: below, round-off moves its corners.
+SMALLEST = 1e-6
 
 
 def corner_size(alpha: float, scale: float, eta: float) -> float:
@@ -35,7 +37,7 @@ def corner_size(alpha: float, scale: float, eta: float) -> float:
         return float(scale)
     # a slight corner carries a slight singularity: its energy goes with the square of the bend
     share = min(1.0, eta * max(1.0, (0.5 * np.pi / bend) ** 2))
-    return float(scale * share ** (alpha / (2.0 * np.pi)))
+    return float(scale * max(SMALLEST, share ** (alpha / (2.0 * np.pi))))
 
 
 def graded(length: float, first: float, last: float, largest: float, slope: float) -> Array:

@@ -20,7 +20,6 @@ from .grading import stretched
 from .outline import Outline
 from .partition import Cluster, Strip
 from .seams import Seam, owners, seams
-from .section import Wall
 
 Index = NDArray[np.int64]
 
@@ -103,12 +102,11 @@ def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
         When the mesh generator fails or a part is not covered by its triangles.
     """
     parts = solid.parts
-    walls = {w.name: w for w in solid.section.walls}
-    number_of = {w.name: i for i, w in enumerate(solid.section.walls)}
+    number_of = {name: i for i, name in enumerate(solid.moduli)}
     thickness = _least_thickness(solid)
 
     def differ(a: str, b: str) -> bool:
-        return moduli_of(walls[a]) != moduli_of(walls[b])
+        return solid.moduli[a] != solid.moduli[b]
 
     made = _Rows([], [], [], [], [])
     cut_vertices: dict[EndKey, Index] = {}
@@ -116,7 +114,7 @@ def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
     labels = [cluster_label(c) for c in parts.clusters] + [strip_label(w) for w in parts.strips]
     seams_of = [seams(c, solid.joints, differ) for c in parts.clusters]
     prepared = [
-        boundary_points(c, min(thickness[p] for p in c.points), density.finer(levels.get(label, 0)), lines)
+        boundary_points(c, _least_width(c, thickness), density.finer(levels.get(label, 0)), lines)
         for c, label, lines in zip(parts.clusters, labels, seams_of, strict=False)
     ]
     fillings = fill([p.region for p in prepared])
@@ -182,11 +180,6 @@ class _Rows:
         self.total += len(triangles)
 
 
-def moduli_of(wall: Wall) -> tuple[float, float]:
-    """e (with the share that carries direct stress) and g of a wall."""
-    return wall.e * wall.direct_share, wall.g
-
-
 def _least_thickness(solid: Outline) -> dict[str, float]:
     """Least thickness of the walls at each point [L]."""
     found: dict[str, float] = {}
@@ -194,6 +187,12 @@ def _least_thickness(solid: Outline) -> dict[str, float]:
         for p in (w.start, w.end):
             found[p] = min(found.get(p, np.inf), *w.thickness)
     return found
+
+
+def _least_width(cluster: Cluster, thickness: Mapping[str, float]) -> float:
+    """Least thickness of a cluster's walls, or least width of a solid without walls [L]."""
+    widths = [p.width for r in cluster.rings for p in r if p.width is not None]
+    return min([*(thickness[p] for p in cluster.points), *widths])
 
 
 def _seam_edges(lines: Sequence[tuple[int, ...]], of: Sequence[Seam]) -> dict[tuple[int, int], str]:
@@ -217,7 +216,7 @@ def _patch_density(strip: Strip, s: Array) -> Array:
 
 
 def cluster_label(cluster: Cluster) -> str:
-    return "joint " + " ".join(cluster.points)
+    return " ".join(("joint", *cluster.points) if cluster.points else cluster.walls)
 
 
 def strip_label(wall: str) -> str:
@@ -235,7 +234,7 @@ def _check_cover(cluster: Cluster, region: Region, filled: Filling) -> None:
     a, b, c = (filled.vertices[filled.triangles[:, i]] for i in range(3))
     found = 0.5 * ((b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0]).sum()
     if abs(found - wanted) > 1e-9 * abs(wanted):
-        raise SolveError(f"mesh of joint {' '.join(cluster.points)} covers {found:.6g} of {wanted:.6g}")
+        raise SolveError(f"mesh of {cluster_label(cluster)} covers {found:.6g} of {wanted:.6g}")
 
 
 def _shoelace(p: Array) -> float:
@@ -249,7 +248,8 @@ def _strip(
     """Columns of a strip: its mesh, its new vertices and its triangles."""
     band, (a, b) = strip.band, strip.span
     least = 2.0 * float(min(band.half(a), band.half(b)))
-    limit = density.turn / abs(band.curvature) if band.curvature else np.inf
+    radius = 1.0 / abs(band.curvature) if band.curvature else np.inf
+    limit = density.arc_step(radius, least) * radius if band.curvature else np.inf
     bounds = breaks(strip)
     rows = [
         low + (high - low) * stretched(high - low, density.first * least, density.ratio, limit)[:-1]

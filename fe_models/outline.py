@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -22,6 +22,8 @@ from .section import Section
 WALL_LIMIT = 2000
 # Overlaps smaller than this share of the squared thickness are round-off.
 OVERLAP = 1e-6
+# Slenderness taken where there are no walls to measure it on.
+STOUT = 4.0
 # Cosine of the angle between neighbours below which they may not overlap along a whole wall.
 SHARP = 0.75
 
@@ -55,6 +57,8 @@ class Outline:
         Larger overall dimension D [L].
     notes : tuple of str
         Bevels, steps and short walls, in words.
+    moduli : mapping of str to (float, float)
+        e (with the share that carries direct stress) and g of each wall, or of the solid without walls [-].
     """
 
     section: Section
@@ -64,6 +68,7 @@ class Outline:
     loops: tuple[Array, ...] = field(repr=False)
     extent: float
     notes: tuple[str, ...]
+    moduli: Mapping[str, tuple[float, float]]
 
     def moments(self, pole: Array) -> Moments:
         """Exact moments of the solid about a pole, from its boundary by Green's theorem."""
@@ -74,6 +79,11 @@ class Outline:
         for strip in self.parts.strips.values():
             total += _ring_moments(_strip_ring(strip.band, strip.span), pole)
         return Moments(float(total[0]), total[1:3], total[3:])
+
+    @property
+    def slenderness(self) -> float:
+        """Mean length over thickness of the walls; that of a stout wall for a solid without walls [-]."""
+        return float(np.mean([b.length / max(b.thickness) for b in self.bands.values()] or [STOUT]))
 
     @property
     def curved(self) -> bool:
@@ -110,7 +120,8 @@ def outline(section: Section) -> Outline:
             f"an outline of {len(found)} boundaries where the walls make {expected}",
         )
     extent = float(np.ptp(found[0], axis=0).max())
-    return Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts))
+    moduli = {w.name: (w.e * w.direct_share, w.g) for w in section.walls}
+    return Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts), moduli)
 
 
 def _notes(at: dict[str, Joint], parts: Partition) -> tuple[str, ...]:

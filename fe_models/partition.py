@@ -25,6 +25,8 @@ MARGIN = 1.0
 LEAST_STRIP = 0.5
 # Two ends of a cut are found again among the union's vertices within this share of the thickness.
 SNAP = 1e-6
+# Curved faces in a polygon union are taken in steps of this angle [rad].
+STEP = 0.01
 
 
 @dataclass(frozen=True)
@@ -139,7 +141,7 @@ def _is_simple(cluster: Cluster) -> bool:
 def solid(end: WallEnd, stop: float) -> Polygon:
     """The band of a wall from its point to distance ``stop``, as a polygon."""
     turn = abs(end.band.curvature) * stop
-    s = np.linspace(0.0, stop, 2 + int(turn / 0.05))
+    s = np.linspace(0.0, stop, 2 + int(turn / STEP))
     return Polygon(np.concatenate([end.side(s, -1.0), end.side(s[::-1], 1.0)]))
 
 

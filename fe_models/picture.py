@@ -44,7 +44,7 @@ def picture_mesh(fields: Fields, pole: Array) -> PictureMesh:
     nodes[space.nodes] = space.places + fields.inertia.centroid
     warping = np.zeros(space.count)
     warping[space.nodes] = warping_function(fields, pole)
-    triangles = space.nodes[:, _cells(space.element)].reshape(-1, 3)
+    triangles = space.nodes[:, cells_of(space.element)].reshape(-1, 3)
     inner = space.element.order - 1
     rows = [[a, *(3 + i * inner + np.arange(inner)), b] for i, (a, b) in enumerate(EDGES)]
     parts = np.array([[row[j], row[j + 1]] for row in rows for j in range(inner + 1)])
@@ -52,7 +52,7 @@ def picture_mesh(fields: Fields, pole: Array) -> PictureMesh:
     return PictureMesh(nodes, triangles, warping, pole, np.unique(edges, axis=0))
 
 
-def _cells(el: Element) -> Index:
+def cells_of(el: Element) -> Index:
     """Local nodes of the order^2 small triangles of an element."""
     p = el.order
     lattice = np.rint(el.nodes * p).astype(int)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Collection, Mapping
+from itertools import pairwise
 
 from .band import WallEnd
 from .boundary import EndKey, Piece, Ring
@@ -37,16 +38,16 @@ def rings(
             if end.key in cuts:
                 stop = cuts[end.key]
                 following = joint.chain_after(end)
-                ring.append(_face(end, -1.0, begin, stop))
+                ring += _face(end, -1.0, begin, stop)
                 ring.append(Piece("cut", end.side(stop, -1.0), end.side(stop, 1.0), cut=end.key))
-                ring.append(_face(end, 1.0, stop, following.reach[0]))
+                ring += _face(end, 1.0, stop, following.reach[0])
                 sound &= begin < stop and following.reach[0] < stop
                 here = (here[0], joint.position(following))
             else:
                 far = joints[end.band.start if end.reverse else end.band.end]
                 following = far.chain_after(end.opposite)
                 stop = end.band.length - following.reach[0]
-                ring.append(_face(end, -1.0, begin, stop))
+                ring += _face(end, -1.0, begin, stop)
                 sound &= begin < stop
                 here = (far.point, far.position(following))
         if ring:
@@ -54,8 +55,18 @@ def rings(
     return found, sound
 
 
-def _face(end: WallEnd, sign: float, begin: float, stop: float) -> Piece:
-    """The left or right face of a wall, seen from one end, from distance begin to stop."""
+def _face(end: WallEnd, sign: float, begin: float, stop: float) -> list[Piece]:
+    """The left or right face of a wall, seen from one end, from distance begin to stop.
+
+    Where the face of an arc is extended beyond the wall, its straight part is a piece of its own.
+    """
     side = -sign if end.reverse else sign
-    span = (end.along(begin), end.along(stop))
-    return Piece("face", end.side(begin, sign), end.side(stop, sign), end.band, side, span)
+    bounds = [begin, stop]
+    if not end.band.straight:
+        low, high = min(begin, stop), max(begin, stop)
+        inner = [s for s in (0.0, end.band.length) if low < s < high]
+        bounds = [begin, *(inner if begin < stop else inner[::-1]), stop]
+    return [
+        Piece("face", end.side(a, sign), end.side(b, sign), end.band, side, (end.along(a), end.along(b)))
+        for a, b in pairwise(bounds)
+    ]

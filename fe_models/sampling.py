@@ -10,6 +10,7 @@ from .band import Array
 from .element import gradients, values
 from .fields import Fields
 from .mesh import Index
+from .poisson import PoissonFlexure, anticlastic_strain
 
 
 @dataclass(frozen=True)
@@ -42,8 +43,10 @@ def function_values(fields: Fields, at: Samples, local: Array) -> Array:
     return np.einsum("ck,cqk->cq", local[at.elements], basis)
 
 
-def stresses(fields: Fields, at: Samples) -> tuple[Array, Array]:
+def stresses(fields: Fields, at: Samples, poisson: PoissonFlexure | None = None) -> tuple[Array, Array]:
     """Static and kinematic stress of unit Vx, unit Vy and unit T at the sampled points.
+
+    Flexure is that of nu = 0, or with Poisson's ratio where its fields are given.
 
     Returns
     -------
@@ -64,12 +67,15 @@ def stresses(fields: Fields, at: Samples) -> tuple[Array, Array]:
         return np.asarray(np.einsum("cqb,cqba->cqa", reference, inverse))
 
     static, kinematic = [], []
-    for axis, pair in enumerate((*fields.flexure, fields.torsion)):
+    flexure = fields.flexure if poisson is None else poisson.pairs
+    for axis, pair in enumerate((*flexure, fields.torsion)):
         phi, u = gradient(pair.function[e]), gradient(pair.potential[e])
         s = np.stack([phi[..., 1], -phi[..., 0]], axis=-1)
         if axis < 2:
             a_b = fields.inertia.slopes(1.0 - axis, float(axis))
             static.append(s - 0.5 * fields.moduli.e[e][:, None, None] * a_b * points**2)
+            if poisson is not None:
+                u = u + anticlastic_strain(points, a_b, poisson.nu)
             kinematic.append(g * u)
         else:
             static.append(s / twist)

@@ -17,13 +17,15 @@ from .faces import Actions, FaceStress, Peak, boundary_peaks, face_stress
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
-from .mesh import Mesh, StripMesh, mesh, moduli_of
+from .location import PointStress, point_stress
+from .mesh import Mesh, StripMesh, mesh
 from .outline import Outline, outline
 from .picture import PictureMesh, picture_mesh
 from .poisson import PoissonFlexure, poisson_flexure
 from .quantities import quantities
 from .recovery import FlowSamples, flow_samples
 from .section import Section
+from .solid import Solid, outline_of_solid
 from .space import space
 
 DEFAULT_ACCURACY = 1e-5
@@ -109,6 +111,20 @@ class Solution:
         """Largest shear stress on each joint's filleted and curved boundary, largest first."""
         return boundary_peaks(self.fields, actions)
 
+    def stress_at(self, places: ArrayLike, actions: Actions, *, with_nu: bool = False) -> PointStress:
+        """Shear stress of a load at places (n, 2) in the file's axes.
+
+        ``with_nu`` takes flexure with Poisson's ratio instead of nu = 0.
+
+        Raises
+        ------
+        ValueError
+            A place outside the section, or no Poisson's ratio.
+        """
+        if with_nu and self.poisson is None:
+            raise ValueError("the section has no Poisson's ratio")
+        return point_stress(self.fields, np.asarray(places), actions, self.poisson if with_nu else None)
+
     @property
     def shear_centre(self) -> Array:
         """(x_s, y_s) in the file's axes, (2,) [L]."""
@@ -146,12 +162,34 @@ def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progre
     ValueError
         An accuracy out of range.
     """
+    _check_accuracy(accuracy)
+    return _solution(outline(section), accuracy, progress)
+
+
+def solve_solid(
+    solid: Solid, accuracy: float = DEFAULT_ACCURACY, progress: Progress | None = None
+) -> Solution:
+    """Solve a solid given by its outline; parameters and errors as in ``solve``.
+
+    Notes
+    -----
+    Without walls there are no strips: no flows at probes; ``Solution.strips`` is empty.
+    """
+    _check_accuracy(accuracy)
+    return _solution(outline_of_solid(solid), accuracy, progress)
+
+
+def _check_accuracy(accuracy: float) -> None:
     low, high = ACCURACY_RANGE
     if not low <= accuracy <= high:
         raise ValueError(f"accuracy must be from {low:g} to {high:g}, got {accuracy:g}")
-    solid = outline(section)
+
+
+def _solution(solid: Outline, accuracy: float, progress: Progress | None) -> Solution:
+    """The refined answer for an outline, with its checks."""
+    section = solid.section
     solved, found, passes = _refinement(solid, accuracy, progress)
-    uniform = len({moduli_of(w) for w in section.walls}) == 1 and not section.booms
+    uniform = len(set(solid.moduli.values())) == 1 and not section.booms
     poisson = poisson_flexure(solved, section.nu) if section.nu is not None and uniform else None
     worst = _excess(found, solid.extent, accuracy)
     note = f"asked {accuracy:g}, reached {worst * accuracy:.1e}"
@@ -185,9 +223,9 @@ def _refinement(
     solid: Outline, accuracy: float, progress: Progress | None
 ) -> tuple[Fields, dict[str, Interval], int]:
     """Last fields, the intersection of all passes' intervals, and the number of passes."""
-    order, density = _start(solid, accuracy)
+    density = _start(solid, accuracy)
     levels: dict[str, float] = {}
-    solved = _fields(solid, density, levels, order)
+    solved = _fields(solid, density, levels)
     found = quantities(solved, solid)
     for passes in range(1, MOST_PASSES + 1):
         worst = _excess(found, solid.extent, accuracy)
@@ -197,7 +235,7 @@ def _refinement(
             break
         levels = _refined(solved, levels, worst)
         try:
-            solved = _fields(solid, density, levels, order)
+            solved = _fields(solid, density, levels)
         except SolveError:
             # a mesh that grew too fine to be made leaves the last good answer standing
             break
@@ -229,25 +267,29 @@ def _spans(solid: Outline, m: Mesh) -> dict[str, tuple[float, float] | None]:
     return made
 
 
-def _start(solid: Outline, accuracy: float) -> tuple[int, Density]:
-    """Order and density that usually reach an accuracy in one pass.
+def _start(solid: Outline, accuracy: float) -> Density:
+    """Density that usually reaches an accuracy in one pass.
 
     What corners and ends cost is compared with what the walls hold, so stout walls start finer.
     """
-    slenderness = float(np.mean([b.length / max(b.thickness) for b in solid.bands.values()]))
-    level = float(np.clip(0.5 * np.log2(STOUT / slenderness), 0.0, 1.5))
-    if accuracy >= 3e-6:
-        return 3, Density().finer(level)
-    return 4, Density(eta=1e-5, largest=0.5, slope=0.7, layers=2, first=0.5).finer(level)
+    level = float(np.clip(0.5 * np.log2(STOUT / solid.slenderness), 0.0, 1.5))
+    order = 4 if solid.curved or accuracy < 3e-6 else 3
+    if accuracy >= 1e-4:
+        start = Density(order, eta=1e-3, slope=1.5)
+    elif accuracy >= 3e-6:
+        start = Density(order)
+    else:
+        start = Density(order, eta=1e-5, largest=0.5, slope=0.7, layers=2, first=0.5)
+    return start.finer(level)
 
 
-def _fields(solid: Outline, density: Density, levels: Mapping[str, float], order: int) -> Fields:
+def _fields(solid: Outline, density: Density, levels: Mapping[str, float]) -> Fields:
     made = mesh(solid, density, levels)
-    own = np.array([moduli_of(w) for w in solid.section.walls])[made.owner]
+    own = np.array(list(solid.moduli.values()))[made.owner]
     moduli = Moduli(own[:, 1], own[:, 0] + made.boom)
     rough = made.vertices.mean(axis=0)
-    centroid = inertia(space(made, order, rough), moduli, rough).centroid
-    on = space(made, order, centroid)
+    centroid = inertia(space(made, density.order, rough), moduli, rough).centroid
+    on = space(made, density.order, centroid)
     return solve_fields(on, moduli, inertia(on, moduli, centroid))
 
 

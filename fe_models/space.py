@@ -99,10 +99,18 @@ class Space:
 
     def flux_load(self, field: Array) -> Array:
         """Integral of field . grad of each basis function: (e, q, 2) -> (N,)."""
+        local = self._flux(field)
+        return np.asarray(np.bincount(self.nodes.ravel(), local.ravel(), self.count), dtype=float)
+
+    def flux_scale(self, field: Array) -> float:
+        """Largest contribution of one element to ``flux_load``, before contributions cancel."""
+        return float(np.abs(self._flux(field)).max())
+
+    def _flux(self, field: Array) -> Array:
+        """Integral of field . grad of each basis function over each element: (e, q, 2) -> (e, k)."""
         weighted = np.einsum("eq,eqba,eqa->eqb", self.weights, self.inverse, field, optimize=True)
         k = self.element.nodes.shape[0]
-        local = weighted.reshape(len(weighted), -1) @ self.element.gradients.transpose(0, 2, 1).reshape(-1, k)
-        return np.asarray(np.bincount(self.nodes.ravel(), local.ravel(), self.count), dtype=float)
+        return weighted.reshape(len(weighted), -1) @ self.element.gradients.transpose(0, 2, 1).reshape(-1, k)
 
     def stiffness(self, weight: Array) -> Array:
         """Element matrices of the integral of weight grad u . grad v; weight (e,), result (e, k, k)."""

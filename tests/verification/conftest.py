@@ -1,0 +1,8 @@
+"""Makes plain_fe and the section builders of tests/fe importable for the tests of this folder."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+
+sys.path[:0] = [str(Path(__file__).parent), str(Path(__file__).parents[1] / "fe")]
