@@ -13,7 +13,7 @@ from crosscheck.result import Array, Drawing, LoadLine, PictureMesh, WallShape
 if TYPE_CHECKING:
     import beam_theory
     import fe_models
-    from crosscheck.flow_comparison import TheoryFlow
+    from crosscheck.levels import TheoryFlow
     from crosscheck.load_case import LoadCase
     from crosscheck.section_model import SectionFile
 

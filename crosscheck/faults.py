@@ -191,6 +191,11 @@ class FaultList:
         self.limit = limit
         self.left_out = 0
         self._faults: list[tuple[KeyPath, Fault]] = []
+        self._aliases: dict[KeyPath, str] = {}
+
+    def alias(self, path: KeyPath, text: str) -> None:
+        """Name an entry (two parts of a path) by where it really stands, such as a line of a table."""
+        self._aliases[path] = one_line(text, 200)
 
     def __len__(self) -> int:
         return len(self._faults)
@@ -221,8 +226,15 @@ class FaultList:
         if near is not None and (match := nearest(*near)) is not None:
             hint = f"did you mean {quoted(match)}?"
             remedy = f"{remedy}; {hint}" if remedy else hint
-        text = key_text(path) if key is None else one_line(key)
+        text = self._key(path) if key is None else one_line(key)
         self._faults.append((path, Fault(self.file, text, found, allowed, remedy)))
+
+    def _key(self, path: KeyPath) -> str:
+        """A key path as text, an alias in front of what follows it."""
+        alias = self._aliases.get(path[:2])
+        if alias is None:
+            return key_text(path)
+        return f"{alias}: {key_text(path[2:])}" if path[2:] else alias
 
     def raise_any(self, document: Any = None) -> None:
         """Raise SectionFaults with all faults in the order of the document's keys, if there are any."""

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from crosscheck.levels import TheoryFlow
 from crosscheck.load_case import LoadCase
 from crosscheck.midline import Midline
 from crosscheck.quantities import flow_unit
@@ -27,31 +28,31 @@ NO_FLOW_REASON = "no net flow on either side"
 
 @dataclass(frozen=True)
 class Probe:
-    """A place on a wall, as a fraction 0..1 of it; ``in_strip`` is False where FE reports no flow."""
+    """A place on a wall, as a fraction 0..1 of it; ``in_strip`` is False where FE reports no flow.
+
+    ``clear``: at least a thickness inside the strip, where what a joint does to stress at the faces has died
+    down.
+    """
 
     at: float
     label: str | None
     in_strip: bool
-
-
-@dataclass(frozen=True)
-class TheoryFlow:
-    """Theory's flow of one load, or the reason why there is none."""
-
-    flow: beam_theory.Flow | None
-    reason: str | None
+    clear: bool = True
 
 
 @dataclass(frozen=True)
 class LoadFlows:
     """Both sides' flows of one load.
 
-    ``difference`` is that of the worst probe over FE's peak; it is ``worst``'s, on wall ``worst_wall``.
+    ``worst`` is the probe, on wall ``worst_wall``, at which the judged level is farthest from FE. ``peaks``:
+    largest flow over the same probes at every level; ``reasons``: why a level has none.
     """
 
     case: LoadCase
+    judged: str
     walls: tuple[WallFlow, ...]
-    theory_peak: float | None
+    peaks: Mapping[str, float | None]
+    reasons: Mapping[str, str]
     fe_peak: FeValue
     worst: ProbeResult | None
     worst_wall: str | None
@@ -63,8 +64,12 @@ def probes_of_walls(
     flows: Iterable[TheoryFlow],
     strips: Mapping[str, tuple[float, float] | None],
     named: Mapping[str, Sequence[tuple[float, str | None]]],
+    slenderness: Mapping[str, float],
 ) -> dict[str, tuple[Probe, ...]]:
     """Probes of every wall: ends and quarter points of its strip, where theory's flows peak, and the user's.
+
+    Where the strip is long enough, places a thickness inside its ends too: the first ones clear of the
+    joints.
 
     Parameters
     ----------
@@ -74,6 +79,8 @@ def probes_of_walls(
         Part of each wall clear of its joints [-]; None where a wall has none.
     named : mapping of wall to sequence of (at, label)
         The user's probes [-].
+    slenderness : mapping of wall to float
+        Largest thickness over length [-].
 
     Returns
     -------
@@ -83,26 +90,36 @@ def probes_of_walls(
     solved = [entry.flow for entry in flows if entry.flow is not None]
     probes: dict[str, tuple[Probe, ...]] = {}
     for wall, strip in strips.items():
-        found = [
-            Probe(at, label, strip is not None and strip[0] <= at <= strip[1])
-            for at, label in named.get(wall, ())
-        ]
+        found = [_probe(at, label, strip, slenderness[wall]) for at, label in named.get(wall, ())]
         if strip is not None:
             low, high = strip
             places = [*(low + (high - low) * np.array((0.0, 0.25, 0.5, 0.75, 1.0)))]
+            if high - low > 2.0 * slenderness[wall]:
+                places += [low + slenderness[wall], high - slenderness[wall]]
             for flow in solved:
                 places += [at for at in np.asarray(flow.stationary(wall), dtype=float) if low < at < high]
             for at in places:
                 if all(abs(at - probe.at) > SAME_PLACE for probe in found):
-                    found.append(Probe(float(min(max(at, low), high)), None, True))
+                    found.append(_probe(float(min(max(at, low), high)), None, strip, slenderness[wall]))
         probes[wall] = tuple(sorted(found, key=lambda probe: probe.at))
     return probes
 
 
+def _probe(at: float, label: str | None, strip: tuple[float, float] | None, slenderness: float) -> Probe:
+    """A probe and where it lies in the strip of its wall."""
+    if strip is None:
+        return Probe(at, label, False, False)
+    low, high = strip
+    margin = min(slenderness, 0.5 * (high - low))
+    return Probe(at, label, low <= at <= high, low + margin - SAME_PLACE <= at <= high - margin + SAME_PLACE)
+
+
 def load_flows(
     case: LoadCase,
-    theory: TheoryFlow,
-    fe: fe_models.Solution,
+    theory: Mapping[str, TheoryFlow],
+    judged: str,
+    unit_flows: Mapping[str, Array],
+    strips: Mapping[str, tuple[float, float] | None],
     torque: FeValue,
     midlines: Mapping[str, Midline],
     probes: Mapping[str, Sequence[Probe]],
@@ -118,10 +135,14 @@ def load_flows(
     ----------
     case : LoadCase
         The load.
-    theory : TheoryFlow
+    theory : mapping of level to TheoryFlow
         Theory's flow of it.
-    fe : fe_models.Solution
-        Source of FE's unit flows.
+    judged : str
+        The level that verdicts judge.
+    unit_flows : mapping of wall to (2, 3, n)
+        FE's, from ``fe_unit_flows``.
+    strips : mapping of wall to (from, to) or None
+        Part of each wall clear of its joints [-].
     torque : FeValue
         Torque about FE's shear centre [F L].
     midlines : mapping of wall to Midline
@@ -142,51 +163,72 @@ def load_flows(
     for wall, midline in midlines.items():
         places = probes.get(wall, ())
         at = np.array([probe.at for probe in places])
-        q_theory = theory.flow.at(wall, at) if theory.flow is not None and at.size else None
-        q_fe, errors = _fe_flow(case, fe, torque, wall, places)
+        q_theory = {
+            level: found.flow.at(wall, at)
+            for level, found in theory.items()
+            if found.flow is not None and at.size
+        }
+        q_fe, errors = _fe_flow(case, unit_flows[wall], torque)
         xy = midline.places(at)
         raw[wall] = tuple(
             ProbeResult(
                 s=float(at[i] * midline.length),
                 x=float(xy[i, 0]),
                 y=float(xy[i, 1]),
-                theory=None if q_theory is None else float(q_theory[i]),
+                theory=float(q_theory[judged][i]) if judged in q_theory else None,
                 fe=None if np.isnan(q_fe[i]) else float(q_fe[i]),
                 fe_error=None if np.isnan(q_fe[i]) else float(errors[i]),
                 label=probe.label,
+                levels={level: float(q_theory[level][i]) if level in q_theory else None for level in theory},
             )
             for i, probe in enumerate(places)
         )
     shared = [(wall, probe) for wall, row in raw.items() for probe in row if probe.fe is not None]
     fe_peak = _peak_interval([probe for _, probe in shared])
     compared = [(wall, probe) for wall, probe in shared if probe.theory is not None]
-    theory_peak = max((abs(probe.theory or 0.0) for _, probe in compared), default=None)
-    reason = theory.reason or fe_peak.reason
-    if reason is None and theory_peak is not None and _is_no_flow(theory_peak, fe_peak, scale):
+    peaks = {level: _level_peak(level, [probe for _, probe in shared]) for level in theory}
+    own = peaks[judged]
+    reason = theory[judged].reason or fe_peak.reason
+    if reason is None and own is not None and _is_no_flow(own, fe_peak, scale):
         reason = NO_FLOW_REASON
     worst_wall, worst = max(compared, key=lambda pair: _gap(pair[1]), default=(None, None))
     unit = flow_unit(case.name if case.unit else "", *units)
     walls = tuple(_wall_flow(case, wall, unit, row, fe_peak, reason) for wall, row in raw.items())
-    own_peak = None if theory.flow is None else _own_peak(case, theory.flow, midlines, fe.strips)
-    return LoadFlows(case, walls, theory_peak, fe_peak, worst, worst_wall, own_peak, reason)
+    flow = theory[judged].flow
+    own_peak = None if flow is None else _own_peak(case, flow, midlines, strips)
+    reasons = {level: found.reason for level, found in theory.items() if found.reason is not None}
+    return LoadFlows(case, judged, walls, peaks, reasons, fe_peak, worst, worst_wall, own_peak, reason)
 
 
-def _fe_flow(
-    case: LoadCase, fe: fe_models.Solution, torque: FeValue, wall: str, places: Sequence[Probe]
-) -> tuple[Array, Array]:
+def _level_peak(level: str, probes: Sequence[ProbeResult]) -> float | None:
+    """Largest flow of one level over probes, in magnitude."""
+    values = (probe.levels.get(level) for probe in probes)
+    return max((abs(value) for value in values if value is not None), default=None)
+
+
+def fe_unit_flows(fe: fe_models.Solution, wall: str, probes: Sequence[Probe]) -> Array:
+    """FE's flows and errors of unit Vx, Vy and T at the probes of a wall, (2, 3, n); NaN outside its
+    strip."""
+    found = np.full((2, 3, len(probes)), np.nan)
+    inside = np.array([probe.in_strip for probe in probes], dtype=bool)
+    if inside.any():
+        samples = fe.flow_at(wall, np.array([probe.at for probe in probes if probe.in_strip]))
+        found[0][:, inside], found[1][:, inside] = samples.values, samples.errors
+    return found
+
+
+def _fe_flow(case: LoadCase, unit: Array, torque: FeValue) -> tuple[Array, Array]:
     """FE's flow (n,) and its error (n,) at the probes of a wall; NaN outside its strip."""
-    flow, error = np.full(len(places), np.nan), np.full(len(places), np.nan)
-    inside = np.array([probe.in_strip for probe in places], dtype=bool)
-    if torque.value is None or not inside.any():
-        return flow, error
-    samples = fe.flow_at(wall, np.array([probe.at for probe in places if probe.in_strip]))
+    if torque.value is None:
+        return np.full(unit.shape[2], np.nan), np.full(unit.shape[2], np.nan)
     combined = np.array((*case.shear, torque.value))
     used = combined != 0
-    flow[inside] = combined[used] @ samples.values[used]
-    error[inside] = np.abs(combined[used]) @ samples.errors[used]
+    nothing = np.where(np.isnan(unit[0, 0]), np.nan, 0.0)
+    flow = nothing + combined[used] @ unit[0][used]
+    error = nothing + np.abs(combined[used]) @ unit[1][used]
     half = torque.half_width
     if half:
-        error[inside] += half * np.abs(samples.values[2])
+        error = error + half * np.abs(unit[0][2])
     return flow, error
 
 
@@ -233,14 +275,13 @@ def _wall_flow(
     own = max(abs(probe.fe or 0.0) for probe in compared)
     normaliser = max(own, FLOOR * fe_peak.value)
     worst = max(compared, key=_gap)
-    return WallFlow(case.name, wall, unit, row, signed_gap(worst) / normaliser, normaliser)
+    gap = signed_gap(worst.theory or 0.0, worst.fe or 0.0)
+    return WallFlow(case.name, wall, unit, row, gap / normaliser, normaliser)
 
 
-def signed_gap(probe: ProbeResult) -> float:
-    """Theory minus FE at a probe, counted along FE's flow: positive where theory's flow is the larger."""
-    assert probe.theory is not None
-    assert probe.fe is not None
-    return (probe.theory - probe.fe) * (-1.0 if probe.fe < 0 else 1.0)
+def signed_gap(theory: float, fe: float) -> float:
+    """Theory minus FE, counted along FE's flow: positive where theory's flow is the larger."""
+    return (theory - fe) * (-1.0 if fe < 0 else 1.0)
 
 
 def _own_peak(
@@ -252,15 +293,19 @@ def _own_peak(
     """Theory's own largest flow, wherever it is, and whether FE has a counterpart there."""
     best: TheoryPeak | None = None
     for wall, midline in midlines.items():
-        at = np.concatenate(((0.0, 1.0), np.asarray(flow.stationary(wall), dtype=float)))
-        q = flow.at(wall, at)
-        i = int(np.argmax(np.abs(q)))
+        found = flow.peak(wall)
         # A hair larger does not count: of equal peaks the first wall's is listed, run after run.
-        if best is None or abs(q[i]) > abs(best.value) * (1 + 1e-9):
+        if best is None or abs(found.flow) > abs(best.value) * (1 + 1e-9):
             strip = strips.get(wall)
-            x, y = midline.places(at[i : i + 1])[0]
-            has_fe = strip is not None and strip[0] <= at[i] <= strip[1]
+            x, y = midline.places(np.array([found.at]))[0]
+            has_fe = strip is not None and strip[0] <= found.at <= strip[1]
             best = TheoryPeak(
-                case.name, wall, float(at[i] * midline.length), float(x), float(y), float(q[i]), bool(has_fe)
+                case.name,
+                wall,
+                float(found.at * midline.length),
+                float(x),
+                float(y),
+                float(found.flow),
+                has_fe,
             )
     return best

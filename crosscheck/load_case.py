@@ -11,7 +11,7 @@ from crosscheck.result import FeValue
 
 @dataclass(frozen=True)
 class LoadCase:
-    """Shear on a line of action and a couple.
+    """Shear on a line of action, a couple, and direct resultants at each side's own centroid.
 
     Attributes
     ----------
@@ -25,6 +25,12 @@ class LoadCase:
         Couple added to what the shear makes [F L], anticlockwise positive.
     unit : bool
         True for the three unit loads.
+    axial : float
+        N [F], tension positive.
+    moment : (float, float)
+        Mx, My [F L]; Mx > 0 puts +y in tension, My > 0 puts +x in tension.
+    bimoment : float
+        B [F L^2], tension where the warping function is positive.
     """
 
     name: str
@@ -32,6 +38,19 @@ class LoadCase:
     through: tuple[float, float] | None
     torque: float
     unit: bool = False
+    axial: float = 0.0
+    moment: tuple[float, float] = (0.0, 0.0)
+    bimoment: float = 0.0
+
+    @property
+    def has_shear(self) -> bool:
+        """Whether it has a shear or a couple, so that it makes shear stress."""
+        return self.shear != (0.0, 0.0) or self.torque != 0.0
+
+    @property
+    def has_direct(self) -> bool:
+        """Whether it makes direct stress."""
+        return self.axial != 0.0 or self.moment != (0.0, 0.0) or self.bimoment != 0.0
 
 
 UNIT_CASES: tuple[LoadCase, LoadCase, LoadCase] = (

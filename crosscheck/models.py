@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from collections import Counter
 
+import numpy as np
+
 import beam_theory
 import fe_models
 from crosscheck.load_case import LoadCase
@@ -11,6 +13,7 @@ from crosscheck.midline import Midline
 from crosscheck.section_model import (
     EVERY_BEND,
     MIDLINE_SHEAR_CENTRE,
+    BoomSpec,
     CornerSpec,
     LoadSpec,
     Material,
@@ -39,6 +42,12 @@ def shear_modulus(section: SectionFile) -> float | None:
     """G of the base material [F/L^2]; None where the file names no material: results are per unit modulus."""
     base = base_material(section)
     return None if base is None else base.G
+
+
+def young_modulus(section: SectionFile) -> float | None:
+    """E of the base material [F/L^2]; None where the file names no material."""
+    base = base_material(section)
+    return None if base is None else base.E
 
 
 def theory_section(section: SectionFile) -> beam_theory.Section:
@@ -144,16 +153,42 @@ def load_case(load: LoadSpec, theory_shear_centre: tuple[float, float] | None) -
     LoadCase
         With ``through`` None where the file names theory's shear centre and theory has none.
     """
-    through = load.through
-    if through == MIDLINE_SHEAR_CENTRE:
-        return LoadCase(load.name, load.shear, theory_shear_centre, load.torque)
+    through = theory_shear_centre if load.through == MIDLINE_SHEAR_CENTRE else load.through
     assert not isinstance(through, str)
-    return LoadCase(load.name, load.shear, through, load.torque)
+    return LoadCase(
+        load.name,
+        load.shear,
+        through,
+        load.torque,
+        axial=load.axial,
+        moment=load.moment,
+        bimoment=load.bimoment,
+    )
 
 
 def theory_load(case: LoadCase) -> beam_theory.Load:
     """A load as classical theory takes it."""
-    return beam_theory.Load(name=case.name, shear=case.shear, through=case.through, torque=case.torque)
+    return beam_theory.Load(
+        name=case.name,
+        shear=case.shear,
+        through=case.through,
+        torque=case.torque,
+        axial=case.axial,
+        moment=case.moment,
+        bimoment=case.bimoment,
+    )
+
+
+def boom_place(section: SectionFile, boom: BoomSpec) -> tuple[float, float]:
+    """Where a boom sits, on the midline [L]."""
+    if boom.point is not None:
+        return section.points[boom.point]
+    assert boom.wall is not None
+    assert boom.at is not None
+    wall = section.wall(boom.wall)
+    line = Midline(section.points[wall.start], section.points[wall.end], wall.arc_through)
+    x, y = line.places(np.array([boom.at]))[0]
+    return float(x), float(y)
 
 
 def midlines(section: SectionFile) -> dict[str, Midline]:

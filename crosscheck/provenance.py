@@ -5,12 +5,14 @@ from __future__ import annotations
 import importlib.metadata
 import platform
 from collections.abc import Mapping
+from functools import cache
 
 from crosscheck.result import Provenance
 
 PACKAGES: tuple[str, ...] = ("numpy", "scipy", "gmsh", "shapely", "matplotlib", "rich", "pydantic")
 
 
+@cache
 def installed_version(package: str) -> str:
     """Version of an installed distribution; ``not installed`` where there is none."""
     try:
@@ -19,7 +21,9 @@ def installed_version(package: str) -> str:
         return "not installed"
 
 
-def provenance(section_file: str, sha256: str, seconds: Mapping[str, float]) -> Provenance:
+def provenance(
+    section_file: str, sha256: str, seconds: Mapping[str, float], tables: Mapping[str, str] | None = None
+) -> Provenance:
     """Provenance of a run on this machine.
 
     Parameters
@@ -30,6 +34,8 @@ def provenance(section_file: str, sha256: str, seconds: Mapping[str, float]) -> 
         Hash of the file's bytes, hexadecimal.
     seconds : mapping of stage to seconds
         Wall-clock time of each stage [s].
+    tables : mapping of name to str
+        Hash of each table that the file names.
 
     Returns
     -------
@@ -42,4 +48,5 @@ def provenance(section_file: str, sha256: str, seconds: Mapping[str, float]) -> 
         packages={package: installed_version(package) for package in PACKAGES},
         python=platform.python_version(),
         seconds=dict(seconds),
+        tables=dict(tables or {}),
     )

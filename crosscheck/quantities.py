@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal
 
-Normaliser = Literal["value", "extent", "second moments", "angle", "warping", "load peak", "twist"]
+Normaliser = Literal["value", "extent", "second moments", "angle", "warping", "load peak", "twist", "surface"]
 Direction = Literal["right", "up"] | None
 Use = Literal["twist", "deflection", "stress"]
 
@@ -27,7 +27,7 @@ class QuantityKind:
     normaliser : str
         What the difference is divided by; see :mod:`crosscheck.verdicts`.
     stiffness_for : str or None
-        Use for which an understated value is conservative.
+        Use for which an understated value is conservative: a stiffness, or a modulus that stress is over.
     severity_for : str or None
         Use for which an overstated magnitude is conservative.
     axis : str or None
@@ -82,13 +82,42 @@ SECTION_QUANTITIES: tuple[QuantityKind, ...] = (
     QuantityKind("shear_area_y", "A_Vy", "shear area A_Vy", 2, stiffness_for="deflection"),
 )
 
+_SIDES = {
+    "x_top": ("W_x top", "modulus W_x, top"),
+    "x_bottom": ("W_x bottom", "modulus W_x, bottom"),
+    "y_right": ("W_y right", "modulus W_y, right"),
+    "y_left": ("W_y left", "modulus W_y, left"),
+    "u_plus": ("W_u +v", "modulus W_u, +v side"),
+    "u_minus": ("W_u -v", "modulus W_u, -v side"),
+    "v_plus": ("W_v +u", "modulus W_v, +u side"),
+    "v_minus": ("W_v -u", "modulus W_v, -u side"),
+}
+# Section moduli at the real faces: second moment over the farthest fibre, for bending about one axis alone.
+MODULI: tuple[QuantityKind, ...] = tuple(
+    QuantityKind(f"section_modulus_{side}", symbol, words, 3, stiffness_for="stress")
+    for side, (symbol, words) in _SIDES.items()
+)
+# T over the largest shear stress of a unit T at the faces, at the probes of both sides.
+TORSION_MODULUS = QuantityKind("torsion_modulus", "W_T", "torsion modulus", 3, stiffness_for="stress")
+
 LOAD_QUANTITIES: tuple[QuantityKind, ...] = (
     QuantityKind("peak_flow", "q_max", "peak flow", -1, 1, normaliser="load peak", severity_for="stress"),
     QuantityKind("flow_at_probes", "q", "probe flow", -1, 1, normaliser="load peak", severity_for="stress"),
     QuantityKind("rate_of_twist", "phi'", "rate of twist", -1, 0, normaliser="twist", severity_for="twist"),
+    QuantityKind(
+        "surface_shear", "tau_T", "surface shear", -2, 1, normaliser="surface", severity_for="stress"
+    ),
+    QuantityKind(
+        "direct_stress", "sigma", "direct stress", -2, 1, normaliser="load peak", severity_for="stress"
+    ),
+    QuantityKind(
+        "von_mises_stress", "sigma_v", "von Mises", -2, 1, normaliser="load peak", severity_for="stress"
+    ),
 )
 
-QUANTITIES: dict[str, QuantityKind] = {kind.name: kind for kind in (*SECTION_QUANTITIES, *LOAD_QUANTITIES)}
+QUANTITIES: dict[str, QuantityKind] = {
+    kind.name: kind for kind in (*SECTION_QUANTITIES, *MODULI, TORSION_MODULUS, *LOAD_QUANTITIES)
+}
 
 UNIT_LOADS: tuple[str, str, str] = ("unit Vx", "unit Vy", "unit T")
 
@@ -121,6 +150,15 @@ def unit_text(length_power: int, force_power: int, length: str, force: str) -> s
     if not below:
         return above or "1"
     return f"{above or '1'}/{below}" if " " not in below else f"{above or '1'}/({below})"
+
+
+def stress_unit(load: str, length: str, force: str) -> str:
+    """Unit of a stress: per unit force or torque for the unit loads, else force per area."""
+    if load == "unit T":
+        return unit_text(-3, 0, length, force)
+    if load in UNIT_LOADS:
+        return unit_text(-2, 0, length, force)
+    return unit_text(-2, 1, length, force)
 
 
 def flow_unit(load: str, length: str, force: str) -> str:

@@ -9,6 +9,8 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
+from crosscheck.load_results import BoomFibre, FilletPeak, ProbeEnvelope, WallEnvelope, WallStress
+
 Array = NDArray[np.float64]
 Verdict = Literal["within", "outside", "inconclusive"]
 Effect = Literal["conservative", "unconservative", "depends"]
@@ -38,7 +40,10 @@ class FeValue:
 
 @dataclass(frozen=True)
 class QuantityResult:
-    """One row of the comparison: both sides, difference, criterion, verdict, effect and factor."""
+    """One row of the comparison: both sides, difference, criterion, verdict, effect and factor.
+
+    ``theory`` and ``difference`` have every level; ``theory_reasons`` says why a level has none.
+    """
 
     name: str
     symbol: str
@@ -57,6 +62,7 @@ class QuantityResult:
     reason: str | None
     judged: str = "midline"
     note: str | None = None
+    theory_reasons: Mapping[str, str] = field(default_factory=dict)
 
     @property
     def criterion_used(self) -> float | None:
@@ -78,8 +84,24 @@ class QuantityResult:
 
 
 @dataclass(frozen=True)
+class PropertyRow:
+    """A number of the section that is shown and not judged: a stiffness or an indicator."""
+
+    name: str
+    symbol: str
+    words: str
+    unit: str
+    theory: Mapping[str, float | None]
+    fe: FeValue
+    theory_reasons: Mapping[str, str] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
 class ProbeResult:
-    """Shear flow of both sides at one place on a wall; ``s`` runs along the wall from its start [L]."""
+    """Shear flow of both sides at one place on a wall; ``s`` runs along the wall from its start [L].
+
+    ``theory`` is the judged level's, ``levels`` every level's.
+    """
 
     s: float
     x: float
@@ -88,6 +110,7 @@ class ProbeResult:
     fe: float | None
     fe_error: float | None
     label: str | None = None
+    levels: Mapping[str, float | None] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)
@@ -105,7 +128,10 @@ class WallFlow:
 
 @dataclass(frozen=True)
 class TheoryPeak:
-    """Theory's own largest flow of a load; ``has_fe`` is False in a joint, where FE has no counterpart."""
+    """Theory's own largest flow, direct stress or von Mises stress of a load, wherever it is (``kind``).
+
+    ``has_fe`` is False in a joint, where FE has no counterpart.
+    """
 
     load: str
     wall: str
@@ -114,6 +140,7 @@ class TheoryPeak:
     y: float
     value: float
     has_fe: bool
+    kind: str = "flow"
 
 
 @dataclass(frozen=True)
@@ -203,6 +230,11 @@ class LoadLine:
     through: tuple[float, float] | None
     torque: float
 
+    @property
+    def has_shear(self) -> bool:
+        """Whether it makes shear stress."""
+        return self.shear != (0.0, 0.0) or self.torque != 0.0
+
 
 @dataclass(frozen=True)
 class PictureMesh:
@@ -240,7 +272,11 @@ class Drawing:
 
 @dataclass(frozen=True)
 class Result:
-    """Everything one comparison found; ``drawing`` only where pictures were asked for."""
+    """Everything one comparison found; ``drawing`` only where pictures were asked for.
+
+    ``working``: the hand sheet of each load as Markdown, where asked for. ``theory_notes``: remarks of each
+    level of theory; ``section_notes``: those made on reading the file.
+    """
 
     title: str
     length_unit: str
@@ -252,7 +288,7 @@ class Result:
     theory_peaks: tuple[TheoryPeak, ...]
     stated: tuple[StatedJudgement, ...]
     causes: tuple[CauseStep, ...]
-    working: str | None
+    working: Mapping[str, str] | None
     mesh: MeshResult
     checks: tuple[CheckResult, ...]
     accuracy: float
@@ -261,6 +297,15 @@ class Result:
     outline_notes: tuple[str, ...]
     provenance: Provenance
     drawing: Drawing | None = None
+    stresses: tuple[WallStress, ...] = ()
+    boom_fibres: tuple[BoomFibre, ...] = ()
+    fillet_peaks: tuple[FilletPeak, ...] = ()
+    wall_envelopes: tuple[WallEnvelope, ...] = ()
+    probe_envelopes: tuple[ProbeEnvelope, ...] = ()
+    stiffness: tuple[PropertyRow, ...] = ()
+    indicators: tuple[PropertyRow, ...] = ()
+    theory_notes: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    section_notes: tuple[str, ...] = ()
 
     def require_drawing(self) -> Drawing:
         """The drawing; ValueError where the comparison was made without."""

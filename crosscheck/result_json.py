@@ -4,10 +4,11 @@ from __future__ import annotations
 
 import json
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import asdict
 from typing import Any
 
-from crosscheck.result import SCHEMA, QuantityResult, Result, WallFlow
+from crosscheck.result import SCHEMA, FeValue, PropertyRow, QuantityResult, Result, WallFlow
 
 SEVERAL_SCHEMA = "crosscheck.results/1"
 
@@ -36,6 +37,7 @@ def document(result: Result) -> dict[str, Any]:
         "flows": [_flow(flow) for flow in result.flows],
         "theory_peaks": [
             {
+                "kind": peak.kind,
                 "load": peak.load,
                 "wall": peak.wall,
                 "s": peak.s,
@@ -46,6 +48,15 @@ def document(result: Result) -> dict[str, Any]:
             }
             for peak in result.theory_peaks
         ],
+        "stresses": _records(result.stresses),
+        "boom_fibres": _records(result.boom_fibres),
+        "fillet_peaks": _records(result.fillet_peaks),
+        "envelope": {
+            "walls": _records(result.wall_envelopes),
+            "probes": _records(result.probe_envelopes),
+        },
+        "stiffness": [_property(row) for row in result.stiffness],
+        "indicators": [_property(row) for row in result.indicators],
         "stated": [
             {
                 "quantity": stated.quantity,
@@ -70,7 +81,7 @@ def document(result: Result) -> dict[str, Any]:
             }
             for cause in result.causes
         ],
-        "working": result.working,
+        "working": None if result.working is None else dict(result.working),
         "mesh": {
             "order": result.mesh.order,
             "unknowns": result.mesh.unknowns,
@@ -84,6 +95,8 @@ def document(result: Result) -> dict[str, Any]:
             "note": result.accuracy_note,
         },
         "outline_notes": list(result.outline_notes),
+        "theory_notes": {level: list(notes) for level, notes in result.theory_notes.items()},
+        "notes": list(result.section_notes),
         "checks": [
             {"name": check.name, "value": check.value, "allowed": check.allowed, "passed": check.passed}
             for check in result.checks
@@ -108,13 +121,8 @@ def _quantity(row: QuantityResult) -> dict[str, Any]:
         "unit": row.unit,
         "load": row.load,
         "theory": dict(row.theory),
-        "fe": {
-            "value": row.fe.value,
-            "low": row.fe.low,
-            "high": row.fe.high,
-            "basis": row.fe.basis,
-            "with_nu": row.fe.with_nu,
-        },
+        "theory_reasons": dict(row.theory_reasons),
+        "fe": _fe(row.fe),
         "difference": dict(row.difference),
         "normaliser": row.normaliser,
         "uncertainty": row.uncertainty,
@@ -126,6 +134,36 @@ def _quantity(row: QuantityResult) -> dict[str, Any]:
         "reason": row.reason,
         "note": row.note,
     }
+
+
+def _fe(value: FeValue) -> dict[str, Any]:
+    """FE's value and interval."""
+    return {
+        "value": value.value,
+        "low": value.low,
+        "high": value.high,
+        "basis": value.basis,
+        "with_nu": value.with_nu,
+    }
+
+
+def _property(row: PropertyRow) -> dict[str, Any]:
+    """A stiffness or an indicator."""
+    return {
+        "name": row.name,
+        "symbol": row.symbol,
+        "words": row.words,
+        "unit": row.unit,
+        "theory": dict(row.theory),
+        "theory_reasons": dict(row.theory_reasons),
+        "fe": _fe(row.fe),
+        "fe_reason": row.fe.reason if row.fe.value is None else None,
+    }
+
+
+def _records(entries: Iterable[Any]) -> list[dict[str, Any]]:
+    """Plain records, keys in the order of their fields."""
+    return [asdict(entry) for entry in entries]
 
 
 def _flow(flow: WallFlow) -> dict[str, Any]:
@@ -143,6 +181,7 @@ def _flow(flow: WallFlow) -> dict[str, Any]:
                 "x": probe.x,
                 "y": probe.y,
                 "theory": probe.theory,
+                "levels": dict(probe.levels),
                 "fe": probe.fe,
                 "fe_error": probe.fe_error,
                 "label": probe.label,
@@ -174,7 +213,7 @@ def _refuse_not_finite(content: Any, where: str) -> None:
     if isinstance(content, Mapping):
         for key, value in content.items():
             _refuse_not_finite(value, f"{where}.{key}")
-    elif isinstance(content, list):
+    elif isinstance(content, (list, tuple)):
         for i, value in enumerate(content):
             _refuse_not_finite(value, f"{where}[{i}]")
     elif isinstance(content, float) and not math.isfinite(content):

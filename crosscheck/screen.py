@@ -13,7 +13,10 @@ from crosscheck.faults import one_line
 from crosscheck.flow_comparison import NO_FLOW_REASON as NO_FLOW
 from crosscheck.quantities import QUANTITIES
 from crosscheck.result import FeValue, QuantityResult, Result, Verdict
+from crosscheck.screen_blocks import governing_lines, level_lines, levels_block, restrained_line, table_block
+from crosscheck.tables import ResultTable
 from crosscheck.wording import (
+    FEW_LOADS,
     SAFETY,
     SHARED_ASSUMPTIONS,
     STARRED,
@@ -23,14 +26,14 @@ from crosscheck.wording import (
     has_own_normaliser,
     name_of,
     number_text,
-    one_flow_row_a_load,
+    one_row_a_family,
     percent_text,
     verdict_sentence,
     worst_first,
 )
 
 WIDE = 120
-ROWS_SHOWN = 28
+ROWS_SHOWN = 22
 BAR = 8
 FE_WIDTH = 15
 STYLES: dict[Verdict | None, str] = {
@@ -42,7 +45,12 @@ STYLES: dict[Verdict | None, str] = {
 
 
 def first_screen(
-    result: Result, width: int = 80, *, unicode: bool = True, pictures: str | None = None
+    result: Result,
+    width: int = 80,
+    *,
+    unicode: bool = True,
+    pictures: str | None = None,
+    tables: Sequence[ResultTable] = (),
 ) -> RenderableType:
     """What the terminal shows of a result.
 
@@ -56,13 +64,15 @@ def first_screen(
         False where the stream has no block characters or plus-minus sign.
     pictures : str or None
         Where the pictures are.
+    tables : sequence of ResultTable
+        Shown below.
 
     Returns
     -------
     RenderableType
         For :meth:`rich.console.Console.print`.
     """
-    rows = one_flow_row_a_load(worst_first(result.quantities))
+    rows = one_row_a_family(worst_first(result.quantities))
     judged = [row for row in rows if row.verdict is not None]
     shown = judged[:ROWS_SHOWN] + [row for row in judged[ROWS_SHOWN:] if row.verdict != "within"]
     folded = [row for row in judged[ROWS_SHOWN:] if row.verdict == "within"]
@@ -74,9 +84,11 @@ def first_screen(
     if folded:
         parts.append(Text(_folded_line(folded), style="dim"))
     parts += _null_lines([row for row in rows if row.verdict is None])
+    levels = levels_block(result)
+    parts += [] if levels is None else [Text(), levels]
     parts.append(Text())
     parts += [Text(line, style=style) for line, style in _notes(result, rows, unicode, pictures)]
-    return Group(*parts)
+    return Group(*parts, *(table_block(table, width) for table in tables))
 
 
 def console_for(console: Console) -> tuple[int, bool]:
@@ -201,7 +213,7 @@ def _fe_text(row: QuantityResult, unicode: bool) -> str:
         half = math.degrees(half)
     mark = "~" if fe.basis == "estimate" else ("±" if unicode else "+-")
     error = f"{mark}{_error_text(half)}"
-    for digits in (5, 4, 3):
+    for digits in (5, 4, 3, 2):
         text = _value_text(row, fe.value, digits)
         if len(text) + 1 + len(error) <= FE_WIDTH:
             break
@@ -232,16 +244,17 @@ def _bar(row: QuantityResult, unicode: bool) -> Text:
     bar = full * cells + empty * (BAR - cells)
     if used > 1:
         bar = bar[:-1] + over
-    percent = f"{used * 100:.0f} %" if used < 10 else "> 999 %"
+    percent = f"{used * 100:.0f} %" if used < 10 else ">999 %"
     return Text(f"{bar} {percent}", style=STYLES[row.verdict])
 
 
 def _folded_line(folded: Sequence[QuantityResult]) -> str:
     """What was left out to keep the screen one screen."""
     used = percent_text(max((row.criterion_used or 0.0 for row in folded), default=0.0))
-    return (
-        f"and {len(folded)} more within, each using at most {used} of its criterion; all are in the "
-        "result file (--json, --out)"
+    return one_line(
+        f"and {len(folded)} more within, each using at most {used} of its criterion "
+        f"({', '.join(name_of(row) for row in folded)}): --table levels",
+        600,
     )
 
 
@@ -251,6 +264,11 @@ def _notes(
     """Lines under the table with their style."""
     yield from _factor_notes(rows)
     yield from _wall_note(result)
+    yield from ((line, "dim") for line in level_lines(result))
+    yield from ((line, "") for line in governing_lines(result))
+    loads = {row.load for row in result.quantities if row.name == "von_mises_stress"}
+    if len(loads) > FEW_LOADS:
+        yield f"{len(loads)} loads: each quantity is shown for its worst load; all are in the result.", ""
     for stated in result.stated:
         line = f"Stated {stated.quantity} {number_text(stated.value)} ({stated.source}): {stated.verdict}"
         yield one_line(line, 300), ""
@@ -261,6 +279,8 @@ def _notes(
         yield UNDECIDED, "yellow"
     if not result.accuracy_met:
         yield one_line(f"Accuracy {result.accuracy:g} was not reached: {result.accuracy_note}", 300), "yellow"
+    for note in result.section_notes:
+        yield one_line(f"Section file: {note}", 300), ""
     for note in result.outline_notes:
         yield one_line(f"Outline: {note}", 300), ""
     failed = [check for check in result.checks if not check.passed]
@@ -282,6 +302,9 @@ def _notes(
         f"{seconds:.2f} s.",
         "dim",
     )
+    restrained = restrained_line(result)
+    if restrained is not None:
+        yield restrained, "dim"
     yield (f"Pictures and result: {pictures}" if pictures else "Pictures: add --out FOLDER."), ""
     yield f"{SHARED_ASSUMPTIONS} {SAFETY}", "dim"
 

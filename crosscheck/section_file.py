@@ -90,11 +90,12 @@ def section_from(
     from crosscheck.section_forms import well_formed
     from crosscheck.section_loads import AttachmentReader
     from crosscheck.section_numbers import Numbers
+    from crosscheck.section_tables import with_tables
     from crosscheck.section_walls import WallReader, read_materials, read_points
 
-    given = source.document
     faults = FaultList(source.path)
     notes: list[str] = []
+    given = with_tables(source, faults, notes)
     document = well_formed(given, faults)
     units = _units(document, faults)
     numbers = Numbers(faults, document.get("parameters", {}), overrides, _names(given, "parameters"))
@@ -135,6 +136,7 @@ def section_from(
         stated=stated,
         criteria=criteria,
         notes=tuple(notes),
+        tables={table.name: table.sha256 for table in source.tables.values()},
     )
 
 

@@ -27,6 +27,7 @@ _TABLES: Mapping[str, type[BaseModel]] = {
     "probes": schema.ProbeTable,
     "stated": schema.StatedTable,
     "mirror": schema.MirrorTable,
+    "tables": schema.TablesTable,
 }
 _UNITS_TEXT = ", ".join(quoted(name) for name in UNIT_SYSTEMS)
 # What is asked for where the key alone says more than the kind of value.

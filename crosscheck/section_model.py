@@ -149,6 +149,7 @@ class SectionFile:
     walls, booms, corners, loads, cuts, probes, stated : in file order
     criteria : largest accepted difference [-] by quantity name, as given in the file
     notes : remarks that are no faults, one sentence each
+    tables : digest of each table beside the file, by the name the file gives it
     """
 
     path: str
@@ -171,6 +172,7 @@ class SectionFile:
     stated: tuple[StatedSpec, ...] = ()
     criteria: Mapping[str, float] = field(default_factory=dict)
     notes: tuple[str, ...] = ()
+    tables: Mapping[str, str] = field(default_factory=dict)
 
     def wall(self, name: str) -> WallSpec:
         """The wall of that name.

@@ -233,6 +233,13 @@ class MirrorTable(_Table):
     about: Annotated[Any, PlainValidator(_choice("x", "y", "xy")), _choice_schema("x", "y", "xy")]
 
 
+class TablesTable(_Table):
+    """CSV files in the folder of the section file, hashed into the result."""
+
+    loads: Text = Field(default=_ABSENT, description="more load cases, one a row")
+    points: Text = Field(default=_ABSENT, description="more points, one a row")
+
+
 class SectionDocument(_Table):
     """A whole section file."""
 
@@ -261,7 +268,7 @@ class SectionDocument(_Table):
     stated: list[StatedTable] = Field(default_factory=list)
     criteria: dict[str, Number] = Field(default_factory=dict, description="largest accepted difference [-]")
     mirror: MirrorTable = Field(default=_ABSENT)
-    tables: dict[str, Text] = Field(default_factory=dict, description="CSV files beside this one")
+    tables: TablesTable = Field(default=_ABSENT, description="CSV files beside this one")
     tolerances: dict[str, Number] = Field(default_factory=dict, description="for the uncertainty budget")
     allowables: dict[str, Any] = Field(default_factory=dict, description="for margins")
     document: dict[str, Any] = Field(default_factory=dict, description="front matter of the dossier")

@@ -7,10 +7,12 @@ import os
 import re
 import stat
 import tomllib
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
 from typing import Any
 
-from crosscheck.faults import FaultList, quoted
+from crosscheck.faults import FaultList, SectionFaults, quoted
 from crosscheck.section_keys import FILE_LIMIT, KEY_PARTS_LIMIT
 
 # One match per token from every position, unterminated strings included: the scan is linear.
@@ -29,12 +31,27 @@ _PLACE = re.compile(
 
 
 @dataclass(frozen=True)
+class TableSource:
+    """A table beside a section file: name as given there, digest of its bytes, text.
+
+    ``fault``: found, allowed and remedy where it cannot be read.
+    """
+
+    name: str
+    sha256: str = ""
+    text: str = ""
+    fault: tuple[str, str, str] | None = None
+
+
+@dataclass(frozen=True)
 class SectionSource:
-    """A section file as it stands on disk: name as given, digest of its bytes, parsed document."""
+    """A section file as it stands on disk: name as given, digest of its bytes, parsed document, its
+    tables."""
 
     path: str
     sha256: str
     document: dict[str, Any]
+    tables: Mapping[str, TableSource] = field(default_factory=dict)
 
 
 def read_source(path: str | os.PathLike[str]) -> SectionSource:
@@ -57,10 +74,36 @@ def read_source(path: str | os.PathLike[str]) -> SectionSource:
     content = _content(name, faults)
     text = _text(content, faults)
     _check_key_lengths(text, faults)
-    return SectionSource(name, hashlib.sha256(content).hexdigest(), _document(text, faults))
+    document = _document(text, faults)
+    return SectionSource(name, hashlib.sha256(content).hexdigest(), document, _tables(name, document))
 
 
-def _content(name: str, faults: FaultList) -> bytes:
+def _tables(section_file: str, document: dict[str, Any]) -> dict[str, TableSource]:
+    """The tables that a document names, read; what is no name of a file is left to the schema."""
+    named = document.get("tables")
+    names = named.items() if isinstance(named, dict) else ()
+    return {key: _table(Path(section_file).parent, name) for key, name in names if isinstance(name, str)}
+
+
+def _table(folder: Path, name: str) -> TableSource:
+    """One table from the section file's own folder."""
+    allowed = "a file in the folder of the section file"
+    faults = FaultList(name)
+    try:
+        inside = (folder / name).resolve().is_relative_to(folder.resolve())
+        if not name.isprintable() or not inside or Path(name).is_absolute():
+            return TableSource(name, fault=(quoted(name), allowed, "name it from there, as in loads.csv"))
+        content = _content(str(folder / name), faults, allowed)
+        text = _text(content, faults, "a first line with the names of the columns")
+    except SectionFaults as error:
+        (first, *_) = error.faults
+        return TableSource(name, fault=(f"{quoted(name)}: {first.found}", first.allowed, first.remedy))
+    except (OSError, ValueError, RuntimeError) as error:
+        return TableSource(name, fault=(f"{quoted(name)}: {error}", allowed, ""))
+    return TableSource(name, hashlib.sha256(content).hexdigest(), text)
+
+
+def _content(name: str, faults: FaultList, allowed: str = "a section file") -> bytes:
     """Bytes of a plain file of bounded size."""
     found, remedy = "", ""
     content = b""
@@ -83,7 +126,7 @@ def _content(name: str, faults: FaultList) -> bytes:
     except (OSError, ValueError) as error:
         found = f"a file that cannot be read ({getattr(error, 'strerror', None) or error})"
     if found:
-        faults.add((), found, "a section file", remedy)
+        faults.add((), found, allowed, remedy)
     elif len(content) > FILE_LIMIT:
         faults.add((), "a larger file", f"at most {FILE_LIMIT / 1e6:g} MB")
     elif b"\0" in content:
@@ -92,7 +135,7 @@ def _content(name: str, faults: FaultList) -> bytes:
     return content
 
 
-def _text(content: bytes, faults: FaultList) -> str:
+def _text(content: bytes, faults: FaultList, start: str = 'units = "mm N", [points] and [[walls]]') -> str:
     """The text, without a byte order mark and with plain line ends."""
     try:
         text = content.decode("utf-8-sig")
@@ -102,7 +145,7 @@ def _text(content: bytes, faults: FaultList) -> str:
         faults.raise_any()
         raise  # unreachable: the fault was raised
     if not text.strip():
-        faults.add((), "an empty file", "a section file", 'start with units = "mm N", [points] and [[walls]]')
+        faults.add((), "an empty file", "a section file", f"start with {start}")
         faults.raise_any()
     return text.replace("\r\n", "\n")
 

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Collection, Mapping, Sequence
+from collections.abc import Collection, Mapping, MutableMapping, Sequence
+from dataclasses import dataclass
 from itertools import pairwise
 from typing import Any
 
 from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
-from crosscheck.section_keys import MIXED_MATERIALS, NOT_BUILT, WALL_LIMIT
+from crosscheck.section_keys import WALL_LIMIT
 from crosscheck.section_model import (
     EVERY_BEND,
     MIDLINE_SHEAR_CENTRE,
@@ -18,6 +19,7 @@ from crosscheck.section_model import (
     arc_angle,
 )
 from crosscheck.section_numbers import POISSON, POSITIVE, SHARE, Numbers
+from crosscheck.section_smooth import FoldedPath, smooth_spans
 
 UNKNOWN = math.nan  # stands for a thickness or coordinate whose fault is noted already
 
@@ -87,13 +89,27 @@ def read_points(document: Mapping[str, Any], numbers: Numbers) -> dict[str, Plac
     return points
 
 
+@dataclass(frozen=True)
+class _Stretch:
+    """One wall of a path: its number within the path from 0, its ends, and a third place on its arc.
+
+    ``part``: 1 or 2 for the arcs of a span that a smooth path makes of two, else 0.
+    """
+
+    span: int
+    part: int
+    start: str
+    end: str
+    arc: Place | None
+
+
 class WallReader:
     """Takes the wall tables of a document apart into walls between two points.
 
     Parameters
     ----------
     numbers : resolves numbers and takes faults
-    points : places of points that are without fault
+    points : places of points that are without fault; receives those where the arcs of smooth paths meet
     declared_points, declared_materials : all names in the file, faulty ones too
     base_material : material of a wall that names none
     """
@@ -101,7 +117,7 @@ class WallReader:
     def __init__(
         self,
         numbers: Numbers,
-        points: Mapping[str, Place],
+        points: MutableMapping[str, Place],
         declared_points: Collection[str],
         declared_materials: Collection[str],
         base_material: str | None,
@@ -154,21 +170,23 @@ class WallReader:
         if points is None or not self._path_holds((*path, "path"), points):
             self.complete = False
             return []
-        arc = self._arc((*path, "arc"), entry, points)
-        thicknesses = self._thicknesses((*path, "thickness"), entry.get("thickness"), points, arc)
+        stretches = self._stretches(path, entry, points)
+        thicknesses = self._thicknesses((*path, "thickness"), entry.get("thickness"), stretches)
         material = self._material((*path, "material"), entry.get("material"))
         share = self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
         name = entry.get("name")
         several = len(points) > 2
         walls = []
-        for number, (start, end) in enumerate(pairwise(points)):
-            own = f"{start}-{end}" if name is None else f"{name} {number + 1}" if several else name
+        for stretch, thickness in zip(stretches, thicknesses, strict=True):
+            own = f"{points[stretch.span]}-{points[stretch.span + 1]}"
+            if name is not None:
+                own = f"{name} {stretch.span + 1}" if several else name
             wall = WallSpec(
-                name=own,
-                start=start,
-                end=end,
-                thickness=thicknesses[number],
-                arc_through=arc,
+                name=f"{own}.{stretch.part}" if stretch.part else own,
+                start=stretch.start,
+                end=stretch.end,
+                thickness=thickness,
+                arc_through=stretch.arc,
                 material=material,
                 direct_share=UNKNOWN if share is None else share,
                 seen_by=entry.get("seen_by", "both"),
@@ -176,6 +194,46 @@ class WallReader:
             )
             walls.append(wall)
         return walls
+
+    def _stretches(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> list[_Stretch]:
+        """Walls of a path: straight, one arc, or the arcs of a smooth path with the places where they
+        meet."""
+        arc = self._arc((*path, "arc"), entry, points)
+        plain = [_Stretch(i, 0, start, end, arc) for i, (start, end) in enumerate(pairwise(points))]
+        if not entry.get("smooth", False):
+            return plain
+        if len(points) < 3 or "arc" in entry:
+            found = "an arc" if "arc" in entry else "a path of two points"
+            words = "given with a path of at least three points, without arc"
+            self.faults.add((*path, "smooth"), found, words)
+            return plain
+        places = [self.points[name] for name in points if name in self.points]
+        if len(places) < len(points) or any(a == b for a, b in pairwise(places)):
+            return plain  # noted as faults of the points
+        try:
+            spans = smooth_spans(places)
+        except FoldedPath as folded:
+            words = "a path that turns less, or more points round the turn"
+            self.faults.add((*path, "path", folded.index), quoted(points[folded.index]), words)
+            return plain
+        made: list[_Stretch] = []
+        for i, ((start, end), arcs) in enumerate(zip(pairwise(points), spans, strict=True)):
+            if len(arcs) == 1:
+                made.append(_Stretch(i, 0, start, end, arcs[0].through))
+                continue
+            between = self._free_point(f"{start}~{end}")
+            self.points[between] = arcs[0].end
+            made += [
+                _Stretch(i, 1, start, between, arcs[0].through),
+                _Stretch(i, 2, between, end, arcs[1].through),
+            ]
+        return made
+
+    def _free_point(self, name: str) -> str:
+        """A name for a point between two arcs that no other point has."""
+        while name in self.points or name in self.declared_points:
+            name += "~"
+        return name
 
     def _path_holds(self, path: KeyPath, points: Sequence[str]) -> bool:
         """False when a path has a fault after which its walls mean nothing."""
@@ -198,13 +256,6 @@ class WallReader:
         if name not in self.declared_materials:
             words = "a material of [materials]"
             self.faults.add(path, quoted(name), words, near=(name, self.declared_materials))
-        elif name != self.base_material and MIXED_MATERIALS in NOT_BUILT:
-            self.faults.add(
-                path,
-                quoted(name),
-                f"the base material {quoted(str(self.base_material))}",
-                f"walls of different material are not supported yet: {NOT_BUILT[MIXED_MATERIALS]}",
-            )
         return name
 
     def _arc(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> Place | None:
@@ -228,37 +279,35 @@ class WallReader:
         return through
 
     def _thicknesses(
-        self, path: KeyPath, raw: Any, points: Sequence[str], arc: Place | None
+        self, path: KeyPath, raw: Any, stretches: Sequence[_Stretch]
     ) -> list[tuple[float, float]]:
         """Thickness at start and end of every wall of a path [L]; NaN where it is faulty."""
-        count = len(points) - 1
+        count = stretches[-1].span + 1
         if isinstance(raw, list):
             if len(raw) != count:
                 words = f"one value, or a list of {count}, one per wall of the path"
                 self.faults.add(path, f"a list of {len(raw)}", words)
-                return [(UNKNOWN, UNKNOWN)] * count
+                return [(UNKNOWN, UNKNOWN)] * len(stretches)
             values = [self._thickness((*path, i), entry) for i, entry in enumerate(raw)]
-            return [(value, value) for value in values]
+            return [(values[each.span], values[each.span]) for each in stretches]
         if isinstance(raw, dict):
             first = self._thickness((*path, "from"), raw.get("from"))
             last = self._thickness((*path, "to"), raw.get("to"))
-            return self._taper(first, last, points, arc)
+            return self._taper(first, last, stretches)
         value = self._thickness(path, raw)
-        return [(value, value)] * count
+        return [(value, value)] * len(stretches)
 
     def _thickness(self, path: KeyPath, raw: Any) -> float:
         value = self.numbers.number(path, raw, POSITIVE)
         return UNKNOWN if value is None else value
 
-    def _taper(
-        self, first: float, last: float, points: Sequence[str], arc: Place | None
-    ) -> list[tuple[float, float]]:
+    def _taper(self, first: float, last: float, stretches: Sequence[_Stretch]) -> list[tuple[float, float]]:
         """Thickness that is linear by length over a whole path, per wall [L]."""
-        if any(point not in self.points for point in points):
-            return [(UNKNOWN, UNKNOWN)] * (len(points) - 1)
+        if any(point not in self.points for each in stretches for point in (each.start, each.end)):
+            return [(UNKNOWN, UNKNOWN)] * len(stretches)
         along = [0.0]
-        for start, end in pairwise(points):
-            along.append(along[-1] + _length(self.points[start], self.points[end], arc))
+        for each in stretches:
+            along.append(along[-1] + _length(self.points[each.start], self.points[each.end], each.arc))
         whole = along[-1] or 1.0
         values = [first + (last - first) * distance / whole for distance in along]
         return list(pairwise(values))

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable
 
-from crosscheck.quantities import QUANTITIES
+from crosscheck.quantities import QUANTITIES, UNIT_LOADS
 from crosscheck.result import QuantityResult, Result
 from crosscheck.verdicts import ROUND_OFF
 
@@ -19,8 +19,11 @@ SHARED_ASSUMPTIONS = (
 )
 STARRED = (
     "* per cent of something larger than the FE value: flows, of FE's peak for the load; Ixy, of "
-    "sqrt(Ixx Iyy); I_w, of J D^2 where warping hardly matters; twist, of what 5 % of V D would make."
+    "sqrt(Ixx Iyy); I_w, of J D^2 where warping hardly matters; twist and surface shear, of what 5 % of "
+    "V D would make."
 )
+# Up to this many loads each has its own rows on screen.
+FEW_LOADS = 4
 IN_ERROR = "in FE error"
 UNDECIDED = "inconclusive: the FE error is too large to tell; ask for a finer --accuracy"
 
@@ -58,14 +61,30 @@ def name_of(row: QuantityResult) -> str:
     return words if row.load is None else f"{words}, {row.load}"
 
 
-def one_flow_row_a_load(rows: Iterable[QuantityResult]) -> list[QuantityResult]:
-    """Rows in their order, without the better of each load's two flow rows (peak, worst probe)."""
+def family_of(row: QuantityResult, *, by_load: bool) -> tuple[str, str | None]:
+    """Rows of one family are told by their worst: flows of a load, its stresses, section moduli, torsion's.
+
+    ``by_load`` False: the file's loads are one family too.
+    """
+    kinds = {"peak_flow": "flow", "flow_at_probes": "flow"}
+    kinds |= dict.fromkeys(("direct_stress", "von_mises_stress", "surface_shear"), "stress")
+    if row.name == "torsion_modulus" or (row.name == "surface_shear" and row.load == "unit T"):
+        return "torsion modulus", None
+    kind = "modulus" if row.name.startswith("section_modulus") else kinds.get(row.name, row.name)
+    if row.load is None or row.load in UNIT_LOADS or by_load:
+        return kind, row.load
+    return kind, "any load"
+
+
+def one_row_a_family(rows: Iterable[QuantityResult]) -> list[QuantityResult]:
+    """Rows in their order, of each family the worst only; with many loads, of all loads the worst only."""
     rows = list(rows)
-    flows = [row for row in rows if row.name in ("peak_flow", "flow_at_probes")]
-    worse: dict[str | None, QuantityResult] = {}
-    for row in worst_first(flows):
-        worse.setdefault(row.load, row)
-    return [row for row in rows if row not in flows or row is worse[row.load]]
+    loads = {row.load for row in rows if row.load is not None and row.load not in UNIT_LOADS}
+    by_load = len(loads) <= FEW_LOADS
+    worst: dict[tuple[str, str | None], QuantityResult] = {}
+    for row in worst_first(rows):
+        worst.setdefault(family_of(row, by_load=by_load), row)
+    return [row for row in rows if row is worst[family_of(row, by_load=by_load)]]
 
 
 def difference_text(row: QuantityResult, length_unit: str) -> str:
@@ -118,6 +137,7 @@ def full_difference_text(row: QuantityResult, length_unit: str) -> str:
         "second moments": "of sqrt(Ixx Iyy)",
         "load peak": "of FE's peak",
         "twist": "of what 5 % of V D would make",
+        "surface": "of what 5 % of V D would make",
     }
     return f"{text.removesuffix('*')} ({of.get(QUANTITIES[row.name].normaliser, 'of the normaliser')})"
 
@@ -159,7 +179,7 @@ def verdict_sentence(result: Result) -> str:
         Such as ``Hand methods hold for 7 of 8 quantities; not for the torsion constant: 2.1 % high,
         unconservative for twist.``
     """
-    rows = one_flow_row_a_load(worst_first(result.quantities))
+    rows = one_row_a_family(worst_first(result.quantities))
     judged = [row for row in rows if row.verdict is not None]
     held = [row for row in judged if row.verdict == "within"]
     outside = [row for row in judged if row.verdict == "outside"]

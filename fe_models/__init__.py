@@ -12,7 +12,7 @@ from .picture import PictureMesh
 from .poisson import PoissonFlexure
 from .recovery import FlowSamples
 from .section import Boom, Rounding, Section, Wall
-from .solid import ClosedLine, Solid
+from .solid import ClosedLine, Place, Solid, outline_of_solid
 from .solution import (
     ACCURACY_RANGE,
     DEFAULT_ACCURACY,
@@ -42,6 +42,7 @@ __all__ = [
     "OutlineError",
     "Peak",
     "PictureMesh",
+    "Place",
     "PointStress",
     "PoissonFlexure",
     "Rounding",
@@ -53,6 +54,7 @@ __all__ = [
     "circle_edges",
     "closed_lines",
     "fitted_edges",
+    "outline_of_solid",
     "rings_of_mesh",
     "rings_of_step",
     "solve",

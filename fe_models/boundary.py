@@ -131,6 +131,8 @@ def polyline(ring: Ring, step: float = 0.05) -> Array:
     """Vertices of a ring without repetition, shape (n, 2); curved pieces in steps of at most ``step`` rad."""
     points = []
     for piece in ring:
-        count = max(1, int(np.ceil(piece.turn / step)))
+        # two pieces make a ring only where an arc shows its rise
+        least = 2 if len(ring) == 2 and not piece.straight else 1
+        count = max(least, int(np.ceil(piece.turn / step)))
         points.append(piece.at(np.arange(count) / count))
     return np.concatenate(points)

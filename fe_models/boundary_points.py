@@ -99,7 +99,7 @@ def _fractions(piece: Piece, first: float, last: float, scale: float, density: D
         return np.linspace(0.0, 1.0, density.layers + 1)
     u = graded(piece.length, first, last, _longest(piece, scale, density), density.slope)
     least = int(np.ceil(piece.turn / density.arc_step(piece.radius, _thickness(piece, scale))))
-    if piece.arc is not None:
+    if piece.arc is not None and piece.width is None:
         # an even number, so that a seam can end in the middle
         least = 2 * int(np.ceil(max(least, len(u) - 1) / 2))
     if len(u) - 1 < least:

@@ -64,7 +64,9 @@ def self_checks(fields: Fields, solid: Outline, found: Mapping[str, Interval]) -
                 1e-6,
             )
         )
-    crossed = [n for n, q in found.items() if q.low is not None and q.high is not None and q.low > q.high]
+    crossed = [
+        n for n, q in found.items() if q.low is not None and q.high is not None and not q.low <= q.high
+    ]
     made.append(check("intervals with low above high", float(len(crossed)), 0.0))
     made.append(_two_centres(fields, solid, found))
     return tuple(made)

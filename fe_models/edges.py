@@ -17,6 +17,8 @@ from .solid import ClosedLine, Place
 
 # Arcs into which one curve is cut at most, and places at which each is compared with its curve.
 MOST_ARCS = 4096
+# Gaps below this share of the coordinates are none.
+ROUND_OFF = 1e-12
 PLACES = np.array([0.1, 0.25, 0.4, 0.6, 0.75, 0.9])
 
 
@@ -31,7 +33,7 @@ class Edge:
 
 @dataclass(frozen=True)
 class Chained:
-    """Closed lines, and how many edges were left out as shorter than the gap or drawn twice."""
+    """Closed lines, edges left out as shorter than the gap or drawn twice, and the widest gap [L]."""
 
     lines: tuple[ClosedLine, ...]
     short: int
@@ -145,6 +147,7 @@ def closed_lines(edges: Sequence[Edge], gap: float) -> Chained:
             raise OutlineError("branch", (), f"{len(meeting)} edges at ({x:.6g}, {y:.6g})")
     lines = _walk(edges, chosen, number, at, places)
     widest = float(2.0 * np.hypot(*(ends - places[point]).T).max())
+    widest = widest if widest > ROUND_OFF * float(np.abs(ends).max()) else 0.0
     return Chained(tuple(lines), sum(loose), len(edges) - sum(loose) - len(chosen), widest)
 
 

@@ -157,7 +157,7 @@ def _pass_over_corners(
 
 def _marks(rings: list[Ring], lines: _Lines, fractions: Array) -> dict[int, list[tuple[float, float]]]:
     """Per piece the fractions that re-entrant corners and arcs look at, and their distances."""
-    at, towards = [], []
+    at, towards, radii = [], [], []
     for ring in rings:
         for k, piece in enumerate(ring):
             before = ring[k - 1]
@@ -166,16 +166,21 @@ def _marks(rings: list[Ring], lines: _Lines, fractions: Array) -> dict[int, list
             if turn < -SHARP:
                 normals = _left(np.array([a, b]))
                 at += [piece.start] * 3
+                radii += [0.0] * 3
                 towards += [normals[0], normals[1], normals.sum(axis=0) / np.hypot(*normals.sum(axis=0))]
             if piece.arc is not None and piece.arc.last < piece.arc.first - SHARP:
                 u = np.linspace(0.0, 1.0, 5)
+                radii += [piece.arc.radius] * 5
                 at += list(piece.at(u))
                 towards += list(_left(piece.rate(u)))
     marks: dict[int, list[tuple[float, float]]] = {}
     if at:
         hits = _hits(np.array(at), np.array(towards), lines, fractions)
-        for i, v, d in zip(hits.piece.tolist(), hits.fraction.tolist(), hits.distance.tolist(), strict=True):
-            marks.setdefault(i, []).append((v, d))
+        found = zip(hits.piece.tolist(), hits.fraction.tolist(), hits.distance.tolist(), radii, strict=True)
+        for i, v, d, radius in found:
+            # the inner face of a round wall is no disturbance
+            if radius <= FAR * d:
+                marks.setdefault(i, []).append((v, d))
     return marks
 
 

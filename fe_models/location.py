@@ -27,7 +27,8 @@ class PointStress:
     shear : (n, 2) array
         (tau_x, tau_y) [F/L^2].
     error : (n,) array
-        Half the magnitude of the fields' difference: an estimate [F/L^2].
+        Half the magnitude of the fields' difference: an estimate, which may understate the error of a single
+        point by a small factor [F/L^2].
     """
 
     shear: Array

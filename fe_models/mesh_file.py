@@ -9,6 +9,7 @@ import contextlib
 import io
 import os
 import tempfile
+import warnings
 from collections.abc import Mapping
 from pathlib import Path
 from types import ModuleType
@@ -72,9 +73,17 @@ def rings_of_mesh(path: Path) -> tuple[ClosedLine, ...]:
     said = io.StringIO()
     try:
         # the library prints what it does not like, and may leave by SystemExit
-        with contextlib.redirect_stdout(said), contextlib.redirect_stderr(said):
+        with (
+            contextlib.redirect_stdout(said),
+            contextlib.redirect_stderr(said),
+            warnings.catch_warnings(),
+        ):
+            # text files are first tried as binary ones, with numbers that overflow
+            warnings.simplefilter("ignore")
             read = library.read(path, kind)
-    except (Exception, SystemExit) as fault:
+    except SystemExit:
+        raise OutlineError("mesh", (path.name,), f"a file that is not of the format {kind}") from None
+    except Exception as fault:
         raise OutlineError("mesh", (path.name,), f"a file that cannot be read ({fault})") from None
     places, triangles = _sheet(read, path)
     rings = [places[row] for row in _loops(triangles, path)]

@@ -26,7 +26,10 @@ EPILOG = """\
 examples:
   crosscheck compare cases/sections/lipped_channel_floor_beam.toml
   crosscheck compare cases/sections/lipped_channel_floor_beam.toml --out report --set "t = 2.5"
+  crosscheck compare cases/sections/two_cell_tail_boom.toml --table stiffness --working --out report
   crosscheck compare cases/sections --json results.json"""
+# Names of crosscheck.tables.TABLES, which help must not load.
+TABLE_NAMES = ("levels", "stiffness", "envelope", "probes", "stresses")
 
 
 def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
@@ -46,6 +49,20 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
     command.add_argument(
         "--json", dest="json_path", metavar="PATH", help="write the result as JSON; - for standard output"
     )
+    command.add_argument(
+        "--working",
+        action="store_true",
+        help="the hand sheet of every load: working_LOAD.md in DIR, and in the JSON; on screen without both",
+    )
+    command.add_argument(
+        "--table",
+        dest="tables",
+        action="append",
+        default=[],
+        choices=TABLE_NAMES,
+        metavar="NAME",
+        help=f"show a table below the screen, and write it as CSV into DIR: {', '.join(TABLE_NAMES)}",
+    )
     add_model_arguments(command)
     command.set_defaults(run=run)
 
@@ -60,18 +77,26 @@ def run(arguments: argparse.Namespace) -> int:
     for path, folder in zip(paths, folders, strict=True):
         with told_progress() as tell:
             result, found = compare_file(
-                path, arguments.overrides, arguments.accuracy, tell, pictures=folder is not None
+                path,
+                arguments.overrides,
+                arguments.accuracy,
+                tell,
+                pictures=folder is not None,
+                working=arguments.working,
             )
             status = max(status, found)
             if result is None:
                 continue
             if folder is not None:
-                found = write_pictures(result, folder, tell)
+                found = write_report(result, folder, arguments.tables, tell)
                 status = max(status, found)
         results.append(result)
         # Standard output belongs to the JSON when that is asked for.
         stream = sys.stderr if arguments.json_path == "-" else sys.stdout
-        show(result, str(folder) if folder is not None and found < ExitStatus.BAD_INPUT else None, stream)
+        where = str(folder) if folder is not None and found < ExitStatus.BAD_INPUT else None
+        show(result, where, stream, arguments.tables)
+        if result.working is not None and folder is None and arguments.json_path is None:
+            stream.write("\n".join(("", *result.working.values())))
     if arguments.json_path is not None and results:
         status = max(status, write_json(results, arguments.json_path))
     return status
@@ -111,7 +136,13 @@ def output_folders(paths: Sequence[str], out: str | None) -> list[Path | None]:
 
 
 def compare_file(
-    path: str, overrides: Sequence[str], accuracy: float, tell: Progress, *, pictures: bool
+    path: str,
+    overrides: Sequence[str],
+    accuracy: float,
+    tell: Progress,
+    *,
+    pictures: bool,
+    working: bool = False,
 ) -> tuple[Result | None, ExitStatus]:
     """Read and compare one file; its faults go to the error stream."""
     tell(f"{path}: reading")
@@ -129,7 +160,9 @@ def compare_file(
     from crosscheck.comparison import compare
 
     try:
-        result = compare(section, accuracy, lambda text: tell(f"{path}: {text}"), pictures=pictures)
+        result = compare(
+            section, accuracy, lambda text: tell(f"{path}: {text}"), pictures=pictures, working=working
+        )
     except fe_models.OutlineError as fault:
         complain([outline_fault(path, section, fault).text])
         return None, ExitStatus.BAD_INPUT
@@ -164,14 +197,21 @@ def result_status(result: Result) -> ExitStatus:
     return ExitStatus.WITHIN if held and sound else ExitStatus.NOT_WITHIN
 
 
-def write_pictures(result: Result, folder: Path, tell: Progress) -> ExitStatus:
-    """Pictures and result.json of one section, all made before the first is written."""
+def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Progress) -> ExitStatus:
+    """Pictures, hand sheets, tables and result.json of one section, all made before the first is written."""
+    from crosscheck.file_names import free_name
     from crosscheck.pictures import every_picture
     from crosscheck.result_json import json_text
+    from crosscheck.tables import TABLES, csv_bytes
     from crosscheck.whole_files import write_folder
 
     tell(f"{result.title}: pictures")
     files = every_picture(result)
+    sheets: dict[str, bytes] = {}
+    for load, text in (result.working or {}).items():
+        sheets[free_name(f"working_{load}", sheets)] = text.encode()
+    files |= {f"{name}.md": content for name, content in sheets.items()}
+    files |= {f"{name}.csv": csv_bytes(TABLES[name](result)) for name in tables}
     files["result.json"] = json_text([result]).encode()
     try:
         write_folder(folder, files)
@@ -198,12 +238,14 @@ def write_json(results: Sequence[Result], path: str) -> ExitStatus:
     return ExitStatus.WITHIN
 
 
-def show(result: Result, pictures: str | None, stream: object) -> None:
-    """The first screen, on standard output or on the error stream."""
+def show(result: Result, pictures: str | None, stream: object, tables: Sequence[str] = ()) -> None:
+    """The first screen and the tables asked for, on standard output or on the error stream."""
     from rich.console import Console
 
     from crosscheck.screen import console_for, first_screen
+    from crosscheck.tables import TABLES
 
     console = Console(stderr=stream is sys.stderr, highlight=False, markup=False, emoji=False)
     width, unicode = console_for(console)
-    console.print(first_screen(result, width, unicode=unicode, pictures=pictures))
+    shown = [TABLES[name](result) for name in dict.fromkeys(tables)]
+    console.print(first_screen(result, width, unicode=unicode, pictures=pictures, tables=shown))

@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-import re
-
 from matplotlib.figure import Figure
 
+from crosscheck.file_names import free_name
 from crosscheck.pictures.both_sides import both_sides_picture
 from crosscheck.pictures.canvas import picture_bytes
 from crosscheck.pictures.criteria import criteria_picture
@@ -59,18 +58,8 @@ def figures(result: Result, width_mm: int) -> dict[str, Figure]:
         "both_sides": both_sides_picture(result, width_mm),
         "criteria": criteria_picture(result, width_mm),
     }
-    for load in (*UNIT_LOADS, *(line.name for line in result.require_drawing().loads)):
+    for load in (*UNIT_LOADS, *(line.name for line in result.require_drawing().loads if line.has_shear)):
         drawn[free_name(f"flow_{load}", drawn)] = flow_picture(result, load, width_mm)
     drawn["warping"] = warping_picture(result, width_mm)
     drawn["joints"] = joints_picture(result, width_mm)
     return {name: figure for name, figure in drawn.items() if figure is not None}
-
-
-def free_name(words: str, taken: dict[str, Figure | None]) -> str:
-    """A plain file name of the words, with a number where it is taken; no folder, no odd letters."""
-    name = re.sub(r"[^A-Za-z0-9-]+", "_", words).strip("_")[:60] or "flow"
-    number, free = 1, name
-    while free in taken:
-        number += 1
-        free = f"{name}_{number}"
-    return free

@@ -26,7 +26,7 @@ from crosscheck.wording import (
     difference_text,
     has_own_normaliser,
     name_of,
-    one_flow_row_a_load,
+    one_row_a_family,
     verdict_sentence,
     worst_first,
 )
@@ -50,7 +50,7 @@ def criteria_picture(result: Result, width_mm: int = 160) -> Figure | None:
     -------
     Figure or None
     """
-    rows = one_flow_row_a_load(worst_first(result.quantities))
+    rows = one_row_a_family(worst_first(result.quantities))
     rows = [row for row in rows if row.verdict is not None][:MOST_ROWS]
     if not rows:
         return None

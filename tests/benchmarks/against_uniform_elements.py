@@ -48,9 +48,7 @@ def uniform_torsion(slenderness: float, layers: int) -> tuple[float, int]:
     stiffness = skfem.BilinearForm(lambda u, v, _: dot(grad(u), grad(v))).assemble(basis)
     load = skfem.LinearForm(lambda v, w: w.x[1] * grad(v)[0] - w.x[0] * grad(v)[1]).assemble(basis)
     warping = skfem.solve(*skfem.condense(stiffness, load, D=np.array([0])))
-    squared = skfem.Functional(
-        lambda w: (w["u"].grad[0] - w.x[1]) ** 2 + (w["u"].grad[1] + w.x[0]) ** 2
-    )
+    squared = skfem.Functional(lambda w: (w["u"].grad[0] - w.x[1]) ** 2 + (w["u"].grad[1] + w.x[0]) ** 2)
     return float(squared.assemble(basis, u=basis.interpolate(warping))), len(warping)
 
 

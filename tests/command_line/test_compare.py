@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import csv
+import hashlib
 import json
 import shutil
 
@@ -212,3 +214,178 @@ def test_failed_self_check_is_never_status_0(run, tmp_path, monkeypatch):
     ran = run("compare", wide)
     assert ran.status == 1
     assert "CHECK FAILED: FE: resultants" in ran.out
+
+
+LOADS = "name;shear_y;through;moment_x\nup;900,5;b;30000\ndown;-1400;b;-41000\n"
+
+
+def with_table(tmp_path, table=LOADS):
+    """The channel with its loads from a table."""
+    path = tmp_path / "channel.toml"
+    path.write_text(CHANNEL + '[tables]\nloads = "loads.csv"\n')
+    (tmp_path / "loads.csv").write_text(table)
+    return path
+
+
+def test_loads_from_a_table_are_hashed_and_said(run, tmp_path):
+    path = with_table(tmp_path)
+    ran = run("compare", path, "--json", "-")
+    read = json.loads(ran.out)
+    digest = hashlib.sha256((tmp_path / "loads.csv").read_bytes()).hexdigest()
+    assert read["provenance"]["tables"] == {"loads.csv": digest}
+    assert read["notes"] == ["loads.csv: 2 loads, semicolons between columns, decimal comma"]
+    assert "2 loads, semicolons between columns, decimal comma" in " ".join(ran.err.split())
+    assert {row["load"] for row in read["quantities"]} == {
+        None, "unit Vx", "unit Vy", "unit T", "gust", "up", "down"
+    }  # fmt: skip
+
+
+def test_fault_in_a_table_is_one_line_with_both_files(run, tmp_path):
+    ran = run("compare", with_table(tmp_path, LOADS.replace("900,5", "many")))
+    assert ran.status == 2
+    (line,) = ran.err.splitlines()
+    assert "channel.toml: loads.csv line 2: shear[1]: must be a number" in line
+
+
+def test_envelope_and_governing_load_reach_json_and_screen(run, tmp_path):
+    ran = run("compare", with_table(tmp_path), "--json", "-")
+    envelope = json.loads(ran.out)["envelope"]
+    web = next(e for e in envelope["walls"] if e["kind"] == "flow" and e["wall"] == "web")
+    assert web["theory"]["load"] == web["fe"]["load"] == "down"
+    assert envelope["probes"][0]["theory_low"]["load"] in ("gust", "up", "down")
+    assert "Governs, flow: down (all 3 walls)" in " ".join(ran.err.split())
+
+
+def test_many_loads_show_the_worst_only(run, tmp_path):
+    rows = "".join(f"case {i};{100 + i};b;{i}000\n" for i in range(1, 8))
+    ran = run("compare", with_table(tmp_path, LOADS + rows))
+    text = " ".join(ran.out.split())
+    assert "10 loads: each quantity is shown for its worst load" in text
+    assert text.count("peak flow, case") + text.count("probe flow, case") <= 1
+
+
+def test_hand_sheets_in_the_folder_and_in_the_json(run, channel, tmp_path):
+    out = tmp_path / "report"
+    ran = run("compare", channel, "--working", "--out", out, "--json", tmp_path / "r.json")
+    sheet = (out / "working_gust.md").read_text()
+    assert sheet.startswith("# Hand sheet: gust\n")
+    assert json.loads((tmp_path / "r.json").read_text())["working"] == {"gust": sheet}
+    assert json.loads((out / "result.json").read_text())["working"] == {"gust": sheet}
+    assert "# Hand sheet" not in ran.out
+
+
+def test_hand_sheets_on_screen_without_a_folder(run, channel):
+    ran = run("compare", channel, "--working")
+    assert ran.out.index("Hand methods hold") < ran.out.index("# Hand sheet: gust")
+    assert "# Hand sheet" not in run("compare", channel).out
+
+
+def test_hand_sheets_of_unit_loads_where_there_are_no_others(run, tmp_path):
+    path = tmp_path / "bare.toml"
+    path.write_text(CHANNEL[: CHANNEL.index("[[loads]]")])
+    run("compare", path, "--working", "--out", tmp_path / "report")
+    names = {entry.name for entry in (tmp_path / "report").glob("working_*.md")}
+    assert names == {"working_unit_Vx.md", "working_unit_Vy.md", "working_unit_T.md"}
+
+
+def test_tables_on_request_on_screen_and_as_csv(run, channel, tmp_path):
+    out = tmp_path / "report"
+    ran = run("compare", channel, "--table", "stiffness", "--table", "levels", "--out", out)
+    assert "Stiffness for a beam model per unit modulus" in " ".join(ran.out.split())
+    rows = list(csv.reader((out / "stiffness.csv").read_text().splitlines()))
+    assert rows[1][0] == "EA"
+    assert_allclose(float(rows[1][4]), 4 * (80 + 2 * 35), rtol=1e-12, atol=0)
+    assert (out / "levels.csv").is_file()
+    assert not (out / "envelope.csv").exists()
+    assert max(map(len, ran.out.splitlines())) <= 80
+
+
+def test_unknown_table_is_bad_input(run, channel):
+    ran = run("compare", channel, "--table", "everything")
+    assert ran.status == 2
+    assert "stiffness" in ran.err
+
+
+def test_table_names_of_the_help_are_those_there_are():
+    from crosscheck.commands.compare import TABLE_NAMES
+    from crosscheck.tables import TABLES
+
+    assert list(TABLES) == list(TABLE_NAMES)
+
+
+@pytest.mark.parametrize("level", ["corrected", "lumped"])
+def test_judged_level_decides_the_verdicts(run, tmp_path, level):
+    path = tmp_path / "judged.toml"
+    path.write_text(f'judged = "{level}"\n' + CHANNEL + "[criteria]\ntorsion_constant = 0.004\n")
+    row = next(
+        row
+        for row in json.loads(run("compare", path, "--json", "-").out)["quantities"]
+        if row["name"] == "torsion_constant"
+    )
+    # The corrected level meets 0.4 %, the lumped one has the midline's constant and does not.
+    assert row["verdict"] == {"corrected": "within", "lumped": "outside"}[level]
+
+
+def test_new_features_all_at_once(run, tmp_path):
+    """Arc, taper, boom, share, second material, corners and every resultant in one file."""
+    path = tmp_path / "all.toml"
+    path.write_text(EVERYTHING)
+    ran = run("compare", path, "--json", "-")
+    assert ran.status in (0, 1)
+    read = json.loads(ran.out)
+    assert all(check["passed"] for check in read["checks"])
+    names = {row["name"] for row in read["quantities"] if row["load"] == "all"}
+    assert names == {
+        "peak_flow", "flow_at_probes", "rate_of_twist", "direct_stress", "von_mises_stress", "surface_shear"
+    }  # fmt: skip
+    assert read["boom_fibres"][0]["reason"]
+    assert read["fillet_peaks"]
+
+
+EVERYTHING = """\
+units = "mm N"
+base_material = "sheet"
+[materials.sheet]
+E = 72000
+nu = 0.33
+[materials.steel]
+E = 205000
+nu = 0.29
+[points]
+low = [0, -60]
+high = [0, 60]
+edge = [70, -60]
+lip = [70, -40]
+[[walls]]
+name = "nose"
+path = ["high", "low"]
+arc = { through = [-60, 0] }
+thickness = 2
+[[walls]]
+name = "web"
+path = ["low", "high"]
+thickness = 3
+material = "steel"
+[[walls]]
+name = "flange"
+path = ["low", "edge"]
+thickness = { from = 3, to = 2 }
+direct_share = 0.6
+[[walls]]
+name = "lip"
+path = ["edge", "lip"]
+thickness = 2
+[[booms]]
+at = "high"
+area = 150
+[corners]
+edge = { inner_radius = 3 }
+[[loads]]
+name = "all"
+shear = [100, -900]
+through = [20, 0]
+torque = 5000
+axial = 700
+moment = [80000, -9000]
+bimoment = 40000
+"""

@@ -8,7 +8,7 @@ from types import SimpleNamespace
 import numpy as np
 
 import beam_theory
-from crosscheck import models
+from crosscheck.levels import Levels, solve_levels
 from crosscheck.section_model import LoadSpec, Material, ProbeSpec, SectionFile, WallSpec
 
 # What the stand-in multiplies theory's value with; everything else is left as theory has it.
@@ -48,8 +48,9 @@ class StandInFe:
             half = self.half_width * abs(value) if name in FE_OVER_THEORY else 0.0
             basis = "bound" if half else "exact"
             found[name] = SimpleNamespace(
-                value=value, low=value - half, high=value + half, basis=basis, reason=None, with_nu=None
-            )
+                value=value, low=value - half, high=value + half, basis=basis, reason=None, with_nu=None,
+                half_width=half,
+            )  # fmt: skip
         return found
 
     @property
@@ -60,13 +61,37 @@ class StandInFe:
     def outline(self):
         places = np.array(list(self.section.points.values()))
         low, high = places.min(axis=0), places.max(axis=0)
-        loop = np.array([low, (high[0], low[1]), high, (low[0], high[1])])
-        return SimpleNamespace(loops=(loop,), extent=float((high - low).max()), notes=())
+        # Faces: of the channel the walls reach half a thickness past the midline, but not at its free ends.
+        x0, y0, x1, y1 = low[0] - 2.5, low[1] - 2.5, high[0], high[1] + 2.5
+        loop = np.array([(x0, y0), (x1, y0), (x1, y1), (x0, y1)])
+        bands = {
+            wall.name: SimpleNamespace(straight=True, thickness=wall.thickness) for wall in self.section.walls
+        }
+        return SimpleNamespace(loops=(loop,), extent=float((high - low).max()), notes=(), bands=bands)
 
     def flow_at(self, wall, fractions):
         rows = [self.theory.unit_flow(name).at(wall, fractions) for name in ("Vx", "Vy", "T")]
         values = np.array(rows) * np.array(FLOW_FACTORS)[:, None]
         return SimpleNamespace(values=values, errors=np.full_like(values, self.flow_error))
+
+    def face_stress(self, wall, fractions, actions):
+        """Theory's stress, shear larger by the factors of the flows."""
+        shear = np.zeros((2, len(fractions)))
+        for unit, size, factor in zip(
+            ("Vx", "Vy", "T"), (*actions.shear, actions.torque), FLOW_FACTORS, strict=True
+        ):
+            if size:
+                load = {"Vx": {"shear": (1.0, 0.0)}, "Vy": {"shear": (0.0, 1.0)}, "T": {"torque": 1.0}}[unit]
+                one = beam_theory.stress(self.theory, beam_theory.Load(unit, **load))
+                shear += size * factor * one.shear(wall, fractions).T
+        load = beam_theory.Load(
+            "direct", axial=actions.axial, moment=actions.moment, bimoment=actions.bimoment
+        )
+        direct = beam_theory.stress(self.theory, load).direct(wall, fractions).T
+        return SimpleNamespace(direct=direct, shear=shear, error=np.full_like(shear, self.flow_error))
+
+    def boundary_peaks(self, actions):
+        return []
 
     def picture_mesh(self):
         return SimpleNamespace(
@@ -108,7 +133,7 @@ def channel_of_steel(**changes) -> SectionFile:
     return channel_file(materials={"steel": steel}, base_material="steel", walls=walls, **changes)
 
 
-def both_sides(section: SectionFile, **fe) -> tuple[beam_theory.Solution, StandInFe]:
-    """Theory's solution of a section file and the stand-in made from it."""
-    theory = beam_theory.solve(models.theory_section(section))
-    return theory, StandInFe(theory, section, **fe)
+def both_sides(section: SectionFile, **fe) -> tuple[Levels, StandInFe]:
+    """Theory's solutions of a section file and the stand-in made from the midline's."""
+    levels = solve_levels(section)
+    return levels, StandInFe(levels.solutions["midline"], section, **fe)

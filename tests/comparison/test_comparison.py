@@ -68,7 +68,8 @@ def test_error_of_a_loads_flow_adds_up_from_its_unit_flows(result):
 def test_probes_are_strip_ends_quarters_stationary_places_and_the_users(result):
     wall = next(flow for flow in result.flows if flow.load == "unit Vy" and flow.wall == "web")
     places = [probe.s for probe in wall.probes]
-    assert_allclose(places, [1.0, 10.0, 30.0, 50.0, 70.0, 90.0], rtol=0, atol=1e-9)
+    # The strip runs from 10 to 90; a thickness inside its ends are 15 and 85.
+    assert_allclose(places, [1.0, 10.0, 15.0, 30.0, 50.0, 70.0, 85.0, 90.0], rtol=0, atol=1e-9)
     assert [probe.label for probe in wall.probes if probe.label] == ["corner weld", "rivet line"]
 
 

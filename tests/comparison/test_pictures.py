@@ -62,8 +62,8 @@ def test_section_is_lettered_directly_without_a_legend(result):
         "1200 N",
         "C centroid",
         "shear centre",
-        "100 mm",
-        "50 mm",
+        "105 mm",
+        "52.5 mm",
     ):
         assert word in words
     assert axes.get_legend() is None

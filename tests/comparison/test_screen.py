@@ -15,7 +15,7 @@ from crosscheck.screen import first_screen
 from crosscheck.wording import (
     difference_text,
     number_text,
-    one_flow_row_a_load,
+    one_row_a_family,
     percent_text,
     verdict_sentence,
     worst_first,
@@ -74,7 +74,7 @@ def test_sentence_names_what_fails_how_and_for_what(result):
 def test_sentence_counts_what_holds(result):
     found = re.match(r"Hand methods hold for (\d+) of (\d+) quantities", verdict_sentence(result))
     assert found is not None
-    judged = [row for row in one_flow_row_a_load(result.quantities) if row.verdict is not None]
+    judged = [row for row in one_row_a_family(result.quantities) if row.verdict is not None]
     assert int(found[2]) == len(judged)
     assert int(found[1]) == sum(row.verdict == "within" for row in judged)
 

@@ -7,6 +7,8 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
+import numpy as np
+
 from fe_models import Section, Wall
 
 Place = tuple[float, float]
@@ -195,3 +197,26 @@ def rewritten(section: Section) -> Section:
 def quarter_turn() -> complex:
     """A rotation by an angle at which no wall of the shapes lies along an axis."""
     return cmath.exp(0.6j)
+
+
+def random_graph(seed: int, thinnest: float = 0.003, thickest: float = 0.12) -> Section:
+    """Walls of different thickness on a jittered grid: a tree with some or all of the other edges."""
+    rng = np.random.default_rng(seed)
+    columns, rows = int(rng.integers(2, 4)), int(rng.integers(2, 4))
+    at = {
+        (i, j): (i + rng.uniform(-0.2, 0.2), j + rng.uniform(-0.2, 0.2))
+        for i in range(columns)
+        for j in range(rows)
+    }
+    edges = [(p, (p[0] + i, p[1] + j)) for p in at for i, j in ((1, 0), (0, 1)) if (p[0] + i, p[1] + j) in at]
+    more = rng.choice([0.0, 0.4, 1.0])
+    group = {p: p for p in at}
+    walls = []
+    for k in rng.permutation(len(edges)).tolist():
+        a, b = edges[k]
+        if group[a] == group[b] and rng.random() >= more:
+            continue
+        group = {p: group[a] if g == group[b] else g for p, g in group.items()}
+        t = 100.0 * float(np.exp(rng.uniform(np.log(thinnest), np.log(thickest))))
+        walls.append((str(a), str(b), t) if rng.random() < 0.5 else (str(b), str(a), t))
+    return joined({str(p): (100.0 * x, 100.0 * y) for p, (x, y) in at.items()}, walls)

@@ -36,7 +36,7 @@ def by_removal(section: Section) -> set[str]:
 
 @pytest.mark.parametrize("seed", range(60))
 def test_random_graphs(seed: int) -> None:
-    """Trees with a few more walls, doubled walls among them (two walls between the same points are a cell)."""
+    """Trees with a few more walls, doubled ones among them (two walls between the same points)."""
     rng = np.random.default_rng(seed)
     n = int(rng.integers(2, 14))
     pairs = [(int(rng.integers(0, i)), i) for i in range(1, n)]

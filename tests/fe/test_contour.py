@@ -13,7 +13,7 @@ from shapely.geometry import Polygon
 
 from fe_models import Solution, solve
 from fe_models.contour import Loop, cut_paths, loops
-from fe_models.element import EDGES, element
+from fe_models.element import EDGES
 from fe_models.jumps import network, start_jumps, steps
 from fe_models.mesh import Mesh
 from fe_models.space import Space, space
@@ -204,7 +204,7 @@ def test_stress_function_is_multi_valued(name: str) -> None:
 
 
 def _holes(solution: Solution, boundary: list[Loop]) -> list[np.ndarray]:
-    """First moments (integrals of x, y about the centroid) of the mesh's holes, by shapely, in their order."""
+    """First moments (integrals of x, y about the centroid) of the mesh's holes, in their order."""
     places = [Polygon(p - solution.fields.inertia.centroid) for p in solution.outline.loops]
     vertices = solution.fields.space.mesh.vertices - solution.fields.inertia.centroid
     found = []

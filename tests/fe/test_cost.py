@@ -38,12 +38,12 @@ def test_cost_does_not_grow_with_slenderness() -> None:
 
 
 def test_torsion_constant_keeps_its_digits() -> None:
-    """J = t^3 (2 b + h)/3 + c t^4 with one c for all slender channels: corners and ends do not see each other.
+    """J = t^3 (2 b + h)/3 + c t^4 with one c for all slender channels: corners do not see ends.
 
     c from depth over thickness 25 tells J at 300, 3000 and 10000 to ten digits.
     """
     t = H / 25.0
-    c = (solved(25.0, 1e-8).quantities["torsion_constant"].value - t**3 * (2 * B + H) / 3) / t**4
+    c = (solved(25.0, 1e-7).quantities["torsion_constant"].value - t**3 * (2 * B + H) / 3) / t**4
     assert_allclose(c, 2 * (0.0725 - 0.10504), rtol=0, atol=2e-4)
     for ratio in (300.0, 3000.0, 10000.0):
         t = H / ratio
@@ -57,7 +57,7 @@ def test_torsion_constant_keeps_its_digits() -> None:
 def test_default_accuracy_keeps_digits_when_slender() -> None:
     """At 3000 the everyday mesh: J within 1e-6 of the prediction, and the interval says so."""
     t = H / 25.0
-    c = (solved(25.0, 1e-8).quantities["torsion_constant"].value - t**3 * (2 * B + H) / 3) / t**4
+    c = (solved(25.0, 1e-7).quantities["torsion_constant"].value - t**3 * (2 * B + H) / 3) / t**4
     t = H / 3000.0
     j = solved(3000.0).quantities["torsion_constant"]
     predicted = t**3 * (2 * B + H) / 3 + c * t**4
@@ -66,7 +66,7 @@ def test_default_accuracy_keeps_digits_when_slender() -> None:
 
 
 def test_shear_centre_keeps_its_digits() -> None:
-    """e = 18.75 - c2 t^2 - c3 t^3: both from depth over thickness 100 and 200, e at 3000 to 1e-8 of the depth."""
+    """e = 18.75 - c2 t^2 - c3 t^3: both from depth/t 100 and 200 tell e at 3000 to 1e-8 of the depth."""
     ts = np.array([H / 100.0, H / 200.0])
     lost = [18.75 + solved(r, 1e-8).quantities["shear_centre_x"].value for r in (100.0, 200.0)]
     c2, c3 = np.linalg.solve(np.column_stack([ts**2, ts**3]), lost)

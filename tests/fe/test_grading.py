@@ -26,7 +26,7 @@ def test_graded(length: float, first: float, last: float, largest: float, slope:
     def wanted(d: np.ndarray) -> np.ndarray:
         return np.minimum(np.minimum(first + slope * d, last + slope * (length - d)), largest)
 
-    # an element never exceeds the largest size wanted inside it: the size is concave, so ends and top bound it
+    # an element never exceeds the largest size wanted inside it
     inside = np.linspace(start, end, 33)
     assert (h <= wanted(inside).max(axis=0) * (1 + 0.05)).all()
     # and it is no finer than needed: one element fewer would be too few for the integral of ds / wanted

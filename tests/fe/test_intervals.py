@@ -12,7 +12,7 @@ from fe_models import ACCURACY_RANGE, Interval, Solution, SolveError, solution, 
 from fe_models.density import Density
 from fe_models.intervals import around
 
-COARSE = (3, Density(eta=1e-1, largest=2.0, slope=3.0, first=6.0, ratio=6.0))
+COARSE = Density(order=3, eta=1e-1, largest=2.0, slope=3.0, first=6.0, ratio=6.0)
 
 
 def reached(found: Solution) -> float:

@@ -126,7 +126,7 @@ def test_bevel_beyond_four_times_the_thickness(degrees: float, kind: str) -> Non
 
 
 def test_bevel_of_unequal_walls_stands_at_four_times_the_larger() -> None:
-    """t = 2 and 3 at 8 degrees: both ends of the bevel lie on the plane 12 from the point, square to the mitre."""
+    """t = 2 and 3 at 8 degrees: both ends of the bevel lie 12 from the point along the mitre."""
     joint = star((0.0, 2.0, 200.0), (8.0, 3.0, 200.0))
     outer, inner = between(joint, 1, 0), between(joint, 0, 1)
     tip = -vertices(inner)[0]

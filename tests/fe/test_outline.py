@@ -7,9 +7,18 @@ import math
 import numpy as np
 import pytest
 from fe_sections import (
-    SHAPES, bow_tie, box, channel, four_cells, lopsided_cell, polyline, rectangle, shape, triangular_cell,
+    SHAPES,
+    bow_tie,
+    box,
+    channel,
+    four_cells,
+    lopsided_cell,
+    polyline,
+    rectangle,
+    shape,
+    triangular_cell,
     two_cell,
-)  # fmt: skip
+)
 from numpy.testing import assert_allclose
 from shapely.geometry import LineString, Polygon
 from shapely.ops import unary_union
@@ -63,10 +72,13 @@ def length_times_thickness(section: Section) -> float:
 @pytest.mark.parametrize(
     "section",
     [
-        box(70.0, 40.0, 3.0, 5.0), lopsided_cell(), triangular_cell(), channel(50.0, 100.0, 7.0),
+        box(70.0, 40.0, 3.0, 5.0),
+        lopsided_cell(),
+        triangular_cell(),
+        channel(50.0, 100.0, 7.0),
         shape("zed, three thicknesses", 9.0),
     ],
-)  # fmt: skip
+)
 def test_area_of_mitred_bends_is_length_times_thickness(section: Section) -> None:
     """Corner and mitre lie opposite each other about the point, so each wall keeps its area L t."""
     assert_allclose(outline(section).moments(ORIGIN).area, length_times_thickness(section), rtol=1e-13)

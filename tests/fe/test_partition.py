@@ -88,7 +88,7 @@ def test_link_eaten_up_from_both_ends_is_united(link: float, united: bool) -> No
 
 
 def test_zig_zag_of_short_walls_against_a_union() -> None:
-    """Walls hardly longer than thick, bent to and fro: area of the flat-ended mitred buffer of the midline."""
+    """Walls hardly longer than thick, bent to and fro: the flat-ended mitred buffer of the midline."""
     places = [(0.0, 0.0), (30.0, 0.0), (33.0, 2.5), (36.0, 0.0), (39.0, 2.5), (70.0, 2.5)]
     solid = outline(polyline(places, 2.0))
     drawn = LineString(places).buffer(1.0, cap_style="flat", join_style="mitre", mitre_limit=8.0)

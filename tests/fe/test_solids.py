@@ -33,11 +33,14 @@ def overlaps(interval: Interval, value: float, tolerance: float) -> bool:
 def rectangle_j(b: float, t: float) -> float:
     """Saint-Venant's series: b t^3 (1/3 - 64 t/(pi^5 b) sum tanh(n pi b/(2 t))/n^5, n odd)."""
     n = np.arange(1.0, 400.0, 2.0)
-    return b * t**3 * (1 / 3 - 64 * t / (np.pi**5 * b) * float(np.sum(np.tanh(n * np.pi * b / (2 * t)) / n**5)))
+    return (
+        b * t**3 * (1 / 3 - 64 * t / (np.pi**5 * b) * float(np.sum(np.tanh(n * np.pi * b / (2 * t)) / n**5)))
+    )
 
 
 @pytest.mark.parametrize(
-    ("ratio", "row"), [(1.0, "A20J"), (1.5, "A22J"), (2.0, "A23J"), (3.0, "A25J"), (5.0, "A27J"), (10.0, "A28J")]
+    ("ratio", "row"),
+    [(1.0, "A20J"), (1.5, "A22J"), (2.0, "A23J"), (3.0, "A25J"), (5.0, "A27J"), (10.0, "A28J")],
 )
 def test_series_is_the_printed_table(ratio: float, row: str) -> None:
     """The series itself against Timoshenko and Goodier's table, as printed to three digits."""
@@ -136,7 +139,10 @@ def thick(t: float) -> Solution:
     return solve(channel(50.0, 100.0, t))
 
 
-@pytest.mark.parametrize(("row", "section", "half"), [("D50J", box(100.0, 60.0, 2.0, 4.0), 1.9e-4), ("D51", two_cell(100.0, 60.0, 80.0, 3.0), 1.7e-4)])
+@pytest.mark.parametrize(
+    ("row", "section", "half"),
+    [("D50J", box(100.0, 60.0, 2.0, 4.0), 1.9e-4), ("D51", two_cell(100.0, 60.0, 80.0, 3.0), 1.7e-4)],
+)
 def test_boxes(row: str, section: Section, half: float) -> None:
     """J of the solid within the row's own two-sided half-width; Bredt-Batho is 2 % and 1.3 % off."""
     r, j = rows()[row], solve(section).quantities["torsion_constant"]

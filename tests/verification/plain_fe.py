@@ -1,9 +1,9 @@
 """A plain finite-element program for the tests: triangles of any order on grids of quadrilaterals.
 
-It shares nothing with fe_models: its own grids of the exact outline, its own element, its own equations; numpy
-and scipy only. What it gives for torsion are bounds whatever its mesh: a compatible field never has less than
-the exact energy and a balanced one never more (Saint-Venant torsion with G = 1; Timoshenko and Goodier, Theory
-of Elasticity, 3rd ed., sections 104 to 115).
+It shares nothing with fe_models: its own grids of the exact outline, its own element, its own equations;
+numpy and scipy only. What it gives for torsion are bounds whatever its mesh: a compatible field never has
+less than the exact energy and a balanced one never more (Saint-Venant torsion with G = 1; Timoshenko and
+Goodier, Theory of Elasticity, 3rd ed., chapter 10).
 """
 
 from __future__ import annotations
@@ -36,7 +36,7 @@ class Grid:
 
 
 def grid(quads: Sequence[np.ndarray], order: int = 3) -> Grid:
-    """Triangles of small quadrilaterals, (m, 4, 2) arrays of corners anticlockwise; equal places are one node."""
+    """Triangles of quadrilaterals, (m, 4, 2) arrays of corners anticlockwise; equal places are one node."""
     corners = np.concatenate([np.asarray(q, dtype=float).reshape(-1, 4, 2) for q in quads])
     triangles = np.concatenate([corners[:, [0, 1, 2]], corners[:, [0, 2, 3]]])
     one, two = triangles[:, 1] - triangles[:, 0], triangles[:, 2] - triangles[:, 0]
@@ -175,7 +175,11 @@ class Plate:
     def boundary_loops(self) -> list[np.ndarray]:
         """Nodes on each boundary, the one round the largest area first."""
         x, y = lattice(self.order).T
-        sides = [(0, 1, np.flatnonzero(y == 0)), (1, 2, np.flatnonzero(x + y > 1 - 1e-9)), (2, 0, np.flatnonzero(x == 0))]
+        sides = [
+            (0, 1, np.flatnonzero(y == 0)),
+            (1, 2, np.flatnonzero(x + y > 1 - 1e-9)),
+            (2, 0, np.flatnonzero(x == 0)),
+        ]
         t = self.elements
         edges = np.concatenate([t[:, [a, b]] for a, b, _ in sides])
         nodes = np.concatenate([t[:, on] for _, _, on in sides])
@@ -216,7 +220,7 @@ def torsion_above(on: Plate) -> float:
 
 
 def torsion_below(on: Plate) -> float:
-    """J from below: 2 integral R . s - |s|^2 with s = curl phi, phi zero outside and constant on each hole."""
+    """J from below: 2 integral R . s - |s|^2, s = curl phi, phi zero outside and constant on each hole."""
     number = np.zeros(len(on.nodes), dtype=np.int64)
     boundaries = on.boundary_loops()
     for i, loop in enumerate(boundaries):
@@ -240,7 +244,7 @@ def torsion_below(on: Plate) -> float:
 
 
 def shear_area_above(on: Plate, axis: int) -> float:
-    """A_Vx (axis 0) or A_Vy (axis 1) at nu = 0 from above: 1/A_V is at least 2 integral f chi - |grad chi|^2."""
+    """A_Vx (axis 0) or A_Vy (axis 1), nu = 0, from above: 1/A_V >= 2 integral f chi - |grad chi|^2."""
     f = on.points @ np.linalg.solve(np.array([[on.yy, on.xy], [on.xy, on.xx]]), np.eye(2)[axis])
     load = on.load(f)
     chi = np.zeros(len(on.nodes))

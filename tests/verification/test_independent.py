@@ -11,9 +11,19 @@ import pytest
 from fe_sections import channel, joined, triangular_cell
 from numpy.testing import assert_allclose
 from plain_fe import (
-    Plate, block, fan, graded, grid, rectilinear, rings, row, shear_area_above, shear_centre, torsion_above,
+    Plate,
+    block,
+    fan,
+    graded,
+    grid,
+    rectilinear,
+    rings,
+    row,
+    shear_area_above,
+    shear_centre,
+    torsion_above,
     torsion_below,
-)  # fmt: skip
+)
 
 import fe_models
 from fe_models import Interval
@@ -58,7 +68,7 @@ def overlap(interval: Interval, low: float, high: float) -> bool:
 
 
 def test_the_plain_program_on_a_square() -> None:
-    """Its own check: J of a square of side 2 is 2.2492 (Timoshenko and Goodier, 0.1406 x 16, six digits by series)."""
+    """Its own check: J of a square of side 2, 0.1406 x 16 (Timoshenko and Goodier), by the series."""
     lines = np.linspace(-1.0, 1.0, 7)
     plate = Plate(grid([rectilinear(lines, lines, lambda x, y: True)], 4))
     above, below = torsion_above(plate), torsion_below(plate)
@@ -144,8 +154,8 @@ def test_channel_by_both_programs() -> None:
 def test_shear_area_of_an_i_section(number: str, t: float) -> None:
     """Rows D540 and D542: midline b = 0.6, h = 1, V along the web, nu = 0; the row's solid is one-sided.
 
-    Its number (cubic elements, unrefined corners) is an upper bound of A_V, high by 1.3e-4 and 6e-4: the plain
-    program has a lower one, and fe_models' two-sided interval lies below both.
+    Its number (cubic elements) is an upper bound of A_V, high by 1.3e-4 and 6e-4: the plain program
+    has a lower one, and fe_models' two-sided interval lies below both.
     """
     rows = {r["id"]: r for r in json.loads(PUBLISHED.read_text(encoding="utf-8"))}
     printed = rows[number]["independent_value"]
@@ -155,7 +165,9 @@ def test_shear_area_of_an_i_section(number: str, t: float) -> None:
     area = fe_models.solve(joined(points, walls)).quantities["shear_area_y"]
     f = 1e-3 * t
     outstand, flange = graded(0.3 - t / 2, 0.1 * t, f, 2.0), graded(t, 0.1 * t, f, 2.0)
-    half = np.concatenate([-0.3 + (0.3 - t / 2) * outstand, -t / 2 + t / 2 * graded(t / 2, f, 0.5 * t, 2.0)[1:]])
+    half = np.concatenate(
+        [-0.3 + (0.3 - t / 2) * outstand, -t / 2 + t / 2 * graded(t / 2, f, 0.5 * t, 2.0)[1:]]
+    )
     xs = np.concatenate([half, -half[-2::-1]])
     web = t / 2 + (1 - t) * graded(1 - t, f, f, 2.0)
     ys = np.concatenate([-t / 2 + t * flange[:-1], web, 1 + t / 2 - t * flange[-2::-1]])

@@ -67,7 +67,7 @@ def finned_box(t: float) -> fe_models.Section:
 
 
 def test_shear_centre_of_the_sharp_channel() -> None:
-    """e_theory - e_FE = 0.0075 t^2 (b = 50, h = 100): second order; theory's 3 b^2/(6 b + h) = 18.75 is the limit."""
+    """e_theory - e_FE = 0.0075 t^2 (b = 50, h = 100): second order to 3 b^2/(6 b + h) = 18.75."""
     ts = np.array([10.0, 5.0, 2.5, 1.25, 0.625])
     lost = []
     for t in ts:
@@ -83,7 +83,7 @@ def test_shear_centre_of_the_sharp_channel() -> None:
 
 
 def test_bredt_of_the_square_box() -> None:
-    """J_FE / (b^3 t) - 1 = c t/b + ...: first order with sharp corners; rows D050 and D052 give c = 0.455, 0.51."""
+    """J_FE / (b^3 t) - 1 = c t/b + ...: first order; rows D050 and D052 give c = 0.455 and 0.51."""
     ts = np.array([10.0, 5.0, 2.0, 1.0, 0.5, 0.25])
     gained = []
     for t in ts:
@@ -113,10 +113,10 @@ def test_bredt_batho_of_several_cells(make: Callable[[float], fe_models.Section]
     [("channel", 2, 2), ("lipped channel, unequal lips", 2, 4), ("unequal angle", 2, 1)],
 )
 def test_open_sections_in_torsion(name: str, ends: int, corners: int) -> None:
-    """J_FE - sum L t^3/3 = (-0.10504 per end + 0.0725 - 2 x 0 per corner) t^4: first order in t/L.
+    """J_FE - sum L t^3/3 = (-0.10504 per end + 0.0725 per corner) t^4: first order in t/L.
 
-    End constant: rectangle series (0.10504); corner constant of row D16: k_L = 0.0725 of a right bend (midline
-    lengths to the corner). Both are exact for long walls, so the next order is exponentially small.
+    End constant: rectangle series (0.10504); corner constant of a right bend: row D16, k_L = 0.0725 with
+    midline lengths to the corner. Both hold for long walls; the next order is exponentially small.
     """
     constant = -0.10504 * ends + 0.0725 * corners
     ts, lost = np.array([5.0, 2.0, 1.0, 0.5]), []
@@ -124,7 +124,12 @@ def test_open_sections_in_torsion(name: str, ends: int, corners: int) -> None:
         theory, fe = both(lambda t: shape(name, 100.0 / t), t, 1e-7)
         plain = theory.require("torsion_constant")
         lost.append(fe.quantities["torsion_constant"].value / plain - 1.0)
-        assert_allclose((fe.quantities["torsion_constant"].value - plain) / t**4, constant, rtol=0, atol=2e-4 * (ends + corners))
+        assert_allclose(
+            (fe.quantities["torsion_constant"].value - plain) / t**4,
+            constant,
+            rtol=0,
+            atol=2e-4 * (ends + corners),
+        )
     assert (np.abs(slopes(ts, lost) - 1.0) < 1e-2).all()
 
 
@@ -143,7 +148,7 @@ def test_second_moments_and_area(name: str) -> None:
 
 
 def test_midline_warping_constant_is_zero_and_the_solids_is_not() -> None:
-    """Angle, tee, cruciform, square box, triangle: exactly zero on the midline, secondary warping in the solid."""
+    """Angle, tee, cruciform, square box, triangle: exactly zero on the midline, not in the solid."""
     for name in ("unequal angle", "angle, legs at 70 degrees", "tee", "cruciform", "square box",
                  "triangular cell, three thicknesses"):  # fmt: skip
         section = shape(name, 50.0)
@@ -157,10 +162,14 @@ def test_midline_warping_constant_is_zero_and_the_solids_is_not() -> None:
 
 @pytest.mark.parametrize(
     ("row", "legs"),
-    [("angle", [(100.0, 1.0), (60.0, 1.0)]), ("tee", [(40.0, 0.0), (40.0, 0.0), (100.0, 1.0)]), ("cruciform", [(50.0, 1.0)] * 4)],
+    [
+        ("angle", [(100.0, 1.0), (60.0, 1.0)]),
+        ("tee", [(40.0, 0.0), (40.0, 0.0), (100.0, 1.0)]),
+        ("cruciform", [(50.0, 1.0)] * 4),
+    ],
 )
 def test_secondary_warping_constant(row: str, legs: list[tuple[float, float]]) -> None:
-    """I_w of sections whose midlines meet in one point tends to sum t^3 L^3 / 36 over the legs, second order in t.
+    """I_w of legs that meet in one point tends to sum t^3 L^3 / 36, second order in t.
 
     Rows D350 (angle, t^3 (a^3 + b^3)/36) and D36 (tee, flange t^3 b^3/144: two legs of b/2 give the same).
     """
@@ -237,14 +246,17 @@ def test_shear_centre_and_warping_constant(make: Callable[[float], fe_models.Sec
 
 
 def test_a_wrong_term_would_show() -> None:
-    """The slopes can fail: leaving out one wall of the channel, or its corners counted twice, changes them."""
+    """The slopes can fail: a flange longer by half a thickness changes them."""
     ts = np.array([5.0, 2.5, 1.25])
     wrong = []
     for t in ts:
         section = plain_channel(t)
         bent = polyline([(50.0, 100.0), (0.0, 100.0), (0.0, 0.0), (50.5, 0.0)], t)
         theory = beam_theory.solve(theory_section(bent))
-        wrong.append(fe_models.solve(section, 1e-6).quantities["shear_centre_x"].value - theory.require("shear_centre_x"))
+        wrong.append(
+            fe_models.solve(section, 1e-6).quantities["shear_centre_x"].value
+            - theory.require("shear_centre_x")
+        )
     with pytest.raises(AssertionError):
         assert (np.abs(slopes(ts, wrong) - 2.0) < 0.05).all()
     angle = joined({"a": (40.0, 0.0), "o": (0.0, 0.0), "b": (0.0, 40.0)}, [("a", "o", 1.0), ("o", "b", 1.0)])
