@@ -50,7 +50,7 @@ def levels_block(result: Result) -> Table | None:
 
 
 def level_lines(result: Result) -> Iterator[str]:
-    """Where the corrected level has no torsion constant, or one that is no nearer to FE than the midline's."""
+    """Where the corrected level has no torsion constant, or one farther from FE than the midline's."""
     row = next((row for row in result.quantities if row.name == "torsion_constant"), None)
     if row is None:
         return

@@ -70,14 +70,15 @@ class Interval:
         return replace(self, low=self.low - by, high=self.high + by)
 
     def meet(self, other: Interval) -> Interval:
-        """Intersection of two bounds for one quantity; this one where they are not bounds."""
+        """Intersection of two bounds for one quantity; this one where they are not bounds.
+
+        Bounds that exclude each other give an interval with low above high, which a self-check finds.
+        """
         if self.low is None or other.low is None or self.high is None or other.high is None:
             return self
         if not self.basis.startswith("bound") or not other.basis.startswith("bound"):
             return self
         low, high = max(self.low, other.low), min(self.high, other.high)
-        if low > high:
-            return self
         return Interval(0.5 * (low + high), low, high, self.basis, self.reason, self.with_nu)
 
 

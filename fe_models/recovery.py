@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
@@ -54,12 +55,12 @@ class _Chords:
     weights: Array
 
 
-def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, *, open_wall: bool) -> FlowSamples:
+def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, closing: Array) -> FlowSamples:
     """Flow at distances ``at`` [L] along a wall, inside its strip.
 
-    The static field gives the value. In a wall of a cell its error is what it and the kinematic field
-    disagree on, the closing flow; in an open wall it follows from equilibrium alone and only round-off
-    remains.
+    The static field gives the value. In a wall of a cell its error is that of the closing flow,
+    ``closing`` (3,); in an open wall it follows from equilibrium alone, ``closing`` is nothing and only
+    round-off remains.
 
     Raises
     ------
@@ -74,11 +75,19 @@ def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, *, open_wall: 
     static, _ = stresses(fields, chords.samples)
     parts = np.sum(chords.weights * np.sum(static * chords.along, axis=-1), axis=2)
     values = np.array([np.bincount(chords.places, part, len(s)) for part in parts])
-    scale = np.abs(values).max(axis=1, keepdims=True)
-    errors = np.full(values.shape, ROUND_OFF) * scale
-    if not open_wall:
-        errors = errors + np.abs(_disagreement(fields, strip))[:, None]
-    return FlowSamples(values, errors)
+    # round-off is that of the stress through the thickness, whose integral may vanish
+    scale = np.abs(static).max(axis=(1, 2, 3)) * max(strip.band.thickness)
+    errors = np.broadcast_to((ROUND_OFF * scale + closing)[:, None], values.shape)
+    return FlowSamples(values, np.array(errors))
+
+
+def closing_error(fields: Fields, strips: Iterable[StripMesh]) -> Array:
+    """Estimated error of the closing flows of each unit load, (3,): the largest disagreement of any strip.
+
+    Walls share the closing flows of their cells, and in one wall errors may cancel by chance.
+    """
+    found = [np.abs(_disagreement(fields, strip)) for strip in strips]
+    return np.asarray(np.max(found, axis=0)) if found else np.zeros(3)
 
 
 def _disagreement(fields: Fields, strip: StripMesh) -> Array:

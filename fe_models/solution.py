@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -23,7 +24,7 @@ from .outline import Outline, outline
 from .picture import PictureMesh, picture_mesh
 from .poisson import PoissonFlexure, poisson_flexure
 from .quantities import quantities
-from .recovery import FlowSamples, flow_samples
+from .recovery import FlowSamples, closing_error, flow_samples
 from .section import Section
 from .solid import Solid, outline_of_solid
 from .space import space
@@ -93,7 +94,8 @@ class Solution:
         """
         strip = self._strip(wall)
         at = np.asarray(fractions, dtype=float) * strip.band.length
-        return flow_samples(self.fields, strip, at, open_wall=wall in self.open_walls)
+        closing = np.zeros(3) if wall in self.open_walls else self.closing_error
+        return flow_samples(self.fields, strip, at, closing)
 
     def face_stress(self, wall: str, fractions: ArrayLike, actions: Actions) -> FaceStress:
         """Direct and shear stress on both faces of a wall at fractions of it, for stress resultants.
@@ -124,6 +126,12 @@ class Solution:
         if with_nu and self.poisson is None:
             raise ValueError("the section has no Poisson's ratio")
         return point_stress(self.fields, np.asarray(places), actions, self.poisson if with_nu else None)
+
+    @cached_property
+    def closing_error(self) -> Array:
+        """Estimated error of the flows of walls in cells for each unit load, (3,)."""
+        strips = self.fields.space.mesh.strips
+        return closing_error(self.fields, [s for name, s in strips.items() if name not in self.open_walls])
 
     @property
     def shear_centre(self) -> Array:
@@ -234,6 +242,9 @@ def _refinement(
         if worst <= 1.0 or solved.unknowns > MOST_UNKNOWNS or passes == MOST_PASSES:
             break
         levels = _refined(solved, levels, worst)
+        if passes % 2 == 0:
+            # cuts are shared, so the number of layers is one for all parts
+            density = replace(density, layers=2 * density.layers, first=0.5 * density.first)
         try:
             solved = _fields(solid, density, levels)
         except SolveError:

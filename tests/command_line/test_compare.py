@@ -327,7 +327,7 @@ def test_judged_level_decides_the_verdicts(run, tmp_path, level):
 
 
 def test_new_features_all_at_once(run, tmp_path):
-    """Arc, taper, boom, share, second material, corners and every resultant in one file."""
+    """Arc, taper, boom, second material, corners and every resultant in one file."""
     path = tmp_path / "all.toml"
     path.write_text(EVERYTHING)
     ran = run("compare", path, "--json", "-")
@@ -370,7 +370,6 @@ material = "steel"
 name = "flange"
 path = ["low", "edge"]
 thickness = { from = 3, to = 2 }
-direct_share = 0.6
 [[walls]]
 name = "lip"
 path = ["edge", "lip"]

@@ -138,3 +138,22 @@ def test_lower_accuracy_costs_less() -> None:
     cheap, dear = solve(section, 1e-3), solve(section, 1e-8)
     assert cheap.mesh.unknowns < 0.5 * dear.mesh.unknowns
     assert reached(dear) < 1e-3 * reached(cheap)
+
+
+@pytest.mark.parametrize("name", ["torsion_constant", "shear_centre_x", "shear_centre_y"])
+def test_each_promise_counts(name: str, monkeypatch: pytest.MonkeyPatch) -> None:
+    """One interval of the three wider than asked, the others narrow: not met."""
+    real = solution.quantities
+
+    def widened(*args: object) -> dict[str, Interval]:
+        made = real(*args)
+        scale = made[name].value if name == "torsion_constant" else 130.43  # its larger overall dimension
+        return made | {name: made[name].padded(2e-5 * scale)}
+
+    monkeypatch.setattr(solution, "MOST_PASSES", 1)
+    assert solve(lopsided_cell(), 1e-5).met
+    monkeypatch.setattr(solution, "quantities", widened)
+    found = solve(lopsided_cell(), 1e-5)
+    assert not found.met
+    assert "NOT REACHED" in found.accuracy_note
+    assert_allclose(reached(found), 2e-5, rtol=0.5)

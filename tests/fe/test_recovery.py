@@ -115,7 +115,9 @@ def test_open_walls_follow_from_statics(name: str, wall: str, share: float) -> N
     for part in parts:
         assert_allclose(leaving(solution, part, cuts)[:2], needed(solution, part), rtol=0, atol=1e-11)
     flows = solution.flow_at(*cuts[0])
-    peak = np.abs(solution.flow_at(wall, np.linspace(*solution.strips[wall], 9)).values).max(axis=1)
+    # round-off goes with the section's flow, not with that of a wall that carries none
+    ranges = {w: np.linspace(*strip, 9) for w, strip in solution.strips.items() if strip is not None}
+    peak = np.max([np.abs(solution.flow_at(w, at).values).max(axis=1) for w, at in ranges.items()], axis=0)
     assert (flows.errors[:2, 0] <= 1e-9 * peak[:2]).all()
     assert abs(flows.values[2, 0]) <= 1e-12 * 6.0 / solution.quantities["torsion_constant"].value * 1e4
 

@@ -77,16 +77,18 @@ def test_lines_arcs_and_circles_in_any_order(tmp_path: Path) -> None:
 def test_mirrored_entities(tmp_path: Path) -> None:
     """Extrusion (0, 0, -1): the entity's own x axis points left."""
     document, space = drawing()
-    for add, args in ((space.add_arc, ((-2, 1), 3, 30, 150)), (space.add_circle, ((-2, 2), 1))):
-        add(*args, dxfattribs={"extrusion": (0, 0, -1)})
-    c = 3 * math.cos(math.radians(30))
-    space.add_line((2 - c, 2.5), (2 + c, 2.5))
-    rings = dxf_outline(save(document, tmp_path), "mm").rings
-    sweep = math.radians(120)
-    assert len(rings) == 2
-    outer = max(rings, key=lambda r: np.ptp(np.array(r.points), axis=0).max())
+    mirrored = {"extrusion": (0, 0, -1)}
+    space.add_arc((-2, 1), 3, 20, 100, dxfattribs=mirrored)
+    ends = [(2 - 3 * math.cos(math.radians(a)), 1 + 3 * math.sin(math.radians(a))) for a in (20, 100)]
+    space.add_line(*ends)
+    space.add_circle((-0.5, 3), 0.2, dxfattribs=mirrored)
+    drawn = dxf_outline(save(document, tmp_path), "mm")
+    outer = max(drawn.rings, key=lambda r: float(np.ptp(np.array(r.points), axis=0).max()))
+    assert_allclose(sorted(outer.points), sorted(ends), rtol=1e-12)
+    sweep = math.radians(80)
     assert_allclose(area(outer), 4.5 * (sweep - math.sin(sweep)), rtol=1e-12)
-    assert_allclose(np.array(outer.points)[:, 0].sum(), 4.0, rtol=1e-12)
+    (hole,) = (r for r in drawn.rings if r is not outer)
+    assert_allclose(np.array(hole.points).mean(axis=0), (0.5, 3.0), rtol=1e-12)
 
 
 @pytest.mark.parametrize("error", [1e-2, 1e-4])

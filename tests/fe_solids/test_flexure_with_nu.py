@@ -30,10 +30,10 @@ def test_circle(nu: float, name: str) -> None:
 
 def test_ellipses() -> None:
     """Semi-axis 2 along the load, then across it."""
-    line = ellipse(2.0, 1.0, 1e-6)
+    line = ellipse(2.0, 1.0, 1e-5)
     s = solved(line, accuracy=1e-6, nu=0.3)
     assert_allclose(s.poisson.mean_coefficient[0], row("B10C")["value"], rtol=row("B10C")["tolerance"])
-    at = [(0.0, 0.0), (0.0, 1.0 - 2e-6)]
+    at = [(0.0, 0.0), (0.0, 1.0 - 1e-5)]
     along = s.stress_at(at, Actions(shear=(1.0, 0.0)), with_nu=True).shear[:, 0]
     assert_allclose(along[0], row("B10T")["value"], rtol=row("B10T")["tolerance"])
     assert_allclose(along[1], row("B10E")["value"], rtol=row("B10E")["tolerance"])

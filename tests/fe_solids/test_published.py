@@ -22,8 +22,8 @@ def disc(radius: float = 1.0) -> ClosedLine:
 
 
 def test_ellipse() -> None:
-    """Arcs within 1e-6 of the ellipse: J is monotone in the domain, so (1 +- d/b)^4 bounds the ellipse's."""
-    r, d = row("A01"), 1e-6
+    """Arcs within 1e-5 of the ellipse: J is monotone in the domain, so (1 +- d/b)^4 bounds the ellipse's."""
+    r, d = row("A01"), 1e-5
     j = solved(ellipse(2.0, 1.0, d)).quantities["torsion_constant"]
     assert j.low * (1 - d) ** 4 <= r["value"] <= j.high * (1 + d) ** 4
     assert_allclose(j.value, r["value"], rtol=r["tolerance"])
@@ -39,10 +39,10 @@ def test_ellipse_in_short_lines() -> None:
 
 
 def test_hollow_ellipse() -> None:
-    s = solved(ellipse(2.0, 1.0, 1e-6), ellipse(1.2, 0.6, 1e-6))
+    s = solved(ellipse(2.0, 1.0, 1e-5), ellipse(1.2, 0.6, 1e-5))
     r = row("A04")
     assert_allclose(s.quantities["torsion_constant"].value, r["value"], rtol=r["tolerance"])
-    stress = s.stress_at([(0.0, 1.0 - 1e-6)], TORQUE).magnitude[0]
+    stress = s.stress_at([(0.0, 1.0 - 1e-5)], TORQUE).magnitude[0]
     assert_allclose(stress, row("A05")["value"], rtol=row("A05")["tolerance"])
 
 

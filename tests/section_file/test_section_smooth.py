@@ -5,6 +5,7 @@ from __future__ import annotations
 import cmath
 import math
 from collections.abc import Callable
+from itertools import pairwise
 
 import pytest
 from numpy.testing import assert_allclose
@@ -49,7 +50,7 @@ def runs(places: list[Place]) -> list[tuple[complex, complex, float]]:
 )
 def test_tangents_meet_everywhere(places: list[Place]) -> None:
     arcs = runs(places)
-    for (_, before, _), (after, _, _) in zip(arcs, arcs[1:], strict=False):
+    for (_, before, _), (after, _, _) in pairwise(arcs):
         assert_allclose(abs(before - after), 0.0, rtol=0, atol=1e-12)
     if places[0] == places[-1]:
         assert_allclose(abs(arcs[-1][1] - arcs[0][0]), 0.0, rtol=0, atol=1e-12)

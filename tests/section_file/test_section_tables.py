@@ -88,7 +88,7 @@ FAULTS = [
     ("a short row", "name;torque\na\n", "tables.loads: must be a table with the 2 columns", "1 columns"),
     ("both marks", "name;torque;axial\na;3.5;4,5\n", "tables.loads: must be a table", "points"),
     ("half a place", "name;shear_y;through_x\na;3;4\n", "tables.loads: must be a table with both", "one of"),
-    ("two places", "name;shear_y;through;through_x;through_y\na;3;b;1;2\n", "tables.loads: must be", "besides"),
+    ("two places", "name;shear_y;through;through_x;through_y\na;3;b;1;2\n", "tables.loads", "besides"),
     ("no row", "name;torque\n", "tables.loads: must be a table of at least one load", "no row"),
     ("an empty file", "", "tables.loads: must be", "an empty file"),
     ("a binary file", b"name\0", "tables.loads: must be UTF-8 text", "binary"),
