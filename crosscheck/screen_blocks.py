@@ -144,20 +144,28 @@ def restrained_line(result: Result) -> str | None:
 
 
 def table_block(table: ResultTable, width: int) -> RenderableType:
-    """A table for the screen: numbers with five digits, remarks left to the CSV, columns without content
-    too."""
-    used = [
-        i
-        for i, column in enumerate(table.columns)
-        if column not in ("remark", "words", "normaliser") and any(row[i] is not None for row in table.rows)
-    ]
+    """A table for the screen: numbers are never broken; the last columns go where room is short."""
+    filled = {
+        name: [_cell(row[i]) for row in table.rows]
+        for i, name in enumerate(table.columns)
+        if any(row[i] is not None for row in table.rows)
+    }
+    names = [name for name in table.shown if name in filled]
+    least = {name: max(_least_width(cell) for cell in filled[name]) for name in names}
+    while len(names) > 1 and sum(least[name] + 1 for name in names) > width:
+        names.pop()
     shown = Table(box=None, padding=(0, 1, 0, 0), header_style="dim", pad_edge=False, width=width)
-    for i in used:
-        numeric = any(isinstance(row[i], float) for row in table.rows)
-        shown.add_column(table.columns[i], justify="right" if numeric else "left", overflow="fold")
-    for row in table.rows:
-        shown.add_row(*(Text(_cell(row[i])) for i in used))
+    for name in names:
+        numeric = any(isinstance(row[table.columns.index(name)], float) for row in table.rows)
+        shown.add_column(name, justify="right" if numeric else "left", min_width=least[name], overflow="fold")
+    for row in zip(*(filled[name] for name in names), strict=True):
+        shown.add_row(*(Text(cell) for cell in row))
     return Group(Text(), Text(table.title, style="bold"), shown)
+
+
+def _least_width(cell: str) -> int:
+    """Columns that a cell needs without breaking a word; very long words may break."""
+    return min(max(map(len, cell.split()), default=0), 16)
 
 
 def _cell(cell: Cell) -> str:

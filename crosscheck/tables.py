@@ -16,12 +16,16 @@ Cell = str | float | None
 
 @dataclass(frozen=True)
 class ResultTable:
-    """Rows of words and numbers under their headings; None is an empty cell."""
+    """Rows of words and numbers under their headings; None is an empty cell.
+
+    ``shown``: the columns that a screen has room for; CSV has all.
+    """
 
     name: str
     title: str
     columns: tuple[str, ...]
     rows: tuple[tuple[Cell, ...], ...]
+    shown: tuple[str, ...]
 
 
 def levels_table(result: Result) -> ResultTable:
@@ -43,7 +47,8 @@ def levels_table(result: Result) -> ResultTable:
         "quantity", "words", "load", "unit", *LEVELS, "FE", "FE low", "FE high", *differences, "normaliser",
         "remark",
     )  # fmt: skip
-    return ResultTable("levels", "Levels of theory beside FE", columns, tuple(rows))
+    shown = ("words", "load", *LEVELS, "FE", "unit")
+    return ResultTable("levels", "Levels of theory beside FE", columns, tuple(rows), shown)
 
 
 def stiffness_table(result: Result) -> ResultTable:
@@ -51,9 +56,8 @@ def stiffness_table(result: Result) -> ResultTable:
     columns = ("name", "symbol", "words", "unit", *LEVELS, "FE", "FE low", "FE high", "remark")
     rows = tuple(_property_cells(row) for row in (*result.stiffness, *result.indicators))
     per = " per unit modulus (E = G = 1)" if result.per_modulus else ""
-    return ResultTable(
-        "stiffness", f"Stiffness for a beam model{per}, offsets from the origin", columns, rows
-    )
+    title = f"Stiffness for a beam model{per}, offsets from the origin"
+    return ResultTable("stiffness", title, columns, rows, ("symbol", "words", *LEVELS, "FE", "unit"))
 
 
 def _property_cells(row: PropertyRow) -> tuple[Cell, ...]:
@@ -76,7 +80,9 @@ def envelope_table(result: Result) -> ResultTable:
         (entry.kind, entry.wall, entry.unit, *_cells(entry.theory), *_cells(entry.fe), entry.difference)
         for entry in result.wall_envelopes
     )
-    return ResultTable("envelope", "Largest over all loads, wall by wall, at the probes", columns, rows)
+    title = "Largest over all loads, wall by wall, at the probes"
+    shown = ("kind", "wall", "hand", "hand load", "FE", "FE load", "unit")
+    return ResultTable("envelope", title, columns, rows, shown)
 
 
 def probes_table(result: Result) -> ResultTable:
@@ -88,7 +94,19 @@ def probes_table(result: Result) -> ResultTable:
         ends = (entry.theory_low, entry.theory_high, entry.fe_low, entry.fe_high)
         cells = [cell for end in ends for cell in _cells(end)[:2]]
         rows.append((entry.kind, entry.wall, entry.s, entry.label, entry.unit, *cells))
-    return ResultTable("probes", "Lowest and highest over all loads, probe by probe", columns, tuple(rows))
+    title = "Lowest and highest over all loads, probe by probe"
+    shown = (
+        "kind",
+        "wall",
+        "s",
+        "hand low",
+        "hand low load",
+        "hand high",
+        "hand high load",
+        "FE low",
+        "FE high",
+    )
+    return ResultTable("probes", title, columns, tuple(rows), shown)
 
 
 def _cells(found: Governing | None) -> tuple[Cell, ...]:
@@ -114,8 +132,10 @@ def stresses_table(result: Result) -> ResultTable:
             for i, s in enumerate(wall.s):
                 values = (column[i] for column in columns)
                 rows.append((wall.load, wall.wall, face, s, wall.labels[i], wall.unit, *values))
-    columns_shown = ("load", "wall", "face", "s", "label", "unit", *heads)
-    return ResultTable("stresses", "Stress at the real faces, at the probes", columns_shown, tuple(rows))
+    all_columns = ("load", "wall", "face", "s", "label", "unit", *heads)
+    title = "Stress at the real faces, at the probes"
+    shown = ("load", "wall", "face", "s", "hand direct", "FE direct", "hand von Mises", "FE von Mises")
+    return ResultTable("stresses", title, all_columns, tuple(rows), shown)
 
 
 TABLES: Mapping[str, Callable[[Result], ResultTable]] = {

@@ -15,9 +15,11 @@ from .sampling import Samples, stresses
 from .space import strip_coordinates
 
 # Gauss points on each element's part of a section line: exact for straight strips up to order 6.
-LINE_POINTS = 4
+LINE_POINTS = 6
 # Share of the largest flow kept for round-off.
 ROUND_OFF = 1e-10
+# The same for curved strips, where a section line ends a little off the elements' interpolated faces.
+CURVED = 1e-6
 
 
 @dataclass(frozen=True)
@@ -77,7 +79,8 @@ def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, closing: Array
     values = np.array([np.bincount(chords.places, part, len(s)) for part in parts])
     # round-off is that of the stress through the thickness, whose integral may vanish
     scale = np.abs(static).max(axis=(1, 2, 3)) * max(strip.band.thickness)
-    errors = np.broadcast_to((ROUND_OFF * scale + closing)[:, None], values.shape)
+    share = ROUND_OFF if strip.band.straight else CURVED
+    errors = np.broadcast_to((share * scale + closing)[:, None], values.shape)
     return FlowSamples(values, np.array(errors))
 
 
@@ -109,22 +112,28 @@ def _disagreement(fields: Fields, strip: StripMesh) -> Array:
 
 
 def _chords(strip: StripMesh, s: Array) -> _Chords:
-    """Chords of the section lines at distances s."""
+    """Chords of the section lines at distances s.
+
+    Triangles of a straight strip are straight in (s, offset), those of a curved one in (s, offset over half
+    the thickness): the coordinates in which their nodes were placed.
+    """
     columns = np.clip(np.searchsorted(strip.s, s, side="right") - 1, 0, len(strip.s) - 2)
     corner_s, corner_n = strip_coordinates(strip.s, strip.n)
+    scale = np.ones(len(s)) if strip.band.straight else strip.band.half(s)
+    if strip.band.straight:
+        corner_n = corner_n * strip.band.half(corner_s)
     per = strip.triangles.shape[1]
     rows = (columns[:, None] * per + np.arange(per)).ravel()
     place = np.repeat(np.arange(len(s)), per)
     cs, cn, at_s = corner_s[rows], corner_n[rows], np.repeat(s, per)
     low, high = _range(cs, cn, at_s)
-    kept = high - low > 1e-12
+    kept = high - low > 1e-12 * np.abs(corner_n).max()
     rows, place, cs, cn = rows[kept], place[kept], cs[kept], cn[kept]
     at_s, low, high = at_s[kept], low[kept], high[kept]
     x, w = np.polynomial.legendre.leggauss(LINE_POINTS)
     n = low[:, None] + 0.5 * (x + 1.0) * (high - low)[:, None]
     reference = in_triangles(cs, cn, np.broadcast_to(at_s[:, None], n.shape), n)
-    half = strip.band.half(at_s)
-    weights = 0.5 * w * ((high - low) * half)[:, None]
+    weights = 0.5 * w * ((high - low) * scale[place])[:, None]
     along = strip.band.direction(np.broadcast_to(at_s[:, None], n.shape))
     return _Chords(Samples(strip.triangles.ravel()[rows], reference), place, along, weights)
 

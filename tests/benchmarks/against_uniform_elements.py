@@ -4,8 +4,9 @@ Run by hand (needs the general-purpose library scikit-fem):
 
     python tests/benchmarks/against_uniform_elements.py [depth over thickness] [relative error ...]
 
-The uniform elements give the kinematic torsion constant only. Ours is solved whole: both bounds of J, flexure in
-both directions, both shear-centre coordinates and both shear areas. Times are the median of five pairs in one run.
+The uniform elements give the kinematic torsion constant only. Ours is solved whole: both bounds of J, flexure
+in both directions, both shear-centre coordinates and both shear areas. Times are the median of five pairs in
+one run.
 """
 
 from __future__ import annotations

@@ -2,13 +2,11 @@
 
 from __future__ import annotations
 
-import pickle
 from collections.abc import Callable
 from pathlib import Path
 
 import pytest
 
-from crosscheck.faults import Fault, SectionFaults
 from crosscheck.section_file import read_section
 
 Lines = Callable[..., list[str]]
@@ -335,27 +333,6 @@ def test_one_line(fault_lines: Lines, text: str, key: str, words: str) -> None:
     assert lines == [f"{key}: {words}"]
 
 
-NOT_BUILT_LINES = [
-    (GOOD + 'line = "left face"\n', "walls[0].line"),
-    (GOOD + 'seen_by = "fe"\n', "walls[0].seen_by"),
-    (GOOD + '[[booms]]\nat = "a"\narea = 120\nseen_by = "theory"\n', "booms[0].seen_by"),
-    (GOOD + '[[stated]]\nquantity = "area"\nvalue = 3\n', "stated"),
-    (GOOD + '[mirror]\nabout = "x"\n', "mirror"),
-    (GOOD + '[tables]\npoints = "p.csv"\n', "tables.points"),
-    (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
-    (GOOD + "[allowables]\nshear = 100\n", "allowables"),
-    (GOOD + '[document]\nauthor = "x"\n', "document"),
-    (GOOD + "[outline]\nboundary = [[0, 0], [1, 0], [0, 1]]\n", "outline"),
-]
-
-
-@pytest.mark.parametrize(("text", "key"), NOT_BUILT_LINES, ids=[row[1] for row in NOT_BUILT_LINES])
-def test_reserved_keys_are_not_supported_yet(fault_lines: Lines, text: str, key: str) -> None:
-    (line,) = fault_lines(text)
-    assert line.startswith(f"{key}: must be ")
-    assert "not supported yet" in line
-
-
 def test_all_faults_at_once_in_file_order(fault_lines: Lines) -> None:
     text = (
         'tittle = "x"\n[parameters]\nt = "1 / 0"\nu = "t"\n[points]\na = [0, 0]\nb = [true, 0]\n'
@@ -376,46 +353,3 @@ def test_all_faults_at_once_in_file_order(fault_lines: Lines) -> None:
         "loads[0].through",
         "criteria.area",
     ]
-
-
-@pytest.mark.parametrize(
-    ("override", "key", "words"),
-    [
-        ("tt = 3", 'set "tt = 3"', 'must be a parameter of [parameters], got "tt"; did you mean "t"?'),
-        ("t 3", 'set "t 3"', 'must be of the form "name = value", got "t 3"'),
-        ("t = 1 / 0", 'set "t = 1 / 0"', f'must be {ARITHMETIC}, got "1 / 0"; division by zero'),
-    ],
-)
-def test_override_faults(fault_lines: Lines, override: str, key: str, words: str) -> None:
-    text = GOOD.replace("thickness = 2", 'thickness = "t"') + "[parameters]\nt = 2\n"
-    assert fault_lines(text, [override]) == [f"{key}: {words}"]
-
-
-def test_override_of_a_file_without_parameters(fault_lines: Lines) -> None:
-    assert fault_lines(GOOD, ["t = 2"]) == [
-        'set "t = 2": must be left out: the file has no [parameters], got "t"'
-    ]
-
-
-def test_control_sequences_do_not_reach_the_terminal(fault_lines: Lines) -> None:
-    (line,) = fault_lines(GOOD + '"\\u001b[31m" = 1\n')
-    assert line.startswith('walls[0]."\\x1b[31m": must be a known key of [[walls]]')
-
-
-def test_names_are_printable(fault_lines: Lines) -> None:
-    (line,) = fault_lines(GOOD + 'name = "a\\nb"\n')
-    assert line.startswith("walls[0].name: must be 1 to 60 printable characters on one line")
-
-
-def test_many_faults_are_counted(fault_lines: Lines) -> None:
-    lines = fault_lines(GOOD + "".join(f"k{n} = 1\n" for n in range(150)))
-    assert len(lines) == 101
-    assert lines[-1] == "and 50 more faults"
-
-
-def test_faults_travel_between_processes() -> None:
-    fault = Fault("lipped.toml", "walls[2].thickness", "-1.2", "> 0")
-    assert str(fault) == "lipped.toml: walls[2].thickness: must be > 0, got -1.2"
-    again = pickle.loads(pickle.dumps(SectionFaults([fault], 3)))
-    assert again.faults == (fault,)
-    assert again.lines == (fault.text, "lipped.toml: and 3 more faults")
