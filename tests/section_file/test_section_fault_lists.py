@@ -1,4 +1,4 @@
-"""Overrides from the command line, faults counted and carried, and text that must not reach a terminal raw."""
+"""Overrides from the command line, faults counted and carried, text that must not reach a terminal raw."""
 
 from __future__ import annotations
 
