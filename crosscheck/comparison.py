@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 import beam_theory
 import fe_models
 from crosscheck import models
+from crosscheck.causes import causes, stations
 from crosscheck.drawing import drawing_of
 from crosscheck.hand_sheet import hand_sheets
 from crosscheck.levels import Levels, solve_levels
@@ -109,7 +110,7 @@ def join(
         flows=loads.flows,
         theory_peaks=loads.theory_peaks,
         stated=(),
-        causes=(),
+        causes=causes(stations(section, levels.solutions, fe, accuracy), rows),
         working=sheets,
         mesh=MeshResult(fe.mesh.order, fe.mesh.unknowns, fe.mesh.elements, fe.mesh.strips, fe.mesh.joints),
         checks=(*_theory_checks(levels), *_checks("FE", fe.checks)),

@@ -199,13 +199,34 @@ def json_text(results: Sequence[Result]) -> str:
     ValueError
         Where a number is not finite: JSON has no word for it, and no result should hold it.
     """
-    content: Mapping[str, Any]
-    if len(results) == 1:
-        content = document(results[0])
-    else:
-        content = {"schema": SEVERAL_SCHEMA, "results": [document(result) for result in results]}
-    _refuse_not_finite(content, "result")
-    return json.dumps(content, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
+    documents = [document(result) for result in results]
+    try:
+        if len(documents) == 1:
+            return f"{_record_a_line(documents[0])}\n"
+        inside = ",\n".join(_record_a_line(each) for each in documents)
+        return f'{{\n "schema": "{SEVERAL_SCHEMA}",\n "results": [\n{inside}\n]\n}}\n'
+    except ValueError:
+        for number, each in enumerate(documents):
+            _refuse_not_finite(each, "result" if len(documents) == 1 else f"results[{number}]")
+        raise
+
+
+def _record_a_line(content: Mapping[str, Any]) -> str:
+    """A mapping as JSON, a line for every key and every record of a list, so that runs can be compared."""
+    return "{\n" + ",\n".join(f" {_text(key)}: {_value(value)}" for key, value in content.items()) + "\n}"
+
+
+def _value(value: Any) -> str:
+    """A value on one line; a list of records, and a mapping of such lists, with a line for each record."""
+    if isinstance(value, list) and value and all(isinstance(entry, Mapping) for entry in value):
+        return "[\n" + ",\n".join(f"  {_text(entry)}" for entry in value) + "\n ]"
+    if isinstance(value, Mapping) and any(isinstance(entry, list) and entry for entry in value.values()):
+        return "{" + ", ".join(f"{_text(key)}: {_value(entry)}" for key, entry in value.items()) + "}"
+    return _text(value)
+
+
+def _text(value: Any) -> str:
+    return json.dumps(value, ensure_ascii=False, allow_nan=False)
 
 
 def _refuse_not_finite(content: Any, where: str) -> None:

@@ -13,7 +13,14 @@ from crosscheck.faults import one_line
 from crosscheck.flow_comparison import NO_FLOW_REASON as NO_FLOW
 from crosscheck.quantities import QUANTITIES
 from crosscheck.result import FeValue, QuantityResult, Result, Verdict
-from crosscheck.screen_blocks import governing_lines, level_lines, levels_block, restrained_line, table_block
+from crosscheck.screen_blocks import (
+    cause_lines,
+    governing_lines,
+    level_lines,
+    levels_block,
+    restrained_line,
+    table_block,
+)
 from crosscheck.tables import ResultTable
 from crosscheck.wording import (
     FEW_LOADS,
@@ -263,6 +270,7 @@ def _notes(
 ) -> Iterator[tuple[str, str]]:
     """Lines under the table with their style."""
     yield from _factor_notes(rows)
+    yield from ((line, "") for line in cause_lines(result))
     yield from _wall_note(result)
     yield from ((line, "dim") for line in level_lines(result))
     yield from ((line, "") for line in governing_lines(result))

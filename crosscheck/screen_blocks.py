@@ -13,12 +13,15 @@ from crosscheck.faults import one_line
 from crosscheck.load_results import WallEnvelope
 from crosscheck.result import LEVELS, QuantityResult, Result
 from crosscheck.tables import Cell, ResultTable
-from crosscheck.wording import difference_text, name_of, number_text
+from crosscheck.wording import difference_text, name_of, number_text, worst_first
 
 # Quantities shown at every level: those at which the levels differ most.
 LEVEL_ROWS = 4
 # Levels nearer to each other than this share of the criterion say the same.
 SAME = 0.02
+# Differences above this share of their criterion have their causes told, at most so many.
+WORTH_A_CAUSE = 0.5
+MOST_CAUSES = 3
 KIND_WORDS = {"flow": "flow", "direct": "direct stress", "von_mises": "von Mises stress"}
 NAMED = 3
 
@@ -65,6 +68,21 @@ def level_lines(result: Result) -> Iterator[str]:
             f"{level_text(row, 'corrected', result.length_unit)} against "
             f"{level_text(row, 'midline', result.length_unit)}."
         )
+
+
+def cause_lines(result: Result) -> Iterator[str]:
+    """Why the largest differences are there: their steps, the largest first."""
+    told_of = 0
+    for row in worst_first(result.quantities):
+        steps = [c for c in result.causes if (c.quantity, c.load) == (row.name, row.load)]
+        if not steps or abs(row.judged_difference or 0.0) < WORTH_A_CAUSE * row.criterion:
+            continue
+        told_of += 1
+        if told_of > MOST_CAUSES:
+            return
+        ranked = sorted(steps, key=lambda c: -abs(c.change))
+        told = "; ".join(f"{c.step} {c.change * 100:+.2g} %" for c in ranked if abs(c.change) >= 5e-5)
+        yield one_line(f"Why, {name_of(row)}: {told}", 300)
 
 
 def spread(row: QuantityResult) -> float:

@@ -7,6 +7,7 @@ from matplotlib.figure import Figure
 from crosscheck.file_names import free_name
 from crosscheck.pictures.both_sides import both_sides_picture
 from crosscheck.pictures.canvas import picture_bytes
+from crosscheck.pictures.causes import causes_picture
 from crosscheck.pictures.criteria import criteria_picture
 from crosscheck.pictures.flow import flow_picture
 from crosscheck.pictures.joints import joints_picture
@@ -17,6 +18,7 @@ from crosscheck.result import Result
 
 __all__ = [
     "both_sides_picture",
+    "causes_picture",
     "criteria_picture",
     "every_picture",
     "flow_picture",
@@ -57,6 +59,7 @@ def figures(result: Result, width_mm: int) -> dict[str, Figure]:
         "section": section_picture(result, width_mm),
         "both_sides": both_sides_picture(result, width_mm),
         "criteria": criteria_picture(result, width_mm),
+        "causes": causes_picture(result, width_mm),
     }
     for load in (*UNIT_LOADS, *(line.name for line in result.require_drawing().loads if line.has_shear)):
         drawn[free_name(f"flow_{load}", drawn)] = flow_picture(result, load, width_mm)

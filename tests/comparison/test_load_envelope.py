@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
@@ -110,3 +111,18 @@ def test_tables_and_json_have_the_same_rows(result):
     assert len(probes_table(result).rows) == len(document(result)["envelope"]["probes"])
     for table in (envelope_table(result), probes_table(result)):
         assert all(len(row) == len(table.columns) for row in table.rows)
+
+
+def test_many_loads_do_not_multiply_the_probes():
+    loads = tuple(
+        LoadSpec(f"case {i}", (900.0 * np.cos(i / 30), 900.0 * np.sin(i / 30)), (0.0, 0.0)) for i in range(90)
+    )
+    section = channel_file(loads=loads)
+    found = join(section, *both_sides(section))
+    counts = {flow.wall: len(flow.probes) for flow in found.flows}
+    assert max(counts.values()) <= 7 + 2 + 12 + 50
+    # Each load's largest flow is still met to what a parabola loses beside its top.
+    for peak in found.theory_peaks:
+        if peak.kind == "flow" and peak.has_fe:
+            row = found.quantity("peak_flow", peak.load)
+            assert_allclose(row.theory["midline"], abs(peak.value), rtol=2e-3, atol=1e-12)
