@@ -80,7 +80,9 @@ def _seam_points(
     centre: dict[str, int] = {}
     lines = []
     for seam in seams:
-        if seam.point not in centre:
+        if seam.across:
+            centre[seam.point] = int(np.argmin(np.hypot(*(outline - seam.place).T)))
+        elif seam.point not in centre:
             centre[seam.point] = len(outline) + len(inner)
             inner.append(seam.place)
         first = int(np.argmin(np.hypot(*(outline - seam.corner).T)))

@@ -15,6 +15,7 @@ from itertools import pairwise
 
 import numpy as np
 from scipy.sparse import csc_matrix
+from scipy.sparse.csgraph import connected_components
 from scipy.sparse.linalg import splu
 
 from .band import Array
@@ -123,9 +124,13 @@ def start_jumps(of: Network, rise: Array, flux: Array) -> Array:
     incidence = csc_matrix((signs, (rows, columns)), shape=(nodes, m))
     supply = np.asarray(np.bincount(of.node[:, 1], rise, nodes), dtype=float)
     supply[: len(flux)] += flux
-    # the outer loop's own balance follows from the others
-    kept = incidence[1:]
-    y = splu(csc_matrix(kept @ kept.T)).solve(supply[1:])
+    # in each connected part one node's balance follows from the others
+    laplacian = incidence @ incidence.T
+    _, part = connected_components(laplacian, directed=False)
+    free = np.ones(nodes, dtype=bool)
+    free[np.unique(part, return_index=True)[1]] = False
+    kept = csc_matrix(incidence.tocsr()[free])
+    y = splu(csc_matrix(kept @ kept.T)).solve(supply[free]) if free.any() else np.zeros(0)
     return np.asarray(kept.T @ y)
 
 

@@ -19,7 +19,7 @@ from .fill import Filling, Region, fill
 from .grading import stretched
 from .outline import Outline
 from .partition import Cluster, Strip
-from .seams import Seam, owners, seams
+from .seams import Seam, owners
 
 Index = NDArray[np.int64]
 
@@ -105,16 +105,13 @@ def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
     number_of = {name: i for i, name in enumerate(solid.moduli)}
     thickness = _least_thickness(solid)
 
-    def differ(a: str, b: str) -> bool:
-        return solid.moduli[a] != solid.moduli[b]
-
     made = _Rows([], [], [], [], [])
     cut_vertices: dict[EndKey, Index] = {}
     bends: list[Bend] = []
     labels = [cluster_label(c) for c in parts.clusters] + [strip_label(w) for w in parts.strips]
-    seams_of = [seams(c, solid.joints, differ) for c in parts.clusters]
+    seams_of = solid.seams
     prepared = [
-        boundary_points(c, _least_width(c, thickness), density.finer(levels.get(label, 0)), lines)
+        boundary_points(c, _least_width(c, thickness), density.finer(levels.get(label, 0)), lines or ())
         for c, label, lines in zip(parts.clusters, labels, seams_of, strict=False)
     ]
     fillings = fill([p.region for p in prepared])
@@ -195,8 +192,12 @@ def _least_width(cluster: Cluster, thickness: Mapping[str, float]) -> float:
     return min([*(thickness[p] for p in cluster.points), *widths])
 
 
-def _seam_edges(lines: Sequence[tuple[int, ...]], of: Sequence[Seam]) -> dict[tuple[int, int], str]:
-    """The wall to the left of every directed edge along seams."""
+def _seam_edges(
+    lines: Sequence[tuple[int, ...]], of: Sequence[Seam] | None
+) -> dict[tuple[int, int], str] | None:
+    """The wall to the left of every directed edge along seams; None where there are no seams to go by."""
+    if of is None:
+        return None
     made: dict[tuple[int, int], str] = {}
     for row, seam in zip(lines, of, strict=True):
         for a, b in pairwise(row):

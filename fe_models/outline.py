@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
 
 import numpy as np
 import shapely
@@ -16,6 +17,7 @@ from .errors import OutlineError
 from .joint import Joint, joints
 from .partition import Partition, partition, solid
 from .rings import rings
+from .seams import Seam, seams
 from .section import Section
 
 # More walls than this are refused: each joint is meshed on its own.
@@ -69,6 +71,15 @@ class Outline:
     extent: float
     notes: tuple[str, ...]
     moduli: Mapping[str, tuple[float, float]]
+
+    @cached_property
+    def seams(self) -> list[list[Seam] | None]:
+        """Lines that split each cluster between walls of different moduli; None where none can be drawn."""
+
+        def differ(a: str, b: str) -> bool:
+            return self.moduli[a] != self.moduli[b]
+
+        return [seams(c, self.joints, differ) for c in self.parts.clusters]
 
     def moments(self, pole: Array) -> Moments:
         """Exact moments of the solid about a pole, from its boundary by Green's theorem."""

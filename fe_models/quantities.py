@@ -27,6 +27,9 @@ def quantities(fields: Fields, solid: Outline) -> dict[str, Interval]:
     warping constant is an estimate.
     """
     basis = "bound on the interpolated outline" if solid.curved else "bound"
+    if None in solid.seams:
+        # who owns what of a crowded joint then depends on the mesh
+        basis = "estimate"
     made = _exact(fields, solid)
     off = GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0
     made["torsion_constant"] = intervals.torsion_constant(fields, basis).widened(off)

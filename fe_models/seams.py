@@ -10,6 +10,7 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
+from shapely.geometry import LineString, Point, Polygon
 
 from .band import Array, Band
 from .boundary import EndKey
@@ -19,12 +20,16 @@ from .fill import Index
 from .joint import Joint
 from .partition import Cluster
 
+# Least slope of a seam against the boundary it starts from and against another, as sine of the angle.
+CLEAR = 0.3
+
 
 @dataclass(frozen=True)
 class Seam:
     """A line from a corner of the faces to the point, between the walls on its two sides.
 
-    Seen from the corner towards the point, ``left`` lies to the left.
+    Seen from the corner, ``left`` lies to the left. At a bend the line runs on to the opposite face:
+    ``across`` is then True and ``place`` the end there, for the point of a rounded bend may lie outside.
     """
 
     corner: Array
@@ -32,38 +37,75 @@ class Seam:
     place: Array
     left: str
     right: str
+    across: bool = False
 
 
-def seams(cluster: Cluster, joints: Mapping[str, Joint], differ: Callable[[str, str], bool]) -> list[Seam]:
-    """Seams of a cluster: one for each gap between two walls that differ."""
-    made: list[Seam] = []
+def seams(
+    cluster: Cluster, joints: Mapping[str, Joint], differ: Callable[[str, str], bool]
+) -> list[Seam] | None:
+    """Seams of a cluster, one for each gap between two walls that differ.
+
+    None where they cannot be drawn: in the union of crowded walls, at steps and bevels, and where a line
+    would leave the solid, run along its boundary or beside another. Elements then go to the nearest wall,
+    and the split depends on the mesh.
+    """
+    names = {e.band.name for p in cluster.points if p in joints for e in joints[p].ends}
+    if not any(differ(a, b) for a in names for b in names):
+        return []
     if cluster.united:
-        return made
+        return None
+    made: list[Seam] = []
     for name in cluster.points:
         joint = joints[name]
+        if len(joint.ends) == 2 and all(c.kind in ("fillet", "rounding") for c in joint.chains):
+            inner, outer = joint.chains
+            first, second = inner.first.band.name, inner.second.band.name
+            if differ(first, second):
+                made.append(Seam(split_place(inner), name, split_place(outer), first, second, across=True))
+            continue
         for chain in joint.chains:
             first, second = chain.first.band.name, chain.second.band.name
             if first != second and differ(first, second):
+                if chain.kind in ("step", "bevel"):
+                    # a line from the foot of a step runs along the wider wall's end
+                    return None
                 made.append(Seam(split_place(chain), name, joint.place, first, second))
-    return made
+    polygon = cluster.polygon()
+    return made if all(_is_clear(seam, polygon) for seam in made) and _are_apart(made) else None
+
+
+def _are_apart(made: list[Seam]) -> bool:
+    """True where seams that end at one point do so from directions well apart."""
+    for i, one in enumerate(made):
+        for other in made[:i]:
+            a, b = one.corner - one.place, other.corner - other.place
+            sine = abs(a[0] * b[1] - a[1] * b[0]) / (np.hypot(*a) * np.hypot(*b))
+            if one.point == other.point and a @ b > 0.0 and sine < CLEAR:
+                return False
+    return True
+
+
+def _is_clear(seam: Seam, polygon: Polygon) -> bool:
+    """True where a seam runs inside the solid, well away from its boundary between its ends."""
+    line = LineString([seam.corner, seam.place])
+    u = np.linspace(0.1, 0.9 if seam.across else 1.0, 9)
+    points = seam.corner + u[:, None] * (seam.place - seam.corner)
+    return all(
+        polygon.contains(Point(p)) and polygon.boundary.distance(Point(p)) > CLEAR * share * line.length
+        for p, share in zip(points, np.minimum(u, 1.0 - u if seam.across else u), strict=True)
+    )
 
 
 def split_place(chain: Chain) -> Array:
-    """Where a chain is split between its walls: corner, foot of a step, middle of an arc."""
-    if not chain.pieces:
-        return chain.first.side(chain.reach[0], 1.0)
-    piece = chain.pieces[0]
-    if piece.arc is not None:
-        return piece.at(0.5)
-    # the wider wall of a step ends square at the point; its foot is on the other wall's face
-    return piece.end if chain.kind == "step" and chain.reach[0] == 0.0 else piece.start
+    """Where a chain is split between its walls: its corner, or the middle of its arc."""
+    return chain.pieces[0].at(0.5) if chain.pieces else chain.first.side(chain.reach[0], 1.0)
 
 
 def owners(
     cluster: Cluster,
     triangles: Index,
     vertices: Array,
-    seam_edges: Mapping[tuple[int, int], str],
+    seam_edges: Mapping[tuple[int, int], str] | None,
     cut_edges: Mapping[tuple[int, int], EndKey],
     bands: Mapping[str, Band],
 ) -> list[str]:
@@ -72,7 +114,7 @@ def owners(
     Parameters
     ----------
     seam_edges : mapping of directed vertex pair to wall name
-        The wall to the left of each directed edge of a seam.
+        The wall to the left of each directed edge of a seam; None where the nearest wall owns.
     cut_edges : mapping of directed vertex pair to wall end
 
     Raises
@@ -80,7 +122,7 @@ def owners(
     SolveError
         A part of the joint belongs to no wall.
     """
-    if cluster.united:
+    if seam_edges is None:
         return _nearest(cluster, triangles, vertices, bands, {k[0] for k in cut_edges.values()})
     seeds = list(seam_edges.items()) + [(edge, key[0]) for edge, key in cut_edges.items()]
     if not seam_edges:
