@@ -40,6 +40,10 @@ def along(
     return np.asarray((flow * p.flexibility[rows])[:, None] * p.logarithmic(rows, u) - curves.swept(u))
 
 
+# A warping function smaller than this share of the squared size of the section is round-off.
+ROUND_OFF = 1e-13
+
+
 def warping(graph: Network, mass: Inertia, twist: Torsion, pole: complex) -> Warping:
     """Warping function, e-weighted mean zero: d(omega)/ds = q_T/(g t) - p per unit rate of twist."""
     p = graph.pieces
@@ -55,9 +59,13 @@ def warping(graph: Network, mass: Inertia, twist: Torsion, pole: complex) -> War
     weight = p.eta
     mean = ((weight * inside).sum() + (graph.boom * corner).sum()) / mass.area
     corner, inside = corner - mean, inside - mean
-    constant = float((weight * inside**2).sum() + (graph.boom * corner**2).sum())
     swept = np.abs(p.curves.moved(-mass.centroid - pole).swept(one)[:, 0])
     gap = float(np.abs(corner[p.end] - corner[p.start] - rise).max()) / max(float(swept.max()), 1e-300)
+    # what is left of a warping function that cancels (angle, tee, square box) is round-off: exactly nothing
+    largest = max(float(np.abs(corner).max()), float(np.abs(inside).max()))
+    if largest <= ROUND_OFF * float(np.ptp(graph.node.real) + np.ptp(graph.node.imag)) ** 2:
+        corner, inside = np.zeros_like(corner), np.zeros_like(inside)
+    constant = float((weight * inside**2).sum() + (graph.boom * corner**2).sum())
     return Warping(pole, twist.cell_flow, corner, inside, constant, gap)
 
 

@@ -282,3 +282,24 @@ def test_stationary_places_of_a_long_arc() -> None:
     peaks = flow.at("long", flow.stationary("long"))
     assert_allclose(np.abs(peaks), 1 / math.pi, rtol=TIGHT)
     assert_allclose(abs(flow.peak("long").flow), 1 / math.pi, rtol=TIGHT)
+
+
+@pytest.mark.parametrize("turn", [0.0, 0.3])
+def test_midline_warping_constant_is_exactly_zero(turn):
+    """Walls through one point, the square box and a triangle do not warp (common practice)."""
+    shapes = {
+        "angle": ([(0, 100), (0, 0), (60, 0)], "01 12"),
+        "tee": ([(-40, 0), (0, 0), (40, 0), (0, -100)], "01 12 13"),
+        "cruciform": ([(-40, 0), (0, 0), (50, 0), (0, -50), (0, 50)], "01 12 13 14"),
+        "square box": ([(0, 0), (80, 0), (80, 80), (0, 80)], "01 12 23 30"),
+        "triangle": ([(0, 0), (300, 0), (0, 160)], "01 12 20"),
+    }
+    thickness = {"triangle": (3.0, 2.0, 5.0)}
+    for name, (places, lines) in shapes.items():
+        points = {str(i): (x * np.cos(turn) - y * np.sin(turn), x * np.sin(turn) + y * np.cos(turn))
+                  for i, (x, y) in enumerate(places)}  # fmt: skip
+        given = thickness.get(name, (3.0,) * 4)
+        walls = tuple(Wall(w, w[0], w[1], (t, t)) for w, t in zip(lines.split(), given, strict=False))
+        solution = solve(Section(points, walls))
+        assert solution.quantities["warping_constant"].value == 0.0, name
+        assert all(check.passed for check in solution.checks), name
