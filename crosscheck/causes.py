@@ -20,8 +20,8 @@ from crosscheck.section_model import SectionFile
 
 OWN_THICKNESS = "own thickness, free ends and joints, published"
 BENDS = "bends and fillets, by theory"
-SOLID = "what theory leaves out, corners sharp"
-ROUNDING = "real rounding of the corners"
+SOLID = "FE in place of theory, corners sharp"
+ROUNDING = "FE as drawn, corners rounded"
 MERGED = "includes what the level corrected would show: {reason}"
 NU = "with the material's nu FE would change by {change:+.2g}"
 

@@ -22,6 +22,7 @@ from .stand_in import both_sides, channel_file
 NAMES = {
     "section",
     "both_sides",
+    "causes",
     "criteria",
     "flow_unit_Vx",
     "flow_unit_Vy",
