@@ -55,7 +55,8 @@ def _joint(name: str, place: Array, ends: list[WallEnd], rounding: Rounding | No
     for i, first in enumerate(order):
         second = order[(i + 1) % len(order)]
         if len(order) == 1:
-            chains.append(free_end(first))
+            square = free_end(first)
+            chains.append(rounded(square, rounding, bend=False) if rounding else square)
         else:
             sharp = chain(place, first, second)
             chains.append(rounded(sharp, rounding, bend=len(order) == 2) if rounding else sharp)

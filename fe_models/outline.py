@@ -81,6 +81,18 @@ class Outline:
 
         return [seams(c, self.joints, differ) for c in self.parts.clusters]
 
+    @property
+    def chorded(self) -> bool:
+        """True where the union of crowded walls has taken curved faces in chords."""
+        return any(
+            c.united
+            and (
+                any(not self.bands[w].straight for w in c.walls)
+                or any(p.arc is not None for n in c.points for k in self.joints[n].chains for p in k.pieces)
+            )
+            for c in self.parts.clusters
+        )
+
     def moments(self, pole: Array) -> Moments:
         """Exact moments of the solid about a pole, from its boundary by Green's theorem."""
         total = np.zeros(6)

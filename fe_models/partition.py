@@ -163,15 +163,18 @@ def fills(joint: Joint) -> list[Polygon]:
 
 
 def trims(joint: Joint) -> list[Polygon]:
-    """What rounded outer sides take off the mitred bands at a joint."""
+    """What rounded outer sides and rounded free ends take off the bands with their mitres at a joint."""
     parts = []
     for chain in joint.chains:
-        if chain.kind == "rounding":
-            arc = chain.pieces[0].at(np.linspace(0.0, 1.0, 2 + int(chain.pieces[0].turn / 0.05)))
-            # the tangents at the ends of the arc meet at the tip that is taken off
-            ends = chain.pieces[0].rate(np.array([0.0, 1.0]))
-            lengths = np.linalg.solve(np.column_stack([ends[0], ends[1]]), arc[-1] - arc[0])
-            parts.append(Polygon([*arc[::-1], arc[0] + lengths[0] * ends[0]]))
+        if chain.kind not in ("rounding", "free end"):
+            continue
+        for piece in chain.pieces:
+            if piece.arc is not None:
+                arc = piece.at(np.linspace(0.0, 1.0, 2 + int(piece.turn / STEP)))
+                # the tangents at the ends of the arc meet at the tip that is taken off
+                ends = piece.rate(np.array([0.0, 1.0]))
+                lengths = np.linalg.solve(np.column_stack([ends[0], ends[1]]), arc[-1] - arc[0])
+                parts.append(Polygon([*arc[::-1], arc[0] + lengths[0] * ends[0]]))
     return parts
 
 
@@ -196,7 +199,7 @@ def _united(
     union = shapely.union_all([*parts, *own.values()])
     for p in cluster.points:
         union = union.difference(shapely.union_all(trims(joints[p])))
-    union = shapely.simplify(union, 1e-9 * size)
+    union = shapely.simplify(_without_slivers(union, size), 1e-9 * size)
     expected = len(cluster.walls) - len(cluster.points) + 2
     if union.geom_type != "Polygon" or 1 + len(union.interiors) != expected:
         raise OutlineError("lost cell", cluster.walls, "bands that fill or split a cell of the midline")
@@ -208,6 +211,13 @@ def _united(
     if sum(p.kind == "cut" for r in made for p in r) != len(kept):
         raise OutlineError("overlap", cluster.walls, "a wall that leaves its joint through its neighbours")
     return Cluster(cluster.points, cluster.walls, made, united=True)
+
+
+def _without_slivers(union: shapely.Geometry, size: float) -> shapely.Geometry:
+    """The largest polygon where cutting off a rounded end has left others of no area beside it."""
+    parts = sorted(shapely.get_parts(union), key=lambda p: -p.area)
+    small = all(p.area <= 1e-6 * size * size for p in parts[1:])
+    return parts[0] if parts and small else union
 
 
 def _refuse_swallowed(parts: list[Polygon], own: Mapping[str, Polygon], size: float) -> None:

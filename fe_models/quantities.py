@@ -8,6 +8,7 @@ from . import intervals
 from .fields import Fields, Moduli, inertia
 from .intervals import Interval, around
 from .outline import Outline
+from .partition import STEP
 
 # Principal moments closer than this (relative) leave the axes undefined.
 SAME_MOMENTS = 1e-9
@@ -15,6 +16,9 @@ EXACT_ROUND_OFF = 1e-12
 # Curved sides: share of the geometry error by which intervals are widened. J of a closed tube is off by 0.8
 # times the error of its second moments.
 GEOMETRY_FACTOR = 2.0
+# What chords of a polygon union take off, as a share: a circle in chords loses step^2 / 6 of its area and
+# twice that of J.
+CHORDS = STEP**2 / 2.0
 
 
 def quantities(fields: Fields, solid: Outline) -> dict[str, Interval]:
@@ -27,11 +31,13 @@ def quantities(fields: Fields, solid: Outline) -> dict[str, Interval]:
     warping constant is an estimate.
     """
     basis = "bound on the interpolated outline" if solid.curved else "bound"
-    if None in solid.seams:
-        # who owns what of a crowded joint then depends on the mesh
+    if None in solid.seams or solid.chorded:
+        # who owns what of a crowded joint then depends on the mesh; chords are not the outline
         basis = "estimate"
     made = _exact(fields, solid)
     off = GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0
+    if solid.chorded:
+        off += CHORDS
     made["torsion_constant"] = intervals.torsion_constant(fields, basis).widened(off)
     x_s, y_s = intervals.shear_centre(fields, solid.extent, basis)
     x_s, y_s = x_s.padded(off * solid.extent), y_s.padded(off * solid.extent)

@@ -15,8 +15,10 @@ def rounded(chain: Chain, rounding: Rounding, *, bend: bool) -> Chain:
     """A chain with its re-entrant corner filleted, or the outer side of a bend rounded.
 
     The centre of a fillet of radius r lies where both faces, moved r out of the material, meet; that of an
-    outer rounding where they meet when moved r into it.
+    outer rounding where they meet when moved r into it. A free end has the outer radius at both its corners.
     """
+    if chain.kind == "free end" and rounding.outer:
+        return _rounded_end(chain, rounding.outer)
     if chain.kind == "corner" and rounding.inner > 0.0:
         return _arc(chain, rounding.inner, out=1.0, kind="fillet")
     if chain.kind == "mitre" and bend:
@@ -25,6 +27,37 @@ def rounded(chain: Chain, rounding: Rounding, *, bend: bool) -> Chain:
         if radius > 0.0:
             return _arc(chain, radius, out=-1.0, kind="rounding")
     return chain
+
+
+def _rounded_end(chain: Chain, radius: float) -> Chain:
+    """A free end with both corners rounded; a radius of half the thickness makes a half circle."""
+    end = chain.first
+    half = end.half()
+    if radius > half * (1.0 + 1e-9):
+        raise OutlineError(
+            "radius", (end.band.name,), f"{radius:g} at a free end of thickness {2.0 * half:g}"
+        )
+    radius = min(radius, half)
+    # along the outline: in along the left face, round its corner, across the end, round the right corner
+    left, right, outward = end.side(0.0, 1.0), end.side(0.0, -1.0), -end.direction
+    across = (left - right) / (2.0 * half)
+    first, last = left - radius * (across + outward), right + radius * (across - outward)
+    bearing = float(np.arctan2(across[1], across[0]))
+    arcs = [
+        Arc(first, radius, bearing, bearing + 0.5 * np.pi),
+        Arc(last, radius, bearing + 0.5 * np.pi, bearing + np.pi),
+    ]
+    pieces = [_piece(a) for a in arcs]
+    if radius < half * (1.0 - 1e-9):
+        pieces.insert(1, Piece("closing", pieces[0].end, pieces[1].start))
+    return Chain(end, end, tuple(pieces), (radius, radius), "free end")
+
+
+def _piece(arc: Arc) -> Piece:
+    """An arc as a piece of a boundary."""
+    angles = np.array([arc.first, arc.last])
+    ends = arc.centre + arc.radius * np.stack([np.cos(angles), np.sin(angles)], axis=-1)
+    return Piece("arc", ends[0], ends[1], arc=arc)
 
 
 def _arc(chain: Chain, radius: float, *, out: float, kind: str) -> Chain:

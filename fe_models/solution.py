@@ -239,7 +239,9 @@ def _refinement(
         worst = _excess(found, solid.extent, accuracy)
         if progress is not None:
             progress(f"pass {passes}: {solved.unknowns} unknowns, {worst:.2g} of the asked half-width")
-        if worst <= 1.0 or solved.unknowns > MOST_UNKNOWNS or passes == MOST_PASSES:
+        # chords of a crowded joint do not get nearer to their curve
+        most = 2 if solid.chorded else MOST_PASSES
+        if worst <= 1.0 or solved.unknowns > MOST_UNKNOWNS or passes == most:
             break
         levels = _refined(solved, levels, worst)
         if passes % 2 == 0:
@@ -283,7 +285,7 @@ def _start(solid: Outline, accuracy: float) -> Density:
 
     What corners and ends cost is compared with what the walls hold, so stout walls start finer.
     """
-    level = float(np.clip(0.5 * np.log2(STOUT / solid.slenderness), 0.0, 1.5))
+    level = float(np.clip(np.log2(STOUT / solid.slenderness), 0.0, 2.0))
     order = 4 if solid.curved or accuracy < 3e-6 else 3
     if accuracy >= 1e-4:
         start = Density(order, eta=1e-3, slope=1.5)

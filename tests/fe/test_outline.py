@@ -23,7 +23,7 @@ from numpy.testing import assert_allclose
 from shapely.geometry import LineString, Polygon
 from shapely.ops import unary_union
 
-from fe_models import Section, Wall
+from fe_models import OutlineError, Rounding, Section, Wall, solve
 from fe_models.outline import Outline, outline
 
 ORIGIN = np.zeros(2)
@@ -188,3 +188,26 @@ def test_circular_tube_of_two_arcs() -> None:
     assert_allclose(m.area, math.pi * 40, rtol=1e-12)
     assert_allclose(m.second, [i, i, 0.0], rtol=1e-12, atol=1e-9 * i)
     assert_allclose(m.first, 0.0, rtol=0, atol=1e-9)
+
+
+@pytest.mark.parametrize("radius", [1.0, 2.5])
+def test_rounded_free_ends_lose_the_area_of_their_corners(radius):
+    """Each of two ends of thickness 5 loses (2 - pi/2) r^2: two squares less two quarter circles."""
+    points = {"a": (0.0, 0.0), "b": (50.0, 0.0), "c": (0.0, 40.0)}
+    walls = (Wall("1", "a", "b", (5.0, 5.0)), Wall("2", "a", "c", (5.0, 5.0)))
+    ends = {p: Rounding(0.0, radius) for p in "bc"}
+    area = outline(Section(points, walls, ends)).moments(np.zeros(2)).area
+    assert_allclose(area, 450.0 - 2.0 * (2.0 - np.pi / 2.0) * radius**2, rtol=1e-12, atol=0)
+
+
+def test_wall_of_two_half_circles_is_a_round_bar():
+    """J = pi r^4 / 2 (exact)."""
+    bar = Section({"a": (0.0, 0.0), "b": (5.0, 0.0)}, (Wall("1", "a", "b", (5.0, 5.0)),),
+                  {p: Rounding(0.0, 2.5) for p in "ab"})  # fmt: skip
+    assert_allclose(solve(bar).quantities["torsion_constant"].value, np.pi / 2.0 * 2.5**4, rtol=5e-5, atol=0)
+    j = solve(bar).quantities["torsion_constant"]
+    # the union of crowded walls takes curved faces in chords: said by the basis, covered by the interval
+    assert j.basis == "estimate"
+    assert j.low <= np.pi / 2.0 * 2.5**4 <= j.high
+    with pytest.raises(OutlineError, match="radius"):
+        outline(Section(bar.points, bar.walls, {"a": Rounding(0.0, 2.6)}))
