@@ -8,6 +8,7 @@ import sys
 from collections.abc import Sequence
 
 from crosscheck.commands import compare, draw
+from crosscheck.commands.arguments import OneLineParser
 from crosscheck.exit_status import ExitStatus
 
 DESCRIPTION = """\
@@ -21,7 +22,7 @@ engineer decide."""
 
 def parser() -> argparse.ArgumentParser:
     """Parser of the whole command line."""
-    top = argparse.ArgumentParser(
+    top = OneLineParser(
         prog="crosscheck",
         description=DESCRIPTION,
         epilog=EPILOG,

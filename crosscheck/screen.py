@@ -40,6 +40,8 @@ from crosscheck.wording import (
 )
 
 WIDE = 120
+# Factors to use told at most; one more is told rather than counted.
+SHOWN_FACTORS = 6
 ROWS_SHOWN = 22
 BAR = 8
 FE_WIDTH = 15
@@ -325,8 +327,10 @@ def _factor_notes(rows: Sequence[QuantityResult]) -> Iterator[tuple[str, str]]:
         if row.verdict == "outside" and row.factor is not None
     ]
     if told:
-        more = f" and {len(told) - 6} more" if len(told) > 6 else ""
-        yield f"To use the FE value instead, multiply the hand value: {', '.join(told[:6])}{more}.", ""
+        # "and 1 more" would take the place of the one it hides.
+        most = SHOWN_FACTORS + 1 if len(told) == SHOWN_FACTORS + 1 else SHOWN_FACTORS
+        more = f" and {len(told) - most} more" if len(told) > most else ""
+        yield f"To use the FE value instead, multiply the hand value: {', '.join(told[:most])}{more}.", ""
 
 
 def _wall_note(result: Result) -> Iterator[tuple[str, str]]:
@@ -339,8 +343,9 @@ def _wall_note(result: Result) -> Iterator[tuple[str, str]]:
     if over:
         worst = max(over, key=lambda flow: abs(flow.difference or 0.0))
         way = "high" if (worst.difference or 0.0) > 0 else "low"
+        places = "1 place" if len(over) == 1 else f"{len(over)} places"
         line = (
-            f"Walls: flow off by more than {100 * criterion:g} % of the wall's own peak {len(over)} times; "
+            f"Walls: flow off by more than {100 * criterion:g} % of the wall's own peak at {places}; "
             f"most: {worst.wall}, {worst.load}: {percent_text(worst.difference or 0.0)} {way}"
         )
         yield one_line(line, 300), ""

@@ -137,9 +137,7 @@ class WallReader:
         so that the geometry can be checked in the same go.
         """
         count = sum(max(len(entry.get("path", ())) - 1, 0) for entry in entries)
-        if count > WALL_LIMIT:
-            self.complete = False
-            self.faults.add(("walls",), f"{count} walls", f"at most {WALL_LIMIT} walls")
+        if not self._few_enough(count):
             return [], {}
         walls: dict[str, WallSpec] = {}
         named: dict[str, bool] = {}
@@ -150,7 +148,16 @@ class WallReader:
                     continue
                 named[wall.name] = "name" in entry
                 walls[wall.name] = wall
-        return list(walls.values()), named
+        # Smooth paths make up to two arcs of a span.
+        return (list(walls.values()), named) if self._few_enough(len(walls)) else ([], {})
+
+    def _few_enough(self, count: int) -> bool:
+        """False, with a fault, when there are more walls than the FE side takes."""
+        if count <= WALL_LIMIT:
+            return True
+        self.complete = False
+        self.faults.add(("walls",), f"{count} walls", f"at most {WALL_LIMIT} walls")
+        return False
 
     def _repeated_name(
         self, index: int, entry: Mapping[str, Any], wall: WallSpec, first: WallSpec, first_named: bool
@@ -169,6 +176,7 @@ class WallReader:
         points = entry.get("path")
         if points is None or not self._path_holds((*path, "path"), points):
             self.complete = False
+            self._note_other_faults(path, entry, points)
             return []
         stretches = self._stretches(path, entry, points)
         thicknesses = self._thicknesses((*path, "thickness"), entry.get("thickness"), stretches)
@@ -194,6 +202,27 @@ class WallReader:
             )
             walls.append(wall)
         return walls
+
+    def _note_other_faults(
+        self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str] | None
+    ) -> None:
+        """Note what else is faulty in an entry whose path gives no walls; a list's length is not judged."""
+        raw = entry.get("thickness")
+        here: KeyPath = (*path, "thickness")
+        parts: list[tuple[KeyPath, Any]] = [(here, raw)]
+        if isinstance(raw, list):
+            parts = [((*here, i), value) for i, value in enumerate(raw)]
+        elif isinstance(raw, dict):
+            parts = [((*here, key), raw.get(key)) for key in ("from", "to")]
+        for part, value in parts:
+            self._thickness(part, value)
+        self._material((*path, "material"), entry.get("material"))
+        self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
+        # Between a point and itself there is neither an arc nor a smooth path to judge.
+        if points is not None and all(a != b for a, b in pairwise(points)):
+            self._stretches(path, entry, points)
+        elif "arc" in entry:
+            self.numbers.pair((*path, "arc", "through"), entry["arc"].get("through"))
 
     def _stretches(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> list[_Stretch]:
         """Walls of a path: straight, one arc, or the arcs of a smooth path with the places where they
@@ -262,10 +291,10 @@ class WallReader:
         """Third place of an arc that the path's two points make a circle with."""
         if "arc" not in entry:
             return None
+        through = self.numbers.pair((*path, "through"), entry["arc"].get("through"))
         if len(points) != 2:
             self.faults.add(path, f"a path of {len(points)} points", "given with a path of two points")
             return None
-        through = self.numbers.pair((*path, "through"), entry["arc"].get("through"))
         ends = [self.points.get(name) for name in points]
         if through is None or ends[0] is None or ends[1] is None:
             return through

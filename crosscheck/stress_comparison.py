@@ -16,11 +16,14 @@ from crosscheck.load_case import LoadCase
 from crosscheck.load_results import FaceSeries, Series, WallStress
 from crosscheck.midline import Midline
 from crosscheck.result import Array, FeValue
+from crosscheck.verdicts import ROUND_OFF
 
 if TYPE_CHECKING:
     from crosscheck.section_model import SectionFile
 
 FACES = ("left", "right")
+# Factor on the estimated error of a largest stress, see fe_peak.
+MAXIMUM_FACTOR = 2.0
 
 
 @dataclass(frozen=True)
@@ -215,16 +218,23 @@ def counted(kind: str, wall: WallFaces) -> Array:
 
 
 def fe_peak(kind: str, walls: Sequence[WallFaces]) -> FacePeak | None:
-    """FE's largest stress of a kind over the probes of walls, with its interval."""
+    """FE's largest stress of a kind over the probes of walls, with its interval.
+
+    On a finer mesh the largest one may sit at another place. The interval therefore reaches up to the largest
+    value + error of any place, and both ways by the largest error of all places looked at, at least
+    round-off. It is an estimate, with a factor of 2: without, 3 of 128 such values of 13 shapes at depth
+    over thickness 6, 12 and 30, found at accuracy 1e-7, lay outside the interval of 1e-5, by 28 % of its
+    half-width at most.
+    """
     best: FacePeak | None = None
-    low, high = 0.0, 0.0
+    high, widest = 0.0, 0.0
     for wall in walls:
         value = np.where(counted(kind, wall), np.abs(measure(kind, wall.fe)), np.nan)
         if not np.isfinite(value).any():
             continue
         error = _peak_error(kind, wall)
-        low = max(low, float(np.nanmax(np.maximum(value - error, 0.0))))
         high = max(high, float(np.nanmax(value + error)))
+        widest = max(widest, float(np.nanmax(np.where(np.isfinite(value), error, np.nan))))
         face, i = np.unravel_index(int(np.nanargmax(value)), value.shape)
         if best is None or value[face, i] > best.value * (1.0 + 1e-9):
             best = FacePeak(
@@ -232,7 +242,8 @@ def fe_peak(kind: str, walls: Sequence[WallFaces]) -> FacePeak | None:
             )
     if best is None:
         return None
-    return FacePeak(best.value, min(low, best.value), high, best.wall, best.face, best.s)
+    half = max(MAXIMUM_FACTOR * max(high - best.value, widest), ROUND_OFF * best.value)
+    return FacePeak(best.value, max(best.value - half, 0.0), best.value + half, best.wall, best.face, best.s)
 
 
 def _peak_error(kind: str, wall: WallFaces) -> Array:

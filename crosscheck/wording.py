@@ -128,7 +128,10 @@ def difference_text(row: QuantityResult, length_unit: str) -> str:
 
 
 def full_difference_text(row: QuantityResult, length_unit: str) -> str:
-    """Difference in words for a sentence: what the per cent are of stands there instead of a mark."""
+    """Difference in words for a sentence: what the per cent are of stands there instead of a mark.
+
+    Where that takes a sentence of its own, the mark stays and leads to the starred note.
+    """
     text = difference_text(row, length_unit)
     if not text.endswith("*"):
         return text
@@ -136,10 +139,11 @@ def full_difference_text(row: QuantityResult, length_unit: str) -> str:
         "warping": "of J D^2",
         "second moments": "of sqrt(Ixx Iyy)",
         "load peak": "of FE's peak",
-        "twist": "of what 5 % of V D would make",
-        "surface": "of what 5 % of V D would make",
     }
-    return f"{text.removesuffix('*')} ({of.get(QUANTITIES[row.name].normaliser, 'of the normaliser')})"
+    normaliser = QUANTITIES[row.name].normaliser
+    if normaliser in ("twist", "surface"):
+        return text
+    return f"{text.removesuffix('*')} ({of.get(normaliser, 'of the normaliser')})"
 
 
 def has_own_normaliser(row: QuantityResult) -> bool:

@@ -7,25 +7,35 @@ import math
 import sys
 from collections.abc import Iterable
 from contextlib import contextmanager
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, NoReturn
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
     from crosscheck.comparison import Progress
 
-FINEST_ACCURACY = 1e-7
-COARSEST_ACCURACY = 1e-3
+# fe_models.ACCURACY_RANGE in words, which help must not load.
+ACCURACY_WORDS = "from 1e-08 to 0.01"
+
+
+class OneLineParser(argparse.ArgumentParser):
+    """Parser that tells a bad argument in one line, without the usage block; ``-h`` has that."""
+
+    def error(self, message: str) -> NoReturn:
+        self.exit(2, f"{self.prog}: {' '.join(message.split())}\n")
 
 
 def accuracy(text: str) -> float:
-    """Accuracy asked for, between 1e-7 and 1e-3."""
+    """Accuracy asked for, within fe_models.ACCURACY_RANGE."""
+    from fe_models import ACCURACY_RANGE
+
+    low, high = ACCURACY_RANGE
     try:
         value = float(text)
     except ValueError:
         value = math.nan
-    if not FINEST_ACCURACY <= value <= COARSEST_ACCURACY:
-        raise argparse.ArgumentTypeError(f"must be a number from 1e-7 to 1e-3, got {text!r}")
+    if not low <= value <= high:
+        raise argparse.ArgumentTypeError(f"must be a number from {low:g} to {high:g}, got {text!r}")
     return value
 
 
@@ -36,7 +46,8 @@ def add_model_arguments(command: argparse.ArgumentParser) -> None:
         type=accuracy,
         default=1e-5,
         metavar="1e-5",
-        help="half-width asked of FE's intervals, of J and of the larger overall dimension (default 1e-5)",
+        help="half-width asked of FE's intervals, of J and of the larger overall dimension, "
+        f"{ACCURACY_WORDS} (default 1e-5)",
     )
     command.add_argument(
         "--set",

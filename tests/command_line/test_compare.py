@@ -159,11 +159,21 @@ def test_walls_that_cross_are_bad_input(run, tmp_path):
     assert "other" in ran.err
 
 
-@pytest.mark.parametrize("accuracy", ["0", "-1", "nan", "1e-9", "0.1", "fine"])
+@pytest.mark.parametrize("accuracy", ["0", "-1", "nan", "0.9e-8", "0.011", "fine"])
 def test_accuracy_out_of_range(run, channel, accuracy):
     ran = run("compare", channel, f"--accuracy={accuracy}")
     assert ran.status == 2
-    assert "must be a number from 1e-7 to 1e-3" in ran.err
+    line = f"argument --accuracy: must be a number from 1e-08 to 0.01, got {accuracy!r}"
+    assert ran.err == f"crosscheck compare: {line}\n"
+
+
+def test_accuracy_takes_the_range_of_fe():
+    """The words of the help, which must not load FE, and what the argument takes."""
+    from crosscheck.commands.arguments import ACCURACY_WORDS, accuracy
+
+    low, high = fe_models.ACCURACY_RANGE
+    assert f"from {low:g} to {high:g}" == ACCURACY_WORDS
+    assert [accuracy(f"{low:g}"), accuracy(f"{high:g}")] == [low, high]
 
 
 def test_solver_failure_is_status_3_and_one_line(run, channel, monkeypatch):
@@ -304,6 +314,8 @@ def test_unknown_table_is_bad_input(run, channel):
     ran = run("compare", channel, "--table", "everything")
     assert ran.status == 2
     assert "stiffness" in ran.err
+    assert ran.err.startswith("crosscheck compare: argument --table: ")
+    assert len(ran.err.splitlines()) == 1
 
 
 def test_table_names_of_the_help_are_those_there_are():

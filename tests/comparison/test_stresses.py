@@ -6,11 +6,13 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import join
+from crosscheck.comparison import compare, join
+from crosscheck.flow_comparison import Probe
 from crosscheck.result_json import json_text
 from crosscheck.section_model import LoadSpec
+from crosscheck.stress_comparison import WallFaces, fe_peak
 
-from .solved import compared
+from .solved import compared, section_of
 from .stand_in import both_sides, channel_file
 
 HEAD = """\
@@ -189,3 +191,45 @@ def test_stresses_of_the_stand_in_reach_the_json(result):
     assert series.shear[at] is not None
     # FE's shear stress of Vy is 3 % above theory's, that of T equal.
     assert_allclose(np.mean([series.fe_shear[i] for i in range(1, 5)]), np.mean(series.shear[1:5]), rtol=0.05)
+
+
+PEAKS = {
+    "cruciform": (
+        "m = [0, 0]\ne = [50, 0]\nn = [0, 50]\nw = [-50, 0]\ns = [0, -50]\n",
+        ("me", "mn", "mw", "ms"),
+    ),
+    "tee": ("l = [-40, 100]\nm = [0, 100]\nr = [40, 100]\ns = [0, 0]\n", ("lm", "mr", "ms")),
+    "channel": ("a = [50, 100]\nb = [0, 100]\nc = [0, 0]\nd = [50, 0]\n", ("ab", "bc", "cd")),
+}
+
+
+@pytest.mark.parametrize("shape", PEAKS)
+def test_a_largest_stress_found_more_finely_lies_in_the_interval(shape: str) -> None:
+    """The largest of many places is another one on a finer mesh."""
+    points, walls = PEAKS[shape]
+    text = f'units = "mm N"\n[points]\n{points}'
+    text += "".join(f'[[walls]]\npath = ["{a}", "{b}"]\nthickness = "100 / 12"\n' for a, b in walls)
+    text += '[[loads]]\nname = "mix"\nshear = [300, 1000]\nthrough = [10, 20]\nmoment = [20000, 7000]\n'
+    section = section_of(text)
+    coarse, fine = compare(section, 1e-5), compare(section, 1e-7)
+    finer = {(row.name, row.load): row.fe.value for row in fine.quantities}
+    names = {"torsion_modulus", "surface_shear", "direct_stress", "von_mises_stress"}
+    rows = [row for row in coarse.quantities if row.name in names]
+    assert {row.name for row in rows} == names
+    for row in rows:
+        value = finer[row.name, row.load]
+        assert row.fe.low is not None
+        assert row.fe.high is not None
+        assert value is not None
+        assert row.fe.low <= value <= row.fe.high, (row.name, row.load)
+
+
+def test_interval_of_a_largest_stress_covers_every_place() -> None:
+    """A lower stress with a larger error may be the larger one; the largest error counts both ways, twice."""
+    probes = tuple(Probe(at, None, True, True) for at in (0.25, 0.75))
+    stress, error = np.zeros((2, 2, 2)), np.zeros((2, 2, 2))
+    stress[1], error[1] = [[10.0, 9.0], [1.0, 1.0]], [[0.1, 3.0], [0.0, 0.0]]
+    wall = WallFaces("w", probes, np.array([1.0, 3.0]), {}, stress, error)
+    peak = fe_peak("shear", [wall])
+    assert peak is not None
+    assert (peak.value, peak.low, peak.high, peak.s) == (10.0, 4.0, 16.0, 1.0)

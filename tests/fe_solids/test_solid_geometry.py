@@ -80,7 +80,9 @@ def test_faults_name_the_ring_and_the_place() -> None:
 
 def test_thin_tube_is_not_taken_for_crossing() -> None:
     """Coarse chords of both circles would cross."""
-    outline_of_solid(Solid((DISC, ClosedLine.circle((0.0, 0.0), 1 - 1e-5))))
+    solid = outline_of_solid(Solid((DISC, ClosedLine.circle((0.0, 0.0), 1 - 1e-5))))
+    assert len(solid.loops) == 2
+    assert_allclose(solid.moments(np.zeros(2)).area, math.pi * (1 - (1 - 1e-5) ** 2), rtol=1e-9)
 
 
 def test_direction_and_order_of_rings_do_not_matter() -> None:

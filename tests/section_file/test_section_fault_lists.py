@@ -47,6 +47,24 @@ def test_names_are_printable(fault_lines: Lines) -> None:
     assert line.startswith("walls[0].name: must be 1 to 60 printable characters on one line")
 
 
+@pytest.mark.parametrize(
+    ("entry", "keys"),
+    [
+        ('path = ["a", "q"]\nthickness = -2\nmaterial = "gold"\ndirect_share = 2',
+         ["path[1]", "thickness", "material", "direct_share"]),
+        ('path = ["q", "a", "b"]\nthickness = [1, -1, 0]\nsmooth = true\narc = {through = [0, "x"]}',
+         ["path[0]", "thickness[1]", "thickness[2]", "smooth", "arc", "arc.through[1]"]),
+        ('path = ["a", "a"]\nthickness = {from = -1, to = 1}\narc = {through = ["x", 0]}',
+         ["path[1]", "thickness.from", "arc.through[0]"]),
+        ('thickness = -2\nmaterial = "gold"', ["path", "thickness", "material"]),
+    ],
+    ids=["unknown point", "list", "twice in a row", "no path"],
+)  # fmt: skip
+def test_a_faulty_path_hides_no_other_fault(fault_lines: Lines, entry: str, keys: list[str]) -> None:
+    lines = fault_lines(GOOD + f"[[walls]]\n{entry}\n")
+    assert {line.split(": ")[0] for line in lines} == {f"walls[1].{key}" for key in keys}
+
+
 def test_many_faults_are_counted(fault_lines: Lines) -> None:
     lines = fault_lines(GOOD + "".join(f"k{n} = 1\n" for n in range(150)))
     assert len(lines) == 101

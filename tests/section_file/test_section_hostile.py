@@ -129,4 +129,13 @@ def test_mutated_texts(tmp_path_factory: pytest.TempPathFactory, data: st.DataOb
 @settings(max_examples=200, deadline=None, derandomize=True)
 @given(st.one_of(st.text(max_size=30), st.text(max_size=20).map("thickness = {}".format)))
 def test_any_override(text: str) -> None:
-    outcome(SOURCES[0], [text])
+    """The file's own section with other numbers, or faults that all name the override."""
+    plain, found = section_from(SOURCES[0]), outcome(SOURCES[0], [text])
+    if isinstance(found, SectionFile):
+        assert "=" in text
+        assert [wall.name for wall in found.walls] == [wall.name for wall in plain.walls]
+        assert all(0 < t < math.inf for wall in found.walls for t in wall.thickness)
+    else:
+        # Without "=" one line says so; with it, a number may also be refused where the file uses it.
+        assert "=" in text or (len(found) == 1 and 'must be of the form "name = value"' in found[0])
+        assert any(": set " in line or "thickness" in line for line in found)

@@ -17,7 +17,7 @@ import numpy as np
 import pytest
 from theory_sections import arc_section, channel, d_cell, joined, polyline
 
-from beam_theory import Boom, Load, Section, Solution, Wall, solve
+from beam_theory import Boom, Corner, Load, Section, Solution, Wall, solve
 
 TABLE = Path(__file__).parents[2] / "cases" / "reference" / "published.json"
 ROWS: dict[str, dict[str, Any]] = {row["id"]: row for row in json.loads(TABLE.read_text(encoding="utf-8"))}
@@ -215,8 +215,6 @@ def filleted_channel_centroid(h: float, b: float, tw: float, tf: float, r: float
 
 def en_box(h: float, b: float, t: float) -> float:
     """EN 10210-2: I_t = t^3 h/3 + 2 K A_h, on the rounded midline as the solver sees it."""
-    from beam_theory import Corner
-
     places = [(0, 0), (h - t, 0), (h - t, b - t), (0, b - t)]
     corners = tuple(Corner(f"p{i}", t, 1.5 * t) for i in range(4))
     solution = solve(replace(polyline(places, t, closed=True), corners=corners), "corrected")
@@ -326,19 +324,6 @@ TABLES: dict[str, Answer] = {
     "D28x": lambda: channel_table(200, 80, 6, 11, filleted_channel_centroid(200, 80, 6, 11, 13)),
 }
 
-# Rows whose solid or closed value test_corrected.py runs at level `corrected`. The hand formulas of D10, D12
-# and D14 themselves are another convention (three free ends at an angle) and are not used here.
-CORRECTED = {
-    "A31", "A33", "D01", "D023", "D024", "D030", "D031", "D050", "D052", "D054", "D10", "D12", "D14", "D18",
-    "D19", "D20t", "D22t", "D23t", "D25t", "D27t", "D28t", "D310", "D311", "D313", "D320", "D321", "D323",
-    "D350", "D36", "D16",
-}  # fmt: skip
-
-
-def thin_rows() -> list[str]:
-    """Rows about thin walls: the C rows and the D rows."""
-    return [name for name in ROWS if name[0] in "CD" or name in NOT_RUN]
-
 
 @pytest.mark.parametrize("name", sorted(CASES))
 def test_row(name: str) -> None:
@@ -366,18 +351,3 @@ def test_table_value_of_a_row(name: str) -> None:
     answer = TABLES[name]()
     assert abs(answer - row["value"]) <= 2.5e-3 * abs(row["value"]), (row["title"], answer)
     assert abs(answer - row["independent_value"]) <= row["tolerance"] * abs(row["independent_value"])
-
-
-def test_every_thin_walled_row_is_accounted_for() -> None:
-    """No row about thin walls is forgotten; those left give peaks and shear centres of solids only."""
-    solids = {
-        name for name in thin_rows() if name not in {*CASES, *MIDLINE_ONLY, *TABLES, *NOT_RUN, *CORRECTED}
-    }
-    allowed = {
-        "D020", "D021", "D040", "D041", "D06s", "D300", "D303", "D330", "D332", "D340",
-        "D400", "D402", "D403", "D410", "D411", "D412", "D413", "D420", "D422", "D55",
-        "D600", "D602",
-    }  # fmt: skip
-    assert solids == allowed
-    assert not set(CASES) & set(NOT_RUN)
-    assert all(name in ROWS for name in [*CASES, *MIDLINE_ONLY, *NOT_RUN, *CORRECTED])
