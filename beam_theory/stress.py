@@ -86,7 +86,9 @@ class Stress:
     def shear(self, wall: str, fractions: Floats) -> Floats:
         """tau along the wall's direction, (n, 2) [F/L^2]: q/t, and -+ g T t/J in walls in no cell.
 
-        At level "corrected" walls of cells have the second part too.
+        At level "corrected" walls of cells have the second part too, and in an arc of curvature k the mean
+        stress q/t grows towards the inside: d tau/dn = -2 g twist + k tau with n to the left (the balance of
+        a curved layer; a round tube then has tau = T r/J exactly).
         """
         piece, u = self.solution.graph.place(wall, fractions)
         if self.flow is None:
@@ -97,6 +99,8 @@ class Stress:
         twist = np.zeros(len(u))
         if not self.solution.in_cell(wall) or self.solution.level == "corrected":
             twist = p.g[piece] * t * self.flow.twist
+        if self.solution.level == "corrected":
+            twist = twist - 0.5 * t * mean * p.curves.sweep[piece] / p.length[piece]
         return np.stack([mean - twist, mean + twist], axis=1)
 
     def von_mises(self, wall: str, fractions: Floats) -> Floats:

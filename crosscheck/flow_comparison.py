@@ -198,7 +198,8 @@ def load_flows(
     reason = theory[judged].reason or fe_peak.reason
     if reason is None and own is not None and _is_no_flow(own, fe_peak, scale):
         reason = NO_FLOW_REASON
-    worst_wall, worst = max(compared, key=lambda pair: _gap(pair[1]), default=(None, None))
+    # four digits: of places that symmetry makes alike the first is named, not the one that round-off favours
+    worst_wall, worst = max(compared, key=lambda pair: float(f"{_gap(pair[1]):.4g}"), default=(None, None))
     unit = flow_unit(case.name if case.unit else "", *units)
     walls = tuple(_wall_flow(case, wall, unit, row, fe_peak, reason) for wall, row in raw.items())
     flow = theory[judged].flow

@@ -116,7 +116,7 @@ def assert_balanced(name: str, on: Fields, found: dict[str, np.ndarray], mean: f
     """Below 1e-9 of the mean stress wherever elements are not tiny; tiny ones leak next to nothing.
 
     Elements at singular corners are 1e-5 t small: coordinates known to 1e-16 of the depth make their stress
-    uncertain by 1e-16 D / h, far more than 1e-9; what leaks through their edges stays below 1e-12 of the
+    uncertain by 1e-16 D / h, far more than 1e-9; what leaks through their edges stays below 1e-11 of the
     load (1e-9 of the largest stress function in torsion).
     """
     p = on.space.places[:, :3]
@@ -128,7 +128,7 @@ def assert_balanced(name: str, on: Fields, found: dict[str, np.ndarray], mean: f
     for what, value in found.items():
         assert value[coarse].max() <= slender * 1e-9 * mean, what
         per_edge = value if value.ndim == 2 else value[:, None]
-        assert (per_edge * length).max() <= 3.0 * slender * unit, what
+        assert (per_edge * length).max() <= 10.0 * slender * unit, what
         rms = np.sqrt(float(np.sum(per_edge**2 * length)) / float(length.sum()))
         assert rms <= 1e-7 * mean, what
 
