@@ -73,9 +73,9 @@ def _quantities(
     put("shear_centre_y", None if pole is None else pole.imag, none)
     put("torsion_constant", twist.constant)
     put("warping_constant", None if warp is None else warp.constant, none)
-    own = (None, None) if flex is None else flex[0]
-    put("shear_area_x", None if flex is None else 1.0 / own[0], none)  # type: ignore[index]
-    put("shear_area_y", None if flex is None else 1.0 / own[1], none)  # type: ignore[index]
+    areas = (None, None) if flex is None else (1.0 / float(flex[0][0]), 1.0 / float(flex[0][1]))
+    put("shear_area_x", areas[0], none)
+    put("shear_area_y", areas[1], none)
     put("shear_coupling", None if flex is None else flex[1], none)
     put("plain_area", mass.plain_area)
     put("torsion_constant_cells", twist.cell_part)
