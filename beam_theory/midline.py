@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
+from beam_theory.arrays import Floats
 from beam_theory.checks import checks
 from beam_theory.inertia import FLAT, Inertia, inertia
 from beam_theory.network import network
@@ -43,7 +44,7 @@ def _quantities(
     twist: Torsion,
     found: Shear | None,
     warp: Warping | None,
-    flex: tuple[object, float] | None,
+    flex: tuple[Floats, float] | None,
 ) -> dict[str, Quantity]:
     """Every quantity of the level by name."""
     none = mass.reason
