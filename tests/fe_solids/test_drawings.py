@@ -7,6 +7,8 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
+import ezdxf
+import meshio
 import numpy as np
 import pytest
 from numpy.testing import assert_allclose
@@ -15,7 +17,6 @@ from solid_shapes import rounded, solved
 from crosscheck.drawings.dxf import DrawingRefused, dxf_outline
 from fe_models import ClosedLine, OutlineError, Solid, outline_of_solid, rings_of_mesh, rings_of_step
 
-ezdxf = pytest.importorskip("ezdxf")
 PLATE = rounded([(0, 0), (70, 0), (70, 40), (0, 40)], [0, 10, 0, 6])
 PLATE_AREA = 70 * 40 - (1 - math.pi / 4) * (100 + 36)
 
@@ -333,7 +334,6 @@ def plate_mesh() -> tuple[np.ndarray, np.ndarray]:
 
 @pytest.mark.parametrize("ending", ["msh", "vtu", "stl", "obj", "off"])
 def test_mesh_files(ending: str, tmp_path: Path) -> None:
-    meshio = pytest.importorskip("meshio")
     points, triangles = plate_mesh()
     path = tmp_path / f"plate.{ending}"
     mesh = meshio.Mesh(points, [("triangle", triangles)])
@@ -344,7 +344,6 @@ def test_mesh_files(ending: str, tmp_path: Path) -> None:
 
 
 def test_mesh_files_refused(tmp_path: Path) -> None:
-    meshio = pytest.importorskip("meshio")
     points, triangles = plate_mesh()
     bent = points.copy()
     bent[0, 2] = 8.0

@@ -8,6 +8,8 @@ import tomllib
 from pathlib import Path
 from typing import Any
 
+import ezdxf
+import meshio
 import numpy as np
 import pytest
 from numpy.testing import assert_allclose
@@ -122,7 +124,6 @@ def test_faults(text: str, lines: list[str], tmp_path: Path) -> None:
 
 
 def test_drawings(tmp_path: Path) -> None:
-    ezdxf = pytest.importorskip("ezdxf")
     document = ezdxf.new(units=0)
     document.modelspace().add_lwpolyline([(0, 0), (2, 0), (2, 1), (0, 1)], close=True)
     document.saveas(tmp_path / "part.dxf")
@@ -138,7 +139,6 @@ def test_drawings(tmp_path: Path) -> None:
 
 
 def test_mesh_in_another_unit(tmp_path: Path) -> None:
-    meshio = pytest.importorskip("meshio")
     points = np.array([[0.0, 0, 0], [3, 0, 0], [3, 4, 0]])
     meshio.write(tmp_path / "part.vtk", meshio.Mesh(points, [("triangle", np.array([[0, 1, 2]]))]))
     read = read_outline(table('file = "part.vtk"\ndrawing_unit = "cm"'), tmp_path)
@@ -148,7 +148,6 @@ def test_mesh_in_another_unit(tmp_path: Path) -> None:
 
 
 def test_a_drawing_that_bounds_no_solid(tmp_path: Path) -> None:
-    ezdxf = pytest.importorskip("ezdxf")
     document = ezdxf.new(units=4)
     for x in (0, 10):
         document.modelspace().add_circle((x, 0), 2)
