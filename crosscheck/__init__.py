@@ -9,21 +9,21 @@ import importlib
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from crosscheck.comparison import compare
+    from crosscheck.comparison.comparing import compare
+    from crosscheck.comparison.result import Result
     from crosscheck.faults import CrosscheckError, SectionFaults
-    from crosscheck.result import Result
-    from crosscheck.section_file import read_section
-    from crosscheck.section_model import SectionFile
+    from crosscheck.section_file.model import SectionFile
+    from crosscheck.section_file.reader import read_section
 
 __all__ = ["CrosscheckError", "Result", "SectionFaults", "SectionFile", "compare", "read_section"]
 
 _HOMES = {
     "CrosscheckError": "crosscheck.faults",
-    "Result": "crosscheck.result",
+    "Result": "crosscheck.comparison.result",
     "SectionFaults": "crosscheck.faults",
-    "SectionFile": "crosscheck.section_model",
-    "compare": "crosscheck.comparison",
-    "read_section": "crosscheck.section_file",
+    "SectionFile": "crosscheck.section_file.model",
+    "compare": "crosscheck.comparison.comparing",
+    "read_section": "crosscheck.section_file.reader",
 }
 
 

@@ -71,7 +71,7 @@ def _run(argv: Sequence[str] | None) -> int:
     except SystemExit as stop:
         return int(stop.code or 0)
     if arguments.version:
-        from crosscheck.provenance import installed_version
+        from crosscheck.comparison.provenance import installed_version
 
         sys.stdout.write(f"crosscheck {installed_version('crosscheck')}\n")
         return ExitStatus.WITHIN

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, NoReturn
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
-    from crosscheck.comparison import Progress
+    from crosscheck.comparison.comparing import Progress
 
 # fe_models.ACCURACY_RANGE in words, which help must not load.
 ACCURACY_WORDS = "from 1e-08 to 0.01"

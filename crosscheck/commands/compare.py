@@ -14,10 +14,10 @@ from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
     import fe_models
-    from crosscheck.comparison import Progress
+    from crosscheck.comparison.comparing import Progress
+    from crosscheck.comparison.result import Result
     from crosscheck.faults import Fault
-    from crosscheck.result import Result
-    from crosscheck.section_model import SectionFile
+    from crosscheck.section_file.model import SectionFile
 
 DESCRIPTION = """\
 Solve section files by classical theory and by finite elements and report every difference, worst first.
@@ -28,7 +28,7 @@ examples:
   crosscheck compare cases/sections/lipped_channel_floor_beam.toml --out report --set "t = 2.5"
   crosscheck compare cases/sections/two_cell_tail_boom.toml --table stiffness --working --out report
   crosscheck compare cases/sections --json results.json"""
-# Names of crosscheck.tables.TABLES, which help must not load.
+# Names of crosscheck.reports.tables.TABLES, which help must not load.
 TABLE_NAMES = ("levels", "stiffness", "envelope", "probes", "stresses")
 
 
@@ -147,7 +147,7 @@ def compare_file(
     """Read and compare one file; its faults go to the error stream."""
     tell(f"{path}: reading")
     from crosscheck.faults import SectionFaults
-    from crosscheck.section_file import read_section
+    from crosscheck.section_file.reader import read_section
 
     try:
         section = read_section(path, tuple(overrides))
@@ -157,7 +157,7 @@ def compare_file(
 
     import beam_theory
     import fe_models
-    from crosscheck.comparison import compare
+    from crosscheck.comparison.comparing import compare
 
     try:
         result = compare(
@@ -201,8 +201,8 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
     """Pictures, hand sheets, tables and result.json of one section, all made before the first is written."""
     from crosscheck.file_names import free_name
     from crosscheck.pictures import every_picture
-    from crosscheck.result_json import json_text
-    from crosscheck.tables import TABLES, csv_bytes
+    from crosscheck.reports.result_json import json_text
+    from crosscheck.reports.tables import TABLES, csv_bytes
     from crosscheck.whole_files import write_folder
 
     tell(f"{result.title}: pictures")
@@ -223,7 +223,7 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
 
 def write_json(results: Sequence[Result], path: str) -> ExitStatus:
     """The JSON to a file, whole or not at all, or to standard output."""
-    from crosscheck.result_json import json_text
+    from crosscheck.reports.result_json import json_text
     from crosscheck.whole_files import write_whole
 
     text = json_text(results)
@@ -242,8 +242,8 @@ def show(result: Result, pictures: str | None, stream: object, tables: Sequence[
     """The first screen and the tables asked for, on standard output or on the error stream."""
     from rich.console import Console
 
-    from crosscheck.screen import console_for, first_screen
-    from crosscheck.tables import TABLES
+    from crosscheck.reports.screen import console_for, first_screen
+    from crosscheck.reports.tables import TABLES
 
     console = Console(stderr=stream is sys.stderr, highlight=False, markup=False, emoji=False)
     width, unicode = console_for(console)

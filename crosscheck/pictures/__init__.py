@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.quantities import UNIT_LOADS
+from crosscheck.comparison.result import Result
 from crosscheck.file_names import free_name
 from crosscheck.pictures.both_sides import both_sides_picture
 from crosscheck.pictures.canvas import picture_bytes
@@ -13,8 +15,6 @@ from crosscheck.pictures.flow import flow_picture
 from crosscheck.pictures.joints import joints_picture
 from crosscheck.pictures.section import section_picture
 from crosscheck.pictures.warping import warping_picture
-from crosscheck.quantities import UNIT_LOADS
-from crosscheck.result import Result
 
 __all__ = [
     "both_sides_picture",

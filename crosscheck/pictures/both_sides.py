@@ -9,6 +9,8 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.quantities import unit_text
+from crosscheck.comparison.result import Array, Result, WallShape
 from crosscheck.pictures.canvas import (
     FE,
     FONT,
@@ -23,9 +25,7 @@ from crosscheck.pictures.canvas import (
 )
 from crosscheck.pictures.joints import joint_places
 from crosscheck.pictures.walls import draw_midlines, draw_solid
-from crosscheck.quantities import unit_text
-from crosscheck.result import Array, Result, WallShape
-from crosscheck.wording import difference_text, number_text
+from crosscheck.reports.wording import difference_text, number_text
 
 HATCHES = ("/////", "\\\\\\\\\\", "-----", "|||||")
 

@@ -6,6 +6,7 @@ import matplotlib as mpl
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.result import CauseStep, QuantityResult, Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FE,
@@ -21,8 +22,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
-from crosscheck.result import CauseStep, QuantityResult, Result
-from crosscheck.wording import name_of, worst_first
+from crosscheck.reports.wording import name_of, worst_first
 
 # Quantities shown, and the difference below which none is worth a row [-].
 MOST_QUANTITIES = 6

@@ -5,6 +5,7 @@ from __future__ import annotations
 import matplotlib as mpl
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.result import QuantityResult, Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FE,
@@ -20,8 +21,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
-from crosscheck.result import QuantityResult, Result
-from crosscheck.wording import (
+from crosscheck.reports.wording import (
     STARRED,
     difference_text,
     has_own_normaliser,

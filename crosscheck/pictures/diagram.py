@@ -9,6 +9,7 @@ import matplotlib as mpl
 import numpy as np
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.result import Array, Drawing, WallShape
 from crosscheck.pictures.canvas import (
     FE,
     FONT,
@@ -22,7 +23,6 @@ from crosscheck.pictures.canvas import (
     scale_drawing,
 )
 from crosscheck.pictures.walls import draw_arrow, draw_solid
-from crosscheck.result import Array, Drawing, WallShape
 
 # Largest ordinate over the larger and over the smaller overall dimension: diagrams of a flat box stay apart.
 HEIGHT = 0.15

@@ -6,13 +6,13 @@ import matplotlib as mpl
 import numpy as np
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.flow_comparison import NO_FLOW_REASON
+from crosscheck.comparison.result import Result, WallFlow
 from crosscheck.faults import one_line
-from crosscheck.flow_comparison import NO_FLOW_REASON
 from crosscheck.pictures.canvas import HAND, INK, STYLE, plain_unit
 from crosscheck.pictures.diagram import Mark, along_walls
 from crosscheck.pictures.walls import draw_direction, draw_torque
-from crosscheck.result import Result, WallFlow
-from crosscheck.wording import difference_text, number_text
+from crosscheck.reports.wording import difference_text, number_text
 
 
 def flow_picture(result: Result, load: str, width_mm: int = 160) -> Figure | None:

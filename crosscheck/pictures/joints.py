@@ -11,6 +11,8 @@ from matplotlib.colors import Normalize
 from matplotlib.figure import Figure
 from matplotlib.tri import Triangulation
 
+from crosscheck.comparison.quantities import unit_text
+from crosscheck.comparison.result import Array, Drawing, PictureMesh, Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FONT,
@@ -25,8 +27,6 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
-from crosscheck.quantities import unit_text
-from crosscheck.result import Array, Drawing, PictureMesh, Result
 
 Place = tuple[float, float]
 SHADES = "cividis"

@@ -9,6 +9,7 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.result import Array, LoadLine, Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FE,
@@ -34,8 +35,7 @@ from crosscheck.pictures.walls import (
     outward,
     overall,
 )
-from crosscheck.result import Array, LoadLine, Result
-from crosscheck.wording import number_text
+from crosscheck.reports.wording import number_text
 
 Place = tuple[float, float]
 FEW_WALLS = 6

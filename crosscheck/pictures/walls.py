@@ -9,8 +9,8 @@ from matplotlib.axes import Axes
 from matplotlib.patches import FancyArrowPatch, PathPatch
 from matplotlib.path import Path
 
+from crosscheck.comparison.result import Array, Drawing, WallShape
 from crosscheck.pictures.canvas import EDGE, FONT, INK, SOFT, SOLID
-from crosscheck.result import Array, Drawing, WallShape
 
 
 def draw_solid(axes: Axes, loops: tuple[Array, ...], *, face: str = SOLID, edge: str = EDGE) -> None:

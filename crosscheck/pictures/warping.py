@@ -5,11 +5,11 @@ from __future__ import annotations
 import numpy as np
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.quantities import unit_text
+from crosscheck.comparison.result import Result
 from crosscheck.pictures.canvas import plain_unit
 from crosscheck.pictures.diagram import Mark, along_walls
-from crosscheck.quantities import unit_text
-from crosscheck.result import Result
-from crosscheck.wording import full_difference_text, number_text
+from crosscheck.reports.wording import full_difference_text, number_text
 
 # A warping function below this share of D^2 is drawn as small as it is.
 LEAST_WARPING = 0.02

@@ -10,7 +10,7 @@ import shutil
 import pytest
 from numpy.testing import assert_allclose
 
-import crosscheck.comparison
+import crosscheck.comparison.comparing
 import fe_models
 
 from .conftest import CHANNEL
@@ -190,7 +190,7 @@ def test_unexpected_fault_is_one_line_and_status_3(run, channel, monkeypatch):
     def fail(*_args, **_kwargs):
         raise ZeroDivisionError("division\nby\x1b[2Jzero")
 
-    monkeypatch.setattr(crosscheck.comparison, "join", fail)
+    monkeypatch.setattr(crosscheck.comparison.comparing, "join", fail)
     ran = run("compare", channel)
     assert ran.status == 3
     assert ran.err.startswith("crosscheck: internal fault: ZeroDivisionError: division by")
@@ -202,7 +202,7 @@ def test_interrupt_is_one_line(run, channel, monkeypatch):
     def stop(*_args, **_kwargs):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(crosscheck.comparison, "join", stop)
+    monkeypatch.setattr(crosscheck.comparison.comparing, "join", stop)
     ran = run("compare", channel)
     assert ran.status == 130
     assert ran.err == "crosscheck: stopped\n"
@@ -211,16 +211,16 @@ def test_interrupt_is_one_line(run, channel, monkeypatch):
 def test_failed_self_check_is_never_status_0(run, tmp_path, monkeypatch):
     from dataclasses import replace
 
-    from crosscheck.result import CheckResult
+    from crosscheck.comparison.result import CheckResult
 
     wide = tmp_path / "wide.toml"
     wide.write_text(CHANNEL + "[criteria]\nshear_area_x = 0.5\nshear_area_y = 0.5\nwarping_constant = 0.5\n")
-    real = crosscheck.comparison.join
+    real = crosscheck.comparison.comparing.join
 
     def with_failed_check(*args, **kwargs):
         return replace(real(*args, **kwargs), checks=(CheckResult("FE: resultants", 1.0, 1e-9, False),))
 
-    monkeypatch.setattr(crosscheck.comparison, "join", with_failed_check)
+    monkeypatch.setattr(crosscheck.comparison.comparing, "join", with_failed_check)
     ran = run("compare", wide)
     assert ran.status == 1
     assert "CHECK FAILED: FE: resultants" in ran.out
@@ -320,7 +320,7 @@ def test_unknown_table_is_bad_input(run, channel):
 
 def test_table_names_of_the_help_are_those_there_are():
     from crosscheck.commands.compare import TABLE_NAMES
-    from crosscheck.tables import TABLES
+    from crosscheck.reports.tables import TABLES
 
     assert list(TABLES) == list(TABLE_NAMES)
 

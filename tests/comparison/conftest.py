@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import pytest
 
-from crosscheck.comparison import join
-from crosscheck.section_model import SectionFile
+from crosscheck.comparison.comparing import join
+from crosscheck.section_file.model import SectionFile
 
 from .stand_in import both_sides, channel_file
 

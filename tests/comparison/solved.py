@@ -6,10 +6,10 @@ from functools import cache
 from pathlib import Path
 from tempfile import TemporaryDirectory
 
-from crosscheck.comparison import compare
-from crosscheck.result import Result
-from crosscheck.section_file import read_section
-from crosscheck.section_model import SectionFile
+from crosscheck.comparison.comparing import compare
+from crosscheck.comparison.result import Result
+from crosscheck.section_file.model import SectionFile
+from crosscheck.section_file.reader import read_section
 
 
 def section_of(text: str) -> SectionFile:

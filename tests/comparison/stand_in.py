@@ -8,8 +8,8 @@ from types import SimpleNamespace
 import numpy as np
 
 import beam_theory
-from crosscheck.levels import Levels, solve_levels
-from crosscheck.section_model import LoadSpec, Material, ProbeSpec, SectionFile, WallSpec
+from crosscheck.comparison.levels import Levels, solve_levels
+from crosscheck.section_file.model import LoadSpec, Material, ProbeSpec, SectionFile, WallSpec
 
 # What the stand-in multiplies theory's value with; everything else is left as theory has it.
 FE_OVER_THEORY = {"torsion_constant": 1.02, "warping_constant": 0.94, "shear_area_y": 1.001}

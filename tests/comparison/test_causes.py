@@ -7,9 +7,9 @@ from pathlib import Path
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.causes import BENDS, OWN_THICKNESS, ROUNDING, SOLID
-from crosscheck.comparison import compare
-from crosscheck.section_file import read_section
+from crosscheck.comparison.causes import BENDS, OWN_THICKNESS, ROUNDING, SOLID
+from crosscheck.comparison.comparing import compare
+from crosscheck.section_file.reader import read_section
 
 CASES = Path(__file__).resolve().parents[2] / "cases" / "sections"
 

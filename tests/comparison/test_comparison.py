@@ -9,13 +9,13 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import join
-from crosscheck.load_case import LoadCase, fe_rate_of_twist, fe_torque
-from crosscheck.midline import Midline
-from crosscheck.models import fe_section, theory_section
-from crosscheck.result import FeValue
-from crosscheck.result_json import document, json_text
-from crosscheck.section_model import CornerSpec, LoadSpec, Material
+from crosscheck.comparison.comparing import join
+from crosscheck.comparison.load_case import LoadCase, fe_rate_of_twist, fe_torque
+from crosscheck.comparison.midline import Midline
+from crosscheck.comparison.models import fe_section, theory_section
+from crosscheck.comparison.result import FeValue
+from crosscheck.reports.result_json import document, json_text
+from crosscheck.section_file.model import CornerSpec, LoadSpec, Material
 
 from .stand_in import FE_OVER_THEORY, both_sides, channel_file, channel_of_steel
 

@@ -9,12 +9,12 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.hand_sheet import hand_sheet, hand_sheets
-from crosscheck.hand_sheet_text import DIGITS, number
-from crosscheck.levels import solve_levels
-from crosscheck.load_comparison import load_cases
-from crosscheck.section_file import read_section
-from crosscheck.section_model import LoadSpec
+from crosscheck.comparison.levels import solve_levels
+from crosscheck.comparison.load_comparison import load_cases
+from crosscheck.hand_sheet.sheet import hand_sheet, hand_sheets
+from crosscheck.hand_sheet.text import DIGITS, number
+from crosscheck.section_file.model import LoadSpec
+from crosscheck.section_file.reader import read_section
 
 from .sheet_reader import Sheet, tables_of
 from .stand_in import channel_file

@@ -10,13 +10,13 @@ import pytest
 from numpy.testing import assert_allclose
 
 import beam_theory
-import crosscheck.levels
-from crosscheck.comparison import compare, join
-from crosscheck.models import theory_section
-from crosscheck.result_json import document
-from crosscheck.screen_blocks import levels_block
-from crosscheck.section_file import read_section
-from crosscheck.section_model import CornerSpec
+import crosscheck.comparison.levels
+from crosscheck.comparison.comparing import compare, join
+from crosscheck.comparison.models import theory_section
+from crosscheck.reports.result_json import document
+from crosscheck.reports.screen_blocks import levels_block
+from crosscheck.section_file.model import CornerSpec
+from crosscheck.section_file.reader import read_section
 
 from .stand_in import both_sides, channel_file
 
@@ -66,13 +66,13 @@ def test_a_judged_level_that_ends_here_leaves_no_verdict_but_the_other_levels():
 
 def test_a_level_that_cannot_take_the_section_is_left_out_with_the_reason():
     section = channel_file(corners=(CornerSpec("every_bend", 60.0),))
-    levels = crosscheck.levels.solve_levels(section)
+    levels = crosscheck.comparison.levels.solve_levels(section)
     assert set(levels.solutions) == {"midline", "lumped"}
     row = join(section, *both_sides(section)).quantity("area")
     assert row.theory["corrected"] is None
     assert "bends at the ends of wall" in row.theory_reasons["corrected"]
     with pytest.raises(beam_theory.SectionError):
-        crosscheck.levels.solve_levels(replace(section, judged="corrected"))
+        crosscheck.comparison.levels.solve_levels(replace(section, judged="corrected"))
 
 
 def test_flows_at_probes_have_every_level(result):

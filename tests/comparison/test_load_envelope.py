@@ -6,11 +6,11 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import join
-from crosscheck.result_json import document
-from crosscheck.screen_blocks import governing_lines
-from crosscheck.section_model import LoadSpec
-from crosscheck.tables import envelope_table, probes_table
+from crosscheck.comparison.comparing import join
+from crosscheck.reports.result_json import document
+from crosscheck.reports.screen_blocks import governing_lines
+from crosscheck.reports.tables import envelope_table, probes_table
+from crosscheck.section_file.model import LoadSpec
 
 from .stand_in import both_sides, channel_file
 

@@ -9,13 +9,13 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import join
-from crosscheck.drawing import mesh_values
+from crosscheck.comparison.comparing import join
+from crosscheck.comparison.drawing import mesh_values
+from crosscheck.comparison.result import PictureMesh
 from crosscheck.pictures import every_picture, figures, picture_bytes, section_picture
 from crosscheck.pictures.canvas import MM, text_width, wrapped
 from crosscheck.pictures.joints import torsion_stress
-from crosscheck.result import PictureMesh
-from crosscheck.section_model import LoadSpec
+from crosscheck.section_file.model import LoadSpec
 
 from .stand_in import both_sides, channel_file
 

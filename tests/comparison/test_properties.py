@@ -9,8 +9,8 @@ import math
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import join
-from crosscheck.tables import TABLES, csv_bytes, stiffness_table
+from crosscheck.comparison.comparing import join
+from crosscheck.reports.tables import TABLES, csv_bytes, stiffness_table
 
 from .stand_in import FE_OVER_THEORY, both_sides, channel_of_steel
 

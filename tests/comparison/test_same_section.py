@@ -9,11 +9,11 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import compare, join
-from crosscheck.levels import solve_levels
-from crosscheck.result import Result
-from crosscheck.section_file import read_section
-from crosscheck.section_model import CutSpec, Material, SectionFile
+from crosscheck.comparison.comparing import compare, join
+from crosscheck.comparison.levels import solve_levels
+from crosscheck.comparison.result import Result
+from crosscheck.section_file.model import CutSpec, Material, SectionFile
+from crosscheck.section_file.reader import read_section
 
 from .stand_in import StandInFe
 

@@ -9,10 +9,10 @@ from dataclasses import replace
 import pytest
 from rich.console import Console
 
-from crosscheck.comparison import join
-from crosscheck.result import FeValue
-from crosscheck.screen import first_screen
-from crosscheck.wording import (
+from crosscheck.comparison.comparing import join
+from crosscheck.comparison.result import FeValue
+from crosscheck.reports.screen import first_screen
+from crosscheck.reports.wording import (
     difference_text,
     number_text,
     one_row_a_family,

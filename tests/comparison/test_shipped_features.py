@@ -7,8 +7,8 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from crosscheck.comparison import compare
-from crosscheck.section_file import read_section
+from crosscheck.comparison.comparing import compare
+from crosscheck.section_file.reader import read_section
 
 CASES = Path(__file__).parents[2] / "cases" / "sections"
 # Quantities outside their criterion. The tapered flange is a fifth of its length thick at the root: FE's

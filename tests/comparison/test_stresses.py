@@ -6,11 +6,11 @@ import numpy as np
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison import compare, join
-from crosscheck.flow_comparison import Probe
-from crosscheck.result_json import json_text
-from crosscheck.section_model import LoadSpec
-from crosscheck.stress_comparison import WallFaces, fe_peak
+from crosscheck.comparison.comparing import compare, join
+from crosscheck.comparison.flow_comparison import Probe
+from crosscheck.comparison.stress_comparison import WallFaces, fe_peak
+from crosscheck.reports.result_json import json_text
+from crosscheck.section_file.model import LoadSpec
 
 from .solved import compared, section_of
 from .stand_in import both_sides, channel_file

@@ -7,9 +7,15 @@ import math
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck import verdicts
-from crosscheck.quantities import LOAD_QUANTITIES, QUANTITIES, SECTION_QUANTITIES, flow_unit, unit_text
-from crosscheck.result import FeValue
+from crosscheck.comparison import verdicts
+from crosscheck.comparison.quantities import (
+    LOAD_QUANTITIES,
+    QUANTITIES,
+    SECTION_QUANTITIES,
+    flow_unit,
+    unit_text,
+)
+from crosscheck.comparison.result import FeValue
 
 
 @pytest.mark.parametrize(

@@ -15,8 +15,8 @@ import pytest
 from numpy.testing import assert_allclose
 
 from crosscheck.faults import FaultList, SectionFaults
-from crosscheck.outline_table import outline_of, read_outline
-from crosscheck.section_numbers import Numbers
+from crosscheck.section_file.numbers import Numbers
+from crosscheck.section_file.outline import outline_of, read_outline
 from fe_models import Solid, outline_of_solid
 
 

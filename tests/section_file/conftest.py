@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from crosscheck.section_file import SectionFaults, SectionFile, read_section
+from crosscheck.section_file.reader import SectionFaults, SectionFile, read_section
 
 HEAD = 'units = "mm N"\n'
 

@@ -10,7 +10,8 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from numpy.testing import assert_allclose
 
-from crosscheck.arithmetic import (
+from crosscheck.faults import ExpressionError
+from crosscheck.section_file.arithmetic import (
     NESTING_LIMIT,
     TEXT_LIMIT,
     cosine,
@@ -20,7 +21,6 @@ from crosscheck.arithmetic import (
     sine,
     tangent,
 )
-from crosscheck.faults import ExpressionError
 
 NAMES = {"t": 2.5, "web_depth": 120.0, "x1": -3.0}
 

@@ -13,9 +13,9 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from crosscheck.section_contacts import Contact, Segments, contacts
-from crosscheck.section_file import SectionFaults, read_section
-from crosscheck.section_keys import ENTRY_LIMITS, WALL_LIMIT
+from crosscheck.section_file.contacts import Contact, Segments, contacts
+from crosscheck.section_file.keys import ENTRY_LIMITS, WALL_LIMIT
+from crosscheck.section_file.reader import SectionFaults, read_section
 from fe_models import outline
 
 

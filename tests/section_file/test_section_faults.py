@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from crosscheck.section_file import read_section
+from crosscheck.section_file.reader import read_section
 
 Lines = Callable[..., list[str]]
 

@@ -12,7 +12,13 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from crosscheck.section_file import SectionFaults, SectionFile, SectionSource, read_source, section_from
+from crosscheck.section_file.reader import (
+    SectionFaults,
+    SectionFile,
+    SectionSource,
+    read_source,
+    section_from,
+)
 
 SHIPPED = sorted((Path(__file__).parents[2] / "cases" / "sections").glob("*.toml"))
 SOURCES = [read_source(path) for path in SHIPPED]

@@ -13,9 +13,10 @@ from pathlib import Path
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck import section_keys
-from crosscheck.quantities import QUANTITIES
-from crosscheck.section_file import (
+from crosscheck.comparison.quantities import QUANTITIES
+from crosscheck.section_file import keys as section_keys
+from crosscheck.section_file.model import BoomSpec, CornerSpec, LoadSpec, ProbeSpec, StatedSpec
+from crosscheck.section_file.reader import (
     SectionFaults,
     SectionFile,
     json_schema,
@@ -23,7 +24,6 @@ from crosscheck.section_file import (
     read_source,
     section_from,
 )
-from crosscheck.section_model import BoomSpec, CornerSpec, LoadSpec, ProbeSpec, StatedSpec
 
 Read = Callable[..., SectionFile]
 
@@ -35,7 +35,7 @@ WALL = '[[walls]]\npath = ["a", "b", "c"]\nthickness = 2\n'
 @pytest.fixture
 def all_built(monkeypatch: pytest.MonkeyPatch) -> None:
     """Every reserved key switched on, as when its row is taken out of the table."""
-    monkeypatch.setattr("crosscheck.section_keys.NOT_BUILT", {})
+    monkeypatch.setattr("crosscheck.section_file.keys.NOT_BUILT", {})
 
 
 def test_lipped_channel() -> None:

@@ -10,9 +10,9 @@ from itertools import pairwise
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.section_file import SectionFile
-from crosscheck.section_model import Place, arc_angle
-from crosscheck.section_smooth import FoldedPath, smooth_spans
+from crosscheck.section_file.model import Place, arc_angle
+from crosscheck.section_file.reader import SectionFile
+from crosscheck.section_file.smooth import FoldedPath, smooth_spans
 
 Read = Callable[..., SectionFile]
 HEAD = 'units = "mm N"\n[points]\na = [0, 0]\nb = [60, -12]\nc = [130, 9]\nd = [150, 60]\n'

@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 
 from crosscheck.faults import SectionFaults
-from crosscheck.section_file import read_section
+from crosscheck.section_file.reader import read_section
 
 
 def _only_line(path: str | Path) -> str:

@@ -8,8 +8,8 @@ from pathlib import Path
 
 import pytest
 
-from crosscheck.section_file import SectionFaults, read_section, read_source, section_from
-from crosscheck.section_model import LoadSpec
+from crosscheck.section_file.model import LoadSpec
+from crosscheck.section_file.reader import SectionFaults, read_section, read_source, section_from
 
 TEXT = (
     'units = "mm N"\n[parameters]\nh = 80\n[points]\na = [0, 0]\nb = [50, 0]\nc = [50, "h"]\n'

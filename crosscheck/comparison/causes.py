@@ -1,0 +1,114 @@
+"""Where a difference comes from: steps between the midline theory and the solid, one assumption at a time.
+
+    midline -> own thickness, free ends and joints -> bends and fillets by theory
+            -> FE with sharp corners, nu = 0 -> FE as drawn, nu = 0
+
+The steps of a quantity add up to its difference. The order is fixed, and the split depends on it. A step that
+cannot be made is merged into the next one, which says so. Poisson's ratio stands beside.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, replace
+
+import beam_theory
+import fe_models
+from crosscheck.comparison import models
+from crosscheck.comparison.result import CauseStep, QuantityResult
+from crosscheck.section_file.model import SectionFile
+
+OWN_THICKNESS = "own thickness, free ends and joints, published"
+BENDS = "bends and fillets, by theory"
+SOLID = "FE in place of theory, corners sharp"
+ROUNDING = "FE as drawn, corners rounded"
+MERGED = "includes what the level corrected would show: {reason}"
+NU = "with the material's nu FE would change by {change:+.2g}"
+
+
+@dataclass(frozen=True)
+class Stations:
+    """What every step starts and ends at.
+
+    Parameters
+    ----------
+    midline, corrected : mapping of name to beam_theory.Quantity
+        Theory without and with its corrections.
+    unrounded : mapping of name to beam_theory.Quantity, optional
+        Level corrected with sharp corners; None where the section has no rounding.
+    sharp : mapping of name to fe_models.Interval, optional
+        FE with sharp corners; None where the section has no rounding or its sharp solid cannot be built.
+    drawn : mapping of name to fe_models.Interval
+        FE as drawn.
+    """
+
+    midline: Mapping[str, beam_theory.Quantity]
+    corrected: Mapping[str, beam_theory.Quantity]
+    unrounded: Mapping[str, beam_theory.Quantity] | None
+    sharp: Mapping[str, fe_models.Interval] | None
+    drawn: Mapping[str, fe_models.Interval]
+
+
+def stations(
+    section: SectionFile,
+    solved: Mapping[str, beam_theory.Solution],
+    fe: fe_models.Solution,
+    accuracy: float,
+) -> Stations:
+    """Solve what the breakdown needs beside the levels and the FE solution at hand."""
+    theory, solid = models.theory_section(section), models.fe_section(section)
+    midline = solved["midline"].quantities
+    corrected = solved["corrected"].quantities if "corrected" in solved else {}
+    unrounded, sharp = None, None
+    if theory.corners and corrected:
+        unrounded = beam_theory.solve(replace(theory, corners=()), level="corrected").quantities
+    if solid.corners:
+        try:
+            sharp = fe_models.solve(replace(solid, corners={}), accuracy).quantities
+        except fe_models.OutlineError:
+            sharp = None
+    return Stations(midline, corrected, unrounded, sharp, fe.quantities)
+
+
+def causes(at: Stations, rows: Sequence[QuantityResult]) -> tuple[CauseStep, ...]:
+    """Steps of every quantity of the section that both sides define, in the order of the rows."""
+    return tuple(step for row in rows if row.load is None for step in _steps(at, row))
+
+
+def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
+    """Steps of one quantity; none where a side has no value."""
+    start = at.midline.get(row.name)
+    end = at.drawn.get(row.name)
+    if start is None or start.value is None or end is None or end.value is None or not row.normaliser:
+        return
+    scale = row.normaliser
+    value, note = start.value, None
+    better = at.corrected.get(row.name)
+    if better is None or better.value is None:
+        reason = "no such level" if better is None else better.reason
+        note = MERGED.format(reason=reason)
+    else:
+        plain = None if at.unrounded is None else at.unrounded[row.name].value
+        if at.unrounded is not None and plain is not None:
+            yield CauseStep(row.name, None, OWN_THICKNESS, (value - plain) / scale, 0.0)
+            yield CauseStep(row.name, None, BENDS, (plain - better.value) / scale, 0.0)
+        else:
+            yield CauseStep(row.name, None, OWN_THICKNESS, (value - better.value) / scale, 0.0)
+        value = better.value
+    beside = None
+    if end.with_nu is not None:
+        beside = NU.format(change=(end.with_nu - end.value) / scale)
+    sharp = None if at.sharp is None else at.sharp.get(row.name)
+    if sharp is None or sharp.value is None:
+        yield CauseStep(
+            row.name, None, SOLID, (value - end.value) / scale, end.half_width / scale, _both(note, beside)
+        )
+        return
+    yield CauseStep(row.name, None, SOLID, (value - sharp.value) / scale, sharp.half_width / scale, note)
+    doubt = (sharp.half_width + end.half_width) / scale
+    yield CauseStep(row.name, None, ROUNDING, (sharp.value - end.value) / scale, doubt, beside)
+
+
+def _both(*notes: str | None) -> str | None:
+    """Notes that are there, in one line."""
+    return "; ".join(note for note in notes if note) or None

@@ -1,0 +1,155 @@
+"""Both sides of one section joined: every quantity with its difference, verdict, effect and factor."""
+
+from __future__ import annotations
+
+import time
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from typing import TYPE_CHECKING
+
+import beam_theory
+import fe_models
+from crosscheck.comparison import models
+from crosscheck.comparison.causes import causes, stations
+from crosscheck.comparison.drawing import drawing_of
+from crosscheck.comparison.levels import Levels, solve_levels
+from crosscheck.comparison.load_comparison import compare_loads
+from crosscheck.comparison.properties import indicator_rows, stiffness_rows
+from crosscheck.comparison.provenance import provenance
+from crosscheck.comparison.result import CheckResult, FeValue, MeshResult, Result
+from crosscheck.comparison.section_rows import section_rows
+from crosscheck.hand_sheet.sheet import hand_sheets
+
+if TYPE_CHECKING:
+    from crosscheck.section_file.model import SectionFile
+
+Progress = Callable[[str], None]
+DEFAULT_ACCURACY = 1e-5
+
+
+def compare(
+    section: SectionFile,
+    accuracy: float = DEFAULT_ACCURACY,
+    progress: Progress | None = None,
+    *,
+    pictures: bool = False,
+    working: bool = False,
+) -> Result:
+    """Solve a section on both sides and compare.
+
+    Parameters
+    ----------
+    section : SectionFile
+        As read.
+    accuracy : float
+        Half-width asked of FE's intervals, over J and over the larger overall dimension [-].
+    progress : callable, optional
+        Told in words what is being done.
+    pictures : bool
+        True where pictures will be drawn: the result then carries geometry and curves as well.
+    working : bool
+        True where the hand sheet of every load is wanted.
+
+    Returns
+    -------
+    Result
+
+    Raises
+    ------
+    fe_models.OutlineError
+        Where the walls do not make a solid.
+    fe_models.SolveError
+        Where the FE side fails.
+    beam_theory.TheoryError
+        Where theory cannot take the section.
+
+    Notes
+    -----
+    Verification and model comparison: both sides are prismatic, linear elastic, Saint-Venant, with an
+    undistorted cross-section.
+    """
+    tell = progress or (lambda _: None)
+    clock = time.perf_counter
+    start = clock()
+    tell("classical theory")
+    levels = solve_levels(section)
+    after_theory = clock()
+    tell("finite elements")
+    fe = fe_models.solve(models.fe_section(section), accuracy, lambda text: tell(f"finite elements, {text}"))
+    after_fe = clock()
+    tell("comparison")
+    seconds = {"theory": after_theory - start, "fe": after_fe - after_theory}
+    return join(section, levels, fe, accuracy, seconds=seconds, pictures=pictures, working=working)
+
+
+def join(
+    section: SectionFile,
+    levels: Levels,
+    fe: fe_models.Solution,
+    accuracy: float = DEFAULT_ACCURACY,
+    *,
+    seconds: Mapping[str, float] | None = None,
+    pictures: bool = False,
+    working: bool = False,
+) -> Result:
+    """Compare solutions of one section; see :func:`compare`."""
+    start = time.perf_counter()
+    values = {name: fe_value(interval) for name, interval in fe.quantities.items()}
+    loads = compare_loads(section, levels, fe, values)
+    rows = [*section_rows(section, levels, fe, values), loads.torsion_modulus, *loads.rows]
+    theory = levels.judged_solution
+    drawing = drawing_of(section, theory, fe, loads.cases, loads.judged_flows) if pictures else None
+    sheets = hand_sheets(section, levels, loads.cases) if working else None
+    stages = {**(seconds or {}), "compare": time.perf_counter() - start}
+    return Result(
+        title=section.title,
+        length_unit=section.length_unit,
+        force_unit=section.force_unit,
+        judged=section.judged,
+        per_modulus=not section.materials,
+        quantities=tuple(rows),
+        flows=loads.flows,
+        theory_peaks=loads.theory_peaks,
+        stated=(),
+        causes=causes(stations(section, levels.solutions, fe, accuracy), rows),
+        working=sheets,
+        mesh=MeshResult(fe.mesh.order, fe.mesh.unknowns, fe.mesh.elements, fe.mesh.strips, fe.mesh.joints),
+        checks=(*_theory_checks(levels), *_checks("FE", fe.checks)),
+        accuracy=accuracy,
+        accuracy_met=bool(fe.met),
+        accuracy_note=fe.accuracy_note,
+        outline_notes=tuple(fe.outline.notes),
+        provenance=provenance(str(section.path), section.sha256, stages, section.tables),
+        drawing=drawing,
+        stresses=loads.stresses,
+        boom_fibres=loads.boom_fibres,
+        fillet_peaks=loads.fillet_peaks,
+        wall_envelopes=loads.wall_envelopes,
+        probe_envelopes=loads.probe_envelopes,
+        stiffness=stiffness_rows(section, levels, values),
+        indicators=indicator_rows(section, levels, values),
+        theory_notes={level: tuple(solution.notes) for level, solution in levels.solutions.items()},
+        section_notes=section.notes,
+    )
+
+
+def fe_value(interval: fe_models.Interval) -> FeValue:
+    """FE's interval as the result records it."""
+    return FeValue(
+        interval.value, interval.low, interval.high, interval.basis, interval.with_nu, interval.reason
+    )
+
+
+def _theory_checks(levels: Levels) -> Iterator[CheckResult]:
+    """Self-checks of every level, the midline's first and without a name."""
+    for level, solution in levels.solutions.items():
+        yield from _checks("theory" if level == "midline" else f"theory, {level}", solution.checks)
+
+
+def _checks(
+    side: str, checks: Sequence[beam_theory.Check] | Sequence[fe_models.Check]
+) -> tuple[CheckResult, ...]:
+    """Self-checks of one side, with the side in front of the name."""
+    return tuple(
+        CheckResult(f"{side}: {check.name}", float(check.value), float(check.allowed), bool(check.passed))
+        for check in checks
+    )

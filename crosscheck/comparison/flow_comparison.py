@@ -1,0 +1,319 @@
+"""Shear flows of both sides at the same probes: per load and wall, with peaks and differences."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from crosscheck.comparison.levels import TheoryFlow
+from crosscheck.comparison.load_case import LoadCase
+from crosscheck.comparison.midline import Midline
+from crosscheck.comparison.quantities import flow_unit
+from crosscheck.comparison.result import Array, FeValue, ProbeResult, TheoryPeak, WallFlow
+from crosscheck.comparison.verdicts import FLOOR
+
+if TYPE_CHECKING:
+    import beam_theory
+    import fe_models
+
+# Two probes closer than this share of the wall are one.
+SAME_PLACE = 1e-6
+# So many loads, the unit loads among them, have probes just where their flows peak. Of further loads a probe
+# within NEAR_PEAK of the wall's length is enough: a parabola over the whole wall is off its top by
+# 4 NEAR_PEAK^2 there.
+EXACT_PEAKS = 12
+NEAR_PEAK = 0.02
+# Flow below this share of V/D or T/D^2 is no flow at all.
+NO_FLOW = 1e-9
+NO_FLOW_REASON = "no net flow on either side"
+
+
+@dataclass(frozen=True)
+class Probe:
+    """A place on a wall, as a fraction 0..1 of it; ``in_strip`` is False where FE reports no flow.
+
+    ``clear``: at least a thickness inside the strip, where what a joint does to stress at the faces has died
+    down.
+    """
+
+    at: float
+    label: str | None
+    in_strip: bool
+    clear: bool = True
+
+
+@dataclass(frozen=True)
+class LoadFlows:
+    """Both sides' flows of one load.
+
+    ``worst`` is the probe, on wall ``worst_wall``, at which the judged level is farthest from FE. ``peaks``:
+    largest flow over the same probes at every level; ``reasons``: why a level has none.
+    """
+
+    case: LoadCase
+    judged: str
+    walls: tuple[WallFlow, ...]
+    peaks: Mapping[str, float | None]
+    reasons: Mapping[str, str]
+    fe_peak: FeValue
+    worst: ProbeResult | None
+    worst_wall: str | None
+    own_peak: TheoryPeak | None
+    reason: str | None
+
+
+def probes_of_walls(
+    flows: Iterable[TheoryFlow],
+    strips: Mapping[str, tuple[float, float] | None],
+    named: Mapping[str, Sequence[tuple[float, str | None]]],
+    slenderness: Mapping[str, float],
+) -> dict[str, tuple[Probe, ...]]:
+    """Probes of every wall: ends and quarter points of its strip, where theory's flows peak, and the user's.
+
+    Where the strip is long enough, places a thickness inside its ends too: the first ones clear of the
+    joints.
+
+    Parameters
+    ----------
+    flows : iterable of TheoryFlow
+        Flows whose stationary places become probes.
+    strips : mapping of wall to (from, to) or None
+        Part of each wall clear of its joints [-]; None where a wall has none.
+    named : mapping of wall to sequence of (at, label)
+        The user's probes [-].
+    slenderness : mapping of wall to float
+        Largest thickness over length [-].
+
+    Returns
+    -------
+    dict of wall to tuple of Probe
+        In order along the wall.
+    """
+    solved = [entry.flow for entry in flows if entry.flow is not None]
+    probes: dict[str, tuple[Probe, ...]] = {}
+    for wall, strip in strips.items():
+        found = [_probe(at, label, strip, slenderness[wall]) for at, label in named.get(wall, ())]
+        if strip is not None:
+            low, high = strip
+            places = [*(low + (high - low) * np.array((0.0, 0.25, 0.5, 0.75, 1.0)))]
+            if high - low > 2.0 * slenderness[wall]:
+                places += [low + slenderness[wall], high - slenderness[wall]]
+            for number, flow in enumerate(solved):
+                spacing = SAME_PLACE if number < EXACT_PEAKS else NEAR_PEAK
+                stationary = [float(at) for at in flow.stationary(wall) if low < at < high]
+                places += [at for at in stationary if all(abs(at - other) > spacing for other in places)]
+            for at in places:
+                if all(abs(at - probe.at) > SAME_PLACE for probe in found):
+                    found.append(_probe(float(min(max(at, low), high)), None, strip, slenderness[wall]))
+        probes[wall] = tuple(sorted(found, key=lambda probe: probe.at))
+    return probes
+
+
+def _probe(at: float, label: str | None, strip: tuple[float, float] | None, slenderness: float) -> Probe:
+    """A probe and where it lies in the strip of its wall."""
+    if strip is None:
+        return Probe(at, label, False, False)
+    low, high = strip
+    margin = min(slenderness, 0.5 * (high - low))
+    return Probe(at, label, low <= at <= high, low + margin - SAME_PLACE <= at <= high - margin + SAME_PLACE)
+
+
+def load_flows(
+    case: LoadCase,
+    theory: Mapping[str, TheoryFlow],
+    judged: str,
+    unit_flows: Mapping[str, Array],
+    strips: Mapping[str, tuple[float, float] | None],
+    torque: FeValue,
+    midlines: Mapping[str, Midline],
+    probes: Mapping[str, Sequence[Probe]],
+    extent: float,
+    units: tuple[str, str],
+) -> LoadFlows:
+    """Flows of one load on both sides, wall by wall.
+
+    FE's flow is Vx q_Vx + Vy q_Vy + T_sc q_T with the torque about FE's own shear centre; theory's solution
+    does the same with its own.
+
+    Parameters
+    ----------
+    case : LoadCase
+        The load.
+    theory : mapping of level to TheoryFlow
+        Theory's flow of it.
+    judged : str
+        The level that verdicts judge.
+    unit_flows : mapping of wall to (2, 3, n)
+        FE's, from ``fe_unit_flows``.
+    strips : mapping of wall to (from, to) or None
+        Part of each wall clear of its joints [-].
+    torque : FeValue
+        Torque about FE's shear centre [F L].
+    midlines : mapping of wall to Midline
+        Geometry [L].
+    probes : mapping of wall to sequence of Probe
+        Where to report.
+    extent : float
+        Larger overall dimension D [L].
+    units : (str, str)
+        Length and force.
+
+    Returns
+    -------
+    LoadFlows
+    """
+    scale = (abs(case.shear[0]) + abs(case.shear[1])) / extent + abs(torque.value or 0.0) / extent**2
+    raw: dict[str, tuple[ProbeResult, ...]] = {}
+    for wall, midline in midlines.items():
+        places = probes.get(wall, ())
+        at = np.array([probe.at for probe in places])
+        q_theory = {
+            level: found.flow.at(wall, at)
+            for level, found in theory.items()
+            if found.flow is not None and at.size
+        }
+        q_fe, errors = _fe_flow(case, unit_flows[wall], torque)
+        xy = midline.places(at)
+        raw[wall] = tuple(
+            ProbeResult(
+                s=float(at[i] * midline.length),
+                x=float(xy[i, 0]),
+                y=float(xy[i, 1]),
+                theory=float(q_theory[judged][i]) if judged in q_theory else None,
+                fe=None if np.isnan(q_fe[i]) else float(q_fe[i]),
+                fe_error=None if np.isnan(q_fe[i]) else float(errors[i]),
+                label=probe.label,
+                levels={level: float(q_theory[level][i]) if level in q_theory else None for level in theory},
+            )
+            for i, probe in enumerate(places)
+        )
+    shared = [(wall, probe) for wall, row in raw.items() for probe in row if probe.fe is not None]
+    fe_peak = _peak_interval([probe for _, probe in shared])
+    compared = [(wall, probe) for wall, probe in shared if probe.theory is not None]
+    peaks = {level: _level_peak(level, [probe for _, probe in shared]) for level in theory}
+    own = peaks[judged]
+    reason = theory[judged].reason or fe_peak.reason
+    if reason is None and own is not None and _is_no_flow(own, fe_peak, scale):
+        reason = NO_FLOW_REASON
+    # four digits: of places that symmetry makes alike the first is named, not the one that round-off favours
+    worst_wall, worst = max(compared, key=lambda pair: float(f"{_gap(pair[1]):.4g}"), default=(None, None))
+    unit = flow_unit(case.name if case.unit else "", *units)
+    walls = tuple(_wall_flow(case, wall, unit, row, fe_peak, reason) for wall, row in raw.items())
+    flow = theory[judged].flow
+    own_peak = None if flow is None else _own_peak(case, flow, midlines, strips)
+    reasons = {level: found.reason for level, found in theory.items() if found.reason is not None}
+    return LoadFlows(case, judged, walls, peaks, reasons, fe_peak, worst, worst_wall, own_peak, reason)
+
+
+def _level_peak(level: str, probes: Sequence[ProbeResult]) -> float | None:
+    """Largest flow of one level over probes, in magnitude."""
+    values = (probe.levels.get(level) for probe in probes)
+    return max((abs(value) for value in values if value is not None), default=None)
+
+
+def fe_unit_flows(fe: fe_models.Solution, wall: str, probes: Sequence[Probe]) -> Array:
+    """FE's flows and errors of unit Vx, Vy and T at the probes of a wall, (2, 3, n); NaN outside its
+    strip."""
+    found = np.full((2, 3, len(probes)), np.nan)
+    inside = np.array([probe.in_strip for probe in probes], dtype=bool)
+    if inside.any():
+        samples = fe.flow_at(wall, np.array([probe.at for probe in probes if probe.in_strip]))
+        found[0][:, inside], found[1][:, inside] = samples.values, samples.errors
+    return found
+
+
+def _fe_flow(case: LoadCase, unit: Array, torque: FeValue) -> tuple[Array, Array]:
+    """FE's flow (n,) and its error (n,) at the probes of a wall; NaN outside its strip."""
+    if torque.value is None:
+        return np.full(unit.shape[2], np.nan), np.full(unit.shape[2], np.nan)
+    combined = np.array((*case.shear, torque.value))
+    used = combined != 0
+    nothing = np.where(np.isnan(unit[0, 0]), np.nan, 0.0)
+    flow = nothing + combined[used] @ unit[0][used]
+    error = nothing + np.abs(combined[used]) @ unit[1][used]
+    half = torque.half_width
+    if half:
+        error = error + half * np.abs(unit[0][2])
+    return flow, error
+
+
+def _peak_interval(probes: Sequence[ProbeResult]) -> FeValue:
+    """FE's largest magnitude over probes, with its interval."""
+    values = [(abs(probe.fe), probe.fe_error or 0.0) for probe in probes if probe.fe is not None]
+    if not values:
+        return FeValue(None, None, None, "estimate", reason="FE reports no flow: no wall has a strip")
+    return FeValue(
+        max(q for q, _ in values),
+        max(max(q - e, 0.0) for q, e in values),
+        max(q + e for q, e in values),
+        "estimate",
+    )
+
+
+def _is_no_flow(theory_peak: float, fe_peak: FeValue, scale: float) -> bool:
+    """Whether theory says exactly nothing and FE cannot tell its flow from nothing."""
+    fe_low = fe_peak.low or 0.0
+    return theory_peak <= NO_FLOW * scale and fe_low <= NO_FLOW * scale
+
+
+def _gap(probe: ProbeResult) -> float:
+    """Distance between both sides at a probe."""
+    assert probe.theory is not None
+    assert probe.fe is not None
+    return abs(probe.theory - probe.fe)
+
+
+def _wall_flow(
+    case: LoadCase,
+    wall: str,
+    unit: str,
+    row: tuple[ProbeResult, ...],
+    fe_peak: FeValue,
+    reason: str | None,
+) -> WallFlow:
+    """One wall's flows with the difference over its own FE peak, floored at 5 % of the section's."""
+    compared = [probe for probe in row if probe.theory is not None and probe.fe is not None]
+    if reason is None and not compared:
+        reason = "the wall has no strip: it is shorter than its joints"
+    if reason is not None or fe_peak.value is None:
+        return WallFlow(case.name, wall, unit, row, None, None, reason)
+    own = max(abs(probe.fe or 0.0) for probe in compared)
+    normaliser = max(own, FLOOR * fe_peak.value)
+    worst = max(compared, key=_gap)
+    gap = signed_gap(worst.theory or 0.0, worst.fe or 0.0)
+    return WallFlow(case.name, wall, unit, row, gap / normaliser, normaliser)
+
+
+def signed_gap(theory: float, fe: float) -> float:
+    """Theory minus FE, counted along FE's flow: positive where theory's flow is the larger."""
+    return (theory - fe) * (-1.0 if fe < 0 else 1.0)
+
+
+def _own_peak(
+    case: LoadCase,
+    flow: beam_theory.Flow,
+    midlines: Mapping[str, Midline],
+    strips: Mapping[str, tuple[float, float] | None],
+) -> TheoryPeak | None:
+    """Theory's own largest flow, wherever it is, and whether FE has a counterpart there."""
+    best: TheoryPeak | None = None
+    for wall, midline in midlines.items():
+        found = flow.peak(wall)
+        # A hair larger does not count: of equal peaks the first wall's is listed, run after run.
+        if best is None or abs(found.flow) > abs(best.value) * (1 + 1e-9):
+            strip = strips.get(wall)
+            x, y = midline.places(np.array([found.at]))[0]
+            has_fe = strip is not None and strip[0] <= found.at <= strip[1]
+            best = TheoryPeak(
+                case.name,
+                wall,
+                float(found.at * midline.length),
+                float(x),
+                float(y),
+                float(found.flow),
+                has_fe,
+            )
+    return best

@@ -1,0 +1,321 @@
+"""The result of one comparison: frozen records that every report is a pure function of."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+
+from crosscheck.comparison.load_results import BoomFibre, FilletPeak, ProbeEnvelope, WallEnvelope, WallStress
+
+Array = NDArray[np.float64]
+Verdict = Literal["within", "outside", "inconclusive"]
+Effect = Literal["conservative", "unconservative", "depends"]
+
+SCHEMA = "crosscheck.result/1"
+LEVELS: tuple[str, str, str] = ("midline", "corrected", "lumped")
+
+
+@dataclass(frozen=True)
+class FeValue:
+    """An FE number with its interval; ``basis`` says whether that is exact, a bound or an estimate."""
+
+    value: float | None
+    low: float | None
+    high: float | None
+    basis: str
+    with_nu: float | None = None
+    reason: str | None = None
+
+    @property
+    def half_width(self) -> float | None:
+        """Largest distance from the value to an end of its interval, in the unit of the value."""
+        if self.value is None or self.low is None or self.high is None:
+            return None
+        return max(self.high - self.value, self.value - self.low, 0.0)
+
+
+@dataclass(frozen=True)
+class QuantityResult:
+    """One row of the comparison: both sides, difference, criterion, verdict, effect and factor.
+
+    ``theory`` and ``difference`` have every level; ``theory_reasons`` says why a level has none.
+    """
+
+    name: str
+    symbol: str
+    unit: str
+    load: str | None
+    theory: Mapping[str, float | None]
+    fe: FeValue
+    difference: Mapping[str, float | None]
+    normaliser: float | None
+    criterion: float
+    criterion_source: Literal["default", "file"]
+    uncertainty: float | None
+    verdict: Verdict | None
+    effect: Mapping[str, Effect] | None
+    factor: float | None
+    reason: str | None
+    judged: str = "midline"
+    note: str | None = None
+    theory_reasons: Mapping[str, str] = field(default_factory=dict)
+
+    @property
+    def criterion_used(self) -> float | None:
+        """Share of the criterion used by difference and FE error together [-]."""
+        judged = self.judged_difference
+        if judged is None or self.uncertainty is None:
+            return None
+        return (abs(judged) + self.uncertainty) / self.criterion
+
+    @property
+    def judged_difference(self) -> float | None:
+        """Difference of the judged level over the normaliser [-]."""
+        return self.difference.get(self.judged)
+
+    @property
+    def judged_theory(self) -> float | None:
+        """Value of the judged level, in the unit of the quantity."""
+        return self.theory.get(self.judged)
+
+
+@dataclass(frozen=True)
+class PropertyRow:
+    """A number of the section that is shown and not judged: a stiffness or an indicator."""
+
+    name: str
+    symbol: str
+    words: str
+    unit: str
+    theory: Mapping[str, float | None]
+    fe: FeValue
+    theory_reasons: Mapping[str, str] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class ProbeResult:
+    """Shear flow of both sides at one place on a wall; ``s`` runs along the wall from its start [L].
+
+    ``theory`` is the judged level's, ``levels`` every level's.
+    """
+
+    s: float
+    x: float
+    y: float
+    theory: float | None
+    fe: float | None
+    fe_error: float | None
+    label: str | None = None
+    levels: Mapping[str, float | None] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class WallFlow:
+    """Flows of one load in one wall; difference over its own FE peak, at least 5 % of the section's."""
+
+    load: str
+    wall: str
+    unit: str
+    probes: tuple[ProbeResult, ...]
+    difference: float | None
+    normaliser: float | None
+    reason: str | None = None
+
+
+@dataclass(frozen=True)
+class TheoryPeak:
+    """Theory's own largest flow, direct stress or von Mises stress of a load, wherever it is (``kind``).
+
+    ``has_fe`` is False in a joint, where FE has no counterpart.
+    """
+
+    load: str
+    wall: str
+    s: float
+    x: float
+    y: float
+    value: float
+    has_fe: bool
+    kind: str = "flow"
+
+
+@dataclass(frozen=True)
+class CauseStep:
+    """One step of the breakdown of a difference: the change as one assumption changes, normalised [-]."""
+
+    quantity: str
+    load: str | None
+    step: str
+    change: float
+    uncertainty: float
+    note: str | None = None
+
+
+@dataclass(frozen=True)
+class StatedJudgement:
+    """A number of the user's judged against both sides."""
+
+    quantity: str
+    value: float
+    source: str
+    theory: float | None
+    fe: float | None
+    difference_fe: float | None
+    difference_theory: float | None
+    verdict: Verdict | None
+
+
+@dataclass(frozen=True)
+class CheckResult:
+    """One self-check of a side: what was found and what is allowed."""
+
+    name: str
+    value: float
+    allowed: float
+    passed: bool
+
+
+@dataclass(frozen=True)
+class MeshResult:
+    """Size of the FE model."""
+
+    order: int
+    unknowns: int
+    elements: int
+    strips: int
+    joints: int
+
+
+@dataclass(frozen=True)
+class Provenance:
+    """Where the numbers come from; the only part of a result that differs between two runs of one file."""
+
+    section_file: str
+    sha256: str
+    version: str
+    packages: Mapping[str, str]
+    python: str
+    seconds: Mapping[str, float]
+    tables: Mapping[str, str] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class WallShape:
+    """A wall as drawn: midline samples (n, 2), left normals (n, 2), thickness (n,), distance s (n,) [L].
+
+    ``turn`` is +1 where reports show it along its own direction, -1 against: cells run anticlockwise, other
+    walls up or right.
+    """
+
+    name: str
+    points: Array
+    normals: Array
+    thickness: Array
+    s: Array
+    strip: tuple[float, float] | None
+    seen_by: str
+    turn: int = 1
+
+
+@dataclass(frozen=True)
+class LoadLine:
+    """A load as drawn: force components [F], a point on its line of action [L], torque [F L]."""
+
+    name: str
+    shear: tuple[float, float]
+    through: tuple[float, float] | None
+    torque: float
+
+    @property
+    def has_shear(self) -> bool:
+        """Whether it makes shear stress."""
+        return self.shear != (0.0, 0.0) or self.torque != 0.0
+
+
+@dataclass(frozen=True)
+class PictureMesh:
+    """The FE mesh as linear triangles.
+
+    Nodes (n, 2) [L], triangles (m, 3), warping function (n,) [L^2] about ``pole`` [L], and the elements' own
+    edges (k, 2), which are fewer than the triangles' where elements of high order are cut up.
+    """
+
+    nodes: Array
+    triangles: NDArray[np.int64]
+    warping: Array
+    pole: tuple[float, float]
+    edges: NDArray[np.int64]
+
+
+@dataclass(frozen=True)
+class Drawing:
+    """What pictures need beside the numbers: geometry of both sides and curves along the walls.
+
+    ``flows[load][wall]`` and ``warping[wall]`` are theory's values at the samples of the wall's shape;
+    ``fe_warping[wall]`` are FE's at its probes: distance along the wall and omega (k, 2).
+    """
+
+    points: Mapping[str, tuple[float, float]]
+    walls: tuple[WallShape, ...]
+    loops: tuple[Array, ...]
+    extent: float
+    loads: tuple[LoadLine, ...]
+    flows: Mapping[str, Mapping[str, Array]]
+    warping: Mapping[str, Array]
+    fe_warping: Mapping[str, Array]
+    mesh: PictureMesh | None
+
+
+@dataclass(frozen=True)
+class Result:
+    """Everything one comparison found; ``drawing`` only where pictures were asked for.
+
+    ``working``: the hand sheet of each load as Markdown, where asked for. ``theory_notes``: remarks of each
+    level of theory; ``section_notes``: those made on reading the file.
+    """
+
+    title: str
+    length_unit: str
+    force_unit: str
+    judged: str
+    per_modulus: bool
+    quantities: tuple[QuantityResult, ...]
+    flows: tuple[WallFlow, ...]
+    theory_peaks: tuple[TheoryPeak, ...]
+    stated: tuple[StatedJudgement, ...]
+    causes: tuple[CauseStep, ...]
+    working: Mapping[str, str] | None
+    mesh: MeshResult
+    checks: tuple[CheckResult, ...]
+    accuracy: float
+    accuracy_met: bool
+    accuracy_note: str
+    outline_notes: tuple[str, ...]
+    provenance: Provenance
+    drawing: Drawing | None = None
+    stresses: tuple[WallStress, ...] = ()
+    boom_fibres: tuple[BoomFibre, ...] = ()
+    fillet_peaks: tuple[FilletPeak, ...] = ()
+    wall_envelopes: tuple[WallEnvelope, ...] = ()
+    probe_envelopes: tuple[ProbeEnvelope, ...] = ()
+    stiffness: tuple[PropertyRow, ...] = ()
+    indicators: tuple[PropertyRow, ...] = ()
+    theory_notes: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
+    section_notes: tuple[str, ...] = ()
+
+    def require_drawing(self) -> Drawing:
+        """The drawing; ValueError where the comparison was made without."""
+        if self.drawing is None:
+            raise ValueError("drawing: must be there for pictures; compare with pictures=True")
+        return self.drawing
+
+    def quantity(self, name: str, load: str | None = None) -> QuantityResult:
+        """Row of a quantity and, for those of a load, of that load."""
+        for row in self.quantities:
+            if row.name == name and row.load == load:
+                return row
+        raise KeyError(f"no row {name!r} for load {load!r} in this result")

@@ -1,0 +1,1 @@
+"""Reports of a Result: the first screen, tables, JSON."""

@@ -1,0 +1,1 @@
+"""From a section file to a checked, frozen SectionFile, or all its faults at once."""

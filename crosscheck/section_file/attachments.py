@@ -1,0 +1,240 @@
+"""What a section file puts on its walls: loads, cuts, probes, booms, corners, stated values, criteria."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Mapping
+from typing import Any
+
+from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
+from crosscheck.faults import FaultList, KeyPath, quoted
+from crosscheck.section_file.model import (
+    EVERY_BEND,
+    MIDLINE_SHEAR_CENTRE,
+    BoomSpec,
+    CornerSpec,
+    CutSpec,
+    LoadSpec,
+    Place,
+    ProbeSpec,
+    StatedSpec,
+)
+from crosscheck.section_file.numbers import NOT_NEGATIVE, POSITIVE, SHARE, Numbers
+
+
+class AttachmentReader:
+    """Reads the tables that refer to points and walls by name.
+
+    Parameters
+    ----------
+    document : well-formed document
+    numbers : resolves numbers and takes faults
+    points : places of points that are without fault
+    declared_points : all point names of the file, faulty ones too
+    walls : names of walls; None when walls are faulty, so that no reference can be judged
+    base_material, materials : for booms
+    """
+
+    def __init__(
+        self,
+        document: Mapping[str, Any],
+        numbers: Numbers,
+        points: Mapping[str, Place],
+        declared_points: Collection[str],
+        walls: Collection[str] | None,
+        base_material: str | None,
+        materials: Collection[str],
+    ) -> None:
+        self.document = document
+        self.numbers = numbers
+        self.faults: FaultList = numbers.faults
+        self.points = points
+        self.declared_points = declared_points
+        self.walls = walls
+        self.base_material = base_material
+        self.materials = materials
+
+    def loads(self) -> tuple[LoadSpec, ...]:
+        """Load cases in file order."""
+        loads = []
+        names: dict[str, int] = {}
+        for index, table in enumerate(self.document.get("loads", [])):
+            path: KeyPath = ("loads", index)
+            name = table.get("name")
+            if name in names:
+                self.faults.add(
+                    (*path, "name"), f"{quoted(name)} again (first at loads[{names[name]}])", "unique"
+                )
+            elif name in UNIT_LOADS:
+                self.faults.add((*path, "name"), quoted(name), "named otherwise: unit loads have this name")
+            elif name is not None:
+                names[name] = index
+            loads.append(self._load(path, str(name), table))
+        return tuple(loads)
+
+    def _load(self, path: KeyPath, name: str, table: Mapping[str, Any]) -> LoadSpec:
+        """One load case; faulty numbers are 0."""
+        number = self.numbers.number
+        shear = self.numbers.pair((*path, "shear"), table.get("shear"))
+        torque = number((*path, "torque"), table.get("torque"))
+        axial = number((*path, "axial"), table.get("axial"))
+        moment = self.numbers.pair((*path, "moment"), table.get("moment"))
+        bimoment = number((*path, "bimoment"), table.get("bimoment"))
+        through, through_point = self._through((*path, "through"), table.get("through"))
+        if shear is not None and any(shear) and "through" not in table:
+            remedy = f'coordinates [x, y], a point name or "{MIDLINE_SHEAR_CENTRE}"'
+            self.faults.add((*path, "through"), "nothing", "given with a shear", remedy)
+        given = {"shear": shear, "torque": torque, "axial": axial, "moment": moment, "bimoment": bimoment}
+        parts = [given[key] for key in given if key in table]
+        if not parts and not self.faults.any_at(path):
+            self.faults.add(path, "no force", "given a force", "give shear with through, or torque")
+        elif parts and None not in parts and not any(part not in (0.0, (0.0, 0.0)) for part in parts):
+            self.faults.add(path, "zero in every part", "a force other than zero")
+        return LoadSpec(
+            name=name,
+            shear=shear or (0.0, 0.0),
+            through=through,
+            torque=torque or 0.0,
+            axial=axial or 0.0,
+            moment=moment or (0.0, 0.0),
+            bimoment=bimoment or 0.0,
+            through_point=through_point,
+        )
+
+    def _through(self, path: KeyPath, raw: Any) -> tuple[Place | str | None, str | None]:
+        """Place or "midline shear centre", and the point's name where it was given by one."""
+        if raw is None:
+            return None, None
+        if isinstance(raw, list):
+            return self.numbers.pair(path, raw), None
+        if raw == MIDLINE_SHEAR_CENTRE:
+            return MIDLINE_SHEAR_CENTRE, None
+        if raw not in self.declared_points:
+            words = f'coordinates [x, y], a point of [points] or "{MIDLINE_SHEAR_CENTRE}"'
+            self.faults.add(
+                path, quoted(raw), words, near=(raw, (*self.declared_points, MIDLINE_SHEAR_CENTRE))
+            )
+        return self.points.get(raw), raw
+
+    def cuts(self) -> tuple[CutSpec, ...]:
+        """Cuts in file order, at most one per wall."""
+        cuts: dict[str, CutSpec] = {}
+        for index, table in enumerate(self.document.get("cuts", [])):
+            wall, at = self._place_on_wall(("cuts", index), table)
+            if wall is None:
+                continue
+            if wall in cuts:
+                self.faults.add(("cuts", index, "wall"), f"{quoted(wall)} again", "cut once")
+            cuts[wall] = CutSpec(wall, 0.0 if at is None else at)
+        return tuple(cuts.values())
+
+    def probes(self) -> tuple[ProbeSpec, ...]:
+        """Probes in file order."""
+        probes: dict[str, ProbeSpec] = {}
+        for index, table in enumerate(self.document.get("probes", [])):
+            wall, at = self._place_on_wall(("probes", index), table)
+            label = table.get("label")
+            if label in probes:
+                self.faults.add(("probes", index, "label"), f"{quoted(label)} again", "unique")
+            elif label is not None and wall is not None:
+                probes[label] = ProbeSpec(label, wall, 0.0 if at is None else at)
+        return tuple(probes.values())
+
+    def _place_on_wall(self, path: KeyPath, table: Mapping[str, Any]) -> tuple[str | None, float | None]:
+        at = self.numbers.number((*path, "at"), table.get("at"), SHARE)
+        return self._wall((*path, "wall"), table.get("wall")), at
+
+    def _wall(self, path: KeyPath, name: str | None) -> str | None:
+        if name is not None and self.walls is not None and name not in self.walls:
+            parts = [f"{name} {number}" for number in (1, 2) if f"{name} {number}" in self.walls]
+            remedy = f"the walls of that path are {', '.join(map(quoted, parts))} and so on" if parts else ""
+            near = None if parts else (name, self.walls)
+            self.faults.add(path, quoted(name), "the name of a wall", remedy, near=near)
+        return name
+
+    def booms(self) -> tuple[BoomSpec, ...]:
+        """Booms in file order, lists and counts taken apart: count = n puts them at k/(n+1), k = 1..n."""
+        booms: list[BoomSpec] = []
+        for index, table in enumerate(self.document.get("booms", [])):
+            path: KeyPath = ("booms", index)
+            area = self.numbers.number((*path, "area"), table.get("area"), POSITIVE) or 0.0
+            material = table.get("material", self.base_material)
+            if "material" in table and material not in self.materials:
+                words = "a material of [materials]"
+                self.faults.add((*path, "material"), quoted(material), words, near=(material, self.materials))
+            seen_by = table.get("seen_by", "both")
+            at, wall, count = table.get("at"), table.get("wall"), table.get("count")
+            if isinstance(at, str) and wall is None and count is None:
+                if at not in self.declared_points:
+                    near = (at, self.declared_points)
+                    self.faults.add((*path, "at"), quoted(at), "a point of [points]", near=near)
+                booms.append(BoomSpec(area, point=at, material=material, seen_by=seen_by))
+            elif wall is not None and (at is None) != (count is None):
+                self._wall((*path, "wall"), wall)
+                fractions = self._fractions((*path, "at"), at, count)
+                booms += [BoomSpec(area, None, wall, each, material, seen_by) for each in fractions]
+            else:
+                keys = ", ".join(key for key in ("at", "wall", "count") if key in table) or "none of these"
+                self.faults.add(path, keys, "given by at = a point, by wall and at, or by wall and count")
+        return tuple(booms)
+
+    def _fractions(self, path: KeyPath, at: Any, count: int | None) -> list[float]:
+        if count is not None:
+            return [number / (count + 1) for number in range(1, count + 1)]
+        if isinstance(at, list):
+            values = [self.numbers.number((*path, i), each, SHARE) for i, each in enumerate(at)]
+        else:
+            values = [self.numbers.number(path, at, SHARE)]
+        return [value for value in values if value is not None]
+
+    def corners(self) -> tuple[CornerSpec, ...]:
+        """Rounded corners in file order."""
+        corners = []
+        for point, table in self.document.get("corners", {}).items():
+            path: KeyPath = ("corners", point)
+            if point != EVERY_BEND and point not in self.declared_points:
+                near = (point, (*self.declared_points, EVERY_BEND))
+                self.faults.add(path, quoted(point), f"a point of [points] or {EVERY_BEND}", near=near)
+            inner = self.numbers.number((*path, "inner_radius"), table.get("inner_radius"), NOT_NEGATIVE)
+            outer = self.numbers.number((*path, "outer_radius"), table.get("outer_radius"), NOT_NEGATIVE)
+            corners.append(CornerSpec(point, inner or 0.0, outer))
+        return tuple(corners)
+
+    def stated(self) -> tuple[StatedSpec, ...]:
+        """Stated values in file order."""
+        stated = []
+        for index, table in enumerate(self.document.get("stated", [])):
+            path: KeyPath = ("stated", index)
+            quantity = table.get("quantity", "")
+            if quantity:
+                self._quantity((*path, "quantity"), quantity)
+            value = self.numbers.number((*path, "value"), table.get("value"))
+            tolerance = self.numbers.number((*path, "tolerance"), table.get("tolerance"), NOT_NEGATIVE)
+            raw = table.get("measured_from")
+            datum: Place | str | None = raw if not isinstance(raw, list) else None
+            if isinstance(raw, list):
+                datum = self.numbers.pair((*path, "measured_from"), raw)
+            elif raw is not None and self.walls is not None:
+                known = (*self.declared_points, *self.walls)
+                if raw not in known:
+                    words = "coordinates [x, y], a point or a wall"
+                    self.faults.add((*path, "measured_from"), quoted(raw), words, near=(raw, known))
+            stated.append(StatedSpec(quantity, value or 0.0, table.get("source", ""), tolerance, datum))
+        return tuple(stated)
+
+    def criteria(self, notes: list[str]) -> dict[str, float]:
+        """Largest accepted differences by quantity name [-]."""
+        criteria: dict[str, float] = {}
+        for name, raw in self.document.get("criteria", {}).items():
+            path: KeyPath = ("criteria", name)
+            self._quantity(path, name)
+            value = self.numbers.number(path, raw, POSITIVE)
+            if value is None:
+                continue
+            if value > 1.0:
+                notes.append(f"criteria.{name} = {value:g} accepts {100 * value:g} % (5 % is written 0.05)")
+            criteria[name] = value
+        return criteria
+
+    def _quantity(self, path: KeyPath, name: str) -> None:
+        if name not in QUANTITIES:
+            self.faults.add(path, quoted(name), "the name of a quantity", near=(name, QUANTITIES))

@@ -1,0 +1,171 @@
+"""Reading a section file: from a path to a checked, frozen SectionFile, or all its faults at once.
+
+bytes -> document (section_source) -> forms (section_forms) -> numbers and walls (section_numbers,
+section_walls, section_loads) -> geometry (section_checks) -> SectionFile (section_model)
+"""
+
+from __future__ import annotations
+
+import os
+from collections.abc import Iterable, Mapping
+from pathlib import PurePath
+from typing import Any
+
+from crosscheck.faults import Fault, FaultList, SectionFaults, one_line, quoted
+from crosscheck.section_file.model import (
+    BoomSpec,
+    CornerSpec,
+    CutSpec,
+    LoadSpec,
+    Material,
+    ProbeSpec,
+    SectionFile,
+    StatedSpec,
+    WallSpec,
+)
+from crosscheck.section_file.source import SectionSource, read_source
+from crosscheck.units import UNIT_SYSTEMS
+
+__all__ = [
+    "BoomSpec",
+    "CornerSpec",
+    "CutSpec",
+    "Fault",
+    "LoadSpec",
+    "Material",
+    "ProbeSpec",
+    "SectionFaults",
+    "SectionFile",
+    "SectionSource",
+    "StatedSpec",
+    "WallSpec",
+    "json_schema",
+    "read_section",
+    "read_source",
+    "section_from",
+]
+
+
+def read_section(
+    path: str | os.PathLike[str], overrides: Iterable[str] | Mapping[str, float | str] = ()
+) -> SectionFile:
+    """Read and check a section file.
+
+    Parameters
+    ----------
+    path : the file
+    overrides : parameters set anew, as texts ("t = 2.5") or as a mapping of names to values
+
+    Returns
+    -------
+    SectionFile
+
+    Raises
+    ------
+    SectionFaults : all faults of the file at once, in its order
+    """
+    return section_from(read_source(path), overrides)
+
+
+def section_from(
+    source: SectionSource, overrides: Iterable[str] | Mapping[str, float | str] = ()
+) -> SectionFile:
+    """Check a section file that was read before, with parameters set anew.
+
+    Parameters
+    ----------
+    source : from `read_source`; left as it is, so that one source serves a whole sweep
+    overrides : as for `read_section`
+
+    Returns
+    -------
+    SectionFile
+
+    Raises
+    ------
+    SectionFaults : all faults at once, in the file's order
+    """
+    # pydantic and numpy load here, so that help and faults of the command line stay quick.
+    from crosscheck.section_file.attachments import AttachmentReader
+    from crosscheck.section_file.forms import well_formed
+    from crosscheck.section_file.geometry import GeometryCheck
+    from crosscheck.section_file.numbers import Numbers
+    from crosscheck.section_file.tables import with_tables
+    from crosscheck.section_file.walls import WallReader, read_materials, read_points
+
+    faults = FaultList(source.path)
+    notes: list[str] = []
+    given = with_tables(source, faults, notes)
+    document = well_formed(given, faults)
+    units = _units(document, faults)
+    numbers = Numbers(faults, document.get("parameters", {}), overrides, _names(given, "parameters"))
+    material_names, point_names = _names(given, "materials"), _names(given, "points")
+    materials, base_material = read_materials(document, material_names, numbers, notes)
+    points = read_points(document, numbers)
+    reader = WallReader(numbers, points, point_names, material_names, base_material)
+    walls, named = reader.read(document.get("walls", []))
+    complete = reader.complete and "walls" in document
+    attachments = AttachmentReader(
+        document, numbers, points, point_names, named if complete else None, base_material, material_names
+    )
+    loads, cuts = attachments.loads(), attachments.cuts()
+    probes, booms = attachments.probes(), attachments.booms()
+    corners, stated = attachments.corners(), attachments.stated()
+    criteria = attachments.criteria(notes)
+    load_points = [load.through_point for load in loads if load.through_point is not None]
+    notes += GeometryCheck(walls, named, points, faults).run(cuts, complete, load_points)
+    faults.raise_any(given)
+    return SectionFile(
+        path=source.path,
+        sha256=source.sha256,
+        title=document.get("title") or one_line(PurePath(source.path).stem),
+        length_unit=units[0],
+        force_unit=units[1],
+        points=points,
+        walls=tuple(walls),
+        judged=document.get("judged", "midline"),
+        parameters=numbers.values,
+        overrides={name: str(value) for name, value in numbers.overrides.items()},
+        materials=materials,
+        base_material=base_material,
+        booms=booms,
+        corners=corners,
+        loads=loads,
+        cuts=cuts,
+        probes=probes,
+        stated=stated,
+        criteria=criteria,
+        notes=tuple(notes),
+        tables={table.name: table.sha256 for table in source.tables.values()},
+    )
+
+
+def json_schema() -> dict[str, Any]:
+    """JSON Schema of the section file, for editors."""
+    from crosscheck.section_file.schema import SectionDocument
+
+    schema = SectionDocument.model_json_schema(by_alias=True)
+    for table in (schema, *schema.get("$defs", {}).values()):
+        for entry in table.get("properties", {}).values():
+            if entry.get("default", ...) is None:  # stands for "absent": TOML has no null
+                del entry["default"]
+    return schema
+
+
+def _units(document: Mapping[str, Any], faults: FaultList) -> tuple[str, str]:
+    """Units of length and force; empty when absent or unknown."""
+    name = document.get("units")
+    if name is None:
+        return "", ""
+    if name not in UNIT_SYSTEMS:
+        words = f"one of {', '.join(quoted(known) for known in UNIT_SYSTEMS)}"
+        faults.add(("units",), quoted(name), words, near=(name, UNIT_SYSTEMS))
+        return "", ""
+    system = UNIT_SYSTEMS[name]
+    return system.length, system.force
+
+
+def _names(document: Mapping[str, Any], table: str) -> dict[str, None]:
+    """Names in a table as the file gives them, in order, faulty entries too."""
+    entries = document.get(table)
+    return dict.fromkeys(entries) if isinstance(entries, dict) else {}

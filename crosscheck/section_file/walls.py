@@ -1,0 +1,390 @@
+"""Materials, points and walls of a section file: paths taken apart, names given, thicknesses resolved."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Collection, Mapping, MutableMapping, Sequence
+from dataclasses import dataclass
+from itertools import pairwise
+from typing import Any
+
+from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
+from crosscheck.section_file.keys import WALL_LIMIT
+from crosscheck.section_file.model import (
+    EVERY_BEND,
+    MIDLINE_SHEAR_CENTRE,
+    Material,
+    Place,
+    WallSpec,
+    arc_angle,
+)
+from crosscheck.section_file.numbers import POISSON, POSITIVE, SHARE, Numbers
+from crosscheck.section_file.smooth import FoldedPath, smooth_spans
+
+UNKNOWN = math.nan  # stands for a thickness or coordinate whose fault is noted already
+
+_RESERVED_POINTS = (MIDLINE_SHEAR_CENTRE, EVERY_BEND)
+
+
+def read_materials(
+    document: Mapping[str, Any], declared: Collection[str], numbers: Numbers, notes: list[str]
+) -> tuple[dict[str, Material], str | None]:
+    """Materials by name and the base material.
+
+    Parameters
+    ----------
+    document : well-formed document
+    declared : names of all materials in the file, faulty ones too
+    numbers : resolves numbers and takes faults
+    notes : receives remarks
+    """
+    materials: dict[str, Material] = {}
+    for name, table in document.get("materials", {}).items():
+        path: KeyPath = ("materials", name)
+        E = numbers.number((*path, "E"), table.get("E"), POSITIVE)
+        nu = numbers.number((*path, "nu"), table.get("nu"), POISSON)
+        G = numbers.number((*path, "G"), table.get("G"), POSITIVE)
+        if "nu" not in table and "G" not in table:
+            numbers.faults.add((*path, "nu"), "nothing", "given, or G instead", "nu = 0.3 suits most metals")
+        if E is None:
+            continue
+        if nu is not None and "G" not in table:
+            G = E / (2.0 * (1.0 + nu))
+        elif G is not None and "nu" not in table:
+            nu = E / (2.0 * G) - 1.0
+            if not POISSON.holds(nu):
+                words = f"such that nu = E/(2G) - 1 is {POISSON.words}"
+                numbers.faults.add((*path, "G"), f"{G:g} (nu = {nu:.4g})", words)
+        if G is None or nu is None:
+            continue
+        if abs(G - E / (2.0 * (1.0 + nu))) > 0.01 * G:
+            isotropic = E / (2.0 * (1.0 + nu))
+            notes.append(f"materials.{name}: G = {G:g} is taken as given; E/(2(1+nu)) is {isotropic:.5g}")
+        materials[name] = Material(name, E, G, nu)
+    return materials, _base_material(document, declared, numbers.faults)
+
+
+def _base_material(document: Mapping[str, Any], declared: Collection[str], faults: FaultList) -> str | None:
+    base = document.get("base_material")
+    if base is None:
+        if len(declared) > 1:
+            words = "given when the file has more than one material"
+            faults.add(("base_material",), "nothing", words, f"for example {quoted(next(iter(declared)))}")
+        return next(iter(declared), None)
+    if base not in declared:
+        words = "a material of [materials]"
+        faults.add(("base_material",), quoted(base), words, near=(base, declared))
+    return str(base)
+
+
+def read_points(document: Mapping[str, Any], numbers: Numbers) -> dict[str, Place]:
+    """Places of all points that are without fault."""
+    points: dict[str, Place] = {}
+    for name, raw in document.get("points", {}).items():
+        if name in _RESERVED_POINTS:
+            numbers.faults.add(("points", name), quoted(name), "named otherwise: this name is reserved")
+        place = numbers.pair(("points", name), raw)
+        if place is not None:
+            points[name] = place
+    return points
+
+
+@dataclass(frozen=True)
+class _Stretch:
+    """One wall of a path: its number within the path from 0, its ends, and a third place on its arc.
+
+    ``part``: 1 or 2 for the arcs of a span that a smooth path makes of two, else 0.
+    """
+
+    span: int
+    part: int
+    start: str
+    end: str
+    arc: Place | None
+
+
+class WallReader:
+    """Takes the wall tables of a document apart into walls between two points.
+
+    Parameters
+    ----------
+    numbers : resolves numbers and takes faults
+    points : places of points that are without fault; receives those where the arcs of smooth paths meet
+    declared_points, declared_materials : all names in the file, faulty ones too
+    base_material : material of a wall that names none
+    """
+
+    def __init__(
+        self,
+        numbers: Numbers,
+        points: MutableMapping[str, Place],
+        declared_points: Collection[str],
+        declared_materials: Collection[str],
+        base_material: str | None,
+    ) -> None:
+        self.numbers = numbers
+        self.faults = numbers.faults
+        self.points = points
+        self.declared_points = declared_points
+        self.declared_materials = declared_materials
+        self.base_material = base_material
+        self.complete = True  # False once an entry gave no walls
+
+    def read(self, entries: Sequence[Mapping[str, Any]]) -> tuple[list[WallSpec], dict[str, bool]]:
+        """Walls in file order, and for every name whether the file gave it.
+
+        Walls of a faulty entry are kept where their points are known, with what is faulty set to NaN,
+        so that the geometry can be checked in the same go.
+        """
+        count = sum(max(len(entry.get("path", ())) - 1, 0) for entry in entries)
+        if not self._few_enough(count):
+            return [], {}
+        walls: dict[str, WallSpec] = {}
+        named: dict[str, bool] = {}
+        for index, entry in enumerate(entries):
+            for wall in self._entry(index, entry):
+                if wall.name in walls:
+                    self._repeated_name(index, entry, wall, walls[wall.name], named[wall.name])
+                    continue
+                named[wall.name] = "name" in entry
+                walls[wall.name] = wall
+        # Smooth paths make up to two arcs of a span.
+        return (list(walls.values()), named) if self._few_enough(len(walls)) else ([], {})
+
+    def _few_enough(self, count: int) -> bool:
+        """False, with a fault, when there are more walls than the FE side takes."""
+        if count <= WALL_LIMIT:
+            return True
+        self.complete = False
+        self.faults.add(("walls",), f"{count} walls", f"at most {WALL_LIMIT} walls")
+        return False
+
+    def _repeated_name(
+        self, index: int, entry: Mapping[str, Any], wall: WallSpec, first: WallSpec, first_named: bool
+    ) -> None:
+        key = ("walls", index, "name")
+        unnamed = not first_named and "name" not in entry
+        if unnamed and {first.start, first.end} == {wall.start, wall.end}:
+            _same_points_fault(self.faults, key, first, wall)
+        else:
+            found = f"{quoted(wall.name)} again (first at {first.key})"
+            self.faults.add(key, found, "unique", "give each wall a name of its own")
+
+    def _entry(self, index: int, entry: Mapping[str, Any]) -> list[WallSpec]:
+        """Walls of one entry of [[walls]]."""
+        path: KeyPath = ("walls", index)
+        points = entry.get("path")
+        if points is None or not self._path_holds((*path, "path"), points):
+            self.complete = False
+            self._note_other_faults(path, entry, points)
+            return []
+        stretches = self._stretches(path, entry, points)
+        thicknesses = self._thicknesses((*path, "thickness"), entry.get("thickness"), stretches)
+        material = self._material((*path, "material"), entry.get("material"))
+        share = self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
+        name = entry.get("name")
+        several = len(points) > 2
+        walls = []
+        for stretch, thickness in zip(stretches, thicknesses, strict=True):
+            own = f"{points[stretch.span]}-{points[stretch.span + 1]}"
+            if name is not None:
+                own = f"{name} {stretch.span + 1}" if several else name
+            wall = WallSpec(
+                name=f"{own}.{stretch.part}" if stretch.part else own,
+                start=stretch.start,
+                end=stretch.end,
+                thickness=thickness,
+                arc_through=stretch.arc,
+                material=material,
+                direct_share=UNKNOWN if share is None else share,
+                seen_by=entry.get("seen_by", "both"),
+                key=key_text(path),
+            )
+            walls.append(wall)
+        return walls
+
+    def _note_other_faults(
+        self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str] | None
+    ) -> None:
+        """Note what else is faulty in an entry whose path gives no walls; a list's length is not judged."""
+        raw = entry.get("thickness")
+        here: KeyPath = (*path, "thickness")
+        parts: list[tuple[KeyPath, Any]] = [(here, raw)]
+        if isinstance(raw, list):
+            parts = [((*here, i), value) for i, value in enumerate(raw)]
+        elif isinstance(raw, dict):
+            parts = [((*here, key), raw.get(key)) for key in ("from", "to")]
+        for part, value in parts:
+            self._thickness(part, value)
+        self._material((*path, "material"), entry.get("material"))
+        self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
+        # Between a point and itself there is neither an arc nor a smooth path to judge.
+        if points is not None and all(a != b for a, b in pairwise(points)):
+            self._stretches(path, entry, points)
+        elif "arc" in entry:
+            self.numbers.pair((*path, "arc", "through"), entry["arc"].get("through"))
+
+    def _stretches(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> list[_Stretch]:
+        """Walls of a path: straight, one arc, or the arcs of a smooth path with the places where they
+        meet."""
+        arc = self._arc((*path, "arc"), entry, points)
+        plain = [_Stretch(i, 0, start, end, arc) for i, (start, end) in enumerate(pairwise(points))]
+        if not entry.get("smooth", False):
+            return plain
+        if len(points) < 3 or "arc" in entry:
+            found = "an arc" if "arc" in entry else "a path of two points"
+            words = "given with a path of at least three points, without arc"
+            self.faults.add((*path, "smooth"), found, words)
+            return plain
+        places = [self.points[name] for name in points if name in self.points]
+        if len(places) < len(points) or any(a == b for a, b in pairwise(places)):
+            return plain  # noted as faults of the points
+        try:
+            spans = smooth_spans(places)
+        except FoldedPath as folded:
+            words = "a path that turns less, or more points round the turn"
+            self.faults.add((*path, "path", folded.index), quoted(points[folded.index]), words)
+            return plain
+        made: list[_Stretch] = []
+        for i, ((start, end), arcs) in enumerate(zip(pairwise(points), spans, strict=True)):
+            if len(arcs) == 1:
+                made.append(_Stretch(i, 0, start, end, arcs[0].through))
+                continue
+            between = self._free_point(f"{start}~{end}")
+            self.points[between] = arcs[0].end
+            made += [
+                _Stretch(i, 1, start, between, arcs[0].through),
+                _Stretch(i, 2, between, end, arcs[1].through),
+            ]
+        return made
+
+    def _free_point(self, name: str) -> str:
+        """A name for a point between two arcs that no other point has."""
+        while name in self.points or name in self.declared_points:
+            name += "~"
+        return name
+
+    def _path_holds(self, path: KeyPath, points: Sequence[str]) -> bool:
+        """False when a path has a fault after which its walls mean nothing."""
+        before = len(self.faults) + self.faults.left_out
+        for position, point in enumerate(points):
+            here = (*path, position)
+            if point not in self.declared_points:
+                self.faults.add(
+                    here, quoted(point), "a point of [points]", near=(point, self.declared_points)
+                )
+            if position and point == points[position - 1]:
+                self.faults.add(
+                    here, f"{quoted(point)} twice in a row", "a point other than the one before it"
+                )
+        return len(self.faults) + self.faults.left_out == before
+
+    def _material(self, path: KeyPath, name: str | None) -> str | None:
+        if name is None:
+            return self.base_material
+        if name not in self.declared_materials:
+            words = "a material of [materials]"
+            self.faults.add(path, quoted(name), words, near=(name, self.declared_materials))
+        return name
+
+    def _arc(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> Place | None:
+        """Third place of an arc that the path's two points make a circle with."""
+        if "arc" not in entry:
+            return None
+        through = self.numbers.pair((*path, "through"), entry["arc"].get("through"))
+        if len(points) != 2:
+            self.faults.add(path, f"a path of {len(points)} points", "given with a path of two points")
+            return None
+        ends = [self.points.get(name) for name in points]
+        if through is None or ends[0] is None or ends[1] is None:
+            return through
+        (ax, ay), (bx, by), (cx, cy) = ends[0], through, ends[1]
+        area = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax)
+        size = max(math.dist(ends[0], through), math.dist(through, ends[1]), math.dist(ends[0], ends[1]))
+        if abs(area) <= 1e-9 * size * size:
+            found = f"{shown(entry['arc']['through'])} in line with both points"
+            self.faults.add((*path, "through"), found, "off the line through both points")
+            return None
+        return through
+
+    def _thicknesses(
+        self, path: KeyPath, raw: Any, stretches: Sequence[_Stretch]
+    ) -> list[tuple[float, float]]:
+        """Thickness at start and end of every wall of a path [L]; NaN where it is faulty."""
+        count = stretches[-1].span + 1
+        if isinstance(raw, list):
+            if len(raw) != count:
+                words = f"one value, or a list of {count}, one per wall of the path"
+                self.faults.add(path, f"a list of {len(raw)}", words)
+                return [(UNKNOWN, UNKNOWN)] * len(stretches)
+            values = [self._thickness((*path, i), entry) for i, entry in enumerate(raw)]
+            return [(values[each.span], values[each.span]) for each in stretches]
+        if isinstance(raw, dict):
+            first = self._thickness((*path, "from"), raw.get("from"))
+            last = self._thickness((*path, "to"), raw.get("to"))
+            return self._taper(first, last, stretches)
+        value = self._thickness(path, raw)
+        return [(value, value)] * len(stretches)
+
+    def _thickness(self, path: KeyPath, raw: Any) -> float:
+        value = self.numbers.number(path, raw, POSITIVE)
+        return UNKNOWN if value is None else value
+
+    def _taper(self, first: float, last: float, stretches: Sequence[_Stretch]) -> list[tuple[float, float]]:
+        """Thickness that is linear by length over a whole path, per wall [L]."""
+        if any(point not in self.points for each in stretches for point in (each.start, each.end)):
+            return [(UNKNOWN, UNKNOWN)] * len(stretches)
+        along = [0.0]
+        for each in stretches:
+            along.append(along[-1] + _length(self.points[each.start], self.points[each.end], each.arc))
+        whole = along[-1] or 1.0
+        values = [first + (last - first) * distance / whole for distance in along]
+        return list(pairwise(values))
+
+
+def _length(start: Place, end: Place, arc: Place | None) -> float:
+    """Length of a straight wall or an arc [L]."""
+    if arc is None:
+        return math.dist(start, end)
+    centre, _, sweep = arc_angle(start, arc, end)
+    return math.dist(centre, start) * abs(sweep)
+
+
+def _same_points_fault(faults: FaultList, path: KeyPath, first: WallSpec, second: WallSpec) -> None:
+    """Note two walls between the same points of which one has no name."""
+    between = f"{quoted(second.start)} and {quoted(second.end)}"
+    found = f"no name at {first.key} or {second.key}, which both join {between}"
+    remedy = "two straight walls between the same points also lie on each other: bend one to an arc"
+    straight = first.arc_through is None and second.arc_through is None
+    faults.add(path, found, "given where two walls join the same points", remedy if straight else "")
+
+
+def check_same_points(
+    walls: Sequence[WallSpec], named: Mapping[str, bool], faults: FaultList
+) -> set[frozenset[str]]:
+    """Note walls that join the same points and have no names, or lie on each other.
+
+    Returns
+    -------
+    Names of every pair of walls that joins the same points.
+    """
+    by_points: dict[frozenset[str], WallSpec] = {}
+    pairs: set[frozenset[str]] = set()
+    for wall in walls:
+        points = frozenset((wall.start, wall.end))
+        first = by_points.setdefault(points, wall)
+        if first is wall:
+            continue
+        pairs.add(frozenset((first.name, wall.name)))
+        if not (named[first.name] and named[wall.name]):
+            _same_points_fault(faults, entry_path(wall, "name"), first, wall)
+        elif first.arc_through is None and wall.arc_through is None:
+            found = f"{quoted(wall.name)} on {quoted(first.name)} ({first.key})"
+            words = "clear of other walls (these two overlap)"
+            faults.add(entry_path(wall, "path"), found, words, "leave one out, or bend one to an arc")
+    return pairs
+
+
+def entry_path(wall: WallSpec, key: str) -> KeyPath:
+    """Key path of a key in the entry that defines a wall."""
+    return ("walls", int(wall.key.partition("[")[2][:-1]), key)
