@@ -1,0 +1,1 @@
+"""The verification suite: reference rows, code checks, coverage and evidence."""

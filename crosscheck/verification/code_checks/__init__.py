@@ -1,0 +1,20 @@
+"""Code verification: checks that need no published number, one module a group.
+
+A module of this package has a tuple `CHECKS` of `CodeCheck`; its name stands in `MODULES`.
+"""
+
+from __future__ import annotations
+
+from importlib import import_module
+
+from crosscheck.verification.check import CodeCheck
+
+MODULES: tuple[str, ...] = ()
+
+
+def code_checks() -> tuple[CodeCheck, ...]:
+    """All code checks, in the order of MODULES."""
+    found: list[CodeCheck] = []
+    for module in MODULES:
+        found += import_module(f"{__name__}.{module}").CHECKS
+    return tuple(found)
