@@ -59,7 +59,7 @@ def template_text(name: str, cells: int | None = None) -> str:
 
     Raises
     ------
-    CrosscheckError : for an unknown name, a number of cells where there is none to choose, or outside 1 to 200
+    CrosscheckError : for an unknown name, a number of cells outside 1 to 200 or where there are none
     """
     known = template_names()
     plain = name.strip().lower().replace(" ", "_").replace("-", "_")
