@@ -56,7 +56,7 @@ def self_checks(fields: Fields, solid: Outline, found: Mapping[str, Interval]) -
     for kind in ("kinematic", "static"):
         field = getattr(fields.torsion, kind)
         force = np.array([space.integral(field[..., i]) for i in (0, 1)])
-        j = fields.energy(fields.torsion.kinematic)
+        j = fields.twist
         made.append(
             check(
                 f"force of the {kind} field of unit twist",

@@ -12,6 +12,7 @@ errors are orthogonal, so  integral of |k - s|^2 / g  is the sum of both squared
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -93,6 +94,11 @@ class Fields:
     def energy(self, field: Array) -> float:
         """Integral of |field|^2 / g."""
         return self.space.integral(np.sum(field**2, axis=-1) / self.moduli.g[:, None])
+
+    @cached_property
+    def twist(self) -> float:
+        """Torsion constant of the kinematic field: torque per unit rate of twist, G_base = 1 [L^4]."""
+        return self.energy(self.torsion.kinematic)
 
     def torque(self, field: Array) -> float:
         """Integral of x tau_y - y tau_x about the centroid."""

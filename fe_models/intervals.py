@@ -89,7 +89,7 @@ def around(value: float, half: float, basis: str) -> Interval:
 
 def torsion_constant(fields: Fields, basis: str) -> Interval:
     """J between its two sides, equation (1) [L^4]."""
-    high = fields.energy(fields.torsion.kinematic)
+    high = fields.twist
     gap = float(fields.gap(fields.torsion).sum())
     return around(high - 0.5 * gap, 0.5 * gap + ROUND_OFF * high, basis)
 

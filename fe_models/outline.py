@@ -28,6 +28,9 @@ OVERLAP = 1e-6
 STOUT = 4.0
 # Cosine of the angle between neighbours below which they may not overlap along a whole wall.
 SHARP = 0.75
+# Gauss rules on a piece of boundary: exact for the moments of straight pieces, beyond round-off for arcs.
+_GAUSS_STRAIGHT = np.polynomial.legendre.leggauss(3)
+_GAUSS_CURVED = np.polynomial.legendre.leggauss(20)
 
 
 @dataclass(frozen=True)
@@ -193,8 +196,7 @@ def _ring_moments(ring: Ring, pole: Array) -> Array:
     """(A, Sy, Sx, Ixx, Iyy, Ixy) enclosed by a ring, by Gauss quadrature of boundary integrals."""
     total = np.zeros(6)
     for piece in ring:
-        count = 3 if piece.straight else 20
-        g, w = np.polynomial.legendre.leggauss(count)
+        g, w = _GAUSS_STRAIGHT if piece.straight else _GAUSS_CURVED
         u = 0.5 * (g + 1.0)
         x, y = (piece.at(u) - pole).T
         dy = piece.rate(u)[:, 1] * 0.5 * w

@@ -20,6 +20,7 @@ LINE_POINTS = 6
 ROUND_OFF = 1e-10
 # The same for curved strips, where a section line ends a little off the elements' interpolated faces.
 CURVED = 1e-6
+_GAUSS = np.polynomial.legendre.leggauss(LINE_POINTS)
 
 
 @dataclass(frozen=True)
@@ -103,7 +104,7 @@ def _disagreement(fields: Fields, strip: StripMesh) -> Array:
     s_mid = np.repeat(0.5 * (strip.s[:-1] + strip.s[1:]), strip.triangles.shape[1])
     along = strip.band.direction(s_mid)[:, None, :]
     length = float(strip.s[-1] - strip.s[0])
-    twist = fields.energy(fields.torsion.kinematic)
+    twist = fields.twist
     found = []
     for pair, unit in (*((p, 1.0) for p in fields.flexure), (fields.torsion, twist)):
         difference = np.sum((pair.kinematic[rows] - pair.static[rows]) * along, axis=-1)
@@ -130,7 +131,7 @@ def _chords(strip: StripMesh, s: Array) -> _Chords:
     kept = high - low > 1e-12 * np.abs(corner_n).max()
     rows, place, cs, cn = rows[kept], place[kept], cs[kept], cn[kept]
     at_s, low, high = at_s[kept], low[kept], high[kept]
-    x, w = np.polynomial.legendre.leggauss(LINE_POINTS)
+    x, w = _GAUSS
     n = low[:, None] + 0.5 * (x + 1.0) * (high - low)[:, None]
     reference = in_triangles(cs, cn, np.broadcast_to(at_s[:, None], n.shape), n)
     weights = 0.5 * w * ((high - low) * scale[place])[:, None]

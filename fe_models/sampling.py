@@ -60,7 +60,7 @@ def stresses(fields: Fields, at: Samples, poisson: PoissonFlexure | None = None)
     points = places(fields, at)
     arm = np.stack([-points[..., 1], points[..., 0]], axis=-1)
     g = fields.moduli.g[e][:, None, None]
-    twist = fields.energy(fields.torsion.kinematic)
+    twist = fields.twist
 
     def gradient(local: Array) -> Array:
         reference = np.einsum("ck,cqkb->cqb", local - local[:, :1], slopes)
