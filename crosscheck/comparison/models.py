@@ -61,7 +61,7 @@ def theory_section(section: SectionFile) -> beam_theory.Section:
             arc_through=wall.arc_through,
             e=ratios[0],
             g=ratios[1],
-            direct_share=wall.direct_share,
+            direct_share=wall.share_in_theory,
         )
         for wall in section.walls
         if wall.seen_by != "fe"

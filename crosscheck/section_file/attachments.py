@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Mapping
+from collections.abc import Collection, Iterable, Mapping
 from typing import Any
 
 from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
@@ -17,6 +17,7 @@ from crosscheck.section_file.model import (
     Place,
     ProbeSpec,
     StatedSpec,
+    WallSpec,
 )
 from crosscheck.section_file.numbers import NOT_NEGATIVE, POSITIVE, SHARE, Numbers
 
@@ -30,7 +31,7 @@ class AttachmentReader:
     numbers : resolves numbers and takes faults
     points : places of points that are without fault
     declared_points : all point names of the file, faulty ones too
-    walls : names of walls; None when walls are faulty, so that no reference can be judged
+    walls : the walls; None when walls are faulty, so that no reference can be judged
     base_material, materials : for booms
     """
 
@@ -40,7 +41,7 @@ class AttachmentReader:
         numbers: Numbers,
         points: Mapping[str, Place],
         declared_points: Collection[str],
-        walls: Collection[str] | None,
+        walls: Iterable[WallSpec] | None,
         base_material: str | None,
         materials: Collection[str],
     ) -> None:
@@ -49,7 +50,7 @@ class AttachmentReader:
         self.faults: FaultList = numbers.faults
         self.points = points
         self.declared_points = declared_points
-        self.walls = walls
+        self.walls = None if walls is None else {wall.name: wall for wall in walls}
         self.base_material = base_material
         self.materials = materials
 
@@ -119,7 +120,7 @@ class AttachmentReader:
         """Cuts in file order, at most one per wall."""
         cuts: dict[str, CutSpec] = {}
         for index, table in enumerate(self.document.get("cuts", [])):
-            wall, at = self._place_on_wall(("cuts", index), table)
+            wall, at = self._place_on_wall(("cuts", index), table, "theory")
             if wall is None:
                 continue
             if wall in cuts:
@@ -131,7 +132,7 @@ class AttachmentReader:
         """Probes in file order."""
         probes: dict[str, ProbeSpec] = {}
         for index, table in enumerate(self.document.get("probes", [])):
-            wall, at = self._place_on_wall(("probes", index), table)
+            wall, at = self._place_on_wall(("probes", index), table, "both")
             label = table.get("label")
             if label in probes:
                 self.faults.add(("probes", index, "label"), f"{quoted(label)} again", "unique")
@@ -139,16 +140,23 @@ class AttachmentReader:
                 probes[label] = ProbeSpec(label, wall, 0.0 if at is None else at)
         return tuple(probes.values())
 
-    def _place_on_wall(self, path: KeyPath, table: Mapping[str, Any]) -> tuple[str | None, float | None]:
+    def _place_on_wall(
+        self, path: KeyPath, table: Mapping[str, Any], side: str
+    ) -> tuple[str | None, float | None]:
         at = self.numbers.number((*path, "at"), table.get("at"), SHARE)
-        return self._wall((*path, "wall"), table.get("wall")), at
+        return self._wall((*path, "wall"), table.get("wall"), side), at
 
-    def _wall(self, path: KeyPath, name: str | None) -> str | None:
+    def _wall(self, path: KeyPath, name: str | None, side: str) -> str | None:
+        """The name of a wall, judged: it must exist, and be seen by a side ("both": by both of them)."""
         if name is not None and self.walls is not None and name not in self.walls:
             parts = [f"{name} {number}" for number in (1, 2) if f"{name} {number}" in self.walls]
             remedy = f"the walls of that path are {', '.join(map(quoted, parts))} and so on" if parts else ""
             near = None if parts else (name, self.walls)
             self.faults.add(path, quoted(name), "the name of a wall", remedy, near=near)
+        elif name is not None and self.walls is not None and self.walls[name].seen_by not in ("both", side):
+            sees = "both sides see" if side == "both" else f"{side} sees"
+            found = f"{quoted(name)}, which only {self.walls[name].seen_by} sees"
+            self.faults.add(path, found, f"a wall that {sees}")
         return name
 
     def booms(self) -> tuple[BoomSpec, ...]:
@@ -167,15 +175,34 @@ class AttachmentReader:
                 if at not in self.declared_points:
                     near = (at, self.declared_points)
                     self.faults.add((*path, "at"), quoted(at), "a point of [points]", near=near)
+                else:
+                    self._boom_point((*path, "at"), at, seen_by)
                 booms.append(BoomSpec(area, point=at, material=material, seen_by=seen_by))
             elif wall is not None and (at is None) != (count is None):
-                self._wall((*path, "wall"), wall)
+                self._wall((*path, "wall"), wall, seen_by)
                 fractions = self._fractions((*path, "at"), at, count)
                 booms += [BoomSpec(area, None, wall, each, material, seen_by) for each in fractions]
             else:
                 keys = ", ".join(key for key in ("at", "wall", "count") if key in table) or "none of these"
                 self.faults.add(path, keys, "given by at = a point, by wall and at, or by wall and count")
         return tuple(booms)
+
+    def _boom_point(self, path: KeyPath, point: str, seen_by: str) -> None:
+        """Note a point at which a side that sees the boom has no wall."""
+        for side in ("theory", "fe"):
+            if self.walls is None or seen_by not in ("both", side):
+                continue
+            ends = (
+                end
+                for wall in self.walls.values()
+                for end in (wall.start, wall.end)
+                if wall.seen_by in ("both", side)
+            )
+            if point not in ends:
+                self.faults.add(
+                    path, f"{quoted(point)}, where {side} has no wall", "a point that a wall ends at"
+                )
+                return
 
     def _fractions(self, path: KeyPath, at: Any, count: int | None) -> list[float]:
         if count is not None:
@@ -202,6 +229,7 @@ class AttachmentReader:
     def stated(self) -> tuple[StatedSpec, ...]:
         """Stated values in file order."""
         stated = []
+        loads = [table.get("name") for table in self.document.get("loads", [])]
         for index, table in enumerate(self.document.get("stated", [])):
             path: KeyPath = ("stated", index)
             quantity = table.get("quantity", "")
@@ -218,7 +246,14 @@ class AttachmentReader:
                 if raw not in known:
                     words = "coordinates [x, y], a point or a wall"
                     self.faults.add((*path, "measured_from"), quoted(raw), words, near=(raw, known))
-            stated.append(StatedSpec(quantity, value or 0.0, table.get("source", ""), tolerance, datum))
+            load = table.get("load")
+            if load is not None and load not in (*UNIT_LOADS, *loads):
+                near = (load, (*UNIT_LOADS, *loads))
+                self.faults.add(
+                    (*path, "load"), quoted(load), "a load of this file or a unit load", near=near
+                )
+            source, level = table.get("source", ""), table.get("level")
+            stated.append(StatedSpec(quantity, value or 0.0, source, tolerance, datum, load, level))
         return tuple(stated)
 
     def criteria(self, notes: list[str]) -> dict[str, float]:

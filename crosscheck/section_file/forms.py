@@ -20,6 +20,7 @@ _TABLES: Mapping[str, type[BaseModel]] = {
     "walls": schema.WallTable,
     "walls.thickness": schema.TaperTable,
     "walls.arc": schema.ArcTable,
+    "walls.direct_share": schema.ShareTable,
     "booms": schema.BoomTable,
     "corners.*": schema.CornerTable,
     "loads": schema.LoadTable,

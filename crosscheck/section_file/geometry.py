@@ -12,7 +12,7 @@ from crosscheck.faults import FaultList, quoted
 from crosscheck.section_file.contacts import Contact, Floats, Segments, contacts
 from crosscheck.section_file.keys import OFFSET_LIMIT, SLENDERNESS_LIMIT
 from crosscheck.section_file.model import CutSpec, Place, WallSpec, arc_angle
-from crosscheck.section_file.walls import check_same_points, entry_path
+from crosscheck.section_file.same_points import check_same_points, entry_path
 
 _ARC_PIECES = 32
 _NAMED_PARTS = 3
@@ -68,16 +68,17 @@ class GeometryCheck:
         """
         loads = set(load_points)
         self._check_size()
-        self._check_repeated_points(loads)
         self._check_lengths()
-        same = check_same_points(self.walls, self.named, self.faults)
-        views = ("both",) if all(wall.seen_by == "both" for wall in self.walls) else ("theory", "fe")
-        for view in views:
-            seen = [w for w in self.walls if view == "both" or w.seen_by in ("both", view)]
-            self._check_contacts(seen, same, skip_both=view == "fe")
+        views = {"both": self.walls}
+        if any(wall.seen_by != "both" for wall in self.walls):
+            views = {side: seen_by(self.walls, side) for side in ("theory", "fe")}
+        self._check_repeated_points(loads, list(views.values()))
+        for view, seen in views.items():
+            skip = view == "fe"  # what both sides see was judged with theory's walls
+            same = check_same_points(seen, self.named, self.faults, skip)
+            self._check_contacts(seen, same, skip)
         if complete:
-            for view in views:
-                seen = [w for w in self.walls if view == "both" or w.seen_by in ("both", view)]
+            for view, seen in views.items():
                 self._check_parts(seen, view)
             self._check_cuts(cuts)
         idle = [name for name in self.points if name not in self.used and name not in loads]
@@ -100,8 +101,9 @@ class GeometryCheck:
                 words = f"at least 1/{SLENDERNESS_LIMIT:g} of the section's size ({self.extent:.4g})"
                 self.faults.add(entry_path(wall, "thickness"), f"{thin:.6g}", words)
 
-    def _check_repeated_points(self, load_points: set[str]) -> None:
-        """Two names for one place, except places that only loads use."""
+    def _check_repeated_points(self, load_points: set[str], views: Sequence[Sequence[WallSpec]]) -> None:
+        """Two names for one place, except places that only loads use or that no side sees both of."""
+        sides = [{name for wall in walls for name in (wall.start, wall.end)} for walls in views]
         names = [name for name in self.points if name in self.used or name not in load_points]
         if len(names) < 2:
             return
@@ -115,6 +117,8 @@ class GeometryCheck:
         near = np.hypot(*(place[first] - place[second]).T) <= self.tolerance
         for k in np.flatnonzero(near):
             a, b = sorted((int(first[k]), int(second[k])))
+            if {names[a], names[b]} <= self.used and not any({names[a], names[b]} <= side for side in sides):
+                continue
             found = f"the place of {quoted(names[a])}, {_place_text(self.points[names[a]])}"
             words = "a place of its own"
             self.faults.add(
@@ -208,6 +212,9 @@ class GeometryCheck:
 
     def _check_parts(self, walls: Sequence[WallSpec], view: str) -> None:
         """All walls that one side sees must hang together."""
+        if not walls:
+            words = "a wall or more that each side sees"
+            self.faults.add(("walls",), f"no wall that {view} sees", words, f'seen_by = "both" or "{view}"')
         parts = _Parts([(wall.start, wall.end) for wall in walls] + self.joined)
         by_part: dict[str, list[str]] = {}
         for wall in walls:
@@ -223,12 +230,12 @@ class GeometryCheck:
 
     def _check_cuts(self, cuts: Sequence[CutSpec]) -> None:
         """A cut opens a cell: with all cuts made the walls must still hang together."""
-        names = {wall.name for wall in self.walls}
+        by_name = {wall.name: wall for wall in seen_by(self.walls, "theory")}
         cut_walls = {cut.wall for cut in cuts}
-        if not cut_walls or not cut_walls <= names:
+        if not cut_walls or not cut_walls <= set(by_name):
             return
-        parts = _Parts([(w.start, w.end) for w in self.walls if w.name not in cut_walls] + self.joined)
-        by_name = {wall.name: wall for wall in self.walls}
+        left = [(w.start, w.end) for w in by_name.values() if w.name not in cut_walls]
+        parts = _Parts(left + self.joined)
         for index, cut in enumerate(cuts):
             wall = by_name[cut.wall]
             if parts.of(wall.start) != parts.of(wall.end):
@@ -236,6 +243,11 @@ class GeometryCheck:
                 words = "a wall of a cell that no other cut has opened"
                 self.faults.add(("cuts", index, "wall"), found, words)
                 parts.join(wall.start, wall.end)
+
+
+def seen_by(walls: Iterable[WallSpec], side: str) -> list[WallSpec]:
+    """The walls that "theory" or "fe" sees."""
+    return [wall for wall in walls if wall.seen_by in ("both", side)]
 
 
 class _Parts:

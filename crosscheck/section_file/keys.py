@@ -12,10 +12,7 @@ from crosscheck.faults import FaultList, KeyPath, shown
 # "key" is the key itself, indices and free names left out; "key{}" its form as a table;
 # 'key="text"' one of its values. The text beside it says what works today.
 NOT_BUILT: dict[str, str] = {
-    "walls.seen_by": "both sides see every wall",
     "walls.line": "paths are midlines",  # reserved: faces are not turned into midlines
-    "booms.seen_by": "both sides see every boom",
-    "stated": "quantities are compared without stated values",
     "mirror": "write every point and wall",  # reserved
     "tables.points": "write points in this file; loads may come from a table",  # reserved
     "tolerances": "leave the table out",  # reserved
@@ -40,7 +37,6 @@ ENTRY_LIMITS: dict[str, int] = {
     "loads": 1_000,
     "cuts": 5_000,
     "probes": 5_000,
-    "stated": 1_000,
 }
 NUMBER_LIMIT = 1e30  # magnitude of a number; its inverse is the smallest other than zero
 OFFSET_LIMIT = 1e6  # distance from the origin over the overall dimension: digits are lost beyond

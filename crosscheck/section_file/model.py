@@ -5,6 +5,10 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    import fe_models
 
 Place = tuple[float, float]
 
@@ -34,6 +38,7 @@ class WallSpec:
     arc_through : a third place on its arc [L]; None for a straight wall
     material : name; None when the file names no materials
     direct_share : share of the wall that carries direct stress [-]
+    theory_share : that share as theory sees it where the file gives each side its own [-], else None
     seen_by : "both", "theory" or "fe"
     key : where the file defines it, such as "walls[2]"
     """
@@ -45,8 +50,14 @@ class WallSpec:
     arc_through: Place | None = None
     material: str | None = None
     direct_share: float = 1.0
+    theory_share: float | None = None
     seen_by: str = "both"
     key: str = ""
+
+    @property
+    def share_in_theory(self) -> float:
+        """Share of the wall that carries direct stress in theory's model [-]."""
+        return self.direct_share if self.theory_share is None else self.theory_share
 
 
 @dataclass(frozen=True)
@@ -87,6 +98,7 @@ class LoadSpec:
     moment : Mx, My [F L]; Mx > 0 puts +y in tension, My > 0 puts +x in tension
     bimoment : B [F L^2]
     through_point : name of the point that `through` was given as, None otherwise
+    kind : "limit" or "ultimate", a label that is only echoed; None where the file gives none
     """
 
     name: str
@@ -97,6 +109,7 @@ class LoadSpec:
     moment: tuple[float, float] = (0.0, 0.0)
     bimoment: float = 0.0
     through_point: str | None = None
+    kind: str | None = None
 
 
 @dataclass(frozen=True)
@@ -109,19 +122,27 @@ class CutSpec:
 
 @dataclass(frozen=True)
 class ProbeSpec:
-    """A named place on a wall: fraction of its length [-]."""
+    """A named place on a wall: fraction of its length [-], and the pitch of its fasteners [L] or None."""
 
     label: str
     wall: str
     at: float
+    pitch: float | None = None
 
 
 @dataclass(frozen=True)
 class StatedSpec:
     """A number of the user's to be judged.
 
-    `measured_from` is a place [L], the name of a point or wall, or None; `tolerance` [-] is None
-    where the file gives none.
+    Attributes
+    ----------
+    quantity : a name of the results
+    value : as stated, in the file's units
+    source : where it is stated
+    tolerance : difference up to which it stands [-]; None where the file gives none
+    measured_from : datum of a position: a place [L], the name of a point or wall, or None
+    load : the load or unit load it belongs to; None for a quantity of the section
+    level : level of theory that it is held to; None for the nearest
     """
 
     quantity: str
@@ -129,6 +150,26 @@ class StatedSpec:
     source: str = ""
     tolerance: float | None = None
     measured_from: Place | str | None = None
+    load: str | None = None
+    level: str | None = None
+
+
+@dataclass(frozen=True)
+class AllowableSpec:
+    """A strength that margins are taken against.
+
+    Attributes
+    ----------
+    wall : the wall it holds for; None for every wall that has none of its own of this kind
+    kind : "shear_stress", "direct_stress" or "von_mises_stress" [F/L^2], or "shear_flow" [F/L]
+    value : larger than zero
+    source : where it is stated
+    """
+
+    wall: str | None
+    kind: str
+    value: float
+    source: str = ""
 
 
 @dataclass(frozen=True)
@@ -148,6 +189,10 @@ class SectionFile:
     points : places [L] by name, in file order
     walls, booms, corners, loads, cuts, probes, stated : in file order
     criteria : largest accepted difference [-] by quantity name, as given in the file
+    allowables : those of every wall first, then wall by wall
+    tolerances : "thickness" and "material" relative [-], "dimension" [L]; those that the file gives
+    document : front matter of the dossier: texts by key, and "changes", a list of tables of texts
+    outline : the solid that FE sees instead of the walls; None where it sees the walls
     notes : remarks that are no faults, one sentence each
     tables : digest of each table beside the file, by the name the file gives it
     """
@@ -171,6 +216,10 @@ class SectionFile:
     probes: tuple[ProbeSpec, ...] = ()
     stated: tuple[StatedSpec, ...] = ()
     criteria: Mapping[str, float] = field(default_factory=dict)
+    allowables: tuple[AllowableSpec, ...] = ()
+    tolerances: Mapping[str, float] = field(default_factory=dict)
+    document: Mapping[str, Any] = field(default_factory=dict)
+    outline: fe_models.Solid | None = None
     notes: tuple[str, ...] = ()
     tables: Mapping[str, str] = field(default_factory=dict)
 

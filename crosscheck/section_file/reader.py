@@ -13,6 +13,7 @@ from typing import Any
 
 from crosscheck.faults import Fault, FaultList, SectionFaults, one_line, quoted
 from crosscheck.section_file.model import (
+    AllowableSpec,
     BoomSpec,
     CornerSpec,
     CutSpec,
@@ -27,6 +28,7 @@ from crosscheck.section_file.source import SectionSource, read_source
 from crosscheck.units import UNIT_SYSTEMS
 
 __all__ = [
+    "AllowableSpec",
     "BoomSpec",
     "CornerSpec",
     "CutSpec",
@@ -89,9 +91,11 @@ def section_from(
     from crosscheck.section_file.attachments import AttachmentReader
     from crosscheck.section_file.forms import well_formed
     from crosscheck.section_file.geometry import GeometryCheck
+    from crosscheck.section_file.materials import read_materials
     from crosscheck.section_file.numbers import Numbers
+    from crosscheck.section_file.points import read_points
     from crosscheck.section_file.tables import with_tables
-    from crosscheck.section_file.walls import WallReader, read_materials, read_points
+    from crosscheck.section_file.walls import WallReader
 
     faults = FaultList(source.path)
     notes: list[str] = []
@@ -106,7 +110,7 @@ def section_from(
     walls, named = reader.read(document.get("walls", []))
     complete = reader.complete and "walls" in document
     attachments = AttachmentReader(
-        document, numbers, points, point_names, named if complete else None, base_material, material_names
+        document, numbers, points, point_names, walls if complete else None, base_material, material_names
     )
     loads, cuts = attachments.loads(), attachments.cuts()
     probes, booms = attachments.probes(), attachments.booms()

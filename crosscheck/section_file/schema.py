@@ -96,6 +96,11 @@ Count = Annotated[
 Sides = Annotated[
     Any, PlainValidator(_choice("both", "theory", "fe")), _choice_schema("both", "theory", "fe")
 ]
+Level = Annotated[
+    Any,
+    PlainValidator(_choice("midline", "corrected", "lumped")),
+    _choice_schema("midline", "corrected", "lumped"),
+]
 Pair = Annotated[list[Number], Field(min_length=2, max_length=2)]
 PlaceOrName = Annotated[
     Annotated[Pair, Tag(_LIST)] | Annotated[Name, Tag(_TEXT)], Discriminator(_list_or_text)
@@ -122,6 +127,19 @@ Thickness = Annotated[
     | Annotated[list[Number], Field(min_length=1), Tag(_LIST)]
     | Annotated[TaperTable, Tag(_TABLE)],
     Discriminator(_form),
+]
+
+
+class ShareTable(_Table):
+    """Share that carries direct stress, side by side [-]."""
+
+    theory: Number = Field(description="as theory sees the wall, 0 to 1 [-]")
+    fe: Number = Field(description="as FE sees the wall, 0 to 1 [-]")
+
+
+Share = Annotated[
+    Annotated[Number, Tag(_ONE)] | Annotated[ShareTable, Tag(_TABLE)],
+    Discriminator(lambda value: _TABLE if isinstance(value, dict) else _ONE),
 ]
 
 
@@ -156,7 +174,10 @@ class WallTable(_Table):
         _choice_schema("midline", "left face", "right face"),
     ] = Field(default="midline", description="what the path runs along, seen in its direction")
     smooth: Flag = Field(default=False, description="tangent arcs through the points, no joints between")
-    direct_share: Number = Field(default=1.0, description="share that carries direct stress, 0 to 1 [-]")
+    direct_share: Share = Field(
+        default=1.0,
+        description="share that carries direct stress, 0 to 1: one value, or one for each side [-]",
+    )
     seen_by: Sides = Field(default="both", description="which side sees the wall")
     material: Name = Field(default=_ABSENT, description="a material of [materials]")
 
@@ -225,6 +246,8 @@ class StatedTable(_Table):
     measured_from: PlaceOrName = Field(
         default=_ABSENT, description="datum of a position: coordinates, point or wall"
     )
+    load: Name = Field(default=_ABSENT, description="the load or unit load that it belongs to")
+    level: Level = Field(default=_ABSENT, description="level of theory that it is held to; the nearest")
 
 
 class MirrorTable(_Table):
@@ -248,11 +271,7 @@ class SectionDocument(_Table):
     )
     title: Text = Field(default=_ABSENT, description="one line; the file's name when left out")
     units: Text = Field(description="unit of length and of force")
-    judged: Annotated[
-        Any,
-        PlainValidator(_choice("midline", "corrected", "lumped")),
-        _choice_schema("midline", "corrected", "lumped"),
-    ] = Field(default="midline", description="level of theory that verdicts judge")
+    judged: Level = Field(default="midline", description="level of theory that verdicts judge")
     base_material: Name = Field(default=_ABSENT, description="required with more than one material")
     parameters: dict[str, Number] = Field(
         default_factory=dict, description="numbers or arithmetic on earlier ones"

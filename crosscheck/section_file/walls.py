@@ -1,4 +1,4 @@
-"""Materials, points and walls of a section file: paths taken apart, names given, thicknesses resolved."""
+"""Walls of a section file: paths taken apart, names given, thicknesses resolved."""
 
 from __future__ import annotations
 
@@ -8,85 +8,18 @@ from dataclasses import dataclass
 from itertools import pairwise
 from typing import Any
 
-from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
+from crosscheck.faults import KeyPath, key_text, quoted, shown
 from crosscheck.section_file.keys import WALL_LIMIT
 from crosscheck.section_file.model import (
-    EVERY_BEND,
-    MIDLINE_SHEAR_CENTRE,
-    Material,
     Place,
     WallSpec,
     arc_angle,
 )
-from crosscheck.section_file.numbers import POISSON, POSITIVE, SHARE, Numbers
+from crosscheck.section_file.numbers import POSITIVE, SHARE, Numbers
+from crosscheck.section_file.same_points import same_points_fault
 from crosscheck.section_file.smooth import FoldedPath, smooth_spans
 
 UNKNOWN = math.nan  # stands for a thickness or coordinate whose fault is noted already
-
-_RESERVED_POINTS = (MIDLINE_SHEAR_CENTRE, EVERY_BEND)
-
-
-def read_materials(
-    document: Mapping[str, Any], declared: Collection[str], numbers: Numbers, notes: list[str]
-) -> tuple[dict[str, Material], str | None]:
-    """Materials by name and the base material.
-
-    Parameters
-    ----------
-    document : well-formed document
-    declared : names of all materials in the file, faulty ones too
-    numbers : resolves numbers and takes faults
-    notes : receives remarks
-    """
-    materials: dict[str, Material] = {}
-    for name, table in document.get("materials", {}).items():
-        path: KeyPath = ("materials", name)
-        E = numbers.number((*path, "E"), table.get("E"), POSITIVE)
-        nu = numbers.number((*path, "nu"), table.get("nu"), POISSON)
-        G = numbers.number((*path, "G"), table.get("G"), POSITIVE)
-        if "nu" not in table and "G" not in table:
-            numbers.faults.add((*path, "nu"), "nothing", "given, or G instead", "nu = 0.3 suits most metals")
-        if E is None:
-            continue
-        if nu is not None and "G" not in table:
-            G = E / (2.0 * (1.0 + nu))
-        elif G is not None and "nu" not in table:
-            nu = E / (2.0 * G) - 1.0
-            if not POISSON.holds(nu):
-                words = f"such that nu = E/(2G) - 1 is {POISSON.words}"
-                numbers.faults.add((*path, "G"), f"{G:g} (nu = {nu:.4g})", words)
-        if G is None or nu is None:
-            continue
-        if abs(G - E / (2.0 * (1.0 + nu))) > 0.01 * G:
-            isotropic = E / (2.0 * (1.0 + nu))
-            notes.append(f"materials.{name}: G = {G:g} is taken as given; E/(2(1+nu)) is {isotropic:.5g}")
-        materials[name] = Material(name, E, G, nu)
-    return materials, _base_material(document, declared, numbers.faults)
-
-
-def _base_material(document: Mapping[str, Any], declared: Collection[str], faults: FaultList) -> str | None:
-    base = document.get("base_material")
-    if base is None:
-        if len(declared) > 1:
-            words = "given when the file has more than one material"
-            faults.add(("base_material",), "nothing", words, f"for example {quoted(next(iter(declared)))}")
-        return next(iter(declared), None)
-    if base not in declared:
-        words = "a material of [materials]"
-        faults.add(("base_material",), quoted(base), words, near=(base, declared))
-    return str(base)
-
-
-def read_points(document: Mapping[str, Any], numbers: Numbers) -> dict[str, Place]:
-    """Places of all points that are without fault."""
-    points: dict[str, Place] = {}
-    for name, raw in document.get("points", {}).items():
-        if name in _RESERVED_POINTS:
-            numbers.faults.add(("points", name), quoted(name), "named otherwise: this name is reserved")
-        place = numbers.pair(("points", name), raw)
-        if place is not None:
-            points[name] = place
-    return points
 
 
 @dataclass(frozen=True)
@@ -165,7 +98,7 @@ class WallReader:
         key = ("walls", index, "name")
         unnamed = not first_named and "name" not in entry
         if unnamed and {first.start, first.end} == {wall.start, wall.end}:
-            _same_points_fault(self.faults, key, first, wall)
+            same_points_fault(self.faults, key, first, wall)
         else:
             found = f"{quoted(wall.name)} again (first at {first.key})"
             self.faults.add(key, found, "unique", "give each wall a name of its own")
@@ -181,7 +114,7 @@ class WallReader:
         stretches = self._stretches(path, entry, points)
         thicknesses = self._thicknesses((*path, "thickness"), entry.get("thickness"), stretches)
         material = self._material((*path, "material"), entry.get("material"))
-        share = self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
+        share, theory_share = self._shares((*path, "direct_share"), entry.get("direct_share", 1.0))
         name = entry.get("name")
         several = len(points) > 2
         walls = []
@@ -196,7 +129,8 @@ class WallReader:
                 thickness=thickness,
                 arc_through=stretch.arc,
                 material=material,
-                direct_share=UNKNOWN if share is None else share,
+                direct_share=share,
+                theory_share=theory_share,
                 seen_by=entry.get("seen_by", "both"),
                 key=key_text(path),
             )
@@ -217,7 +151,7 @@ class WallReader:
         for part, value in parts:
             self._thickness(part, value)
         self._material((*path, "material"), entry.get("material"))
-        self.numbers.number((*path, "direct_share"), entry.get("direct_share", 1.0), SHARE)
+        self._shares((*path, "direct_share"), entry.get("direct_share", 1.0))
         # Between a point and itself there is neither an arc nor a smooth path to judge.
         if points is not None and all(a != b for a, b in pairwise(points)):
             self._stretches(path, entry, points)
@@ -287,6 +221,14 @@ class WallReader:
             self.faults.add(path, quoted(name), words, near=(name, self.declared_materials))
         return name
 
+    def _shares(self, path: KeyPath, raw: Any) -> tuple[float, float | None]:
+        """Share of direct stress, and theory's own where the file gives one for each side."""
+        if not isinstance(raw, dict):
+            share = self.numbers.number(path, raw, SHARE)
+            return UNKNOWN if share is None else share, None
+        fe, theory = (self.numbers.number((*path, side), raw.get(side), SHARE) for side in ("fe", "theory"))
+        return UNKNOWN if fe is None else fe, theory
+
     def _arc(self, path: KeyPath, entry: Mapping[str, Any], points: Sequence[str]) -> Place | None:
         """Third place of an arc that the path's two points make a circle with."""
         if "arc" not in entry:
@@ -348,43 +290,3 @@ def _length(start: Place, end: Place, arc: Place | None) -> float:
         return math.dist(start, end)
     centre, _, sweep = arc_angle(start, arc, end)
     return math.dist(centre, start) * abs(sweep)
-
-
-def _same_points_fault(faults: FaultList, path: KeyPath, first: WallSpec, second: WallSpec) -> None:
-    """Note two walls between the same points of which one has no name."""
-    between = f"{quoted(second.start)} and {quoted(second.end)}"
-    found = f"no name at {first.key} or {second.key}, which both join {between}"
-    remedy = "two straight walls between the same points also lie on each other: bend one to an arc"
-    straight = first.arc_through is None and second.arc_through is None
-    faults.add(path, found, "given where two walls join the same points", remedy if straight else "")
-
-
-def check_same_points(
-    walls: Sequence[WallSpec], named: Mapping[str, bool], faults: FaultList
-) -> set[frozenset[str]]:
-    """Note walls that join the same points and have no names, or lie on each other.
-
-    Returns
-    -------
-    Names of every pair of walls that joins the same points.
-    """
-    by_points: dict[frozenset[str], WallSpec] = {}
-    pairs: set[frozenset[str]] = set()
-    for wall in walls:
-        points = frozenset((wall.start, wall.end))
-        first = by_points.setdefault(points, wall)
-        if first is wall:
-            continue
-        pairs.add(frozenset((first.name, wall.name)))
-        if not (named[first.name] and named[wall.name]):
-            _same_points_fault(faults, entry_path(wall, "name"), first, wall)
-        elif first.arc_through is None and wall.arc_through is None:
-            found = f"{quoted(wall.name)} on {quoted(first.name)} ({first.key})"
-            words = "clear of other walls (these two overlap)"
-            faults.add(entry_path(wall, "path"), found, words, "leave one out, or bend one to an arc")
-    return pairs
-
-
-def entry_path(wall: WallSpec, key: str) -> KeyPath:
-    """Key path of a key in the entry that defines a wall."""
-    return ("walls", int(wall.key.partition("[")[2][:-1]), key)

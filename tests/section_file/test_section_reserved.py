@@ -15,9 +15,6 @@ GOOD = (
 
 NOT_BUILT_LINES = [
     (GOOD + 'line = "left face"\n', "walls[0].line"),
-    (GOOD + 'seen_by = "fe"\n', "walls[0].seen_by"),
-    (GOOD + '[[booms]]\nat = "a"\narea = 120\nseen_by = "theory"\n', "booms[0].seen_by"),
-    (GOOD + '[[stated]]\nquantity = "area"\nvalue = 3\n', "stated"),
     (GOOD + '[mirror]\nabout = "x"\n', "mirror"),
     (GOOD + '[tables]\npoints = "p.csv"\n', "tables.points"),
     (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
