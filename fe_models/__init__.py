@@ -22,6 +22,7 @@ from .solution import (
     solve_solid,
 )
 from .step_face import rings_of_step
+from .trial import Trial, strip_trial, trial
 
 __all__ = [
     "ACCURACY_RANGE",
@@ -50,6 +51,7 @@ __all__ = [
     "Solid",
     "Solution",
     "SolveError",
+    "Trial",
     "Wall",
     "circle_edges",
     "closed_lines",
@@ -59,5 +61,7 @@ __all__ = [
     "rings_of_step",
     "solve",
     "solve_solid",
+    "strip_trial",
+    "trial",
     "write_fields",
 ]
