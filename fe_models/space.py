@@ -184,9 +184,9 @@ def _bend(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:
 def _follow(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:
     """Put the nodes of clusters' curved edges on their pieces.
 
-    At a node with corner weights (l0, l1, l2) the displacement of edge 0-1 is taken at l1 / (l0 + l1). What its
-    interpolant of degree d adds to that of degree d - 1 is of size h^d and enters with the factor (l0 + l1)^d:
-    derivatives of the map then shrink like h^d, which keeps the order of the element.
+    At a node with corner weights (l0, l1, l2) the displacement of edge 0-1 is taken at l1 / (l0 + l1). What
+    its interpolant of degree d adds to that of degree d - 1 is of size h^d and enters with the factor
+    (l0 + l1)^d: derivatives of the map then shrink like h^d, which keeps the order of the element.
 
     References
     ----------

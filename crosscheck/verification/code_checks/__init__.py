@@ -9,7 +9,7 @@ from importlib import import_module
 
 from crosscheck.verification.check import CodeCheck
 
-MODULES: tuple[str, ...] = ()
+MODULES: tuple[str, ...] = ("manufactured",)
 
 
 def code_checks() -> tuple[CodeCheck, ...]:

@@ -1,13 +1,13 @@
 """Manufactured solutions: observed against expected order of convergence of both finite-element fields.
 
-A field k* without traction on the boundary and with div k* = -e (a x + b y), and any smooth potential u*, solve
+A field k* without traction on the boundary and with div k* = -e (a x + b y), and any smooth u*, solve
 
     k = g (grad u + P)  and  s = curl phi + tau_p   with the prescribed strain   P = k*/g - grad u*       (1)
 
-on both sides at once: the kinematic side must find u* and k*, the static side k* (a stress function that is a
-constant on each hole, with the jumps that a hole and a change of e demand). Elements of order p lose h^p in
-the fields and h^(p+1) in the potential (Strang and Fix, An Analysis of the Finite Element Method, 1973, ch. 3;
-from memory).
+on both sides at once: the kinematic side must find u* and k*, the static side k* (a stress function that is
+a constant on each hole, with the jumps that a hole and a change of e demand). Elements of order p lose h^p in
+the fields and h^(p+1) in the potential (Strang and Fix, An Analysis of the Finite Element Method, 1973,
+chapter 3; from memory).
 """
 
 from __future__ import annotations
@@ -26,6 +26,9 @@ from crosscheck.verification.code_checks import trial_meshes
 GROUP = "manufactured solutions"
 ORDERS = (1, 2, 3, 4)
 ALLOWED = 0.1
+# Wave number of u*: high enough for the interior to govern, since what interpolated curved sides add to the
+# error shrinks half an order faster and would spoil the observed order.
+WAVE = 3.3
 
 Array = NDArray[np.float64]
 Part = Callable[[Array, Array], Array]
@@ -53,8 +56,8 @@ class Problem:
 def potential(points: Array) -> tuple[Array, Array]:
     """u* and its gradient, smooth and without any symmetry."""
     x, y = points[..., 0], points[..., 1]
-    value = np.sin(1.1 * x + 0.4) * np.exp(0.7 * y)
-    slope = np.stack([1.1 * np.cos(1.1 * x + 0.4) * np.exp(0.7 * y), 0.7 * value], -1)
+    value = np.sin(WAVE * x + 0.4) * np.exp(0.7 * y)
+    slope = np.stack([WAVE * np.cos(WAVE * x + 0.4) * np.exp(0.7 * y), 0.7 * value], -1)
     return value, slope
 
 
@@ -112,7 +115,8 @@ def _ring(n: int, order: int) -> fe_models.Trial:
 def _ring_field(points: Array, e: Array) -> Array:
     """grad of the harmonic-plus-cubic flexure function of a ring, and a flow round its hole.
 
-    chi = (c r + d/r - r^3/8) (a cos + b sin), d chi/dr = 0 at both radii: c = 3 (R^2 + r^2)/8, d = 3 R^2 r^2/8.
+    chi = (c r + d/r - r^3/8) (a cos + b sin); d chi/dr = 0 at the radii r_i and r_o gives
+    c = 3 (r_o^2 + r_i^2)/8 and d = 3 r_o^2 r_i^2/8.
     """
     x, y = points[..., 0], points[..., 1]
     r = np.hypot(x, y)
@@ -158,7 +162,7 @@ def _strip_field(points: Array, e: Array) -> Array:
 PROBLEMS = {
     "rectangle": Problem(_plate, ((6, 12, 24), (4, 8, 16)), (1.0, -0.6), _plate_field),
     "two materials": Problem(_two_materials, ((4, 8, 16), (2, 4, 8)), (1.0, 0.5), _two_materials_field),
-    "ring with a hole": Problem(_ring, ((4, 8, 16), (5, 10, 20)), (0.8, 0.5), _ring_field),
+    "ring with a hole": Problem(_ring, ((4, 8, 16), (4, 8, 16)), (0.8, 0.5), _ring_field),
     "curved strip": Problem(_strip, ((6, 12, 24), (4, 8, 16)), (0.0, 1.0), _strip_field),
 }
 

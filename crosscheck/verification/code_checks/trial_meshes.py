@@ -28,7 +28,7 @@ def ring(inner: float, outer: float, layers: int, round_it: int) -> tuple[Array,
 
 
 def angle(lines: Array) -> tuple[Array, Index]:
-    """Triangles of a sharp angle: the square between the first and last grid line without its upper right part.
+    """Triangles of a sharp angle: a square without its upper right quarter.
 
     Parameters
     ----------
