@@ -2,13 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
 
+from crosscheck.comparison import models
+from crosscheck.comparison.flow_comparison import flow_on
 from crosscheck.comparison.midline import Midline
-from crosscheck.comparison.result import Array, Drawing, LoadLine, PictureMesh, WallShape
+from crosscheck.comparison.panels import Panel, Stretch, line_of, panels_of
+from crosscheck.comparison.result import Array, BoomMark, Drawing, LoadLine, PictureMesh, WallShape
 
 if TYPE_CHECKING:
     import beam_theory
@@ -45,23 +48,15 @@ def drawing_of(
     """
     at = np.linspace(0.0, 1.0, SAMPLES)
     turns = {name: sign for cell in reversed(theory.cells) for name, sign in cell}
-    shapes = []
-    for wall in section.walls:
-        line = Midline(section.points[wall.start], section.points[wall.end], wall.arc_through)
-        shapes.append(
-            WallShape(
-                name=wall.name,
-                points=line.places(at),
-                normals=line.left_normals(at),
-                thickness=wall.thickness[0] * (1 - at) + wall.thickness[1] * at,
-                s=at * line.length,
-                strip=fe.strips.get(wall.name),
-                seen_by=wall.seen_by,
-                turn=turns.get(wall.name, 1 if _goes_up_or_right(line) else -1),
-            )
-        )
+    panels = panels_of(section)
+    shapes = [_shape(panel, at, turns, fe) for panel in panels.values()]
+    hand = [
+        _shape(Panel(wall.name, line_of(section, wall), Stretch(wall), None), at, turns, fe)
+        for wall in section.walls
+        if wall.seen_by != "fe"
+    ]
     mesh = _mesh(fe)
-    seen = [shape.name for shape in shapes if shape.seen_by != "fe"]
+    seen = [panel for panel in panels.values() if panel.theory is not None]
     return Drawing(
         points=dict(section.points),
         walls=tuple(shapes),
@@ -71,13 +66,37 @@ def drawing_of(
             LoadLine(case.name, case.shear, case.through, case.torque) for case in cases if not case.unit
         ),
         flows={
-            case.name: {name: np.asarray(entry.flow.at(name, at)) for name in seen}
+            case.name: {panel.name: flow_on(panel, entry.flow, at) for panel in seen}
             for case, entry in zip(cases, flows, strict=True)
             if entry.flow is not None
         },
         warping=_warping(theory, seen, at),
         fe_warping={} if mesh is None else {shape.name: warping_on(mesh, shape) for shape in shapes},
         mesh=mesh,
+        hand_walls=tuple(hand),
+        booms=tuple(
+            BoomMark(*models.boom_place(section, boom), boom.area, boom.seen_by) for boom in section.booms
+        ),
+    )
+
+
+def _shape(panel: Panel, at: Array, turns: Mapping[str, int], fe: fe_models.Solution) -> WallShape:
+    """A panel as drawn."""
+    line, stretch = panel.line, panel.fe or panel.theory
+    assert stretch is not None
+    on_wall = stretch.on_wall(at)
+    turn = None if panel.theory is None else turns.get(panel.theory.wall.name)
+    if panel.theory is not None and turn is not None and panel.theory.sign < 0:
+        turn = -turn
+    return WallShape(
+        name=panel.name,
+        points=line.places(at),
+        normals=line.left_normals(at),
+        thickness=panel.spec.thickness[0] * (1 - on_wall) + panel.spec.thickness[1] * on_wall,
+        s=at * line.length,
+        strip=panel.strip(fe.strips),
+        seen_by=panel.seen_by,
+        turn=turn or (1 if _goes_up_or_right(line) else -1),
     )
 
 
@@ -120,11 +139,15 @@ def _goes_up_or_right(line: Midline) -> bool:
     return dy > 0 if abs(dy) > abs(dx) else dx > 0
 
 
-def _warping(theory: beam_theory.Solution, walls: Sequence[str], at: Array) -> dict[str, Array]:
-    """Theory's warping function along each wall; empty where the section has no shear centre."""
+def _warping(theory: beam_theory.Solution, panels: Sequence[Panel], at: Array) -> dict[str, Array]:
+    """Theory's warping function along each panel; empty where the section has no shear centre."""
     if theory.quantities["shear_centre_x"].value is None or theory.quantities["shear_centre_y"].value is None:
         return {}
-    return {name: np.asarray(theory.warping_at(name, at)) for name in walls}
+    return {
+        panel.name: np.asarray(theory.warping_at(panel.theory.wall.name, panel.theory.on_wall(at)))
+        for panel in panels
+        if panel.theory is not None
+    }
 
 
 def _mesh(fe: fe_models.Solution) -> PictureMesh | None:

@@ -10,7 +10,7 @@ import numpy as np
 
 from crosscheck.comparison.levels import TheoryFlow
 from crosscheck.comparison.load_case import LoadCase
-from crosscheck.comparison.midline import Midline
+from crosscheck.comparison.panels import Panel
 from crosscheck.comparison.quantities import flow_unit
 from crosscheck.comparison.result import Array, FeValue, ProbeResult, TheoryPeak, WallFlow
 from crosscheck.comparison.verdicts import FLOOR
@@ -29,6 +29,7 @@ NEAR_PEAK = 0.02
 # Flow below this share of V/D or T/D^2 is no flow at all.
 NO_FLOW = 1e-9
 NO_FLOW_REASON = "no net flow on either side"
+NO_STRIP = "the wall has no strip: it is shorter than its joints"
 
 
 @dataclass(frozen=True)
@@ -65,51 +66,62 @@ class LoadFlows:
     reason: str | None
 
 
-def probes_of_walls(
+def probes_of_panels(
     flows: Iterable[TheoryFlow],
+    panels: Mapping[str, Panel],
     strips: Mapping[str, tuple[float, float] | None],
     named: Mapping[str, Sequence[tuple[float, str | None]]],
-    slenderness: Mapping[str, float],
 ) -> dict[str, tuple[Probe, ...]]:
-    """Probes of every wall: ends and quarter points of its strip, where theory's flows peak, and the user's.
+    """Probes of every panel: ends and quarter points of its strip, where theory's flows peak, and the user's.
 
     Where the strip is long enough, places a thickness inside its ends too: the first ones clear of the
-    joints.
+    joints. A wall that only theory sees has the user's probes, and its ends and middle.
 
     Parameters
     ----------
     flows : iterable of TheoryFlow
         Flows whose stationary places become probes.
-    strips : mapping of wall to (from, to) or None
-        Part of each wall clear of its joints [-]; None where a wall has none.
-    named : mapping of wall to sequence of (at, label)
+    panels : mapping of name to Panel
+        Where.
+    strips : mapping of name to (from, to) or None
+        Part of each panel clear of its joints [-]; None where it has none.
+    named : mapping of name to sequence of (at, label)
         The user's probes [-].
-    slenderness : mapping of wall to float
-        Largest thickness over length [-].
 
     Returns
     -------
-    dict of wall to tuple of Probe
-        In order along the wall.
+    dict of name to tuple of Probe
+        In order along the panel.
     """
     solved = [entry.flow for entry in flows if entry.flow is not None]
     probes: dict[str, tuple[Probe, ...]] = {}
-    for wall, strip in strips.items():
-        found = [_probe(at, label, strip, slenderness[wall]) for at, label in named.get(wall, ())]
-        if strip is not None:
-            low, high = strip
-            places = [*(low + (high - low) * np.array((0.0, 0.25, 0.5, 0.75, 1.0)))]
-            if high - low > 2.0 * slenderness[wall]:
-                places += [low + slenderness[wall], high - slenderness[wall]]
-            for number, flow in enumerate(solved):
+    for name, panel in panels.items():
+        strip, thin = strips[name], panel.slenderness
+        found = [_probe(at, label, strip, thin) for at, label in named.get(name, ())]
+        low, high = (0.0, 1.0) if strip is None else strip
+        places = [*(low + (high - low) * np.array((0.0, 0.25, 0.5, 0.75, 1.0)))]
+        if strip is None:
+            places = [0.0, 0.5, 1.0] if panel.fe is None else []
+        else:
+            if high - low > 2.0 * thin:
+                places += [low + thin, high - thin]
+            for number, flow in enumerate(solved if panel.theory is not None else ()):
                 spacing = SAME_PLACE if number < EXACT_PEAKS else NEAR_PEAK
-                stationary = [float(at) for at in flow.stationary(wall) if low < at < high]
+                assert panel.theory is not None
+                tops = [panel.theory.on_panel(float(at)) for at in flow.stationary(panel.theory.wall.name)]
+                stationary = [at for at in tops if low < at < high]
                 places += [at for at in stationary if all(abs(at - other) > spacing for other in places)]
-            for at in places:
-                if all(abs(at - probe.at) > SAME_PLACE for probe in found):
-                    found.append(_probe(float(min(max(at, low), high)), None, strip, slenderness[wall]))
-        probes[wall] = tuple(sorted(found, key=lambda probe: probe.at))
+        for at in places:
+            if all(abs(at - probe.at) > SAME_PLACE for probe in found):
+                found.append(_probe(float(min(max(at, low), high)), None, strip, thin))
+        probes[name] = tuple(sorted(found, key=lambda probe: probe.at))
     return probes
+
+
+def flow_on(panel: Panel, flow: beam_theory.Flow, at: Array) -> Array:
+    """Theory's flow (n,) along a panel at fractions of it (n,) [F/L]."""
+    assert panel.theory is not None
+    return np.asarray(panel.theory.sign * flow.at(panel.theory.wall.name, panel.theory.on_wall(at)))
 
 
 def _probe(at: float, label: str | None, strip: tuple[float, float] | None, slenderness: float) -> Probe:
@@ -128,12 +140,12 @@ def load_flows(
     unit_flows: Mapping[str, Array],
     strips: Mapping[str, tuple[float, float] | None],
     torque: FeValue,
-    midlines: Mapping[str, Midline],
+    panels: Mapping[str, Panel],
     probes: Mapping[str, Sequence[Probe]],
     extent: float,
     units: tuple[str, str],
 ) -> LoadFlows:
-    """Flows of one load on both sides, wall by wall.
+    """Flows of one load on both sides, panel by panel.
 
     FE's flow is Vx q_Vx + Vy q_Vy + T_sc q_T with the torque about FE's own shear centre; theory's solution
     does the same with its own.
@@ -146,15 +158,15 @@ def load_flows(
         Theory's flow of it.
     judged : str
         The level that verdicts judge.
-    unit_flows : mapping of wall to (2, 3, n)
+    unit_flows : mapping of panel to (2, 3, n)
         FE's, from ``fe_unit_flows``.
-    strips : mapping of wall to (from, to) or None
-        Part of each wall clear of its joints [-].
+    strips : mapping of panel to (from, to) or None
+        Part of each clear of its joints [-].
     torque : FeValue
         Torque about FE's shear centre [F L].
-    midlines : mapping of wall to Midline
-        Geometry [L].
-    probes : mapping of wall to sequence of Probe
+    panels : mapping of name to Panel
+        Geometry and the walls of both sides.
+    probes : mapping of panel to sequence of Probe
         Where to report.
     extent : float
         Larger overall dimension D [L].
@@ -167,13 +179,13 @@ def load_flows(
     """
     scale = (abs(case.shear[0]) + abs(case.shear[1])) / extent + abs(torque.value or 0.0) / extent**2
     raw: dict[str, tuple[ProbeResult, ...]] = {}
-    for wall, midline in midlines.items():
-        places = probes.get(wall, ())
+    for wall, panel in panels.items():
+        midline, places = panel.line, probes.get(wall, ())
         at = np.array([probe.at for probe in places])
         q_theory = {
-            level: found.flow.at(wall, at)
+            level: flow_on(panel, found.flow, at)
             for level, found in theory.items()
-            if found.flow is not None and at.size
+            if found.flow is not None and at.size and panel.theory is not None
         }
         q_fe, errors = _fe_flow(case, unit_flows[wall], torque)
         xy = midline.places(at)
@@ -190,7 +202,13 @@ def load_flows(
             )
             for i, probe in enumerate(places)
         )
-    shared = [(wall, probe) for wall, row in raw.items() for probe in row if probe.fe is not None]
+    shared = [
+        (wall, probe)
+        for wall, row in raw.items()
+        if panels[wall].seen_by == "both"
+        for probe in row
+        if probe.fe is not None
+    ]
     fe_peak = _peak_interval([probe for _, probe in shared])
     compared = [(wall, probe) for wall, probe in shared if probe.theory is not None]
     peaks = {level: _level_peak(level, [probe for _, probe in shared]) for level in theory}
@@ -201,9 +219,11 @@ def load_flows(
     # four digits: of places that symmetry makes alike the first is named, not the one that round-off favours
     worst_wall, worst = max(compared, key=lambda pair: float(f"{_gap(pair[1]):.4g}"), default=(None, None))
     unit = flow_unit(case.name if case.unit else "", *units)
-    walls = tuple(_wall_flow(case, wall, unit, row, fe_peak, reason) for wall, row in raw.items())
+    walls = tuple(
+        _wall_flow(case, wall, unit, row, fe_peak, reason or panels[wall].reason) for wall, row in raw.items()
+    )
     flow = theory[judged].flow
-    own_peak = None if flow is None else _own_peak(case, flow, midlines, strips)
+    own_peak = None if flow is None else _own_peak(case, flow, panels, strips)
     reasons = {level: found.reason for level, found in theory.items() if found.reason is not None}
     return LoadFlows(case, judged, walls, peaks, reasons, fe_peak, worst, worst_wall, own_peak, reason)
 
@@ -214,13 +234,14 @@ def _level_peak(level: str, probes: Sequence[ProbeResult]) -> float | None:
     return max((abs(value) for value in values if value is not None), default=None)
 
 
-def fe_unit_flows(fe: fe_models.Solution, wall: str, probes: Sequence[Probe]) -> Array:
-    """FE's flows and errors of unit Vx, Vy and T at the probes of a wall, (2, 3, n); NaN outside its
+def fe_unit_flows(fe: fe_models.Solution, panel: Panel, probes: Sequence[Probe]) -> Array:
+    """FE's flows and errors of unit Vx, Vy and T at the probes of a panel, (2, 3, n); NaN outside its
     strip."""
     found = np.full((2, 3, len(probes)), np.nan)
     inside = np.array([probe.in_strip for probe in probes], dtype=bool)
-    if inside.any():
-        samples = fe.flow_at(wall, np.array([probe.at for probe in probes if probe.in_strip]))
+    if inside.any() and panel.fe is not None:
+        at = panel.fe.on_wall(np.array([probe.at for probe in probes if probe.in_strip]))
+        samples = fe.flow_at(panel.fe.wall.name, at)
         found[0][:, inside], found[1][:, inside] = samples.values, samples.errors
     return found
 
@@ -277,7 +298,7 @@ def _wall_flow(
     """One wall's flows with the difference over its own FE peak, floored at 5 % of the section's."""
     compared = [probe for probe in row if probe.theory is not None and probe.fe is not None]
     if reason is None and not compared:
-        reason = "the wall has no strip: it is shorter than its joints"
+        reason = NO_STRIP
     if reason is not None or fe_peak.value is None:
         return WallFlow(case.name, wall, unit, row, None, None, reason)
     own = max(abs(probe.fe or 0.0) for probe in compared)
@@ -295,25 +316,30 @@ def signed_gap(theory: float, fe: float) -> float:
 def _own_peak(
     case: LoadCase,
     flow: beam_theory.Flow,
-    midlines: Mapping[str, Midline],
+    panels: Mapping[str, Panel],
     strips: Mapping[str, tuple[float, float] | None],
 ) -> TheoryPeak | None:
     """Theory's own largest flow, wherever it is, and whether FE has a counterpart there."""
     best: TheoryPeak | None = None
-    for wall, midline in midlines.items():
-        found = flow.peak(wall)
+    for wall, panel in panels.items():
+        if panel.theory is None:
+            continue
+        found = flow.peak(panel.theory.wall.name)
+        at = panel.theory.on_panel(float(found.at))
+        if not -SAME_PLACE <= at <= 1.0 + SAME_PLACE:
+            continue  # on another panel of the same wall
         # A hair larger does not count: of equal peaks the first wall's is listed, run after run.
         if best is None or abs(found.flow) > abs(best.value) * (1 + 1e-9):
             strip = strips.get(wall)
-            x, y = midline.places(np.array([found.at]))[0]
-            has_fe = strip is not None and strip[0] <= found.at <= strip[1]
+            x, y = panel.line.places(np.array([at]))[0]
+            has_fe = strip is not None and strip[0] <= at <= strip[1]
             best = TheoryPeak(
                 case.name,
                 wall,
-                float(found.at * midline.length),
+                float(at * panel.line.length),
                 float(x),
                 float(y),
-                float(found.flow),
+                float(panel.theory.sign * found.flow),
                 has_fe,
             )
     return best

@@ -10,17 +10,24 @@ import numpy as np
 
 import fe_models
 from crosscheck.comparison import models
-from crosscheck.comparison.flow_comparison import LoadFlows, Probe, fe_unit_flows, load_flows, probes_of_walls
+from crosscheck.comparison.flow_comparison import (
+    SAME_PLACE,
+    LoadFlows,
+    fe_unit_flows,
+    load_flows,
+    probes_of_panels,
+)
 from crosscheck.comparison.levels import Levels, TheoryFlow, TheoryStress
 from crosscheck.comparison.load_case import UNIT_CASES, LoadCase, fe_torque
 from crosscheck.comparison.load_envelope import envelopes
 from crosscheck.comparison.load_results import BoomFibre, FilletPeak, ProbeEnvelope, WallEnvelope, WallStress
 from crosscheck.comparison.load_rows import flow_rows, stress_rows, torsion_modulus_row, twist_row
-from crosscheck.comparison.midline import Midline
+from crosscheck.comparison.panels import Panel, panels_of
 from crosscheck.comparison.quantities import flow_unit, stress_unit
 from crosscheck.comparison.result import FeValue, QuantityResult, TheoryPeak, WallFlow
 from crosscheck.comparison.stress_comparison import (
     LoadStress,
+    faces_on,
     load_stress,
     measure,
     unit_faces,
@@ -66,14 +73,21 @@ def compare_loads(
     """
     cases = load_cases(section, levels)
     theory = [levels.flows(case) for case in cases]
-    lines = models.midlines(section)
-    midline_flows = [flow["midline"] for flow in theory]
-    probes = _probes(section, midline_flows, fe, lines)
+    panels = panels_of(section)
+    strips = {name: panel.strip(fe.strips) for name, panel in panels.items()}
+    probes = probes_of_panels([flow["midline"] for flow in theory], panels, strips, _named(section, panels))
     bimoment = any(case.bimoment for case in cases)
-    unit_flows = {wall: fe_unit_flows(fe, wall, probes[wall]) for wall in lines}
-    faces = {wall: unit_faces(section, fe, wall, probes[wall], bimoment=bimoment) for wall in lines}
+    unit_flows = {name: fe_unit_flows(fe, panel, probes[name]) for name, panel in panels.items()}
+    faces = {
+        name: unit_faces(section, fe, panel, probes[name], bimoment=bimoment)
+        for name, panel in panels.items()
+    }
     midline = levels.solutions["midline"]
-    open_walls = {wall for wall in lines if not midline.in_cell(wall)}
+    open_walls = {
+        name
+        for name, panel in panels.items()
+        if panel.theory is not None and not midline.in_cell(panel.theory.wall.name)
+    }
     extent, judged = float(fe.outline.extent), levels.judged
     units = (section.length_unit, section.force_unit)
 
@@ -85,23 +99,22 @@ def compare_loads(
     for case, flow in zip(cases, theory, strict=True):
         torque = fe_torque(case, values)
         if case.has_shear:
-            found = load_flows(
-                case, flow, judged, unit_flows, fe.strips, torque, lines, probes, extent, units
-            )
+            found = load_flows(case, flow, judged, unit_flows, strips, torque, panels, probes, extent, units)
             flows.append(found)
             rows += flow_rows(section, found)
             peaks += [] if found.own_peak is None else [found.own_peak]
         if case.has_shear and not case.unit:
             rows.append(twist_row(section, case, flow, levels, values, torque, extent))
         by_level = levels.stresses(case)
-        stress = load_stress(case, by_level, judged, faces, torque, lines, probes)
+        stress = load_stress(case, by_level, judged, faces, torque, panels, probes)
         stresses[case.name], judged_stress[case.name] = stress, by_level[judged]
         if not case.unit:
-            peaks += _stress_peaks(case, by_level[judged], stress, lines, fe)
+            peaks += _stress_peaks(case, by_level[judged], stress, panels, strips)
+    fibres = tuple(_boom_fibres(section, judged_stress, values, [c for c in cases if not c.unit]))
     for case in cases:
         torque = fe_torque(case, values)
         rows += stress_rows(
-            section, stresses[case.name], levels, open_walls, stresses["unit T"], torque, extent
+            section, stresses[case.name], levels, open_walls, stresses["unit T"], torque, extent, fibres
         )
     own = [stresses[case.name] for case in cases if not case.unit]
     walls, places = envelopes(
@@ -120,7 +133,7 @@ def compare_loads(
         stresses=tuple(
             wall for found in own for wall in wall_stresses(found, judged, stress_unit("", *units))
         ),
-        boom_fibres=tuple(_boom_fibres(section, judged_stress, values, [c for c in cases if not c.unit])),
+        boom_fibres=fibres,
         fillet_peaks=tuple(_fillet_peaks(section, fe, values, cases)),
         wall_envelopes=walls,
         probe_envelopes=places,
@@ -135,27 +148,34 @@ def load_cases(section: SectionFile, levels: Levels) -> tuple[LoadCase, ...]:
     return (*UNIT_CASES, *(models.load_case(load, centre) for load in section.loads))
 
 
-def _probes(
-    section: SectionFile,
-    midline_flows: Sequence[TheoryFlow],
-    fe: fe_models.Solution,
-    lines: Mapping[str, Midline],
-) -> dict[str, tuple[Probe, ...]]:
-    """Probes of every wall: the user's, those of the strips, and where midline flows peak."""
+def _named(section: SectionFile, panels: Mapping[str, Panel]) -> dict[str, list[tuple[float, str | None]]]:
+    """The user's probes by panel, as fractions of it [-]: where both sides see the wall, else where one does.
+
+    A probe on a wall that is split otherwise on the other side lands on the panel that covers its place.
+    """
     named: dict[str, list[tuple[float, str | None]]] = {}
     for probe in section.probes:
-        named.setdefault(probe.wall, []).append((probe.at, probe.label))
-    slenderness = {name: max(section.wall(name).thickness) / line.length for name, line in lines.items()}
-    strips = {wall: fe.strips.get(wall) for wall in lines}
-    return probes_of_walls(midline_flows, strips, named, slenderness)
+        best: tuple[bool, str, float] | None = None
+        for name, panel in panels.items():
+            for stretch in (panel.fe, panel.theory):
+                if stretch is None or stretch.wall.name != probe.wall:
+                    continue
+                at = stretch.on_panel(probe.at)
+                if -SAME_PLACE <= at <= 1.0 + SAME_PLACE:
+                    found = (panel.seen_by == "both", name, min(max(at, 0.0), 1.0))
+                    best = found if best is None or (found[0] and not best[0]) else best
+                    break
+        assert best is not None, probe
+        named.setdefault(best[1], []).append((best[2], probe.label))
+    return named
 
 
 def _stress_peaks(
     case: LoadCase,
     theory: TheoryStress,
     found: LoadStress,
-    lines: Mapping[str, Midline],
-    fe: fe_models.Solution,
+    panels: Mapping[str, Panel],
+    strips: Mapping[str, tuple[float, float] | None],
 ) -> list[TheoryPeak]:
     """Theory's own largest direct and von Mises stress of a load, in joints too.
 
@@ -167,18 +187,22 @@ def _stress_peaks(
     for kind in ("direct", "von_mises") if case.has_direct else ("von_mises",):
         sizes = {}
         for wall in found.walls:
-            at = np.array([0.0, *(probe.at for probe in wall.probes), 1.0])
-            field = np.stack([theory.stress.direct(wall.wall, at).T, theory.stress.shear(wall.wall, at).T])
-            sizes[wall.wall] = float(np.abs(measure(kind, field)).max())
+            if panels[wall.wall].theory is not None:
+                at = np.array([0.0, *(probe.at for probe in wall.probes), 1.0])
+                field = faces_on(panels[wall.wall], theory.stress, at)
+                sizes[wall.wall] = float(np.abs(measure(kind, field)).max())
         most = max(sizes.values(), default=0.0)
         name = next((wall for wall, size in sizes.items() if size >= most * (1 - 1e-9)), None)
         if name is None or most == 0.0:
             continue
-        peak = theory.stress.largest(kind, name)
-        strip, line = fe.strips.get(name), lines[name]
-        x, y = line.places(np.array([peak.at]))[0]
-        inside = strip is not None and strip[0] <= peak.at <= strip[1]
-        s = float(peak.at * line.length)
+        panel, strip = panels[name], strips[name]
+        assert panel.theory is not None
+        peak = theory.stress.largest(kind, panel.theory.wall.name)
+        at_peak = panel.theory.on_panel(float(peak.at))
+        line = panel.line
+        x, y = line.places(np.array([at_peak]))[0]
+        inside = strip is not None and strip[0] <= at_peak <= strip[1]
+        s = float(at_peak * line.length)
         made.append(TheoryPeak(case.name, name, s, float(x), float(y), float(peak.stress), inside, kind))
     return made
 
@@ -194,12 +218,13 @@ def _boom_fibres(
     names = ("area", "centroid_x", "centroid_y", "second_moment_xx", "second_moment_yy", "product_moment_xy")
     area, x_c, y_c, xx, yy, xy = (fe[name].value or 0.0 for name in names)
     made = []
+    booms = [boom for boom in section.booms if boom.seen_by != "fe"]
     for case in cases:
         if not case.has_direct:
             continue
         found = stresses[case.name]
         theory = [] if found.stress is None else found.stress.booms()
-        for number, boom in enumerate(section.booms):
+        for number, boom in enumerate(booms):
             place = boom.point if boom.point is not None else f"{boom.wall} at {boom.at:g}"
             own = theory[number].stress if number < len(theory) else None
             x, y = models.boom_place(section, boom)

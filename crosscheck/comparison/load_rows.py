@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Mapping
+from collections.abc import Collection, Mapping, Sequence
 
 from crosscheck.comparison import models, verdicts
 from crosscheck.comparison.flow_comparison import LoadFlows, signed_gap
 from crosscheck.comparison.levels import NOT_HERE, Levels, TheoryFlow
 from crosscheck.comparison.load_case import LoadCase, fe_rate_of_twist
+from crosscheck.comparison.load_results import BoomFibre
 from crosscheck.comparison.quantities import QUANTITIES, flow_unit, stress_unit, unit_text
 from crosscheck.comparison.result import LEVELS, FeValue, ProbeResult, QuantityResult
 from crosscheck.comparison.rows import judged_row
@@ -16,6 +17,7 @@ from crosscheck.section_file.model import SectionFile
 
 # A surface shear below this share of that of |T| + |V| D is none.
 NO_STRESS = 1e-9
+NO_SHARED_WALL = "no wall carries direct stress on both sides: theory's is in the booms"
 
 
 def flow_rows(section: SectionFile, found: LoadFlows) -> list[QuantityResult]:
@@ -121,6 +123,7 @@ def stress_rows(
     unit_torque: LoadStress,
     torque: FeValue,
     extent: float,
+    fibres: Sequence[BoomFibre] = (),
 ) -> list[QuantityResult]:
     """Rows of the largest surface shear of open walls, direct stress and von Mises stress of a load.
 
@@ -140,6 +143,8 @@ def stress_rows(
         Torque of the load about FE's shear centre [F L].
     extent : float
         Larger overall dimension D [L].
+    fibres : sequence of BoomFibre
+        Direct stress at theory's booms, compared where no wall carries direct stress on both sides.
     """
     case = found.case
     rows = []
@@ -149,10 +154,39 @@ def stress_rows(
         rows.append(_surface_row(section, found, walls, levels, unit_walls, torque, extent))
     if case.unit:
         return rows
-    if case.has_direct:
-        rows.append(_peak_row(section, "direct_stress", "direct", found, found.walls))
-    rows.append(_peak_row(section, "von_mises_stress", "von_mises", found, found.walls))
+    alike = tuple(wall for wall in found.walls if wall.both_sides and wall.same_share)
+    if case.has_direct and alike:
+        rows.append(_peak_row(section, "direct_stress", "direct", found, alike))
+    elif case.has_direct:
+        rows.append(_boom_row(section, case, fibres, found))
+    reason = None if alike or found.reason else NO_SHARED_WALL
+    rows.append(_peak_row(section, "von_mises_stress", "von_mises", found, alike, reason))
     return rows
+
+
+def _boom_row(
+    section: SectionFile, case: LoadCase, fibres: Sequence[BoomFibre], found: LoadStress
+) -> QuantityResult:
+    """Row of the largest direct stress at theory's booms, where its walls carry none and FE's do."""
+    unit = stress_unit("", section.length_unit, section.force_unit)
+    own = [f for f in fibres if f.load == case.name]
+    both = [(f.theory, f.fe) for f in own if f.theory is not None and f.fe is not None]
+    nothing: dict[str, float | None] = dict.fromkeys(LEVELS)
+    kind = QUANTITIES["direct_stress"]
+    if not both:
+        reason = next((f.reason for f in own if f.reason), None) or "theory sees no boom"
+        none = FeValue(None, None, None, "estimate", reason=reason)
+        return judged_row(
+            section, kind, unit, case.name, nothing, found.reasons, none, verdicts.Yardstick(None, reason),
+            reason=reason,
+        )  # fmt: skip
+    hand, fe = (max(abs(pair[side]) for pair in both) for side in (0, 1))
+    theory = {**nothing, section.judged: hand}
+    value = FeValue(fe, fe, fe, "exact")
+    yardstick = verdicts.Yardstick(fe or None, "the FE value is zero")
+    return judged_row(
+        section, kind, unit, case.name, theory, {}, value, yardstick, note="at the places of theory's booms"
+    )
 
 
 def _peak_row(
@@ -161,6 +195,7 @@ def _peak_row(
     kind: str,
     found: LoadStress,
     walls: tuple[WallFaces, ...],
+    no_walls: str | None = None,
 ) -> QuantityResult:
     """Row of the largest stress of a kind over the probes of both sides."""
     peak = fe_peak(kind, walls)
@@ -171,7 +206,7 @@ def _peak_row(
     where = None if peak is None else f"FE's largest at wall {peak.wall}, {peak.face} face, s = {peak.s:.4g}"
     return judged_row(
         section, QUANTITIES[name], unit, found.case.name, theory, found.reasons, value, yardstick,
-        reason=found.reason, note=where,
+        reason=no_walls or found.reason, note=where,
     )  # fmt: skip
 
 
@@ -220,11 +255,12 @@ def torsion_modulus_row(section: SectionFile, found: LoadStress, levels: Levels)
     kind = QUANTITIES["torsion_modulus"]
     unit = unit_text(3, 0, section.length_unit, section.force_unit)
     constants = levels.values("torsion_constant")
-    peaks = {level: level_peak("shear", level, found.walls) for level in LEVELS}
+    walls = tuple(wall for wall in found.walls if wall.both_sides)
+    peaks = {level: level_peak("shear", level, walls) for level in LEVELS}
     theory = {
         level: 1.0 / peak if peak and constants[level] is not None else None for level, peak in peaks.items()
     }
-    peak = fe_peak("shear", found.walls)
+    peak = fe_peak("shear", walls)
     value = FeValue(None, None, None, "estimate", reason="no wall has a strip")
     if peak is not None and peak.low > 0.0:
         value = FeValue(1.0 / peak.value, 1.0 / peak.high, 1.0 / peak.low, "estimate")

@@ -120,7 +120,7 @@ def fe_section(section: SectionFile) -> fe_models.Section:
 def _shared_nu(section: SectionFile, walls: tuple[fe_models.Wall, ...]) -> float | None:
     """Poisson's ratio of the material of all FE walls [-]; None where they differ."""
     names = {wall.name for wall in walls}
-    materials = {wall.material for wall in section.walls if wall.name in names}
+    materials = {wall.material for wall in section.walls if wall.name in names and wall.seen_by != "theory"}
     if len(materials) != 1:
         return None
     (name,) = materials
@@ -185,19 +185,10 @@ def boom_place(section: SectionFile, boom: BoomSpec) -> tuple[float, float]:
         return section.points[boom.point]
     assert boom.wall is not None
     assert boom.at is not None
-    wall = section.wall(boom.wall)
+    wall = section.wall(boom.wall, None if boom.seen_by == "both" else boom.seen_by)
     line = Midline(section.points[wall.start], section.points[wall.end], wall.arc_through)
     x, y = line.places(np.array([boom.at]))[0]
     return float(x), float(y)
-
-
-def midlines(section: SectionFile) -> dict[str, Midline]:
-    """Midline of every wall that both sides see, in file order [L]."""
-    return {
-        wall.name: Midline(section.points[wall.start], section.points[wall.end], wall.arc_through)
-        for wall in section.walls
-        if wall.seen_by == "both"
-    }
 
 
 def _used_points(

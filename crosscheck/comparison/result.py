@@ -222,6 +222,16 @@ class WallShape:
 
 
 @dataclass(frozen=True)
+class BoomMark:
+    """A boom as drawn: place [L], area [L^2], and which side sees it."""
+
+    x: float
+    y: float
+    area: float
+    seen_by: str
+
+
+@dataclass(frozen=True)
 class LoadLine:
     """A load as drawn: force components [F], a point on its line of action [L], torque [F L]."""
 
@@ -255,6 +265,8 @@ class PictureMesh:
 class Drawing:
     """What pictures need beside the numbers: geometry of both sides and curves along the walls.
 
+    ``walls`` are the panels at which the sides are compared, and walls of one side alone; ``hand_walls``
+    theory's own. Names are those of the panels:
     ``flows[load][wall]`` and ``warping[wall]`` are theory's values at the samples of the wall's shape;
     ``fe_warping[wall]`` are FE's at its probes: distance along the wall and omega (k, 2).
     """
@@ -268,6 +280,8 @@ class Drawing:
     warping: Mapping[str, Array]
     fe_warping: Mapping[str, Array]
     mesh: PictureMesh | None
+    hand_walls: tuple[WallShape, ...] = ()
+    booms: tuple[BoomMark, ...] = ()
 
 
 @dataclass(frozen=True)

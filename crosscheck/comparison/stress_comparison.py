@@ -14,11 +14,12 @@ from crosscheck.comparison.flow_comparison import Probe
 from crosscheck.comparison.levels import TheoryStress
 from crosscheck.comparison.load_case import LoadCase
 from crosscheck.comparison.load_results import FaceSeries, Series, WallStress
-from crosscheck.comparison.midline import Midline
+from crosscheck.comparison.panels import Panel
 from crosscheck.comparison.result import Array, FeValue
 from crosscheck.comparison.verdicts import ROUND_OFF
 
 if TYPE_CHECKING:
+    import beam_theory
     from crosscheck.section_file.model import SectionFile
 
 FACES = ("left", "right")
@@ -45,6 +46,7 @@ class WallFaces:
     """Stress of one load in one wall: theory by level and FE, each (2, 2, n) as direct and shear by face.
 
     ``fe_error`` (2, 2, n). Theory's levels that have none are absent; FE is NaN outside the strip.
+    ``same_share``: both sides let the wall carry direct stress, or both do not.
     """
 
     wall: str
@@ -53,6 +55,12 @@ class WallFaces:
     theory: Mapping[str, Array]
     fe: Array
     fe_error: Array
+    same_share: bool = True
+
+    @property
+    def both_sides(self) -> bool:
+        """Whether theory sees the wall at all."""
+        return bool(self.theory)
 
 
 @dataclass(frozen=True)
@@ -78,9 +86,9 @@ class FacePeak:
 
 
 def unit_faces(
-    section: SectionFile, fe: fe_models.Solution, wall: str, probes: Sequence[Probe], *, bimoment: bool
+    section: SectionFile, fe: fe_models.Solution, panel: Panel, probes: Sequence[Probe], *, bimoment: bool
 ) -> UnitFaces:
-    """FE's stress per unit resultant at the probes of a wall.
+    """FE's stress per unit resultant at the probes of a panel; faces are those of the panel's direction.
 
     Shear resultants make no direct stress and the others no shear stress, so each call carries one of both.
     FE's direct stress is that smeared over the wall (direct_share) and over the patch of a boom; it is turned
@@ -92,8 +100,8 @@ def unit_faces(
         For the wall's material and share.
     fe : fe_models.Solution
         Solved.
-    wall : str
-        Name.
+    panel : Panel
+        Where; FE's walls run along it.
     probes : sequence of Probe
         Where.
     bimoment : bool
@@ -105,9 +113,10 @@ def unit_faces(
     direct = np.full((4, 2, n), np.nan)
     warping = fe.quantities["warping_constant"]
     share = warping.half_width / warping.value if bimoment and warping.value else 0.0
-    if not inside.any():
+    if not inside.any() or panel.fe is None:
         return UnitFaces(shear, error, direct, share)
-    at = np.array([probe.at for probe in probes])[inside]
+    spec = panel.fe.wall
+    wall, at = spec.name, panel.fe.on_wall(np.array([probe.at for probe in probes])[inside])
     actions = (
         fe_models.Actions(shear=(1.0, 0.0), axial=1.0),
         fe_models.Actions(shear=(0.0, 1.0), moment=(1.0, 0.0)),
@@ -116,7 +125,6 @@ def unit_faces(
     found = [fe.face_stress(wall, at, action) for action in actions]
     shear[:, :, inside] = [each.shear for each in found]
     error[:, :, inside] = [each.error for each in found]
-    spec = section.wall(wall)
     if spec.direct_share > 0.0:
         area = fe.quantities["area"].value
         assert area is not None
@@ -136,7 +144,7 @@ def load_stress(
     judged: str,
     units: Mapping[str, UnitFaces],
     torque: FeValue,
-    midlines: Mapping[str, Midline],
+    panels: Mapping[str, Panel],
     probes: Mapping[str, Sequence[Probe]],
 ) -> LoadStress:
     """Stress of one load on both sides.
@@ -149,26 +157,37 @@ def load_stress(
         Theory's stress of it.
     judged : str
         The level that verdicts judge.
-    units : mapping of wall to UnitFaces
+    units : mapping of panel to UnitFaces
         FE's, per unit resultant.
     torque : FeValue
         Torque about FE's shear centre [F L].
-    midlines, probes : mapping of wall
-        Geometry [L], and where.
+    panels, probes : mapping of name
+        Geometry and the walls of both sides, and where.
     """
     reasons = {level: found.reason for level, found in theory.items() if found.reason is not None}
     reason = theory[judged].reason or torque.reason
     walls = []
-    for wall, midline in midlines.items():
-        at = np.array([probe.at for probe in probes[wall]])
+    for name, panel in panels.items():
+        at = np.array([probe.at for probe in probes[name]])
         by_level = {
-            level: np.stack([found.stress.direct(wall, at).T, found.stress.shear(wall, at).T])
+            level: faces_on(panel, found.stress, at)
             for level, found in theory.items()
-            if found.stress is not None
+            if found.stress is not None and panel.theory is not None
         }
-        fe, error = _fe_faces(case, torque, units[wall])
-        walls.append(WallFaces(wall, tuple(probes[wall]), at * midline.length, by_level, fe, error))
+        fe, error = _fe_faces(case, torque, units[name])
+        s = at * panel.line.length
+        same = panel.same_share or panel.seen_by != "both"
+        walls.append(WallFaces(name, tuple(probes[name]), s, by_level, fe, error, same))
     return LoadStress(case, tuple(walls), reasons, reason)
+
+
+def faces_on(panel: Panel, stress: beam_theory.Stress, at: Array) -> Array:
+    """Theory's direct and shear stress (2, 2, n) at the left and right face of a panel's direction."""
+    assert panel.theory is not None
+    wall, places = panel.theory.wall.name, panel.theory.on_wall(at)
+    direct, shear = stress.direct(wall, places).T, panel.theory.sign * stress.shear(wall, places).T
+    turned = slice(None, None, -1) if panel.theory.sign < 0 else slice(None)
+    return np.stack([direct[turned], shear[turned]])
 
 
 def _fe_faces(case: LoadCase, torque: FeValue, unit: UnitFaces) -> tuple[Array, Array]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 import beam_theory
-from crosscheck.comparison import models
+from crosscheck.comparison.panels import line_of
 from crosscheck.section_file.model import SectionFile
 
 WIDTH, HEIGHT = 64, 22
@@ -34,9 +34,9 @@ def section_sketch(section: SectionFile, solution: beam_theory.Solution) -> list
     solution : beam_theory.Solution
         For both centres.
     """
-    lines = models.midlines(section)
     at = np.linspace(0.0, 1.0, 97)
-    runs = {name: line.places(at) for name, line in lines.items()}
+    walls = [wall for wall in section.walls if wall.seen_by != "fe"]
+    runs = {wall.name: line_of(section, wall).places(at) for wall in walls}
     marks = {}
     for letter, name in (("C", "centroid"), ("S", "shear_centre")):
         x, y = (solution.quantities[f"{name}_{axis}"].value for axis in "xy")

@@ -211,7 +211,7 @@ def end_names(section: SectionFile, sheet: beam_theory.Working) -> list[tuple[st
     """What the two ends of every stretch are called: a point, or a place on the wall."""
     named = []
     for row in sheet.walls:
-        wall = section.wall(row.wall)
+        wall = section.wall(row.wall, "theory")
         first = wall.start if row.first <= 0.0 else f"{row.wall} at {row.first:.7g}"
         last = wall.end if row.last >= 1.0 else f"{row.wall} at {row.last:.7g}"
         named.append((first, last))

@@ -90,7 +90,7 @@ def _draw_models(axes: Axes, result: Result) -> None:
     """The solid, theory's walls as hatched bands, and the midlines."""
     drawing = result.require_drawing()
     draw_solid(axes, drawing.loops, edge=FE)
-    for wall, hatch in hatches([wall for wall in drawing.walls if wall.seen_by != "fe"]):
+    for wall, hatch in hatches(drawing.hand_walls):
         band = wall_band(wall)
         axes.fill(band[:, 0], band[:, 1], fill=False, hatch=hatch, ec=HAND, lw=0.5, zorder=3)
     draw_midlines(axes, drawing)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Collection, Iterable, Mapping
+from itertools import chain
 from typing import Any
 
 from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
@@ -50,7 +51,12 @@ class AttachmentReader:
         self.faults: FaultList = numbers.faults
         self.points = points
         self.declared_points = declared_points
-        self.walls = None if walls is None else {wall.name: wall for wall in walls}
+        self.walls: dict[str, list[WallSpec]] | None = None
+        if walls is not None:
+            self.walls = {}
+            for wall in walls:
+                # One of theory and one of FE may share a name.
+                self.walls.setdefault(wall.name, []).append(wall)
         self.base_material = base_material
         self.materials = materials
 
@@ -132,7 +138,7 @@ class AttachmentReader:
         """Probes in file order."""
         probes: dict[str, ProbeSpec] = {}
         for index, table in enumerate(self.document.get("probes", [])):
-            wall, at = self._place_on_wall(("probes", index), table, "both")
+            wall, at = self._place_on_wall(("probes", index), table, None)
             label = table.get("label")
             if label in probes:
                 self.faults.add(("probes", index, "label"), f"{quoted(label)} again", "unique")
@@ -141,22 +147,23 @@ class AttachmentReader:
         return tuple(probes.values())
 
     def _place_on_wall(
-        self, path: KeyPath, table: Mapping[str, Any], side: str
+        self, path: KeyPath, table: Mapping[str, Any], side: str | None
     ) -> tuple[str | None, float | None]:
         at = self.numbers.number((*path, "at"), table.get("at"), SHARE)
         return self._wall((*path, "wall"), table.get("wall"), side), at
 
-    def _wall(self, path: KeyPath, name: str | None, side: str) -> str | None:
-        """The name of a wall, judged: it must exist, and be seen by a side ("both": by both of them)."""
+    def _wall(self, path: KeyPath, name: str | None, side: str | None) -> str | None:
+        """The name of a wall, judged: it must exist, seen by a side ("both": by both of them; None: by any)."""
         if name is not None and self.walls is not None and name not in self.walls:
             parts = [f"{name} {number}" for number in (1, 2) if f"{name} {number}" in self.walls]
             remedy = f"the walls of that path are {', '.join(map(quoted, parts))} and so on" if parts else ""
             near = None if parts else (name, self.walls)
             self.faults.add(path, quoted(name), "the name of a wall", remedy, near=near)
-        elif name is not None and self.walls is not None and self.walls[name].seen_by not in ("both", side):
-            sees = "both sides see" if side == "both" else f"{side} sees"
-            found = f"{quoted(name)}, which only {self.walls[name].seen_by} sees"
-            self.faults.add(path, found, f"a wall that {sees}")
+        elif name is not None and self.walls is not None:
+            sees = {wall.seen_by for wall in self.walls[name]}
+            if side is not None and not sees & {side, "both"} and sees != {"theory", "fe"}:
+                words = "both sides see" if side == "both" else f"{side} sees"
+                self.faults.add(path, f"{quoted(name)}, which only {sees.pop()} sees", f"a wall that {words}")
         return name
 
     def booms(self) -> tuple[BoomSpec, ...]:
@@ -194,7 +201,7 @@ class AttachmentReader:
                 continue
             ends = (
                 end
-                for wall in self.walls.values()
+                for wall in chain.from_iterable(self.walls.values())
                 for end in (wall.start, wall.end)
                 if wall.seen_by in ("both", side)
             )

@@ -32,7 +32,7 @@ class WallSpec:
 
     Attributes
     ----------
-    name : its own name, unique
+    name : its own name, unique among the walls that one side sees
     start, end : names of its points; start -> end is its direction
     thickness : at start and end [L]
     arc_through : a third place on its arc [L]; None for a straight wall
@@ -223,15 +223,15 @@ class SectionFile:
     notes: tuple[str, ...] = ()
     tables: Mapping[str, str] = field(default_factory=dict)
 
-    def wall(self, name: str) -> WallSpec:
-        """The wall of that name.
+    def wall(self, name: str, side: str | None = None) -> WallSpec:
+        """The wall of that name, of those that a side ("theory" or "fe") sees where one is given.
 
         Raises
         ------
         KeyError : when there is none
         """
         for wall in self.walls:
-            if wall.name == name:
+            if wall.name == name and (side is None or wall.seen_by in ("both", side)):
                 return wall
         raise KeyError(name)
 

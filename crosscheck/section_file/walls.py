@@ -72,17 +72,22 @@ class WallReader:
         count = sum(max(len(entry.get("path", ())) - 1, 0) for entry in entries)
         if not self._few_enough(count):
             return [], {}
-        walls: dict[str, WallSpec] = {}
+        walls: list[WallSpec] = []
+        seen: dict[tuple[str, str], WallSpec] = {}
         named: dict[str, bool] = {}
         for index, entry in enumerate(entries):
             for wall in self._entry(index, entry):
-                if wall.name in walls:
-                    self._repeated_name(index, entry, wall, walls[wall.name], named[wall.name])
+                sides = ("theory", "fe") if wall.seen_by == "both" else (wall.seen_by,)
+                first = next((seen[side, wall.name] for side in sides if (side, wall.name) in seen), None)
+                if first is not None:
+                    self._repeated_name(index, entry, wall, first, named[wall.name])
                     continue
                 named[wall.name] = "name" in entry
-                walls[wall.name] = wall
+                # One wall of theory and one of FE may share a name: they are then compared.
+                seen |= {(side, wall.name): wall for side in sides}
+                walls.append(wall)
         # Smooth paths make up to two arcs of a span.
-        return (list(walls.values()), named) if self._few_enough(len(walls)) else ([], {})
+        return (walls, named) if self._few_enough(len(walls)) else ([], {})
 
     def _few_enough(self, count: int) -> bool:
         """False, with a fault, when there are more walls than the FE side takes."""
