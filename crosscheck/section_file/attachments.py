@@ -153,7 +153,7 @@ class AttachmentReader:
         return self._wall((*path, "wall"), table.get("wall"), side), at
 
     def _wall(self, path: KeyPath, name: str | None, side: str | None) -> str | None:
-        """The name of a wall, judged: it must exist, seen by a side ("both": by both of them; None: by any)."""
+        """The name of a wall, judged: it must exist, seen by a side ("both": by each; None: by any)."""
         if name is not None and self.walls is not None and name not in self.walls:
             parts = [f"{name} {number}" for number in (1, 2) if f"{name} {number}" in self.walls]
             remedy = f"the walls of that path are {', '.join(map(quoted, parts))} and so on" if parts else ""
