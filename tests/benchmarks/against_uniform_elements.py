@@ -15,6 +15,7 @@ import logging
 import statistics
 import sys
 import time
+from collections.abc import Iterator, Sequence
 
 import numpy as np
 import skfem
@@ -24,6 +25,9 @@ from fe_models import Section, Wall, solve
 
 PAIRS = 5
 FINEST = 40
+HEAD = """\
+| depth / thickness | J within | uniform, unknowns | seconds | ours, unknowns | seconds | fewer | faster |
+|---|---|---|---|---|---|---|---|"""
 
 
 def channel(slenderness: float) -> Section:
@@ -62,15 +66,12 @@ def layers_needed(slenderness: float, error: float, exact: float) -> tuple[int, 
     return FINEST, abs(j / exact - 1.0)
 
 
-def main(arguments: list[str]) -> None:
-    slenderness = float(arguments[0]) if arguments else 100.0
-    errors = [float(a) for a in arguments[1:]] or [1e-3, 1e-4, 1e-5]
+def table(slenderness: float, errors: Sequence[float] = (1e-3, 1e-4, 1e-5)) -> Iterator[str]:
+    """Rows of a Markdown table, one an error."""
     logging.getLogger("skfem").setLevel(logging.ERROR)
     section = channel(slenderness)
     solve(section)
     exact = solve(section, 1e-8).quantities["torsion_constant"].known
-    print(f"sharp channel, depth / thickness {slenderness:g}")
-    print("error    uniform: layers  unknowns  reached  seconds   ours: unknowns  seconds   ratios")
     for error in errors:
         layers, reached = layers_needed(slenderness, error, exact)
         theirs, ours = [], []
@@ -83,10 +84,20 @@ def main(arguments: list[str]) -> None:
             theirs.append(middle - start)
         few = solution.mesh.unknowns
         ratio = statistics.median(a / b for a, b in zip(theirs, ours, strict=True))
-        print(
-            f"{error:.0e} {layers:12d} {many:12d} {reached:9.1e} {statistics.median(theirs):8.2f}"
-            f" {few:12d} {statistics.median(ours):10.3f}   {many / few:.0f} x fewer, {ratio:.0f} x faster"
+        left = "" if reached <= error else f" ({reached:.1e} reached)"
+        yield (
+            f"| {slenderness:g} | {error:.0e} | {many:,}{left} | {statistics.median(theirs):.2f} | {few:,}"
+            f" | {statistics.median(ours):.3f} | {many / few:.0f} x | {ratio:.1f} x |"
         )
+
+
+def main(arguments: list[str]) -> None:
+    """The table of one slenderness."""
+    slenderness = float(arguments[0]) if arguments else 100.0
+    errors = [float(a) for a in arguments[1:]] or [1e-3, 1e-4, 1e-5]
+    print(HEAD)
+    for row in table(slenderness, errors):
+        print(row)
 
 
 if __name__ == "__main__":
