@@ -10,6 +10,7 @@ import numpy as np
 
 from crosscheck.faults import FaultList, quoted
 from crosscheck.section_file.contacts import Contact, Floats, Segments, contacts
+from crosscheck.section_file.graph import Parts
 from crosscheck.section_file.keys import OFFSET_LIMIT, SLENDERNESS_LIMIT
 from crosscheck.section_file.model import CutSpec, Place, WallSpec, arc_angle
 from crosscheck.section_file.same_points import check_same_points, entry_path
@@ -215,7 +216,7 @@ class GeometryCheck:
         if not walls:
             words = "a wall or more that each side sees"
             self.faults.add(("walls",), f"no wall that {view} sees", words, f'seen_by = "both" or "{view}"')
-        parts = _Parts([(wall.start, wall.end) for wall in walls] + self.joined)
+        parts = Parts([(wall.start, wall.end) for wall in walls] + self.joined)
         by_part: dict[str, list[str]] = {}
         for wall in walls:
             by_part.setdefault(parts.of(wall.start), []).append(wall.name)
@@ -235,7 +236,7 @@ class GeometryCheck:
         if not cut_walls or not cut_walls <= set(by_name):
             return
         left = [(w.start, w.end) for w in by_name.values() if w.name not in cut_walls]
-        parts = _Parts(left + self.joined)
+        parts = Parts(left + self.joined)
         for index, cut in enumerate(cuts):
             wall = by_name[cut.wall]
             if parts.of(wall.start) != parts.of(wall.end):
@@ -248,27 +249,6 @@ class GeometryCheck:
 def seen_by(walls: Iterable[WallSpec], side: str) -> list[WallSpec]:
     """The walls that "theory" or "fe" sees."""
     return [wall for wall in walls if wall.seen_by in ("both", side)]
-
-
-class _Parts:
-    """Connected parts of a graph of names."""
-
-    def __init__(self, pairs: Iterable[tuple[str, str]]) -> None:
-        self._above: dict[str, str] = {}
-        for a, b in pairs:
-            self.join(a, b)
-
-    def of(self, name: str) -> str:
-        """The name that stands for a name's part."""
-        above = self._above
-        above.setdefault(name, name)
-        while above[name] != name:
-            above[name] = above[above[name]]
-            name = above[name]
-        return name
-
-    def join(self, a: str, b: str) -> None:
-        self._above[self.of(b)] = self.of(a)
 
 
 def _arc_places(start: Place, through: Place, end: Place) -> list[Place]:

@@ -12,7 +12,6 @@ from crosscheck.faults import FaultList, KeyPath, shown
 # "key" is the key itself, indices and free names left out; "key{}" its form as a table;
 # 'key="text"' one of its values. The text beside it says what works today.
 NOT_BUILT: dict[str, str] = {
-    "walls.line": "paths are midlines",  # reserved: faces are not turned into midlines
     "mirror": "write every point and wall",  # reserved
     "tables.points": "write points in this file; loads may come from a table",  # reserved
     "tolerances": "leave the table out",  # reserved

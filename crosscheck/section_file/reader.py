@@ -89,8 +89,10 @@ def section_from(
     """
     # pydantic and numpy load here, so that help and faults of the command line stay quick.
     from crosscheck.section_file.attachments import AttachmentReader
+    from crosscheck.section_file.faces import midlines_from_faces
     from crosscheck.section_file.forms import well_formed
     from crosscheck.section_file.geometry import GeometryCheck
+    from crosscheck.section_file.graph import WallGraph
     from crosscheck.section_file.materials import read_materials
     from crosscheck.section_file.numbers import Numbers
     from crosscheck.section_file.points import read_points
@@ -107,17 +109,25 @@ def section_from(
     materials, base_material = read_materials(document, material_names, numbers, notes)
     points = read_points(document, numbers)
     reader = WallReader(numbers, points, point_names, material_names, base_material)
-    walls, named = reader.read(document.get("walls", []))
+    graph = WallGraph(points, *reader.read(document.get("walls", [])))
+    written = dict(points)  # as the file has them, before faces are turned into midlines
+    notes += midlines_from_faces(graph, reader.faces, reader.tapers, (), faults)
     complete = reader.complete and "walls" in document
     attachments = AttachmentReader(
-        document, numbers, points, point_names, walls if complete else None, base_material, material_names
+        document,
+        numbers,
+        written,
+        point_names,
+        graph.walls if complete else None,
+        base_material,
+        material_names,
     )
     loads, cuts = attachments.loads(), attachments.cuts()
     probes, booms = attachments.probes(), attachments.booms()
     corners, stated = attachments.corners(), attachments.stated()
     criteria = attachments.criteria(notes)
     load_points = [load.through_point for load in loads if load.through_point is not None]
-    notes += GeometryCheck(walls, named, points, faults).run(cuts, complete, load_points)
+    notes += GeometryCheck(graph.walls, graph.named, points, faults).run(cuts, complete, load_points)
     faults.raise_any(given)
     return SectionFile(
         path=source.path,
@@ -126,7 +136,7 @@ def section_from(
         length_unit=units[0],
         force_unit=units[1],
         points=points,
-        walls=tuple(walls),
+        walls=tuple(graph.walls),
         judged=document.get("judged", "midline"),
         parameters=numbers.values,
         overrides={name: str(value) for name, value in numbers.overrides.items()},

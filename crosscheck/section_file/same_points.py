@@ -53,5 +53,7 @@ def check_same_points(
 
 
 def entry_path(wall: WallSpec, key: str) -> KeyPath:
-    """Key path of a key in the entry that defines a wall."""
-    return ("walls", int(wall.key.partition("[")[2][:-1]), key)
+    """Key path of a key in the entry that defines a wall; of the entry itself where a profile is placed."""
+    table, _, index = wall.key.partition("[")
+    entry: KeyPath = (table, int(index[:-1]))
+    return (*entry, key) if table == "walls" else entry

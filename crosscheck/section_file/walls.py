@@ -9,11 +9,12 @@ from itertools import pairwise
 from typing import Any
 
 from crosscheck.faults import KeyPath, key_text, quoted, shown
+from crosscheck.section_file.faces import LEFT, RIGHT, Taper
+from crosscheck.section_file.graph import wall_length
 from crosscheck.section_file.keys import WALL_LIMIT
 from crosscheck.section_file.model import (
     Place,
     WallSpec,
-    arc_angle,
 )
 from crosscheck.section_file.numbers import POSITIVE, SHARE, Numbers
 from crosscheck.section_file.same_points import same_points_fault
@@ -45,6 +46,12 @@ class WallReader:
     points : places of points that are without fault; receives those where the arcs of smooth paths meet
     declared_points, declared_materials : all names in the file, faulty ones too
     base_material : material of a wall that names none
+    prefix : key path of the list of wall tables
+
+    Attributes
+    ----------
+    faces : LEFT or RIGHT by the name of each wall that is given by a face
+    tapers : paths whose thickness is linear by length
     """
 
     def __init__(
@@ -54,6 +61,7 @@ class WallReader:
         declared_points: Collection[str],
         declared_materials: Collection[str],
         base_material: str | None,
+        prefix: KeyPath = ("walls",),
     ) -> None:
         self.numbers = numbers
         self.faults = numbers.faults
@@ -61,6 +69,9 @@ class WallReader:
         self.declared_points = declared_points
         self.declared_materials = declared_materials
         self.base_material = base_material
+        self.prefix = prefix
+        self.faces: dict[str, int] = {}
+        self.tapers: list[Taper] = []
         self.complete = True  # False once an entry gave no walls
 
     def read(self, entries: Sequence[Mapping[str, Any]]) -> tuple[list[WallSpec], dict[str, bool]]:
@@ -94,13 +105,13 @@ class WallReader:
         if count <= WALL_LIMIT:
             return True
         self.complete = False
-        self.faults.add(("walls",), f"{count} walls", f"at most {WALL_LIMIT} walls")
+        self.faults.add(self.prefix, f"{count} walls", f"at most {WALL_LIMIT} walls")
         return False
 
     def _repeated_name(
         self, index: int, entry: Mapping[str, Any], wall: WallSpec, first: WallSpec, first_named: bool
     ) -> None:
-        key = ("walls", index, "name")
+        key = (*self.prefix, index, "name")
         unnamed = not first_named and "name" not in entry
         if unnamed and {first.start, first.end} == {wall.start, wall.end}:
             same_points_fault(self.faults, key, first, wall)
@@ -110,7 +121,7 @@ class WallReader:
 
     def _entry(self, index: int, entry: Mapping[str, Any]) -> list[WallSpec]:
         """Walls of one entry of [[walls]]."""
-        path: KeyPath = ("walls", index)
+        path: KeyPath = (*self.prefix, index)
         points = entry.get("path")
         if points is None or not self._path_holds((*path, "path"), points):
             self.complete = False
@@ -140,6 +151,11 @@ class WallReader:
                 key=key_text(path),
             )
             walls.append(wall)
+            if entry.get("line", "midline") != "midline":
+                self.faces[wall.name] = LEFT if entry["line"] == "left face" else RIGHT
+        if isinstance(entry.get("thickness"), dict) and walls:
+            ends = walls[0].thickness[0], walls[-1].thickness[1]
+            self.tapers.append(Taper(tuple(wall.name for wall in walls), *ends))
         return walls
 
     def _note_other_faults(
@@ -283,15 +299,7 @@ class WallReader:
             return [(UNKNOWN, UNKNOWN)] * len(stretches)
         along = [0.0]
         for each in stretches:
-            along.append(along[-1] + _length(self.points[each.start], self.points[each.end], each.arc))
+            along.append(along[-1] + wall_length(self.points[each.start], self.points[each.end], each.arc))
         whole = along[-1] or 1.0
         values = [first + (last - first) * distance / whole for distance in along]
         return list(pairwise(values))
-
-
-def _length(start: Place, end: Place, arc: Place | None) -> float:
-    """Length of a straight wall or an arc [L]."""
-    if arc is None:
-        return math.dist(start, end)
-    centre, _, sweep = arc_angle(start, arc, end)
-    return math.dist(centre, start) * abs(sweep)

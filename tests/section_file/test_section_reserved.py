@@ -14,7 +14,6 @@ GOOD = (
 )
 
 NOT_BUILT_LINES = [
-    (GOOD + 'line = "left face"\n', "walls[0].line"),
     (GOOD + '[mirror]\nabout = "x"\n', "mirror"),
     (GOOD + '[tables]\npoints = "p.csv"\n', "tables.points"),
     (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
