@@ -8,6 +8,7 @@ from .intervals import Interval
 from .location import PointStress
 from .mesh_file import rings_of_mesh, write_fields
 from .outline import Outline
+from .outline import outline as outline_of_walls
 from .picture import PictureMesh
 from .poisson import PoissonFlexure
 from .recovery import FlowSamples
@@ -57,6 +58,7 @@ __all__ = [
     "closed_lines",
     "fitted_edges",
     "outline_of_solid",
+    "outline_of_walls",
     "rings_of_mesh",
     "rings_of_step",
     "solve",

@@ -27,6 +27,7 @@ ALLOWED = {
     "branch": "made of closed lines that share no point: two edges at each",
     "step": "a STEP file of one plane face across x, y or z",
     "mesh": "a mesh file of one flat sheet of triangles",
+    "agreement": "in agreement with the walls: area within 0.5 %, centroid within 0.5 % of the overall size",
     "opening": "inside the outer ring and not inside another opening",
 }
 

@@ -92,8 +92,14 @@ def face_stress(
     ``centre`` is the shear centre, about which warping by the bimoment is taken.
     """
     s = np.atleast_1d(np.asarray(at, dtype=float))
-    samples = _on_faces(strip, s)
-    shear, error = _shear(fields, samples, strip.band.direction(np.concatenate([s, s]))[:, None], actions)
+    return sampled_faces(fields, _on_faces(strip, s), strip.band.direction(s), centre, actions)
+
+
+def sampled_faces(
+    fields: Fields, samples: Samples, direction: Array, centre: Array, actions: Actions
+) -> FaceStress:
+    """Stress at samples on the left face and then on the right one of a wall of a direction (n, 2)."""
+    shear, error = _shear(fields, samples, np.concatenate([direction, direction])[:, None], actions)
     points = places(fields, samples)
     e = fields.moduli.e[samples.elements][:, None]
     direct = e * _direct(fields, points, actions)
@@ -101,7 +107,7 @@ def face_stress(
         omega = warping_function(fields, centre)
         squared = fields.space.integral(fields.moduli.e[:, None] * fields.space.value(omega) ** 2)
         direct = direct + e * actions.bimoment * function_values(fields, samples, omega) / squared
-    n = len(s)
+    n = len(direction)
     rows = (points[:, 0] + fields.inertia.centroid).reshape(2, n, 2)
     return FaceStress(rows, direct.reshape(2, n), shear.reshape(2, n), error.reshape(2, n))
 

@@ -38,7 +38,7 @@ class FlowSamples:
 
 
 @dataclass(frozen=True)
-class _Chords:
+class Chords:
     """Parts of section lines inside single triangles: c chords with q points each.
 
     Parameters
@@ -74,15 +74,27 @@ def flow_samples(fields: Fields, strip: StripMesh, at: ArrayLike, closing: Array
     span = strip.s[-1] - strip.s[0]
     if (s < strip.s[0] - 1e-9 * span).any() or (s > strip.s[-1] + 1e-9 * span).any():
         raise ValueError(f"place outside the strip of wall {strip.band.name}: {strip.s[0]} to {strip.s[-1]}")
-    chords = _chords(strip, s)
-    static, _ = stresses(fields, chords.samples)
-    parts = np.sum(chords.weights * np.sum(static * chords.along, axis=-1), axis=2)
-    values = np.array([np.bincount(chords.places, part, len(s)) for part in parts])
-    # round-off is that of the stress through the thickness, whose integral may vanish
-    scale = np.abs(static).max(axis=(1, 2, 3)) * max(strip.band.thickness)
     share = ROUND_OFF if strip.band.straight else CURVED
-    errors = np.broadcast_to((share * scale + closing)[:, None], values.shape)
+    return sampled_flow(fields, strip_chords(strip, s), len(s), share * max(strip.band.thickness), closing)
+
+
+def sampled_flow(fields: Fields, chords: Chords, count: int, allowance: float, closing: Array) -> FlowSamples:
+    """Flow over section lines; ``allowance`` [L] times the largest stress is what round-off may make."""
+    values, _ = flows(fields, chords, count)
+    # round-off is that of the stress through the thickness, whose integral may vanish
+    static, _ = stresses(fields, chords.samples)
+    scale = np.abs(static).max(axis=(1, 2, 3)) * allowance
+    errors = np.broadcast_to((scale + closing)[:, None], values.shape)
     return FlowSamples(values, np.array(errors))
+
+
+def flows(fields: Fields, chords: Chords, count: int) -> tuple[Array, Array]:
+    """Static and kinematic flow of the unit loads over section lines, two (3, count) arrays."""
+    made = []
+    for field in stresses(fields, chords.samples):
+        parts = np.sum(chords.weights * np.sum(field * chords.along, axis=-1), axis=2)
+        made.append(np.array([np.bincount(chords.places, part, count) for part in parts]))
+    return made[0], made[1]
 
 
 def closing_error(fields: Fields, strips: Iterable[StripMesh]) -> Array:
@@ -112,7 +124,7 @@ def _disagreement(fields: Fields, strip: StripMesh) -> Array:
     return np.array(found)
 
 
-def _chords(strip: StripMesh, s: Array) -> _Chords:
+def strip_chords(strip: StripMesh, s: Array) -> Chords:
     """Chords of the section lines at distances s.
 
     Triangles of a straight strip are straight in (s, offset), those of a curved one in (s, offset over half
@@ -136,7 +148,7 @@ def _chords(strip: StripMesh, s: Array) -> _Chords:
     reference = in_triangles(cs, cn, np.broadcast_to(at_s[:, None], n.shape), n)
     weights = 0.5 * w * ((high - low) * scale[place])[:, None]
     along = strip.band.direction(np.broadcast_to(at_s[:, None], n.shape))
-    return _Chords(Samples(strip.triangles.ravel()[rows], reference), place, along, weights)
+    return Chords(Samples(strip.triangles.ravel()[rows], reference), place, along, weights)
 
 
 def in_triangles(cs: Array, cn: Array, s: Array, n: Array) -> Array:

@@ -9,12 +9,12 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import ArrayLike
 
-from .band import Array
+from .band import Array, Band, band
 from .bridges import open_walls
 from .checks import Check, self_checks
 from .density import Density
 from .errors import SolveError
-from .faces import Actions, FaceStress, Peak, boundary_peaks, face_stress
+from .faces import Actions, FaceStress, Peak, boundary_peaks, face_stress, sampled_faces
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
 from .intervals import Interval
@@ -24,8 +24,9 @@ from .outline import Outline, outline
 from .picture import PictureMesh, picture_mesh
 from .poisson import PoissonFlexure, poisson_flexure
 from .quantities import quantities
-from .recovery import FlowSamples, closing_error, flow_samples
+from .recovery import CURVED, FlowSamples, closing_error, flow_samples, sampled_flow
 from .section import Section
+from .section_lines import SolidWall, disagreement, solid_walls
 from .solid import Solid, outline_of_solid
 from .space import space
 
@@ -71,6 +72,8 @@ class Solution:
         What was asked and what was reached.
     poisson : PoissonFlexure or None
         Flexure with Poisson's ratio; None where the section has none that all walls share.
+    solid_walls : mapping of wall name to SolidWall or None
+        Walls drawn over a solid that is given by its outline.
     """
 
     quantities: Mapping[str, Interval]
@@ -83,6 +86,7 @@ class Solution:
     fields: Fields = field(repr=False)
     open_walls: frozenset[str] = field(repr=False)
     poisson: PoissonFlexure | None = field(default=None, repr=False)
+    solid_walls: Mapping[str, SolidWall | None] = field(default_factory=dict, repr=False)
 
     def flow_at(self, wall: str, fractions: ArrayLike) -> FlowSamples:
         """Flows of the three unit loads at fractions of a wall.
@@ -92,9 +96,14 @@ class Solution:
         ValueError
             The wall has no strip, or a fraction lies outside it.
         """
+        closing = np.zeros(3) if wall in self.open_walls else self.closing_error
+        over = self.solid_walls.get(wall)
+        if over is not None:
+            at = self._distances(over.band, over.span, fractions)
+            allowance = CURVED * max(over.band.thickness)
+            return sampled_flow(self.fields, over.chords(self.fields, at), len(at), allowance, closing)
         strip = self._strip(wall)
         at = np.asarray(fractions, dtype=float) * strip.band.length
-        closing = np.zeros(3) if wall in self.open_walls else self.closing_error
         return flow_samples(self.fields, strip, at, closing)
 
     def face_stress(self, wall: str, fractions: ArrayLike, actions: Actions) -> FaceStress:
@@ -105,6 +114,11 @@ class Solution:
         ValueError
             The wall has no strip.
         """
+        over = self.solid_walls.get(wall)
+        if over is not None:
+            at = self._distances(over.band, over.span, fractions)
+            samples = over.on_faces(self.fields, at)
+            return sampled_faces(self.fields, samples, over.band.direction(at), self.shear_centre, actions)
         strip = self._strip(wall)
         at = np.asarray(fractions, dtype=float) * strip.band.length
         return face_stress(self.fields, strip, at, self.shear_centre, actions)
@@ -130,6 +144,8 @@ class Solution:
     @cached_property
     def closing_error(self) -> Array:
         """Estimated error of the flows of walls in cells for each unit load, (3,)."""
+        if self.solid_walls:
+            return disagreement(self.fields, (w for w in self.solid_walls.values() if w and w.in_cell))
         strips = self.fields.space.mesh.strips
         return closing_error(self.fields, [s for name, s in strips.items() if name not in self.open_walls])
 
@@ -137,6 +153,14 @@ class Solution:
     def shear_centre(self) -> Array:
         """(x_s, y_s) in the file's axes, (2,) [L]."""
         return np.array([self.quantities["shear_centre_x"].known, self.quantities["shear_centre_y"].known])
+
+    @staticmethod
+    def _distances(of: Band, span: tuple[float, float], fractions: ArrayLike) -> Array:
+        """Distances [L] of fractions of a wall, which must lie in its span."""
+        at = np.atleast_1d(np.asarray(fractions, dtype=float)) * of.length
+        if (at < span[0] - 1e-9 * of.length).any() or (at > span[1] + 1e-9 * of.length).any():
+            raise ValueError(f"place outside the strip of wall {of.name}: {span[0]} to {span[1]}")
+        return np.asarray(at)
 
     def _strip(self, wall: str) -> StripMesh:
         strip = self.fields.space.mesh.strips.get(wall)
@@ -175,16 +199,30 @@ def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progre
 
 
 def solve_solid(
-    solid: Solid, accuracy: float = DEFAULT_ACCURACY, progress: Progress | None = None
+    solid: Solid,
+    accuracy: float = DEFAULT_ACCURACY,
+    progress: Progress | None = None,
+    walls: Section | None = None,
 ) -> Solution:
     """Solve a solid given by its outline; parameters and errors as in ``solve``.
 
-    Notes
-    -----
-    Without walls there are no strips: no flows at probes; ``Solution.strips`` is empty.
+    Parameters
+    ----------
+    walls : Section, optional
+        Walls drawn over the solid, where flows and stresses can be asked for. Their strips are where the
+        solid is as thick as they are; without walls ``Solution.strips`` is empty.
     """
     _check_accuracy(accuracy)
-    return _solution(outline_of_solid(solid), accuracy, progress)
+    made = _solution(outline_of_solid(solid), accuracy, progress)
+    if walls is None:
+        return made
+    over = solid_walls(made.outline, [band(w, walls) for w in walls.walls])
+    strips = {
+        name: None if w is None else (w.span[0] / w.band.length, w.span[1] / w.band.length)
+        for name, w in over.items()
+    }
+    not_in_cells = frozenset(name for name, w in over.items() if w is not None and not w.in_cell)
+    return replace(made, strips=strips, open_walls=not_in_cells, solid_walls=over)
 
 
 def _check_accuracy(accuracy: float) -> None:

@@ -182,12 +182,15 @@ def outline_fault(path: str, section: SectionFile, fault: fe_models.OutlineError
 
     known = {wall.name: wall for wall in section.walls}
     named = [name for name in fault.walls if name in known]
-    key = {"radius": "corners", "limit": "walls"}.get(fault.kind) or (
+    key = {"radius": "corners", "limit": "walls", "agreement": "outline"}.get(fault.kind) or (
         known[named[0]].key if named else "walls"
     )
     shown = ", ".join(f'"{name}"' for name in named[:4]) + (" and more" if len(named) > 4 else "")
     found = fault.found if fault.kind == "limit" or not shown else f"{fault.found} (walls {shown})"
-    return Fault(path, key, found, fault.allowed)
+    remedy = ""
+    if fault.kind == "agreement":
+        remedy = "mend the one that is wrong, or mark the walls and booms that idealise with seen_by"
+    return Fault(path, key, found, fault.allowed, remedy)
 
 
 def result_status(result: Result) -> ExitStatus:

@@ -21,7 +21,9 @@ from crosscheck.section_file.model import SectionFile
 OWN_THICKNESS = "own thickness, free ends and joints, published"
 BENDS = "bends and fillets, by theory"
 SOLID = "FE in place of theory, corners sharp"
+GIVEN = "FE of the given outline in place of theory"
 ROUNDING = "FE as drawn, corners rounded"
+UNDRAWN = "includes what sharp corners would show: the outline is given, not made from the walls"
 MERGED = "includes what the level corrected would show: {reason}"
 NU = "with the material's nu FE would change by {change:+.2g}"
 
@@ -40,6 +42,8 @@ class Stations:
         FE with sharp corners; None where the section has no rounding or its sharp solid cannot be built.
     drawn : mapping of name to fe_models.Interval
         FE as drawn.
+    given : bool
+        True where FE takes an outline that the walls did not make.
     """
 
     midline: Mapping[str, beam_theory.Quantity]
@@ -47,6 +51,7 @@ class Stations:
     unrounded: Mapping[str, beam_theory.Quantity] | None
     sharp: Mapping[str, fe_models.Interval] | None
     drawn: Mapping[str, fe_models.Interval]
+    given: bool = False
 
 
 def stations(
@@ -56,18 +61,21 @@ def stations(
     accuracy: float,
 ) -> Stations:
     """Solve what the breakdown needs beside the levels and the FE solution at hand."""
-    theory, solid = models.theory_section(section), models.fe_section(section)
+    if not solved:
+        return Stations({}, {}, None, None, fe.quantities, given=True)
+    theory, given = models.theory_section(section), section.outline is not None
     midline = solved["midline"].quantities
     corrected = solved["corrected"].quantities if "corrected" in solved else {}
     unrounded, sharp = None, None
     if theory.corners and corrected:
         unrounded = beam_theory.solve(replace(theory, corners=()), level="corrected").quantities
-    if solid.corners:
+    solid = None if given else models.fe_section(section)
+    if solid is not None and solid.corners:
         try:
             sharp = fe_models.solve(replace(solid, corners={}), accuracy).quantities
         except fe_models.OutlineError:
             sharp = None
-    return Stations(midline, corrected, unrounded, sharp, fe.quantities)
+    return Stations(midline, corrected, unrounded, sharp, fe.quantities, given)
 
 
 def causes(at: Stations, rows: Sequence[QuantityResult]) -> tuple[CauseStep, ...]:
@@ -100,9 +108,9 @@ def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
         beside = NU.format(change=(end.with_nu - end.value) / scale)
     sharp = None if at.sharp is None else at.sharp.get(row.name)
     if sharp is None or sharp.value is None:
-        yield CauseStep(
-            row.name, None, SOLID, (value - end.value) / scale, end.half_width / scale, _both(note, beside)
-        )
+        step, merged = (GIVEN, UNDRAWN) if at.given else (SOLID, None)
+        change, doubt = (value - end.value) / scale, end.half_width / scale
+        yield CauseStep(row.name, None, step, change, doubt, _both(note, merged, beside))
         return
     yield CauseStep(row.name, None, SOLID, (value - sharp.value) / scale, sharp.half_width / scale, note)
     doubt = (sharp.half_width + end.half_width) / scale

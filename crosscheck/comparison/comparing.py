@@ -13,6 +13,7 @@ from crosscheck.comparison.causes import causes, stations
 from crosscheck.comparison.drawing import drawing_of
 from crosscheck.comparison.levels import Levels, solve_levels
 from crosscheck.comparison.load_comparison import compare_loads
+from crosscheck.comparison.outline_agreement import outline_agreement
 from crosscheck.comparison.properties import indicator_rows, stiffness_rows
 from crosscheck.comparison.provenance import provenance
 from crosscheck.comparison.result import CheckResult, FeValue, MeshResult, Result
@@ -73,12 +74,16 @@ def compare(
     tell("classical theory")
     levels = solve_levels(section)
     after_theory = clock()
+    agreement = outline_agreement(section, levels)
     tell("finite elements")
-    fe = fe_models.solve(models.fe_section(section), accuracy, lambda text: tell(f"finite elements, {text}"))
+    fe = models.fe_solution(section, accuracy, lambda text: tell(f"finite elements, {text}"))
     after_fe = clock()
     tell("comparison")
     seconds = {"theory": after_theory - start, "fe": after_fe - after_theory}
-    return join(section, levels, fe, accuracy, seconds=seconds, pictures=pictures, working=working)
+    notes = () if agreement is None else (agreement,)
+    return join(
+        section, levels, fe, accuracy, seconds=seconds, pictures=pictures, working=working, notes=notes
+    )
 
 
 def join(
@@ -90,6 +95,7 @@ def join(
     seconds: Mapping[str, float] | None = None,
     pictures: bool = False,
     working: bool = False,
+    notes: Sequence[str] = (),
 ) -> Result:
     """Compare solutions of one section; see :func:`compare`."""
     start = time.perf_counter()
@@ -98,7 +104,9 @@ def join(
     rows = [*section_rows(section, levels, fe, values), loads.torsion_modulus, *loads.rows]
     theory = levels.judged_solution
     drawing = drawing_of(section, theory, fe, loads.cases, loads.judged_flows) if pictures else None
-    sheets = hand_sheets(section, levels, loads.cases) if working else None
+    sheets = None
+    if working:
+        sheets = hand_sheets(section, levels, loads.cases) if levels.solutions else {}
     stages = {**(seconds or {}), "compare": time.perf_counter() - start}
     return Result(
         title=section.title,
@@ -117,7 +125,7 @@ def join(
         accuracy=accuracy,
         accuracy_met=bool(fe.met),
         accuracy_note=fe.accuracy_note,
-        outline_notes=tuple(fe.outline.notes),
+        outline_notes=(*notes, *fe.outline.notes),
         provenance=provenance(str(section.path), section.sha256, stages, section.tables),
         drawing=drawing,
         stresses=loads.stresses,
@@ -129,6 +137,7 @@ def join(
         indicators=indicator_rows(section, levels, values),
         theory_notes={level: tuple(solution.notes) for level, solution in levels.solutions.items()},
         section_notes=section.notes,
+        outline_alone=not levels.solutions,
     )
 
 

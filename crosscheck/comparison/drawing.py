@@ -26,7 +26,7 @@ SAMPLES = 41
 
 def drawing_of(
     section: SectionFile,
-    theory: beam_theory.Solution,
+    theory: beam_theory.Solution | None,
     fe: fe_models.Solution,
     cases: Sequence[LoadCase],
     flows: Sequence[TheoryFlow],
@@ -38,7 +38,7 @@ def drawing_of(
     section : SectionFile
         Points, walls and their names.
     theory, fe
-        Both solutions.
+        Both solutions; theory None without walls.
     cases, flows : sequence
         Loads and theory's flow of each, in one order.
 
@@ -47,7 +47,8 @@ def drawing_of(
     Drawing
     """
     at = np.linspace(0.0, 1.0, SAMPLES)
-    turns = {name: sign for cell in reversed(theory.cells) for name, sign in cell}
+    cells = () if theory is None else theory.cells
+    turns = {name: sign for cell in reversed(cells) for name, sign in cell}
     panels = panels_of(section)
     shapes = [_shape(panel, at, turns, fe) for panel in panels.values()]
     hand = [
@@ -70,7 +71,7 @@ def drawing_of(
             for case, entry in zip(cases, flows, strict=True)
             if entry.flow is not None
         },
-        warping=_warping(theory, seen, at),
+        warping={} if theory is None else _warping(theory, seen, at),
         fe_warping={} if mesh is None else {shape.name: warping_on(mesh, shape) for shape in shapes},
         mesh=mesh,
         hand_walls=tuple(hand),

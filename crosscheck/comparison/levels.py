@@ -12,6 +12,7 @@ from crosscheck.comparison.result import LEVELS
 from crosscheck.section_file.model import SectionFile
 
 NOT_HERE = "not available here: "
+OUTLINE_ALONE = "no hand method: the section is given by its outline alone"
 
 
 @dataclass(frozen=True)
@@ -37,7 +38,7 @@ class Levels:
     Attributes
     ----------
     judged : str
-        Level that verdicts judge; it always has a solution.
+        Level that verdicts judge; it has a solution where the section has walls.
     solutions : mapping of level to beam_theory.Solution
         Those that could be solved.
     refused : mapping of level to str
@@ -49,14 +50,15 @@ class Levels:
     refused: Mapping[str, str] = field(default_factory=dict)
 
     @property
-    def judged_solution(self) -> beam_theory.Solution:
-        """Solution of the judged level."""
-        return self.solutions[self.judged]
+    def judged_solution(self) -> beam_theory.Solution | None:
+        """Solution of the judged level; None without walls."""
+        return self.solutions.get(self.judged)
 
     @property
     def judged_values(self) -> dict[str, float | None]:
-        """Every quantity of the judged level."""
-        return {name: quantity.value for name, quantity in self.judged_solution.quantities.items()}
+        """Every quantity of the judged level; none without walls."""
+        solution = self.judged_solution
+        return {} if solution is None else {name: q.value for name, q in solution.quantities.items()}
 
     def values(self, name: str) -> dict[str, float | None]:
         """A quantity at every level, in its own unit."""
@@ -109,7 +111,7 @@ class Levels:
 def reason_at(level: str, reason: str | None) -> str:
     """A reason as results give it: of a level beyond the midline it says that the level ends here."""
     text = reason or "theory does not define it"
-    return text if level == "midline" or text.startswith(NOT_HERE) else f"{NOT_HERE}{text}"
+    return text if level == "midline" or text.startswith((NOT_HERE, OUTLINE_ALONE)) else f"{NOT_HERE}{text}"
 
 
 def solve_levels(section: SectionFile) -> Levels:
@@ -119,8 +121,10 @@ def solve_levels(section: SectionFile) -> Levels:
     ------
     beam_theory.TheoryError
         Where the midline level or the judged one cannot take the section; others are left out with the
-        reason.
+        reason. A section without walls has no level at all.
     """
+    if not section.walls:
+        return Levels(section.judged, {}, dict.fromkeys(LEVELS, OUTLINE_ALONE))
     model = models.theory_section(section)
     solutions: dict[str, beam_theory.Solution] = {}
     refused: dict[str, str] = {}

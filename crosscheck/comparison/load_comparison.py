@@ -82,11 +82,11 @@ def compare_loads(
         name: unit_faces(section, fe, panel, probes[name], bimoment=bimoment)
         for name, panel in panels.items()
     }
-    midline = levels.solutions["midline"]
+    midline = levels.solutions.get("midline")
     open_walls = {
         name
         for name, panel in panels.items()
-        if panel.theory is not None and not midline.in_cell(panel.theory.wall.name)
+        if midline is not None and panel.theory is not None and not midline.in_cell(panel.theory.wall.name)
     }
     extent, judged = float(fe.outline.extent), levels.judged
     units = (section.length_unit, section.force_unit)
@@ -98,7 +98,7 @@ def compare_loads(
     peaks: list[TheoryPeak] = []
     for case, flow in zip(cases, theory, strict=True):
         torque = fe_torque(case, values)
-        if case.has_shear:
+        if case.has_shear and panels:
             found = load_flows(case, flow, judged, unit_flows, strips, torque, panels, probes, extent, units)
             flows.append(found)
             rows += flow_rows(section, found)
@@ -111,7 +111,7 @@ def compare_loads(
         if not case.unit:
             peaks += _stress_peaks(case, by_level[judged], stress, panels, strips)
     fibres = tuple(_boom_fibres(section, judged_stress, values, [c for c in cases if not c.unit]))
-    for case in cases:
+    for case in cases if panels else ():
         torque = fe_torque(case, values)
         rows += stress_rows(
             section, stresses[case.name], levels, open_walls, stresses["unit T"], torque, extent, fibres
@@ -142,8 +142,7 @@ def compare_loads(
 
 def load_cases(section: SectionFile, levels: Levels) -> tuple[LoadCase, ...]:
     """The unit loads, and the file's loads with their lines of action in coordinates."""
-    midline = levels.solutions["midline"].quantities
-    x, y = midline["shear_centre_x"].value, midline["shear_centre_y"].value
+    x, y = (levels.values(f"shear_centre_{axis}")["midline"] for axis in "xy")
     centre = None if x is None or y is None else (x, y)
     return (*UNIT_CASES, *(models.load_case(load, centre) for load in section.loads))
 
@@ -242,8 +241,8 @@ def _boom_fibres(
 def _fillet_peaks(
     section: SectionFile, fe: fe_models.Solution, values: Mapping[str, FeValue], cases: Sequence[LoadCase]
 ) -> list[FilletPeak]:
-    """FE's largest shear stress on filleted and curved boundaries of joints; none without roundings."""
-    if not section.corners:
+    """FE's largest shear stress on filleted and curved boundaries of joints and given outlines."""
+    if not section.corners and section.outline is None:
         return []
     made = []
     for case in cases:

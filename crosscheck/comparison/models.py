@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
+from collections.abc import Callable
 
 import numpy as np
 
@@ -13,15 +14,13 @@ from crosscheck.comparison.midline import Midline
 from crosscheck.section_file.model import (
     EVERY_BEND,
     MIDLINE_SHEAR_CENTRE,
+    NU_WITHOUT_MATERIAL,
     BoomSpec,
     CornerSpec,
     LoadSpec,
     Material,
     SectionFile,
 )
-
-# Poisson's ratio where the file names no material.
-NU_WITHOUT_MATERIAL = 0.3
 
 
 def base_material(section: SectionFile) -> Material | None:
@@ -115,6 +114,16 @@ def fe_section(section: SectionFile) -> fe_models.Section:
         if boom.seen_by != "theory"
     )
     return fe_models.Section(_used_points(section, walls), walls, corners, booms, _shared_nu(section, walls))
+
+
+def fe_solution(
+    section: SectionFile, accuracy: float, progress: Callable[[str], None] | None = None
+) -> fe_models.Solution:
+    """The finite-element side solved: of the outline where the file gives one, else of the walls' solid."""
+    if section.outline is None:
+        return fe_models.solve(fe_section(section), accuracy, progress)
+    walls = fe_section(section) if section.walls else None
+    return fe_models.solve_solid(section.outline, accuracy, progress, walls)
 
 
 def _shared_nu(section: SectionFile, walls: tuple[fe_models.Wall, ...]) -> float | None:

@@ -11,7 +11,7 @@ from crosscheck.comparison import models
 from crosscheck.comparison.levels import Levels, reason_at
 from crosscheck.comparison.quantities import unit_text
 from crosscheck.comparison.result import LEVELS, FeValue, PropertyRow
-from crosscheck.section_file.model import SectionFile
+from crosscheck.section_file.model import NU_WITHOUT_MATERIAL, SectionFile
 
 NO_COUNTERPART = FeValue(None, None, None, "estimate", reason="FE has no counterpart here")
 
@@ -110,7 +110,7 @@ def indicator_rows(
     2 (1 + nu) with nu = 0.3.
     """
     E, G = models.young_modulus(section), models.shear_modulus(section)
-    ratio = 2.0 * (1.0 + models.NU_WITHOUT_MATERIAL) if E is None or G is None else E / G
+    ratio = 2.0 * (1.0 + NU_WITHOUT_MATERIAL) if E is None or G is None else E / G
     records = {level: beam_theory.stiffness(s, ratio, 1.0) for level, s in levels.solutions.items()}
     values, reasons = _by_level(levels, records, "characteristic_length")
     unit = section.length_unit

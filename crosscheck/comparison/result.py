@@ -289,7 +289,8 @@ class Result:
     """Everything one comparison found; ``drawing`` only where pictures were asked for.
 
     ``working``: the hand sheet of each load as Markdown, where asked for. ``theory_notes``: remarks of each
-    level of theory; ``section_notes``: those made on reading the file.
+    level of theory; ``section_notes``: those made on reading the file. ``outline_alone``: the
+    section has no walls, so theory says nothing and nothing is judged.
     """
 
     title: str
@@ -320,6 +321,7 @@ class Result:
     indicators: tuple[PropertyRow, ...] = ()
     theory_notes: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
     section_notes: tuple[str, ...] = ()
+    outline_alone: bool = False
 
     def require_drawing(self) -> Drawing:
         """The drawing; ValueError where the comparison was made without."""

@@ -106,6 +106,9 @@ def _principal(levels: Levels, values: Mapping[str, FeValue]) -> tuple[complex |
 
 def _fibres(section: SectionFile, fe: fe_models.Solution) -> Fibres:
     """Places (n, 2) [L] of the fibres that can be extreme, and e of each (n,)."""
+    if section.outline is not None:
+        corners = np.vstack(fe.outline.loops)
+        return corners, np.full(len(corners), section.outline.e)
     stressed = {
         wall.name: models.modulus_ratios(section, wall.material)[0]
         for wall in section.walls
@@ -158,6 +161,16 @@ def _on_faces(band: Band, corners: Array) -> NDArray[np.bool_]:
 
 def _curve_error(section: SectionFile, fe: fe_models.Solution) -> float:
     """What the polygon of the outline may miss of curved parts outside strips [L]; 0 without any."""
+    if section.outline is not None:
+        # curved edges are drawn in chords between corners on them
+        turns = [
+            arc.arc.radius * ARC_STEP**2 / 8.0
+            for cluster in fe.outline.parts.clusters
+            for ring in cluster.rings
+            for arc in ring
+            if arc.arc is not None
+        ]
+        return max(turns, default=0.0)
     missed = [0.0]
     thickest = max(max(wall.thickness) for wall in section.walls)
     for corner in section.corners:

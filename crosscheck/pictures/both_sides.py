@@ -30,8 +30,8 @@ from crosscheck.reports.wording import difference_text, number_text
 HATCHES = ("/////", "\\\\\\\\\\", "-----", "|||||")
 
 
-def both_sides_picture(result: Result, width_mm: int = 160) -> Figure:
-    """Theory's model over FE's.
+def both_sides_picture(result: Result, width_mm: int = 160) -> Figure | None:
+    """Theory's model over FE's; None without walls.
 
     Parameters
     ----------
@@ -42,9 +42,11 @@ def both_sides_picture(result: Result, width_mm: int = 160) -> Figure:
 
     Returns
     -------
-    Figure
+    Figure or None
     """
     drawing = result.require_drawing()
+    if not drawing.walls:
+        return None
     area = result.quantity("area")
     unit = plain_unit(unit_text(2, 0, result.length_unit, result.force_unit))
     hand, fe = number_text(area.judged_theory), number_text(area.fe.value)

@@ -33,9 +33,11 @@ def flow_picture(result: Result, load: str, width_mm: int = 160) -> Figure | Non
     """
     drawing = result.require_drawing()
     flows = [flow for flow in result.flows if flow.load == load]
+    if not flows:
+        return None
     peak = result.quantity("peak_flow", load)
     theory = drawing.flows.get(load, {})
-    if not flows or (peak.verdict is None and not theory) or peak.reason == NO_FLOW_REASON:
+    if (peak.verdict is None and not theory) or peak.reason == NO_FLOW_REASON:
         return None
     unit = plain_unit(flows[0].unit)
     marks = {flow.wall: _marks(flow) for flow in flows}

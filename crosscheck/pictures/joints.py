@@ -27,6 +27,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
+from crosscheck.pictures.walls import centre_of
 
 Place = tuple[float, float]
 SHADES = "cividis"
@@ -47,18 +48,19 @@ def joints_picture(result: Result, width_mm: int = 160) -> Figure | None:
     Figure or None
     """
     mesh = result.require_drawing().mesh
-    places = named_joints(result.require_drawing(), 4)
+    places = named_joints(result.require_drawing(), 4) or [whole_section(result.require_drawing())]
     torsion = result.quantity("torsion_constant").fe.value
-    if mesh is None or not places or not torsion:
+    if mesh is None or not torsion:
         return None
     stress = stress_at_nodes(mesh) / torsion
     unit = plain_unit(unit_text(-3, 0, result.length_unit, result.force_unit))
+    where = " at joints" if result.require_drawing().walls else ""
     columns = min(len(places), 4 if width_mm >= WIDE_PAPER else 2)
     rows = -(-len(places) // columns)
-    title_lines = title_in_lines(f"Mesh and shear stress of a unit torque at joints [{unit}]", width_mm)
+    title_lines = title_in_lines(f"Mesh and shear stress of a unit torque{where} [{unit}]", width_mm)
     caption_lines = caption_in_lines(
         "Shading is cut at the largest stress a little way from the corners: a sharp re-entrant corner has "
-        "no peak stress, and none is reported. Under each joint: its point and the width of the window.",
+        "no peak stress, and none is reported. Under each window: what it shows and its width.",
         width_mm,
     )
     above, below = 3.0 + 4.2 * len(title_lines), 5.0 + 3.2 * len(caption_lines)
@@ -91,6 +93,11 @@ def joints_picture(result: Result, width_mm: int = 160) -> Figure | None:
         write_title(figure, title_lines)
         write_caption(figure, caption_lines)
     return figure
+
+
+def whole_section(drawing: Drawing) -> tuple[str, Place, float]:
+    """One window over all of a section without walls."""
+    return "whole section", centre_of(drawing), 0.53 * drawing.extent
 
 
 def named_joints(drawing: Drawing, most: int) -> list[tuple[str, Place, float]]:

@@ -46,8 +46,9 @@ ARROW = 0.13
 CIRCLE = 0.07
 SIGNS = (
     "Seen: the face whose outward normal points at the viewer; V and T are resultants of the stress on it, "
-    "T > 0 anticlockwise. Arrowheads: each wall's own direction, q > 0 along it."
+    "T > 0 anticlockwise."
 )
+DIRECTIONS = "Arrowheads: each wall's own direction, q > 0 along it."
 
 
 def section_picture(result: Result, width_mm: int = 160) -> Figure:
@@ -72,7 +73,8 @@ def section_picture(result: Result, width_mm: int = 160) -> Figure:
     groups += [reach for load in drawing.loads if (reach := _reach_of(load, drawing.extent)) is not None]
     gap = 0.16 * drawing.extent if width_mm >= WIDE_PAPER else 0.22 * drawing.extent
     frame = frame_of(groups).grown(gap)
-    caption = f"{SIGNS} {_offset_text(result, hand, fe)}".strip()
+    directions = DIRECTIONS if drawing.walls else ""
+    caption = " ".join(filter(None, (SIGNS, directions, _offset_text(result, hand, fe))))
     figure, axes = scale_drawing(width_mm, frame, one_line(result.title, 200), caption, unit)
     with mpl.rc_context(STYLE):
         draw_solid(axes, drawing.loops)

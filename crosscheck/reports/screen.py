@@ -15,6 +15,7 @@ from crosscheck.comparison.result import FeValue, QuantityResult, Result, Verdic
 from crosscheck.faults import one_line
 from crosscheck.reports.screen_blocks import (
     cause_lines,
+    curved_boundary_lines,
     governing_lines,
     level_lines,
     levels_block,
@@ -23,6 +24,7 @@ from crosscheck.reports.screen_blocks import (
 )
 from crosscheck.reports.tables import ResultTable
 from crosscheck.reports.wording import (
+    FE_ASSUMPTIONS,
     FEW_LOADS,
     SAFETY,
     SHARED_ASSUMPTIONS,
@@ -86,6 +88,11 @@ def first_screen(
     shown = judged[:ROWS_SHOWN] + [row for row in judged[ROWS_SHOWN:] if row.verdict != "within"]
     folded = [row for row in judged[ROWS_SHOWN:] if row.verdict == "within"]
     parts: list[RenderableType] = [_title(result, width), _sentence(result), Text()]
+    if result.outline_alone:
+        parts.append(_fe_table(result, unicode))
+        parts.append(Text())
+        parts += [Text(line, style=style) for line, style in _notes(result, [], unicode, pictures)]
+        return Group(*parts, *(table_block(table, width) for table in tables))
     if width >= WIDE:
         parts.append(_table(shown, result, wide=True, unicode=unicode))
     else:
@@ -200,6 +207,19 @@ def _table(
     return table
 
 
+def _fe_table(result: Result, unicode: bool) -> Table:
+    """FE's values alone, for a section without walls."""
+    table = Table(box=None, padding=(0, 2, 0, 0), header_style="dim", pad_edge=False)
+    table.add_column("quantity")
+    table.add_column("FE, error", no_wrap=True)
+    table.add_column("unit", no_wrap=True)
+    for row in result.quantities:
+        if row.fe.value is not None:
+            unit = "" if row.unit == "rad" else row.unit
+            table.add_row(Text(one_line(name_of(row))), Text(_fe_text(row, unicode)), Text(unit))
+    return table
+
+
 def _value_text(row: QuantityResult, value: float | None, digits: int = 5) -> str:
     """A value with five significant digits, an angle in degrees."""
     if value is not None and row.unit == "rad":
@@ -274,8 +294,10 @@ def _notes(
     yield from _factor_notes(rows)
     yield from ((line, "") for line in cause_lines(result))
     yield from _wall_note(result)
-    yield from ((line, "dim") for line in level_lines(result))
+    if not result.outline_alone:
+        yield from ((line, "dim") for line in level_lines(result))
     yield from ((line, "") for line in governing_lines(result))
+    yield from ((line, "") for line in curved_boundary_lines(result))
     loads = {row.load for row in result.quantities if row.name == "von_mises_stress"}
     if len(loads) > FEW_LOADS:
         yield f"{len(loads)} loads: each quantity is shown for its worst load; all are in the result.", ""
@@ -305,7 +327,8 @@ def _notes(
     if any(row.judged_difference is not None and has_own_normaliser(row) for row in rows):
         yield STARRED, "dim"
     yield f"FE error (half an interval): {mark} bound, ~ estimate, none: exact.", "dim"
-    yield criteria_note(result), "dim"
+    if not result.outline_alone:
+        yield criteria_note(result), "dim"
     yield (
         f"Checks: {passed} of {len(result.checks)} passed. FE: order {result.mesh.order}, "
         f"{result.mesh.unknowns:,} unknowns, accuracy {one_line(result.accuracy_note, 200)}. "
@@ -316,7 +339,8 @@ def _notes(
     if restrained is not None:
         yield restrained, "dim"
     yield (f"Pictures and result: {pictures}" if pictures else "Pictures: add --out FOLDER."), ""
-    yield f"{SHARED_ASSUMPTIONS} {SAFETY}", "dim"
+    shared = FE_ASSUMPTIONS if result.outline_alone else SHARED_ASSUMPTIONS
+    yield f"{shared} {SAFETY}", "dim"
 
 
 def _factor_notes(rows: Sequence[QuantityResult]) -> Iterator[tuple[str, str]]:

@@ -10,6 +10,7 @@ from rich.table import Table
 from rich.text import Text
 
 from crosscheck.comparison.load_results import WallEnvelope
+from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import LEVELS, QuantityResult, Result
 from crosscheck.faults import one_line
 from crosscheck.reports.tables import Cell, ResultTable
@@ -154,11 +155,27 @@ def restrained_line(result: Result) -> str | None:
     row = next((row for row in result.indicators if row.name == "characteristic_length"), None)
     if row is None or not row.fe.value:
         return None
+    lacking = "FE lacks" if result.outline_alone else "neither side has"
     return (
-        f"Restrained warping, which neither side has, matters over about {number_text(row.fe.value, 3)} "
+        f"Restrained warping, which {lacking}, matters over about {number_text(row.fe.value, 3)} "
         f"{row.unit} "
         "(sqrt(E I_w/(G J))) from where it is held."
     )
+
+
+def curved_boundary_lines(result: Result) -> Iterator[str]:
+    """Largest shear stress on curved boundaries of a section without walls, load by load."""
+    told: set[str] = set(UNIT_LOADS)
+    for peak in result.fillet_peaks if result.outline_alone else ():
+        if peak.load not in told:
+            told.add(peak.load)
+            least = 1e-9 * max(abs(peak.x), abs(peak.y))
+            x, y = (number_text(v if abs(v) > least else 0.0) for v in (peak.x, peak.y))
+            yield one_line(
+                f"Largest shear stress on a curved boundary, {peak.load}: {number_text(peak.value)} "
+                f"~{number_text(peak.error, 1)} {peak.unit} at ({x}, {y})",
+                300,
+            )
 
 
 def table_block(table: ResultTable, width: int) -> RenderableType:

@@ -13,10 +13,12 @@ SAFETY = (
     "Verification and model comparison: not test evidence, not approval. The applicable code and a licensed "
     "engineer decide."
 )
-SHARED_ASSUMPTIONS = (
-    "Both sides assume: prismatic, linear elastic, Saint-Venant, undistorted cross-section; no buckling, "
+ASSUMED = (
+    "prismatic, linear elastic, Saint-Venant, undistorted cross-section; no buckling, "
     "shear lag or restrained warping."
 )
+SHARED_ASSUMPTIONS = f"Both sides assume: {ASSUMED}"
+FE_ASSUMPTIONS = f"FE assumes: {ASSUMED}"
 STARRED = (
     "* per cent of something larger than the FE value: flows, of FE's peak for the load; Ixy, of "
     "sqrt(Ixx Iyy); I_w, of J D^2 where warping hardly matters; twist and surface shear, of what 5 % of "
@@ -183,6 +185,8 @@ def verdict_sentence(result: Result) -> str:
         Such as ``Hand methods hold for 7 of 8 quantities; not for the torsion constant: 2.1 % high,
         unconservative for twist.``
     """
+    if result.outline_alone:
+        return "No hand method: the section is given by its outline alone. FE's values:"
     rows = one_row_a_family(worst_first(result.quantities))
     judged = [row for row in rows if row.verdict is not None]
     held = [row for row in judged if row.verdict == "within"]

@@ -69,6 +69,10 @@ def well_formed(document: Mapping[str, Any], faults: FaultList) -> dict[str, Any
     """
     kept = _within_limits(document, faults)
     refuse_unbuilt(kept, faults)
+    if "outline" not in document:
+        for key in schema.WALLED:
+            if key not in document:
+                faults.add((key,), shown(None), _ALLOWED_AT[key])
     try:
         schema.SectionDocument.model_validate(kept)
     except ValidationError as error:

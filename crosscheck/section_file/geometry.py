@@ -54,7 +54,14 @@ class GeometryCheck:
         self.tolerance = max(1e-9 * self.extent, min(1e-4 * self.thinnest, 1e-6 * self.extent))
         self.joined: list[tuple[str, str]] = []  # points that contacts join, so that one cause is said once
 
-    def run(self, cuts: Sequence[CutSpec], complete: bool, load_points: Iterable[str]) -> list[str]:
+    def run(
+        self,
+        cuts: Sequence[CutSpec],
+        complete: bool,
+        load_points: Iterable[str],
+        *,
+        outlined: bool = False,
+    ) -> list[str]:
         """Run every check.
 
         Parameters
@@ -62,6 +69,7 @@ class GeometryCheck:
         cuts : the file's cuts
         complete : False when walls are missing for a fault, so that parts cannot be told
         load_points : points that loads use
+        outlined : True where FE sees an outline, whatever walls there are
 
         Returns
         -------
@@ -80,7 +88,8 @@ class GeometryCheck:
             self._check_contacts(seen, same, skip)
         if complete:
             for view, seen in views.items():
-                self._check_parts(seen, view)
+                if not outlined or (self.walls and view != "fe"):
+                    self._check_parts(seen, view)
             self._check_cuts(cuts)
         idle = [name for name in self.points if name not in self.used and name not in loads]
         return [f"points that no wall and no load uses: {_listed(idle)}"] if idle else []

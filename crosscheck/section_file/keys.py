@@ -17,7 +17,6 @@ NOT_BUILT: dict[str, str] = {
     "tolerances": "leave the table out",  # reserved
     "allowables": "leave the table out",  # reserved
     "document": "leave the table out",  # reserved
-    "outline": "give the section by its walls",  # reserved
 }
 
 # Limits of one file; a fault names the limit that is passed.

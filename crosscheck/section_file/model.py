@@ -14,6 +14,8 @@ Place = tuple[float, float]
 
 MIDLINE_SHEAR_CENTRE = "midline shear centre"
 EVERY_BEND = "every_bend"
+# Poisson's ratio where the file names no material.
+NU_WITHOUT_MATERIAL = 0.3
 
 
 @dataclass(frozen=True)
@@ -194,7 +196,7 @@ class SectionFile:
     document : front matter of the dossier: texts by key, and "changes", a list of tables of texts
     outline : the solid that FE sees instead of the walls; None where it sees the walls
     notes : remarks that are no faults, one sentence each
-    tables : digest of each table beside the file, by the name the file gives it
+    tables : digest of each table and drawing beside the file, by the name the file gives it
     """
 
     path: str

@@ -95,21 +95,24 @@ def read_outline(
     SectionFaults
         All faults of the table; geometry is judged where its form is without fault.
     """
-    faults = FaultList(name)
-    if numbers is None:
-        numbers = Numbers(faults, {})
-    else:
-        faults = numbers.faults
+    numbers = numbers or Numbers(FaultList(name), {})
+    read = noted_outline(table, folder, length_unit, numbers, nu)
+    numbers.faults.raise_any({"outline": dict(table)})
+    assert read is not None
+    return read
+
+
+def noted_outline(
+    table: Mapping[str, Any], folder: Path, length_unit: str, numbers: Numbers, nu: float | None
+) -> ReadOutline | None:
+    """As ``read_outline``, with faults only noted in those of ``numbers``: None where there is one."""
+    faults = numbers.faults
     for key in table:
         if key not in KEYS:
             faults.add(("outline", key), quoted(str(key)), "a known key of [outline]", near=(str(key), KEYS))
     if "file" in table:
-        read = _from_file(table, folder, length_unit, numbers, nu)
-    else:
-        read = _from_places(table, numbers, nu)
-    faults.raise_any({"outline": dict(table)})
-    assert read is not None
-    return read
+        return _from_file(table, folder, length_unit, numbers, nu)
+    return _from_places(table, numbers, nu)
 
 
 def _judged(

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Iterable, Mapping
-from pathlib import PurePath
+from pathlib import Path, PurePath
 from typing import Any
 
 from crosscheck.faults import Fault, FaultList, SectionFaults, one_line, quoted
@@ -97,6 +97,7 @@ def section_from(
     from crosscheck.section_file.numbers import Numbers
     from crosscheck.section_file.points import read_points
     from crosscheck.section_file.tables import with_tables
+    from crosscheck.section_file.unwalled import section_outline
     from crosscheck.section_file.walls import WallReader
 
     faults = FaultList(source.path)
@@ -112,7 +113,7 @@ def section_from(
     graph = WallGraph(points, *reader.read(document.get("walls", [])))
     written = dict(points)  # as the file has them, before faces are turned into midlines
     notes += midlines_from_faces(graph, reader.faces, reader.tapers, (), faults)
-    complete = reader.complete and "walls" in document
+    complete = reader.complete and ("walls" in document or "outline" in document)
     attachments = AttachmentReader(
         document,
         numbers,
@@ -127,8 +128,18 @@ def section_from(
     corners, stated = attachments.corners(), attachments.stated()
     criteria = attachments.criteria(notes)
     load_points = [load.through_point for load in loads if load.through_point is not None]
-    notes += GeometryCheck(graph.walls, graph.named, points, faults).run(cuts, complete, load_points)
+    notes += GeometryCheck(graph.walls, graph.named, points, faults).run(
+        cuts, complete, load_points, outlined="outline" in document
+    )
+    folder = Path(source.path).parent
+    outline = section_outline(document, folder, units[0], numbers, materials, loads)
     faults.raise_any(given)
+    tables = {table.name: table.sha256 for table in source.tables.values()}
+    if outline is not None:
+        if outline.notes:
+            notes.append(f"{outline.file}: {'; '.join(outline.notes)}")
+        if outline.file is not None and outline.sha256 is not None:
+            tables[outline.file] = outline.sha256
     return SectionFile(
         path=source.path,
         sha256=source.sha256,
@@ -150,7 +161,8 @@ def section_from(
         stated=stated,
         criteria=criteria,
         notes=tuple(notes),
-        tables={table.name: table.sha256 for table in source.tables.values()},
+        tables=tables,
+        outline=None if outline is None else outline.solid,
     )
 
 

@@ -20,6 +20,8 @@ _ONE, _LIST, _TABLE, _TEXT = "\x1fone", "\x1flist", "\x1ftable", "\x1ftext"
 # TOML has no null: a key that may be left out is absent, never None, whatever its type.
 _ABSENT: Any = None
 UNION_TAGS = (_ONE, _LIST, _TABLE, _TEXT)
+# Required where the file gives no outline.
+WALLED = ("points", "walls")
 
 
 def _refuse(allowed: str) -> PydanticCustomError:
@@ -263,8 +265,34 @@ class TablesTable(_Table):
     points: Text = Field(default=_ABSENT, description="more points, one a row")
 
 
+Outline = Annotated[
+    dict[str, Any],
+    WithJsonSchema(
+        {
+            "type": "object",
+            "properties": {
+                "boundary": {"type": ["array", "object"]},
+                "openings": {"type": "array"},
+                "file": {"type": "string"},
+                "drawing_unit": {"type": "string"},
+                "layers": {"type": ["array", "string"]},
+                "gap": {"type": ["number", "string"]},
+                "chord_error": {"type": ["number", "string"]},
+            },
+            "oneOf": [{"required": ["boundary"]}, {"required": ["file"]}],
+            "additionalProperties": False,
+        }
+    ),
+]
+
+
 class SectionDocument(_Table):
-    """A whole section file."""
+    """A whole section file, given by walls, by an outline, or by both."""
+
+    model_config = ConfigDict(
+        extra="forbid",
+        json_schema_extra={"anyOf": [{"required": list(WALLED)}, {"required": ["outline"]}]},
+    )
 
     schema_number: Annotated[Any, PlainValidator(_choice(1)), _choice_schema(1)] = Field(
         default=1, alias="schema"
@@ -277,8 +305,8 @@ class SectionDocument(_Table):
         default_factory=dict, description="numbers or arithmetic on earlier ones"
     )
     materials: dict[Name, MaterialTable] = Field(default_factory=dict)
-    points: dict[Name, Pair] = Field(description="places [L]")
-    walls: list[WallTable] = Field(min_length=1)
+    points: dict[Name, Pair] = Field(default_factory=dict, description="places [L]")
+    walls: list[WallTable] = Field(default_factory=list, min_length=1)
     booms: list[BoomTable] = Field(default_factory=list)
     corners: dict[Name, CornerTable] = Field(default_factory=dict)
     loads: list[LoadTable] = Field(default_factory=list)
@@ -291,4 +319,6 @@ class SectionDocument(_Table):
     tolerances: dict[str, Number] = Field(default_factory=dict, description="for the uncertainty budget")
     allowables: dict[str, Any] = Field(default_factory=dict, description="for margins")
     document: dict[str, Any] = Field(default_factory=dict, description="front matter of the dossier")
-    outline: dict[str, Any] = Field(default_factory=dict, description="a solid instead of walls")
+    outline: Outline = Field(
+        default=_ABSENT, description="the solid that FE meshes: boundary and openings, or a drawing"
+    )

@@ -19,7 +19,6 @@ NOT_BUILT_LINES = [
     (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
     (GOOD + "[allowables]\nshear = 100\n", "allowables"),
     (GOOD + '[document]\nauthor = "x"\n', "document"),
-    (GOOD + "[outline]\nboundary = [[0, 0], [1, 0], [0, 1]]\n", "outline"),
 ]
 
 
