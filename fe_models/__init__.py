@@ -4,6 +4,7 @@ from .checks import Check
 from .edges import Chained, Edge, circle_edges, closed_lines, fitted_edges
 from .errors import FeError, LibraryError, OutlineError, SolveError
 from .faces import Actions, FaceStress, Peak
+from .fields import Fields
 from .intervals import Interval
 from .location import PointStress
 from .mesh_file import rings_of_mesh, write_fields
@@ -23,7 +24,7 @@ from .solution import (
     solve_solid,
 )
 from .step_face import rings_of_step
-from .trial import Trial, strip_trial, trial
+from .trial import Trial, imbalance, strip_trial, trial
 
 __all__ = [
     "ACCURACY_RANGE",
@@ -36,6 +37,7 @@ __all__ = [
     "Edge",
     "FaceStress",
     "FeError",
+    "Fields",
     "FlowSamples",
     "Interval",
     "LibraryError",
@@ -57,6 +59,7 @@ __all__ = [
     "circle_edges",
     "closed_lines",
     "fitted_edges",
+    "imbalance",
     "outline_of_solid",
     "outline_of_walls",
     "rings_of_mesh",

@@ -7,7 +7,7 @@ observed order of convergence is compared with the expected one.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -16,6 +16,7 @@ from numpy.typing import ArrayLike
 from .band import Array, band
 from .boundary import Arc, Piece
 from .contour import loops
+from .element import element, gradients, values
 from .fields import Fields, Moduli, Pair, inertia, solve, solve_pairs
 from .mesh import Bend, Mesh, StripMesh
 from .section import Section, Wall
@@ -151,3 +152,31 @@ def _bends(mesh: Mesh, centre: Array, radius: float) -> list[Bend]:
             arc = Arc(centre, radius, first, first + turn)
             made.append(Bend(a, b, Piece("arc", mesh.vertices[a], mesh.vertices[b], arc=arc), (0.0, 1.0)))
     return made
+
+
+def imbalance(fields: Fields) -> Array:
+    """What the static fields of torsion, unit Vx and unit Vy leave unbalanced, (3,) [-].
+
+    The largest  integral of s . grad v - e f v  of all basis functions v of one order more than the fields',
+    over the largest contribution of one element. It vanishes only for a field in equilibrium point by point,
+    from element to element and on every boundary, holes included.
+    """
+    on, el = fields.space, fields.space.element
+    more, at = el.order + 1, el.points
+    finer = element(more)
+    tested = replace(
+        space(on.mesh, more, fields.inertia.centroid),
+        element=replace(
+            finer, points=at, weights=el.weights, values=values(more, at), gradients=gradients(more, at)
+        ),
+    )
+    found = []
+    for pair, slopes in zip(
+        (fields.torsion, *fields.flexure),
+        (np.zeros(2), fields.inertia.slopes(1.0, 0.0), fields.inertia.slopes(0.0, 1.0)),
+        strict=True,
+    ):
+        load = tested.load(fields.moduli.e[:, None] * (on.points @ slopes))
+        left = np.abs(load - tested.flux_load(pair.static)).max()
+        found.append(float(left) / tested.flux_scale(pair.static))
+    return np.array(found)

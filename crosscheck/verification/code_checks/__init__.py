@@ -9,7 +9,17 @@ from importlib import import_module
 
 from crosscheck.verification.check import CodeCheck
 
-MODULES: tuple[str, ...] = ("manufactured",)
+MODULES: tuple[str, ...] = (
+    "manufactured",
+    "exactness",
+    "corner_rate",
+    "bounds",
+    "equilibrium",
+    "reciprocity",
+    "redundancy",
+    "invariances",
+    "limits",
+)
 
 
 def code_checks() -> tuple[CodeCheck, ...]:

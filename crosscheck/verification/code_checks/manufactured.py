@@ -20,8 +20,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 import fe_models
-from crosscheck.verification.check import CheckOutcome, CodeCheck, Series
+from crosscheck.verification.check import Series
 from crosscheck.verification.code_checks import trial_meshes
+from crosscheck.verification.code_checks.finding import Finding, code_check
 
 GROUP = "manufactured solutions"
 ORDERS = (1, 2, 3, 4)
@@ -184,45 +185,46 @@ def errors(problem: Problem, n: int, order: int) -> tuple[float, float, float]:
 WORDS = ("kinematic field", "static field", "potential")
 
 
-def order_outcome(name: str, order: int) -> CheckOutcome:
+def order_found(name: str, order: int) -> Finding:
     """Observed orders between the two finer of three meshes of a problem."""
     problem = PROBLEMS[name]
     sizes = problem.sizes[0 if order <= 2 else 1]
     found = np.array([errors(problem, n, order) for n in sizes])
     observed = np.log2(found[-2] / found[-1])
     expected = np.array([order, order, order + 1.0])
-    off = float(np.abs(observed - expected).max())
     told = ", ".join(f"{w} {o:.3f}" for w, o in zip(WORDS, observed, strict=True))
     series = {
         word: Series(
             tuple(1.0 / n for n in sizes),
             tuple(float(v) for v in found[:, i]),
-            "element size over the first one's number",
+            "element size",
             "error",
             float(observed[i]),
             float(expected[i]),
         )
         for i, word in enumerate(WORDS)
     }
-    return CheckOutcome(
-        f"order of convergence, {name}, elements of order {order}",
-        GROUP,
-        "fe",
-        bool(off <= ALLOWED),
-        off,
+    return Finding(
+        float(np.abs(observed - expected).max()),
         ALLOWED,
         f"Observed orders: {told}; expected {order}, {order} and {order + 1}.",
-        series=series,
+        series,
     )
 
 
+FEATURES = {
+    "two materials": {"two materials"},
+    "ring with a hole": {"hole in a solid", "outline solid"},
+    "curved strip": {"arc"},
+}
 CHECKS = tuple(
-    CodeCheck(
+    code_check(
         f"order of convergence, {name}, elements of order {order}",
         GROUP,
         "fe",
-        partial(order_outcome, name, order),
+        partial(order_found, name, order),
         quick=order == 3,
+        features=FEATURES.get(name, ()),
     )
     for name in PROBLEMS
     for order in ORDERS
