@@ -194,8 +194,12 @@ def outline_fault(path: str, section: SectionFile, fault: fe_models.OutlineError
 
 
 def result_status(result: Result) -> ExitStatus:
-    """0 when every verdict is within and every self-check passed, else 1; nulls do not count."""
-    held = all(row.verdict in ("within", None) for row in result.quantities)
+    """0 when every verdict is within, stated values' too, and every self-check passed, else 1.
+
+    Nulls do not count.
+    """
+    verdicts = [row.verdict for row in result.quantities] + [stated.verdict for stated in result.stated]
+    held = all(verdict in ("within", None) for verdict in verdicts)
     sound = all(check.passed for check in result.checks)
     return ExitStatus.WITHIN if held and sound else ExitStatus.NOT_WITHIN
 

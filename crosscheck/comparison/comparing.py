@@ -18,6 +18,7 @@ from crosscheck.comparison.properties import indicator_rows, stiffness_rows
 from crosscheck.comparison.provenance import provenance
 from crosscheck.comparison.result import CheckResult, FeValue, MeshResult, Result
 from crosscheck.comparison.section_rows import section_rows
+from crosscheck.comparison.stated_values import judge_stated
 from crosscheck.hand_sheet.sheet import hand_sheets
 
 if TYPE_CHECKING:
@@ -117,7 +118,7 @@ def join(
         quantities=tuple(rows),
         flows=loads.flows,
         theory_peaks=loads.theory_peaks,
-        stated=(),
+        stated=judge_stated(section, rows),
         causes=causes(stations(section, levels.solutions, fe, accuracy), rows),
         working=sheets,
         mesh=MeshResult(fe.mesh.order, fe.mesh.unknowns, fe.mesh.elements, fe.mesh.strips, fe.mesh.joints),

@@ -119,6 +119,9 @@ QUANTITIES: dict[str, QuantityKind] = {
     kind.name: kind for kind in (*SECTION_QUANTITIES, *MODULI, TORSION_MODULUS, *LOAD_QUANTITIES)
 }
 
+# Quantities that belong to a load, by name.
+OF_A_LOAD = frozenset(kind.name for kind in LOAD_QUANTITIES)
+
 UNIT_LOADS: tuple[str, str, str] = ("unit Vx", "unit Vy", "unit T")
 
 

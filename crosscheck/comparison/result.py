@@ -157,16 +157,36 @@ class CauseStep:
 
 @dataclass(frozen=True)
 class StatedJudgement:
-    """A number of the user's judged against both sides."""
+    """A number of the user's judged against both sides, all values in the terms of its statement.
+
+    ``measured_from``: datum of a position in words. ``difference_fe``, ``difference_theory``: stated minus
+    FE and minus theory at ``level``, over the normaliser; ``level`` is the one that the file holds it to,
+    else the nearest; ``near``: levels so near that the value may well come from them. ``place``: where a
+    stated position lies, in the file's axes [L].
+    """
 
     quantity: str
+    symbol: str
+    unit: str
+    load: str | None
     value: float
     source: str
-    theory: float | None
-    fe: float | None
+    measured_from: str | None
+    theory: Mapping[str, float | None]
+    fe: FeValue
+    normaliser: float | None
+    uncertainty: float | None
     difference_fe: float | None
     difference_theory: float | None
+    level: str | None
+    near: tuple[str, ...]
+    tolerance: float
+    tolerance_source: str
     verdict: Verdict | None
+    theory_verdict: Verdict | None
+    effect: Mapping[str, Effect] | None
+    reason: str | None
+    place: tuple[float, float] | None
 
 
 @dataclass(frozen=True)

@@ -56,6 +56,8 @@ def both_sides_picture(result: Result, width_mm: int = 160) -> Figure | None:
         "Grey: the solid that FE meshes. Hatched: the hand method's walls, from point to point at full "
         "thickness; they overlap on the inside of a corner and leave its outside open. Dashed: midlines."
     )
+    if drawing.booms:
+        caption += " Round marks: booms, larger for more area."
     joints = joint_places(drawing, 1)
     extent = drawing.extent
     frame = frame_of([drawing.loops[0]]).grown(0.05 * extent)
@@ -96,6 +98,11 @@ def _draw_models(axes: Axes, result: Result) -> None:
         band = wall_band(wall)
         axes.fill(band[:, 0], band[:, 1], fill=False, hatch=hatch, ec=HAND, lw=0.5, zorder=3)
     draw_midlines(axes, drawing)
+    largest = max((boom.area for boom in drawing.booms), default=0.0)
+    for boom in drawing.booms:
+        size = 2.5 + 3.5 * (boom.area / largest) ** 0.5
+        colour = FE if boom.seen_by == "fe" else HAND
+        axes.plot(boom.x, boom.y, marker="o", ms=size, color=colour, mec="white", mew=0.4, zorder=6)
 
 
 def hatches(walls: Sequence[WallShape]) -> list[tuple[WallShape, str]]:

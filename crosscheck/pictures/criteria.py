@@ -21,6 +21,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
+from crosscheck.reports.stated import stated_difference, stated_name, stated_row
 from crosscheck.reports.wording import (
     STARRED,
     difference_text,
@@ -50,16 +51,29 @@ def criteria_picture(result: Result, width_mm: int = 160) -> Figure | None:
     -------
     Figure or None
     """
-    rows = one_row_a_family(worst_first(result.quantities))
-    rows = [row for row in rows if row.verdict is not None][:MOST_ROWS]
+    compared = one_row_a_family(worst_first(result.quantities))
+    rows = [
+        (name_of(row), row, difference_text(row, result.length_unit))
+        for row in compared
+        if row.verdict is not None
+    ]
+    stated = [(stated, stated_row(result, stated)) for stated in result.stated]
+    told = [
+        (f"stated {stated_name(entry)}", row, stated_difference(result, entry))
+        for entry, row in stated
+        if row is not None
+    ]
+    rows = (told + rows)[:MOST_ROWS]
     if not rows:
         return None
     caption = (
         "Bar: difference over criterion; whisker: FE error over criterion. Full criterion at 100 %. Hatched: "
         "outside; dotted: inconclusive."
     )
-    if any(has_own_normaliser(row) for row in rows):
+    if any(has_own_normaliser(row) for _, row, _ in rows):
         caption += f" {STARRED}"
+    if told:
+        caption += " Above the line: stated values, over their tolerance."
     title_lines = title_in_lines(one_line(verdict_sentence(result), 400), width_mm)
     caption_lines = caption_in_lines(caption, width_mm)
     above, below = 4.0 + 4.2 * len(title_lines), 12.0 + 3.2 * len(caption_lines)
@@ -70,18 +84,20 @@ def criteria_picture(result: Result, width_mm: int = 160) -> Figure | None:
         axes = figure.add_axes(
             (left / width_mm, below / height, (width_mm - left - right) / width_mm, 4.4 * len(rows) / height)
         )
-        for place, row in enumerate(rows):
-            _draw_row(axes, place, row, result.length_unit, small=width_mm < WIDE_PAPER)
+        for place, (_, row, text) in enumerate(rows):
+            _draw_row(axes, place, row, text, small=width_mm < WIDE_PAPER)
         axes.axvline(1.0, color=INK, lw=0.9)
+        if told:
+            axes.axhline(len(told) - 0.5, color=SOFT, lw=0.5)
         axes.set_xlim(0, FULL)
         axes.set_ylim(len(rows) - 0.4, -0.6)
         axes.set_xticks([0, 0.5, 1.0, 1.5], ["0", "50", "100", "150 %"])
         axes.set_yticks(range(len(rows)), ["" for _ in rows])
         axes.set_xlabel("share of the criterion used [%]", labelpad=1)
-        for place, row in enumerate(rows):
+        for place, (name, _, _) in enumerate(rows):
             letters = int((left - 3) / 1.25)
             axes.text(
-                -0.02, place, one_line(name_of(row), letters), ha="right", va="center", fontsize=FONT,
+                -0.02, place, one_line(name, letters), ha="right", va="center", fontsize=FONT,
                 transform=axes.get_yaxis_transform(),
             )  # fmt: skip
         for side in ("top", "right", "left"):
@@ -93,7 +109,7 @@ def criteria_picture(result: Result, width_mm: int = 160) -> Figure | None:
     return figure
 
 
-def _draw_row(axes: mpl.axes.Axes, place: int, row: QuantityResult, length_unit: str, *, small: bool) -> None:
+def _draw_row(axes: mpl.axes.Axes, place: int, row: QuantityResult, text: str, *, small: bool) -> None:
     """One bar with its whisker and the difference in words."""
     share = abs(row.judged_difference or 0.0) / row.criterion
     error = (row.uncertainty or 0.0) / row.criterion
@@ -112,7 +128,6 @@ def _draw_row(axes: mpl.axes.Axes, place: int, row: QuantityResult, length_unit:
     if share + error < FULL:
         ends = (max(share - error, 0.0), share + error)
         axes.plot(ends, (place, place), color=FE, lw=1.3, marker="|", ms=5, zorder=3)
-    text = difference_text(row, length_unit)
     if share > FULL and not small:
         text += f" ({share * 100:.0f} %)"
     axes.text(1.02, place, text, va="center", fontsize=FONT - 0.5, transform=axes.get_yaxis_transform())

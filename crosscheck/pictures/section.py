@@ -69,7 +69,9 @@ def section_picture(result: Result, width_mm: int = 160) -> Figure:
     unit = result.length_unit
     x0, y0, x1, y1 = overall(drawing.loops)
     hand, fe = shear_centres(result)
-    groups = [drawing.loops[0], *(np.array([place]) for place in (hand, fe) if place is not None)]
+    stated = stated_places(result)
+    centres = [place for place in (hand, fe, *stated.values()) if place is not None]
+    groups = [drawing.loops[0], *(np.array([place]) for place in centres)]
     groups += [reach for load in drawing.loads if (reach := _reach_of(load, drawing.extent)) is not None]
     gap = 0.16 * drawing.extent if width_mm >= WIDE_PAPER else 0.22 * drawing.extent
     frame = frame_of(groups).grown(gap)
@@ -86,14 +88,16 @@ def section_picture(result: Result, width_mm: int = 160) -> Figure:
             draw_direction(axes, wall, 1.0, colour=SOFT, at=0.62)
             lettering.keep_clear(wall.points)
         _draw_overall(axes, (x0, y0, x1, y1), 0.55 * gap, unit, lettering)
-        for place in (hand, fe):
-            if place is not None:
-                lettering.keep_clear_of_mark(place)
+        for place in centres:
+            lettering.keep_clear_of_mark(place)
         for load in drawing.loads:
             _keep_clear_of_load(load, drawing.extent, centre_of(drawing), lettering)
         for load in drawing.loads:
             _draw_load(axes, result, load, lettering)
         _mark_centres(axes, result, hand, fe, lettering)
+        for words, place in stated.items():
+            axes.plot(*place, marker="D", ms=4.5, mfc="none", mec=INK, mew=0.9, zorder=5)
+            lettering.write((words, words.replace("\n", " ")), place, (0.3, -1.0))
         _name_walls(result, lettering, short=width_mm < WIDE_PAPER)
     return figure
 
@@ -107,6 +111,24 @@ def shear_centres(result: Result) -> tuple[Place | None, Place | None]:
         None if hand[0] is None or hand[1] is None else (hand[0], hand[1]),
         None if fe[0] is None or fe[1] is None else (fe[0], fe[1]),
     )
+
+
+def stated_places(result: Result) -> dict[str, Place]:
+    """Stated positions in words [L]; both coordinates of one source are one place."""
+    found: dict[tuple[str, str], Place] = {}
+    for stated in result.stated:
+        if stated.place is None:
+            continue
+        key = (stated.quantity[:-2], stated.source)
+        known = found.get(key)
+        x, y = stated.place
+        if known is not None:
+            x, y = (known[0], y) if stated.quantity.endswith("_y") else (x, known[1])
+        found[key] = (x, y)
+    return {
+        f"stated {name.replace('_', ' ')}" + (f"\n({one_line(source, 30)})" if source else ""): place
+        for (name, source), place in found.items()
+    }
 
 
 def _draw_overall(

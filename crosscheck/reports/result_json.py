@@ -57,19 +57,7 @@ def document(result: Result) -> dict[str, Any]:
         },
         "stiffness": [_property(row) for row in result.stiffness],
         "indicators": [_property(row) for row in result.indicators],
-        "stated": [
-            {
-                "quantity": stated.quantity,
-                "value": stated.value,
-                "source": stated.source,
-                "theory": stated.theory,
-                "fe": stated.fe,
-                "difference_fe": stated.difference_fe,
-                "difference_theory": stated.difference_theory,
-                "verdict": stated.verdict,
-            }
-            for stated in result.stated
-        ],
+        "stated": _records(result.stated),
         "causes": [
             {
                 "quantity": cause.quantity,

@@ -6,6 +6,7 @@ import math
 from collections.abc import Iterator, Sequence
 
 from rich.console import Console, Group, RenderableType
+from rich.padding import Padding
 from rich.table import Table
 from rich.text import Text
 
@@ -22,6 +23,7 @@ from crosscheck.reports.screen_blocks import (
     restrained_line,
     table_block,
 )
+from crosscheck.reports.stated import stated_heading, stated_lines
 from crosscheck.reports.tables import ResultTable
 from crosscheck.reports.wording import (
     FE_ASSUMPTIONS,
@@ -32,6 +34,8 @@ from crosscheck.reports.wording import (
     UNDECIDED,
     criteria_note,
     difference_text,
+    error_mark,
+    error_text,
     has_own_normaliser,
     name_of,
     number_text,
@@ -87,7 +91,15 @@ def first_screen(
     judged = [row for row in rows if row.verdict is not None]
     shown = judged[:ROWS_SHOWN] + [row for row in judged[ROWS_SHOWN:] if row.verdict != "within"]
     folded = [row for row in judged[ROWS_SHOWN:] if row.verdict == "within"]
-    parts: list[RenderableType] = [_title(result, width), _sentence(result), Text()]
+    parts: list[RenderableType] = [_title(result, width), _sentence(result)]
+    heading = stated_heading(result)
+    if heading is not None:
+        parts.append(Text(heading))
+        parts += [
+            Padding(Text(line, style=STYLES[verdict]), (0, 0, 0, 2))
+            for line, verdict in stated_lines(result, unicode=unicode)
+        ]
+    parts.append(Text())
     if result.outline_alone:
         parts.append(_fe_table(result, unicode))
         parts.append(Text())
@@ -240,27 +252,12 @@ def _fe_text(row: QuantityResult, unicode: bool) -> str:
         return text
     if row.unit == "rad":
         half = math.degrees(half)
-    mark = "~" if fe.basis == "estimate" else ("±" if unicode else "+-")
-    error = f"{mark}{_error_text(half)}"
+    error = f"{error_mark(fe, unicode)}{error_text(half)}"
     for digits in (5, 4, 3, 2):
         text = _value_text(row, fe.value, digits)
         if len(text) + 1 + len(error) <= FE_WIDTH:
             break
     return f"{text} {error}"
-
-
-def _error_text(half: float) -> str:
-    """An error with one significant digit, rounded up: an error bar must not shrink in print."""
-    if half == 0:
-        return "0"
-    mantissa, exponent = f"{half:.6e}".split("e")
-    digit = -int(-float(mantissa) // 1)
-    power = int(exponent)
-    if digit == 10:
-        digit, power = 1, power + 1
-    if -3 <= power <= 3:
-        return f"{digit * 10.0**power:.{max(-power, 0)}f}"
-    return f"{digit}e{power}"
 
 
 def _bar(row: QuantityResult, unicode: bool) -> Text:
@@ -301,9 +298,6 @@ def _notes(
     loads = {row.load for row in result.quantities if row.name == "von_mises_stress"}
     if len(loads) > FEW_LOADS:
         yield f"{len(loads)} loads: each quantity is shown for its worst load; all are in the result.", ""
-    for stated in result.stated:
-        line = f"Stated {stated.quantity} {number_text(stated.value)} ({stated.source}): {stated.verdict}"
-        yield one_line(line, 300), ""
     for row in rows:
         if row.note is not None and row.verdict in ("outside", "inconclusive"):
             yield one_line(f"{name_of(row)}: {row.note}", 300), ""

@@ -6,7 +6,7 @@ import math
 from collections.abc import Iterable
 
 from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
-from crosscheck.comparison.result import QuantityResult, Result
+from crosscheck.comparison.result import FeValue, QuantityResult, Result
 from crosscheck.comparison.verdicts import ROUND_OFF
 
 SAFETY = (
@@ -45,6 +45,25 @@ def number_text(value: float | None, digits: int = 5) -> str:
     # Small numbers spend their columns on the exponent.
     mantissa, exponent = f"{value:.{min(digits, 4) - 1 if size < 0 else digits - 1}e}".split("e")
     return f"{mantissa}e{int(exponent)}"
+
+
+def error_mark(fe: FeValue, unicode: bool = True) -> str:
+    """What stands before an error: plus-minus for a bound, a tilde for an estimate."""
+    return "~" if fe.basis == "estimate" else ("±" if unicode else "+-")
+
+
+def error_text(half: float) -> str:
+    """An error with one significant digit, rounded up: an error bar must not shrink in print."""
+    if half == 0:
+        return "0"
+    mantissa, exponent = f"{half:.6e}".split("e")
+    digit = -int(-float(mantissa) // 1)
+    power = int(exponent)
+    if digit == 10:
+        digit, power = 1, power + 1
+    if -3 <= power <= 3:
+        return f"{digit * 10.0**power:.{max(-power, 0)}f}"
+    return f"{digit}e{power}"
 
 
 def percent_text(share: float, coarse_below: float = 0.1) -> str:

@@ -6,7 +6,7 @@ from collections.abc import Collection, Iterable, Mapping
 from itertools import chain
 from typing import Any
 
-from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
+from crosscheck.comparison.quantities import OF_A_LOAD, QUANTITIES, UNIT_LOADS
 from crosscheck.faults import FaultList, KeyPath, quoted
 from crosscheck.section_file.model import (
     EVERY_BEND,
@@ -259,6 +259,9 @@ class AttachmentReader:
                 self.faults.add(
                     (*path, "load"), quoted(load), "a load of this file or a unit load", near=near
                 )
+            if load is None and quantity in OF_A_LOAD and len(loads) != 1:
+                words = f"given for {quantity}, a quantity of a load"
+                self.faults.add((*path, "load"), "no load", words)
             source, level = table.get("source", ""), table.get("level")
             stated.append(StatedSpec(quantity, value or 0.0, source, tolerance, datum, load, level))
         return tuple(stated)
