@@ -8,6 +8,7 @@ from functools import cache, partial
 
 import beam_theory
 import fe_models
+from crosscheck.verification.check import Side
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES, SHIFT, TURN, Shape
 
@@ -137,7 +138,7 @@ def _difference(want: Values, half: Values, got: Values, got_half: Values) -> Fi
     )
 
 
-SIDES = (("theory", theory_answer), ("fe", fe_answer))
+SIDES: tuple[tuple[Side, Callable[[Shape], Answer]], ...] = (("theory", theory_answer), ("fe", fe_answer))
 CHECKS = (
     *(
         code_check(

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from functools import partial
 
 import numpy as np
 
 import beam_theory
+from crosscheck.verification.check import Side
 from crosscheck.verification.code_checks.equilibrium import MOMENTS, slopes, solved
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES
@@ -67,9 +69,9 @@ def shear_centre_of_theory(name: str) -> Finding:
         mean += float(weight.sum())
     for p, a in shape.booms.items():
         wall = next(w for w in shape.walls if p in (w.start, w.end))
-        omega = float(theory.warping_at(wall.name, np.array([0.0 if p == wall.start else 1.0]))[0])
-        moment += a * omega * (np.array(shape.points[p]) - centre)
-        mean += a * omega
+        force = a * float(theory.warping_at(wall.name, np.array([0.0 if p == wall.start else 1.0]))[0])
+        moment += force * (np.array(shape.points[p]) - centre)
+        mean += force
     size = float(np.ptp(np.array(list(shape.points.values())), axis=0).max())
     off = np.abs(moment @ slopes(value)).max() / size
     worst = max(float(off), abs(mean) / (theory.require("area") * size**2))
@@ -103,15 +105,17 @@ def twist_of_a_line_of_action(name: str) -> Finding:
     return Finding(worst, ROUND_OFF, f"Largest difference of the rates of twist: {worst:.1e}.")
 
 
+THICK = ("open section", "two cells, two materials")
+KINDS: tuple[tuple[str, Side, Callable[[str], Finding], tuple[str, ...], frozenset[str]], ...] = (
+    ("flexure in x and in y", "fe", flexure_coupling, THICK, frozenset()),
+    ("shear centre from flow and from warping, fe", "fe", shear_centre_of_fe, THICK, frozenset()),
+    ("shear centre from flow and from warping, theory", "theory", shear_centre_of_theory, tuple(SHAPES),
+     frozenset()),
+    ("twist of shear through the centroid, theory", "theory", twist_of_a_line_of_action, tuple(SHAPES),
+     frozenset({"load on a line"})),
+)  # fmt: skip
 CHECKS = tuple(
     code_check(f"{what}, {name}", GROUP, side, partial(measure, name), quick=True, features=features)
-    for what, side, measure, names in (
-        ("flexure in x and in y", "fe", flexure_coupling, ("open section", "two cells, two materials")),
-        ("shear centre from flow and from warping, finite elements", "fe", shear_centre_of_fe,
-         ("open section", "two cells, two materials")),
-        ("shear centre from flow and from warping, theory", "theory", shear_centre_of_theory, tuple(SHAPES)),
-        ("twist of shear through the centroid, theory", "theory", twist_of_a_line_of_action, tuple(SHAPES)),
-    )
+    for what, side, measure, names, features in KINDS
     for name in names
-    for features in ({"load on a line"} if measure is twist_of_a_line_of_action else set(),)
-)  # fmt: skip
+)
