@@ -7,7 +7,7 @@ from .faces import Actions, FaceStress, Peak
 from .fields import Fields
 from .intervals import Interval
 from .location import PointStress
-from .mesh_file import rings_of_mesh, write_fields
+from .mesh_file import require_mesh_library, rings_of_mesh, write_fields
 from .outline import Outline
 from .outline import outline as outline_of_walls
 from .picture import PictureMesh
@@ -62,6 +62,7 @@ __all__ = [
     "imbalance",
     "outline_of_solid",
     "outline_of_walls",
+    "require_mesh_library",
     "rings_of_mesh",
     "rings_of_step",
     "solve",

@@ -68,6 +68,13 @@ def field_table(solution: Solution, length_unit: str = "L") -> FieldTable:
             flat = stress.reshape(-1, 2)
             name = f"shear stress of {load}, {kind} field [{unit}]"
             points[name] = np.column_stack([flat, np.zeros(len(flat))])
+    if solution.poisson is not None:
+        at = Samples(np.arange(e), reference)
+        for kind, both in zip(("static", "kinematic"), stresses(fields, at, solution.poisson), strict=True):
+            for load, stress in zip(LOADS[:2], both[:2], strict=True):
+                flat = stress.reshape(-1, 2)
+                name = f"shear stress of {load} with nu = {solution.poisson.nu:g}, {kind} field [1/{u}^2]"
+                points[name] = np.column_stack([flat, np.zeros(len(flat))])
     cells: dict[str, Array] = {}
     for load, pair in zip(LOADS, (*fields.flexure, fields.torsion), strict=True):
         gap = fields.gap(pair)

@@ -42,6 +42,17 @@ WRITE_FORMATS = {".vtu": "vtu", ".msh": "gmsh22"}
 SAME_PLACE = 1e-7
 
 
+def require_mesh_library() -> None:
+    """Nothing, where the library for mesh files is there.
+
+    Raises
+    ------
+    LibraryError
+        It is missing.
+    """
+    _library()
+
+
 def _library() -> ModuleType:
     try:
         import meshio

@@ -31,6 +31,9 @@ examples:
 # Names of crosscheck.reports.tables.TABLES, which help must not load.
 TABLE_NAMES = ("levels", "stiffness", "envelope", "probes", "stresses")
 
+# Endings that fe_models.write_fields takes.
+FIELD_FORMATS = ("vtu", "msh")
+
 
 def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
     """Declare the sub-command."""
@@ -63,12 +66,22 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
         metavar="NAME",
         help=f"show a table below the screen, and write it as CSV into DIR: {', '.join(TABLE_NAMES)}",
     )
+    command.add_argument(
+        "--fields",
+        action="append",
+        default=[],
+        choices=FIELD_FORMATS,
+        metavar="FORMAT",
+        help="write FE's mesh and fields, fields.FORMAT in DIR: " + ", ".join(FIELD_FORMATS),
+    )
     add_model_arguments(command)
     command.set_defaults(run=run)
 
 
 def run(arguments: argparse.Namespace) -> int:
     """Compare every section; one that cannot be read or solved does not stop the others."""
+    if arguments.fields and not fields_can_be_written(arguments.out):
+        return ExitStatus.BAD_INPUT
     paths, missing = section_paths(arguments.paths)
     complain(missing)
     status = ExitStatus.BAD_INPUT if missing else ExitStatus.WITHIN
@@ -83,6 +96,7 @@ def run(arguments: argparse.Namespace) -> int:
                 tell,
                 pictures=folder is not None,
                 working=arguments.working,
+                fields=tuple(dict.fromkeys(arguments.fields)),
             )
             status = max(status, found)
             if result is None:
@@ -100,6 +114,21 @@ def run(arguments: argparse.Namespace) -> int:
     if arguments.json_path is not None and results:
         status = max(status, write_json(results, arguments.json_path))
     return status
+
+
+def fields_can_be_written(out: str | None) -> bool:
+    """Whether there is a folder for files of fields and the library that writes them; else it is told."""
+    if out is None:
+        complain(["--fields: must be given with --out DIR, into which the files go, got no --out"])
+        return False
+    import fe_models
+
+    try:
+        fe_models.require_mesh_library()
+    except fe_models.LibraryError as fault:
+        complain([f"--fields: {fault}"])
+        return False
+    return True
 
 
 def section_paths(given: Sequence[str]) -> tuple[list[str], list[str]]:
@@ -143,6 +172,7 @@ def compare_file(
     *,
     pictures: bool,
     working: bool = False,
+    fields: Sequence[str] = (),
 ) -> tuple[Result | None, ExitStatus]:
     """Read and compare one file; its faults go to the error stream."""
     tell(f"{path}: reading")
@@ -161,7 +191,12 @@ def compare_file(
 
     try:
         result = compare(
-            section, accuracy, lambda text: tell(f"{path}: {text}"), pictures=pictures, working=working
+            section,
+            accuracy,
+            lambda text: tell(f"{path}: {text}"),
+            pictures=pictures,
+            working=working,
+            fields=fields,
         )
     except fe_models.OutlineError as fault:
         complain([outline_fault(path, section, fault).text])
@@ -205,7 +240,7 @@ def result_status(result: Result) -> ExitStatus:
 
 
 def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Progress) -> ExitStatus:
-    """Pictures, hand sheets, tables and result.json of one section, all made before the first is written."""
+    """All that goes into the folder of one section, made before the first file is written."""
     from crosscheck.file_names import free_name
     from crosscheck.pictures import every_picture
     from crosscheck.reports.result_json import json_text
@@ -219,6 +254,7 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
         sheets[free_name(f"working_{load}", sheets)] = text.encode()
     files |= {f"{name}.md": content for name, content in sheets.items()}
     files |= {f"{name}.csv": csv_bytes(TABLES[name](result)) for name in tables}
+    files |= result.field_files
     files["result.json"] = json_text([result]).encode()
     try:
         write_folder(folder, files)

@@ -4,6 +4,9 @@ from __future__ import annotations
 
 import time
 from collections.abc import Callable, Iterator, Mapping, Sequence
+from dataclasses import replace
+from pathlib import Path
+from tempfile import TemporaryDirectory
 from typing import TYPE_CHECKING
 
 import beam_theory
@@ -14,7 +17,7 @@ from crosscheck.comparison.drawing import drawing_of
 from crosscheck.comparison.levels import Levels, solve_levels
 from crosscheck.comparison.load_comparison import compare_loads
 from crosscheck.comparison.outline_agreement import outline_agreement
-from crosscheck.comparison.properties import indicator_rows, stiffness_rows
+from crosscheck.comparison.properties import indicator_rows, shear_coefficient_rows, stiffness_rows
 from crosscheck.comparison.provenance import provenance
 from crosscheck.comparison.result import CheckResult, FeValue, MeshResult, Result
 from crosscheck.comparison.section_rows import section_rows
@@ -26,6 +29,8 @@ if TYPE_CHECKING:
 
 Progress = Callable[[str], None]
 DEFAULT_ACCURACY = 1e-5
+# What depends on Poisson's ratio.
+WITH_NU = ("shear_centre_x", "shear_centre_y", "shear_area_x", "shear_area_y")
 
 
 def compare(
@@ -35,6 +40,7 @@ def compare(
     *,
     pictures: bool = False,
     working: bool = False,
+    fields: Sequence[str] = (),
 ) -> Result:
     """Solve a section on both sides and compare.
 
@@ -50,6 +56,8 @@ def compare(
         True where pictures will be drawn: the result then carries geometry and curves as well.
     working : bool
         True where the hand sheet of every load is wanted.
+    fields : sequence of str
+        Formats, vtu or msh, in which FE's mesh and fields are wanted.
 
     Returns
     -------
@@ -83,7 +91,15 @@ def compare(
     seconds = {"theory": after_theory - start, "fe": after_fe - after_theory}
     notes = () if agreement is None else (agreement,)
     return join(
-        section, levels, fe, accuracy, seconds=seconds, pictures=pictures, working=working, notes=notes
+        section,
+        levels,
+        fe,
+        accuracy,
+        seconds=seconds,
+        pictures=pictures,
+        working=working,
+        fields=fields,
+        notes=notes,
     )
 
 
@@ -96,11 +112,16 @@ def join(
     seconds: Mapping[str, float] | None = None,
     pictures: bool = False,
     working: bool = False,
+    fields: Sequence[str] = (),
     notes: Sequence[str] = (),
 ) -> Result:
     """Compare solutions of one section; see :func:`compare`."""
     start = time.perf_counter()
-    values = {name: fe_value(interval) for name, interval in fe.quantities.items()}
+    nu_reason = models.reason_without_nu(section, fe)
+    values = {
+        name: replace(fe_value(interval), nu_reason=nu_reason) if name in WITH_NU else fe_value(interval)
+        for name, interval in fe.quantities.items()
+    }
     loads = compare_loads(section, levels, fe, values)
     rows = [*section_rows(section, levels, fe, values), loads.torsion_modulus, *loads.rows]
     theory = levels.judged_solution
@@ -139,7 +160,22 @@ def join(
         theory_notes={level: tuple(solution.notes) for level, solution in levels.solutions.items()},
         section_notes=section.notes,
         outline_alone=not levels.solutions,
+        nu=None if fe.poisson is None else fe.poisson.nu,
+        nu_reason=nu_reason,
+        shear_coefficients=shear_coefficient_rows(levels, fe, values),
+        field_files=field_files(fe, fields, section.length_unit),
     )
+
+
+def field_files(fe: fe_models.Solution, formats: Sequence[str], length_unit: str) -> dict[str, bytes]:
+    """Mesh and fields as the bytes of a file of every format, by name."""
+    made = {}
+    with TemporaryDirectory() as folder:
+        for ending in formats:
+            path = Path(folder) / f"fields.{ending}"
+            fe_models.write_fields(fe, path, length_unit)
+            made[path.name] = path.read_bytes()
+    return made
 
 
 def fe_value(interval: fe_models.Interval) -> FeValue:

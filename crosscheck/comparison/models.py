@@ -126,6 +126,16 @@ def fe_solution(
     return fe_models.solve_solid(section.outline, accuracy, progress, walls)
 
 
+def reason_without_nu(section: SectionFile, fe: fe_models.Solution) -> str | None:
+    """Why FE has nothing with Poisson's ratio; None where it has."""
+    if fe.poisson is not None:
+        return None
+    seen = [wall for wall in section.walls if wall.seen_by != "theory"]
+    if len({wall.material for wall in seen}) > 1:
+        return "not available: walls of different materials have no one Poisson's ratio"
+    return "not available: booms, or walls that carry only a share of direct stress, are of no one material"
+
+
 def _shared_nu(section: SectionFile, walls: tuple[fe_models.Wall, ...]) -> float | None:
     """Poisson's ratio of the material of all FE walls [-]; None where they differ."""
     names = {wall.name for wall in walls}

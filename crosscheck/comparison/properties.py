@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import beam_theory
+import fe_models
 from crosscheck.comparison import models
 from crosscheck.comparison.levels import Levels, reason_at
 from crosscheck.comparison.quantities import unit_text
@@ -49,6 +50,12 @@ _TABLE: tuple[_Stiffness, ...] = (
     _Stiffness("centroid_y", "y_c", "centroid from the origin, y", 1, 0, "centroid_y"),
     _Stiffness("shear_centre_x", "x_s", "shear centre from the origin, x", 1, 0, "shear_centre_x"),
     _Stiffness("shear_centre_y", "y_s", "shear centre from the origin, y", 1, 0, "shear_centre_y"),
+)
+
+# Definition, its words, and the field of FE's record with Poisson's ratio. Without it both are A_V/A.
+_COEFFICIENTS: tuple[tuple[str, str, str], ...] = (
+    ("energy", "by energy", "energy_coefficient"),
+    ("mean", "by mean displacement (Cowper)", "mean_coefficient"),
 )
 
 _WAGNER: tuple[tuple[str, str, str, int], ...] = (
@@ -99,6 +106,39 @@ def stiffness_rows(
         value = _scaled(own, factors[line.modulus])
         rows.append(PropertyRow(line.name, line.symbol, line.words, unit, values, value, reasons))
     return tuple(rows)
+
+
+def shear_coefficient_rows(
+    levels: Levels, fe: fe_models.Solution, values: Mapping[str, FeValue]
+) -> tuple[PropertyRow, ...]:
+    """Shear coefficients A_V/A along x and y by two definitions, which differ only with Poisson's ratio.
+
+    By energy: V^2/(2 k G A) is the strain energy of the shear stress. By mean displacement (Cowper 1966):
+    V/(k G A) is mean slope plus mean rotation.
+    """
+    rows = []
+    area = values["area"]
+    for name, words, record in _COEFFICIENTS:
+        for i, axis in enumerate("xy"):
+            kind = f"shear_area_{axis}"
+            own, whole = levels.values(kind), levels.values("area")
+            theory = {level: _ratio(own[level], whole[level]) for level in LEVELS}
+            reasons = {**levels.reasons("area"), **levels.reasons(kind)}
+            value = values[kind]
+            if area.value:
+                value = _scaled(value, 1.0 / area.value)
+            nu = None if fe.poisson is None else float(getattr(fe.poisson, record)[i])
+            rows.append(
+                PropertyRow(
+                    f"shear_coefficient_{name}_{axis}", f"k_{axis}", f"shear coefficient {axis}, {words}",
+                    "1", theory, replace(value, with_nu=nu), reasons,
+                )
+            )  # fmt: skip
+    return tuple(rows)
+
+
+def _ratio(above: float | None, below: float | None) -> float | None:
+    return None if above is None or not below else above / below
 
 
 def indicator_rows(
@@ -152,8 +192,8 @@ def _scaled(value: FeValue, factor: float) -> FeValue:
     if value.value is None or value.low is None or value.high is None:
         return value
     nu = None if value.with_nu is None else value.with_nu * factor
-    return FeValue(
-        value.value * factor, value.low * factor, value.high * factor, value.basis, nu, value.reason
+    return replace(
+        value, value=value.value * factor, low=value.low * factor, high=value.high * factor, with_nu=nu
     )
 
 

@@ -21,7 +21,10 @@ LEVELS: tuple[str, str, str] = ("midline", "corrected", "lumped")
 
 @dataclass(frozen=True)
 class FeValue:
-    """An FE number with its interval; ``basis`` says whether that is exact, a bound or an estimate."""
+    """An FE number with its interval; ``basis`` says whether that is exact, a bound or an estimate.
+
+    ``with_nu``: the same with Poisson's ratio, where it depends on it; ``nu_reason``: why that is missing.
+    """
 
     value: float | None
     low: float | None
@@ -29,6 +32,7 @@ class FeValue:
     basis: str
     with_nu: float | None = None
     reason: str | None = None
+    nu_reason: str | None = None
 
     @property
     def half_width(self) -> float | None:
@@ -310,7 +314,9 @@ class Result:
 
     ``working``: the hand sheet of each load as Markdown, where asked for. ``theory_notes``: remarks of each
     level of theory; ``section_notes``: those made on reading the file. ``outline_alone``: the
-    section has no walls, so theory says nothing and nothing is judged.
+    section has no walls, so theory says nothing and nothing is judged. ``nu``: Poisson's ratio
+    of values with nu, ``nu_reason``: why there are none; ``shear_coefficients``: A_V/A by two definitions.
+    ``field_files``: mesh and fields of FE by file name, where asked for.
     """
 
     title: str
@@ -342,6 +348,10 @@ class Result:
     theory_notes: Mapping[str, tuple[str, ...]] = field(default_factory=dict)
     section_notes: tuple[str, ...] = ()
     outline_alone: bool = False
+    nu: float | None = None
+    nu_reason: str | None = None
+    shear_coefficients: tuple[PropertyRow, ...] = ()
+    field_files: Mapping[str, bytes] = field(default_factory=dict)
 
     def require_drawing(self) -> Drawing:
         """The drawing; ValueError where the comparison was made without."""

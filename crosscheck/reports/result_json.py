@@ -57,6 +57,12 @@ def document(result: Result) -> dict[str, Any]:
         },
         "stiffness": [_property(row) for row in result.stiffness],
         "indicators": [_property(row) for row in result.indicators],
+        "poisson": {
+            "nu": result.nu,
+            "reason": result.nu_reason,
+            "shear_centre": "at zero mean twist",
+            "shear_coefficients": [_property(row) for row in result.shear_coefficients],
+        },
         "stated": _records(result.stated),
         "causes": [
             {
@@ -132,6 +138,7 @@ def _fe(value: FeValue) -> dict[str, Any]:
         "high": value.high,
         "basis": value.basis,
         "with_nu": value.with_nu,
+        "with_nu_reason": value.nu_reason,
     }
 
 

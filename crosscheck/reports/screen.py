@@ -20,6 +20,7 @@ from crosscheck.reports.screen_blocks import (
     governing_lines,
     level_lines,
     levels_block,
+    poisson_line,
     restrained_line,
     table_block,
 )
@@ -329,9 +330,7 @@ def _notes(
         f"{seconds:.2f} s.",
         "dim",
     )
-    restrained = restrained_line(result)
-    if restrained is not None:
-        yield restrained, "dim"
+    yield from ((line, "dim") for line in (restrained_line(result), poisson_line(result)) if line)
     yield (f"Pictures and result: {pictures}" if pictures else "Pictures: add --out FOLDER."), ""
     shared = FE_ASSUMPTIONS if result.outline_alone else SHARED_ASSUMPTIONS
     yield f"{shared} {SAFETY}", "dim"

@@ -163,6 +163,23 @@ def restrained_line(result: Result) -> str | None:
     )
 
 
+def poisson_line(result: Result) -> str | None:
+    """What Poisson's ratio makes of FE's shear coefficients and shear centre; None without it."""
+    if result.nu is None:
+        return None
+    told = []
+    for words in ("by energy", "by mean displacement (Cowper)"):
+        rows = [row for row in result.shear_coefficients if row.words.endswith(words)]
+        told.append(f"{', '.join(number_text(row.fe.with_nu, 4) for row in rows)} {words}")
+    x, y = (result.quantity(f"shear_centre_{axis}") for axis in "xy")
+    least = 1e-9 * (x.normaliser or 0.0)
+    place = [number_text(v if v is None or abs(v) > least else 0.0) for v in (x.fe.with_nu, y.fe.with_nu)]
+    return (
+        f"With nu = {result.nu:g}, beside the comparison: FE's shear coefficients A_V/A along x, y "
+        f"{'; '.join(told)}; shear centre at zero mean twist ({', '.join(place)}) {result.length_unit}."
+    )
+
+
 def curved_boundary_lines(result: Result) -> Iterator[str]:
     """Largest shear stress on curved boundaries of a section without walls, load by load."""
     told: set[str] = set(UNIT_LOADS)

@@ -53,19 +53,23 @@ def levels_table(result: Result) -> ResultTable:
 
 def stiffness_table(result: Result) -> ResultTable:
     """Stiffnesses and offsets for a beam model, then the indicators."""
-    columns = ("name", "symbol", "words", "unit", *LEVELS, "FE", "FE low", "FE high", "remark")
-    rows = tuple(_property_cells(row) for row in (*result.stiffness, *result.indicators))
+    columns = ("name", "symbol", "words", "unit", *LEVELS, "FE", "FE low", "FE high", "FE with nu", "remark")
+    shown = (*result.stiffness, *result.shear_coefficients, *result.indicators)
+    rows = tuple(_property_cells(row) for row in shown)
     per = " per unit modulus (E = G = 1)" if result.per_modulus else ""
     title = f"Stiffness for a beam model{per}, offsets from the origin"
-    return ResultTable("stiffness", title, columns, rows, ("symbol", "words", *LEVELS, "FE", "unit"))
+    names = ("symbol", "words", *LEVELS, "FE", "unit", "FE with nu")
+    return ResultTable("stiffness", title, columns, rows, names)
 
 
 def _property_cells(row: PropertyRow) -> tuple[Cell, ...]:
     remarks = [f"{level}: {reason}" for level, reason in row.theory_reasons.items()]
     if row.fe.value is None and row.fe.reason:
         remarks.append(row.fe.reason)
+    if row.fe.nu_reason:
+        remarks.append(f"with nu: {row.fe.nu_reason}")
     values = (row.theory.get(level) for level in LEVELS)
-    fe = (row.fe.value, row.fe.low, row.fe.high)
+    fe = (row.fe.value, row.fe.low, row.fe.high, row.fe.with_nu)
     return (row.name, row.symbol, row.words, row.unit, *values, *fe, "; ".join(remarks) or None)
 
 

@@ -28,6 +28,7 @@ class StandInFe:
     strip: tuple[float, float] | None = (0.1, 0.9)
     met: bool = True
     accuracy_note: str = "reached"
+    poisson: None = None
     checks: tuple[SimpleNamespace, ...] = (
         SimpleNamespace(name="resultants", value=1e-12, allowed=1e-8, passed=True),
     )

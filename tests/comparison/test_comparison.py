@@ -197,7 +197,7 @@ def test_json_has_the_schemas_keys_in_order_and_reads_back(result):
     judgement = {"criterion", "criterion_source", "verdict", "effect", "factor", "reason"}
     assert {"symbol", "unit", "load"} | sides | judgement <= set(row)
     assert set(row["theory"]) == {"midline", "corrected", "lumped"}
-    assert set(row["fe"]) == {"value", "low", "high", "basis", "with_nu"}
+    assert set(row["fe"]) == {"value", "low", "high", "basis", "with_nu", "with_nu_reason"}
     # Full precision: the number survives the text exactly.
     assert row["theory"]["midline"] == result.quantity("torsion_constant").theory["midline"]
 

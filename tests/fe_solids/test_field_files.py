@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 import pytest
 from numpy.testing import assert_allclose
-from solid_shapes import rectangle, solved
+from solid_shapes import rectangle, row, solved
 
 import fe_models.mesh_file
 from fe_models import Actions, ClosedLine, LibraryError, Section, Solution, Wall, solve, write_fields
@@ -151,3 +151,13 @@ def test_missing_library_is_named(ring: Solution, tmp_path: Path, monkeypatch: p
     monkeypatch.setitem(__import__("sys").modules, "meshio", None)
     with pytest.raises(LibraryError, match=r"meshio: pip install"):
         write_fields(ring, tmp_path / "ring.vtu")
+
+
+def test_stress_with_nu_is_a_field_of_its_own(tmp_path: Path) -> None:
+    """Round bar, nu = 0.3: the published stress at the centre, and 3/2 V/A without nu."""
+    s = solved(ClosedLine.circle((0.0, 0.0), 1.0), nu=0.3)
+    write_fields(s, tmp_path / "bar.vtu", "mm")
+    got = probed(read_vtu(tmp_path / "bar.vtu"), [(0.0, 0.0)])
+    with_nu = got["shear stress of unit Vy with nu = 0.3, static field [1/mm^2]"][0]
+    assert_allclose(with_nu, (0.0, row("B01T")["value"] / math.pi, 0.0), rtol=0, atol=2e-3)
+    assert_allclose(got[STATIC_VY][0], (0.0, 1.5 / math.pi, 0.0), rtol=0, atol=2e-3)
