@@ -226,10 +226,10 @@ class FaultList:
         if near is not None and (match := nearest(*near)) is not None:
             hint = f"did you mean {quoted(match)}?"
             remedy = f"{remedy}; {hint}" if remedy else hint
-        text = self._key(path) if key is None else one_line(key)
+        text = self.key(path) if key is None else one_line(key)
         self._faults.append((path, Fault(self.file, text, found, allowed, remedy)))
 
-    def _key(self, path: KeyPath) -> str:
+    def key(self, path: KeyPath) -> str:
         """A key path as text, an alias in front of what follows it."""
         alias = self._aliases.get(path[:2])
         if alias is None:

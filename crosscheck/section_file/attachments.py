@@ -1,20 +1,19 @@
-"""What a section file puts on its walls: loads, cuts, probes, booms, corners, stated values, criteria."""
+"""What a section file puts on its walls: cuts, probes, booms, corners, stated values, criteria."""
 
 from __future__ import annotations
 
-from collections.abc import Collection, Iterable, Mapping
+from collections.abc import Collection, Mapping
 from itertools import chain
 from typing import Any
 
 from crosscheck.comparison.quantities import OF_A_LOAD, QUANTITIES, UNIT_LOADS
 from crosscheck.faults import FaultList, KeyPath, quoted
+from crosscheck.section_file.graph import SAME, WallGraph
 from crosscheck.section_file.model import (
     EVERY_BEND,
-    MIDLINE_SHEAR_CENTRE,
     BoomSpec,
     CornerSpec,
     CutSpec,
-    LoadSpec,
     Place,
     ProbeSpec,
     StatedSpec,
@@ -32,7 +31,7 @@ class AttachmentReader:
     numbers : resolves numbers and takes faults
     points : places of points that are without fault
     declared_points : all point names of the file, faulty ones too
-    walls : the walls; None when walls are faulty, so that no reference can be judged
+    graph : the walls; None when walls are faulty, so that no reference can be judged
     base_material, materials : for booms
     """
 
@@ -42,7 +41,7 @@ class AttachmentReader:
         numbers: Numbers,
         points: Mapping[str, Place],
         declared_points: Collection[str],
-        walls: Iterable[WallSpec] | None,
+        graph: WallGraph | None,
         base_material: str | None,
         materials: Collection[str],
     ) -> None:
@@ -51,76 +50,17 @@ class AttachmentReader:
         self.faults: FaultList = numbers.faults
         self.points = points
         self.declared_points = declared_points
+        self.pieces = {} if graph is None else graph.pieces
         self.walls: dict[str, list[WallSpec]] | None = None
-        if walls is not None:
+        if graph is not None:
             self.walls = {}
-            for wall in walls:
+            for wall in graph.walls:
                 # One of theory and one of FE may share a name.
                 self.walls.setdefault(wall.name, []).append(wall)
+            # A wall that placed profiles split goes by its whole name too.
+            self.walls |= {whole: self.walls[own[0].name] for whole, own in self.pieces.items()}
         self.base_material = base_material
         self.materials = materials
-
-    def loads(self) -> tuple[LoadSpec, ...]:
-        """Load cases in file order."""
-        loads = []
-        names: dict[str, int] = {}
-        for index, table in enumerate(self.document.get("loads", [])):
-            path: KeyPath = ("loads", index)
-            name = table.get("name")
-            if name in names:
-                self.faults.add(
-                    (*path, "name"), f"{quoted(name)} again (first at loads[{names[name]}])", "unique"
-                )
-            elif name in UNIT_LOADS:
-                self.faults.add((*path, "name"), quoted(name), "named otherwise: unit loads have this name")
-            elif name is not None:
-                names[name] = index
-            loads.append(self._load(path, str(name), table))
-        return tuple(loads)
-
-    def _load(self, path: KeyPath, name: str, table: Mapping[str, Any]) -> LoadSpec:
-        """One load case; faulty numbers are 0."""
-        number = self.numbers.number
-        shear = self.numbers.pair((*path, "shear"), table.get("shear"))
-        torque = number((*path, "torque"), table.get("torque"))
-        axial = number((*path, "axial"), table.get("axial"))
-        moment = self.numbers.pair((*path, "moment"), table.get("moment"))
-        bimoment = number((*path, "bimoment"), table.get("bimoment"))
-        through, through_point = self._through((*path, "through"), table.get("through"))
-        if shear is not None and any(shear) and "through" not in table:
-            remedy = f'coordinates [x, y], a point name or "{MIDLINE_SHEAR_CENTRE}"'
-            self.faults.add((*path, "through"), "nothing", "given with a shear", remedy)
-        given = {"shear": shear, "torque": torque, "axial": axial, "moment": moment, "bimoment": bimoment}
-        parts = [given[key] for key in given if key in table]
-        if not parts and not self.faults.any_at(path):
-            self.faults.add(path, "no force", "given a force", "give shear with through, or torque")
-        elif parts and None not in parts and not any(part not in (0.0, (0.0, 0.0)) for part in parts):
-            self.faults.add(path, "zero in every part", "a force other than zero")
-        return LoadSpec(
-            name=name,
-            shear=shear or (0.0, 0.0),
-            through=through,
-            torque=torque or 0.0,
-            axial=axial or 0.0,
-            moment=moment or (0.0, 0.0),
-            bimoment=bimoment or 0.0,
-            through_point=through_point,
-        )
-
-    def _through(self, path: KeyPath, raw: Any) -> tuple[Place | str | None, str | None]:
-        """Place or "midline shear centre", and the point's name where it was given by one."""
-        if raw is None:
-            return None, None
-        if isinstance(raw, list):
-            return self.numbers.pair(path, raw), None
-        if raw == MIDLINE_SHEAR_CENTRE:
-            return MIDLINE_SHEAR_CENTRE, None
-        if raw not in self.declared_points:
-            words = f'coordinates [x, y], a point of [points] or "{MIDLINE_SHEAR_CENTRE}"'
-            self.faults.add(
-                path, quoted(raw), words, near=(raw, (*self.declared_points, MIDLINE_SHEAR_CENTRE))
-            )
-        return self.points.get(raw), raw
 
     def cuts(self) -> tuple[CutSpec, ...]:
         """Cuts in file order, at most one per wall."""
@@ -129,9 +69,10 @@ class AttachmentReader:
             wall, at = self._place_on_wall(("cuts", index), table, "theory")
             if wall is None:
                 continue
+            wall, at = self._piece(wall, 0.0 if at is None else at)
             if wall in cuts:
                 self.faults.add(("cuts", index, "wall"), f"{quoted(wall)} again", "cut once")
-            cuts[wall] = CutSpec(wall, 0.0 if at is None else at)
+            cuts[wall] = CutSpec(wall, at)
         return tuple(cuts.values())
 
     def probes(self) -> tuple[ProbeSpec, ...]:
@@ -139,11 +80,12 @@ class AttachmentReader:
         probes: dict[str, ProbeSpec] = {}
         for index, table in enumerate(self.document.get("probes", [])):
             wall, at = self._place_on_wall(("probes", index), table, None)
+            pitch = self.numbers.number(("probes", index, "pitch"), table.get("pitch"), POSITIVE)
             label = table.get("label")
             if label in probes:
                 self.faults.add(("probes", index, "label"), f"{quoted(label)} again", "unique")
             elif label is not None and wall is not None:
-                probes[label] = ProbeSpec(label, wall, 0.0 if at is None else at)
+                probes[label] = ProbeSpec(label, *self._piece(wall, 0.0 if at is None else at), pitch)
         return tuple(probes.values())
 
     def _place_on_wall(
@@ -151,6 +93,13 @@ class AttachmentReader:
     ) -> tuple[str | None, float | None]:
         at = self.numbers.number((*path, "at"), table.get("at"), SHARE)
         return self._wall((*path, "wall"), table.get("wall"), side), at
+
+    def _piece(self, wall: str, at: float) -> tuple[str, float]:
+        """A place on a wall as one on its piece, where placed profiles split it."""
+        for piece in self.pieces.get(wall, ()):
+            if at <= piece.stop:
+                return piece.name, (at - piece.begin) / (piece.stop - piece.begin)
+        return wall, at
 
     def _wall(self, path: KeyPath, name: str | None, side: str | None) -> str | None:
         """The name of a wall, judged: it must exist, seen by a side ("both": by each; None: by any)."""
@@ -188,11 +137,19 @@ class AttachmentReader:
             elif wall is not None and (at is None) != (count is None):
                 self._wall((*path, "wall"), wall, seen_by)
                 fractions = self._fractions((*path, "at"), at, count)
-                booms += [BoomSpec(area, None, wall, each, material, seen_by) for each in fractions]
+                booms += [self._boom_on(wall, each, area, material, seen_by) for each in fractions]
             else:
                 keys = ", ".join(key for key in ("at", "wall", "count") if key in table) or "none of these"
                 self.faults.add(path, keys, "given by at = a point, by wall and at, or by wall and count")
         return tuple(booms)
+
+    def _boom_on(self, wall: str, at: float, area: float, material: str | None, seen_by: str) -> BoomSpec:
+        """A boom on a wall: at the point of a placed profile where it meets one."""
+        for piece in self.pieces.get(wall, ()):
+            for place, point in ((piece.begin, piece.start), (piece.stop, piece.end)):
+                if 0.0 < place < 1.0 and abs(at - place) <= SAME:
+                    return BoomSpec(area, point, material=material, seen_by=seen_by)
+        return BoomSpec(area, None, *self._piece(wall, at), material, seen_by)
 
     def _boom_point(self, path: KeyPath, point: str, seen_by: str) -> None:
         """Note a point at which a side that sees the boom has no wall."""
@@ -263,6 +220,8 @@ class AttachmentReader:
                 words = f"given for {quantity}, a quantity of a load"
                 self.faults.add((*path, "load"), "no load", words)
             source, level = table.get("source", ""), table.get("level")
+            if isinstance(datum, str) and datum in self.pieces:
+                datum = self.pieces[datum][0].name
             stated.append(StatedSpec(quantity, value or 0.0, source, tolerance, datum, load, level))
         return tuple(stated)
 

@@ -17,7 +17,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from crosscheck.faults import FaultList, quoted
-from crosscheck.section_file.graph import WallGraph, wall_length
+from crosscheck.section_file.graph import WallGraph, WallKey, wall_key, wall_length
 from crosscheck.section_file.model import Place, WallSpec, arc_angle
 from crosscheck.section_file.same_points import entry_path
 
@@ -33,14 +33,14 @@ _ROUNDS = 100
 class Taper:
     """Walls of one path, in its order, whose thickness is linear by length from first to last [L]."""
 
-    walls: tuple[str, ...]
+    walls: tuple[WallKey, ...]
     first: float
     last: float
 
 
 def midlines_from_faces(
     graph: WallGraph,
-    sides: Mapping[str, int],
+    sides: Mapping[WallKey, int],
     tapers: Sequence[Taper],
     axes: Collection[str],
     faults: FaultList,
@@ -50,7 +50,7 @@ def midlines_from_faces(
     Parameters
     ----------
     graph : points and walls as written; changed in place
-    sides : by the name of each wall that is given by a face, LEFT or RIGHT
+    sides : by the key of each wall that is given by a face, LEFT or RIGHT
     tapers : paths whose thickness is linear by length
     axes : "x", "y": axes on which points stay that lie on them, since their walls go on beyond
     faults : receives walls whose faces make no midline
@@ -74,10 +74,10 @@ def midlines_from_faces(
     return notes
 
 
-def _check_forms(graph: WallGraph, sides: Mapping[str, int], faults: FaultList) -> None:
+def _check_forms(graph: WallGraph, sides: Mapping[WallKey, int], faults: FaultList) -> None:
     """Note arcs whose face has no midline that is an arc."""
     for wall in graph.walls:
-        if wall.name not in sides or wall.arc_through is None:
+        if wall_key(wall) not in sides or wall.arc_through is None:
             continue
         start, end = graph.ends(wall)
         if wall.thickness[0] != wall.thickness[1]:
@@ -87,7 +87,7 @@ def _check_forms(graph: WallGraph, sides: Mapping[str, int], faults: FaultList) 
             continue
         centre, _, sweep = arc_angle(start, wall.arc_through, end)
         radius = math.dist(centre, start)
-        inside = sides[wall.name] * math.copysign(1.0, sweep) < 0.0
+        inside = sides[wall_key(wall)] * math.copysign(1.0, sweep) < 0.0
         if inside and radius <= 0.5 * wall.thickness[0]:
             found = (
                 f"an outer face of radius {radius:.4g} on {quoted(wall.name)}, {wall.thickness[0]:.4g} thick"
@@ -99,13 +99,13 @@ class _Offset:
     """Places of the midlines' points, found by iteration; places are (2,) arrays [L]."""
 
     def __init__(
-        self, graph: WallGraph, sides: Mapping[str, int], tapers: Sequence[Taper], axes: Collection[str]
+        self, graph: WallGraph, sides: Mapping[WallKey, int], tapers: Sequence[Taper], axes: Collection[str]
     ) -> None:
         self.graph = graph
         self.sides = sides
         self.tapers = tapers
-        self.by_name = {wall.name: wall for wall in graph.walls}
-        self.thickness = {wall.name: wall.thickness for wall in graph.walls}
+        self.by_key = {wall_key(wall): wall for wall in graph.walls}
+        self.thickness = {wall_key(wall): wall.thickness for wall in graph.walls}
         self.written: dict[str, Floats] = {name: np.array(graph.points[name]) for name in graph.used}
         self.place = dict(self.written)
         self.size = graph.extent
@@ -114,14 +114,16 @@ class _Offset:
             for end, name in enumerate((wall.start, wall.end)):
                 self.at_point.setdefault(name, []).append((wall, end))
         self.touched = [
-            name for name, met in self.at_point.items() if any(wall.name in sides for wall, _ in met)
+            name for name, met in self.at_point.items() if any(wall_key(wall) in sides for wall, _ in met)
         ]
         # Row of an axis: the coordinate that stays zero on it.
         self.on_axis = {
             name: [np.eye(2)[k] for axis, k in (("x", 1), ("y", 0)) if axis in axes and self._zero(name, k)]
             for name in self.touched
         }
-        self.circles = {wall.name: self._circle(wall) for wall in graph.walls if wall.arc_through is not None}
+        self.circles = {
+            wall_key(wall): self._circle(wall) for wall in graph.walls if wall.arc_through is not None
+        }
 
     def _zero(self, name: str, k: int) -> bool:
         return bool(abs(self.written[name][k]) <= 1e-9 * self.size)
@@ -147,13 +149,13 @@ class _Offset:
         """Thickness of tapered paths by the lengths of their midlines as they are now."""
         for taper in self.tapers:
             along = [0.0]
-            for name in taper.walls:
-                wall = self.by_name[name]
+            for key in taper.walls:
+                wall = self.by_key[key]
                 start, end = (self._as_place(p) for p in (wall.start, wall.end))
                 along.append(along[-1] + wall_length(start, end, self._arc_through(wall)))
             values = [taper.first + (taper.last - taper.first) * s / along[-1] for s in along]
-            for k, name in enumerate(taper.walls):
-                self.thickness[name] = (values[k], values[k + 1])
+            for k, key in enumerate(taper.walls):
+                self.thickness[key] = (values[k], values[k + 1])
 
     def _as_place(self, point: str) -> Place:
         x, y = self.place[point]
@@ -161,25 +163,25 @@ class _Offset:
 
     def _slope(self, wall: WallSpec) -> float:
         """Tangent of the angle from a straight wall's midline to its left face."""
-        first, last = self.thickness[wall.name]
+        first, last = self.thickness[wall_key(wall)]
         return 0.5 * (last - first) / float(np.hypot(*(self.place[wall.end] - self.place[wall.start])))
 
     def _normal(self, wall: WallSpec, at: Floats) -> Floats:
         """Unit left normal of the midline, for a place of its face at one of its ends."""
-        if wall.name in self.circles:
-            centre, _, turn = self.circles[wall.name]
+        if wall_key(wall) in self.circles:
+            centre, _, turn = self.circles[wall_key(wall)]
             out = at - centre
             return np.asarray(-turn * out / np.hypot(*out))
         along = self.written[wall.end] - self.written[wall.start]
-        back = complex(1.0, -self.sides[wall.name] * self._slope(wall))
+        back = complex(1.0, -self.sides[wall_key(wall)] * self._slope(wall))
         normal = complex(-along[1], along[0]) * back
         return np.array((normal.real, normal.imag)) / abs(normal)
 
     def _row(self, wall: WallSpec, end: int, at: Floats) -> tuple[Floats, float]:
         """Unit normal n and distance d [L]: n . step = d brings a place onto the wall's midline."""
-        half = 0.5 * self.thickness[wall.name][end] * self.sides.get(wall.name, 0)
-        if wall.name in self.circles:
-            centre, radius, turn = self.circles[wall.name]
+        half = 0.5 * self.thickness[wall_key(wall)][end] * self.sides.get(wall_key(wall), 0)
+        if wall_key(wall) in self.circles:
+            centre, radius, turn = self.circles[wall_key(wall)]
             out = at - centre
             distance = float(np.hypot(*out))
             return out / distance, radius + turn * half - distance
@@ -200,12 +202,12 @@ class _Offset:
         met = self.at_point[name]
         if len(met) == 1 and not self.on_axis[name]:
             (wall, end), written = met[0], self.written[name]
-            half = 0.5 * self.thickness[wall.name][end] * self.sides[wall.name]
+            half = 0.5 * self.thickness[wall_key(wall)][end] * self.sides[wall_key(wall)]
             return np.asarray(written - half * self._normal(wall, written))
         rows, distances = self._rows(name)
         left, size, right = np.linalg.svd(rows, full_matrices=False)
         steps = np.where(size > 1e-9 * size[0], (left.T @ distances) / np.maximum(size, 1e-300), 0.0)
-        thickest = max(max(self.thickness[wall.name]) for wall, _ in met)
+        thickest = max(max(self.thickness[wall_key(wall)]) for wall, _ in met)
         new = self.place[name] + right.T @ steps
         if np.hypot(*(new - self.written[name])) > FARTHEST * thickest:
             new = self.place[name] + right[0] * steps[0]
@@ -213,10 +215,10 @@ class _Offset:
 
     def _arc_through(self, wall: WallSpec) -> Place | None:
         """Third place of the midline's arc."""
-        if wall.arc_through is None or wall.name not in self.sides:
+        if wall.arc_through is None or wall_key(wall) not in self.sides:
             return wall.arc_through
-        centre, radius, turn = self.circles[wall.name]
-        middle = radius + 0.5 * turn * self.sides[wall.name] * self.thickness[wall.name][0]
+        centre, radius, turn = self.circles[wall_key(wall)]
+        middle = radius + 0.5 * turn * self.sides[wall_key(wall)] * self.thickness[wall_key(wall)][0]
         x, y = centre + (np.array(wall.arc_through) - centre) * (middle / radius)
         return float(x), float(y)
 
@@ -238,10 +240,10 @@ class _Offset:
             miss = float(np.abs(distances).max())
             if miss <= 1e-9 * self.size:
                 continue
-            thinnest = min(min(self.thickness[wall.name]) for wall, _ in self.at_point[name])
+            thinnest = min(min(self.thickness[wall_key(wall)]) for wall, _ in self.at_point[name])
             if self.on_axis[name] or miss > 0.5 * thinnest:
                 found = f"midlines that pass {quoted(name)} at distances up to {miss:.4g}"
-                wall = next(w for w, _ in self.at_point[name] if w.name in self.sides)
+                wall = next(w for w, _ in self.at_point[name] if wall_key(w) in self.sides)
                 words = "faces whose midlines meet in one point, within half the thinnest wall there"
                 remedy = 'give the walls there by their midlines (line = "midline")'
                 faults.add(entry_path(wall, "line"), found, words, remedy)
@@ -259,6 +261,6 @@ class _Offset:
     def walls(self) -> list[WallSpec]:
         """The walls with arcs and thicknesses of their midlines."""
         return [
-            replace(wall, thickness=self.thickness[wall.name], arc_through=self._arc_through(wall))
+            replace(wall, thickness=self.thickness[wall_key(wall)], arc_through=self._arc_through(wall))
             for wall in self.graph.walls
         ]

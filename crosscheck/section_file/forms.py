@@ -11,7 +11,7 @@ from pydantic_core import ErrorDetails
 
 from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
 from crosscheck.section_file import schema
-from crosscheck.section_file.keys import ENTRY_LIMITS, refuse_unbuilt
+from crosscheck.section_file.keys import ENTRY_LIMITS, TABLES_OF_FREE_NAMES, refuse_unbuilt
 from crosscheck.units import UNIT_SYSTEMS
 
 _TABLES: Mapping[str, type[BaseModel]] = {
@@ -21,9 +21,12 @@ _TABLES: Mapping[str, type[BaseModel]] = {
     "walls.thickness": schema.TaperTable,
     "walls.arc": schema.ArcTable,
     "walls.direct_share": schema.ShareTable,
+    "profiles.*": schema.ProfileTable,
+    "placed": schema.PlacedTable,
     "booms": schema.BoomTable,
     "corners.*": schema.CornerTable,
     "loads": schema.LoadTable,
+    "load_reference": schema.LoadReferenceTable,
     "cuts": schema.CutTable,
     "probes": schema.ProbeTable,
     "stated": schema.StatedTable,
@@ -177,7 +180,9 @@ def _is_about_key(details: ErrorDetails) -> bool:
 def _pattern(path: KeyPath) -> str:
     """A key path without indices, free names as *."""
     parts = [part for part in path if isinstance(part, str)]
-    if len(parts) > 1 and parts[0] in ("materials", "corners", "points", "parameters", "criteria"):
+    if len(parts) > 2 and parts[0] == "profiles":
+        return _pattern(path[2:])  # points and walls of a profile are as those of the file
+    if len(parts) > 1 and parts[0] in TABLES_OF_FREE_NAMES:
         parts[1] = "*"
     return ".".join(parts)
 

@@ -8,6 +8,9 @@ from dataclasses import dataclass, field
 
 from crosscheck.section_file.model import Place, WallSpec, arc_angle
 
+# Fractions of a wall's length nearer than this are one place.
+SAME = 1e-9
+
 
 @dataclass(frozen=True)
 class Piece:
@@ -19,6 +22,19 @@ class Piece:
     stop: float
     start: str
     end: str
+
+
+WallKey = tuple[str, str]
+
+
+def wall_key(wall: WallSpec) -> WallKey:
+    """What tells a wall from all others: one of theory and one of FE may share a name."""
+    return wall.name, wall.seen_by
+
+
+def sides_of(wall: WallSpec) -> tuple[str, ...]:
+    """The sides that see a wall."""
+    return ("theory", "fe") if wall.seen_by == "both" else (wall.seen_by,)
 
 
 @dataclass

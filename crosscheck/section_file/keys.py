@@ -12,7 +12,6 @@ from crosscheck.faults import FaultList, KeyPath, shown
 # "key" is the key itself, indices and free names left out; "key{}" its form as a table;
 # 'key="text"' one of its values. The text beside it says what works today.
 NOT_BUILT: dict[str, str] = {
-    "mirror": "write every point and wall",  # reserved
     "tables.points": "write points in this file; loads may come from a table",  # reserved
     "tolerances": "leave the table out",  # reserved
     "allowables": "leave the table out",  # reserved
@@ -30,6 +29,8 @@ ENTRY_LIMITS: dict[str, int] = {
     "materials": 1_000,
     "points": 2 * WALL_LIMIT,
     "walls": WALL_LIMIT,
+    "profiles": 100,
+    "placed": 1_000,
     "booms": 20_000,
     "corners": 2 * WALL_LIMIT,
     "loads": 1_000,
@@ -40,7 +41,7 @@ NUMBER_LIMIT = 1e30  # magnitude of a number; its inverse is the smallest other 
 OFFSET_LIMIT = 1e6  # distance from the origin over the overall dimension: digits are lost beyond
 SLENDERNESS_LIMIT = 1e6  # overall dimension over the thinnest wall
 
-_TABLES_OF_FREE_NAMES = ("parameters", "materials", "points", "corners", "criteria")
+TABLES_OF_FREE_NAMES = ("parameters", "materials", "points", "corners", "criteria", "profiles")
 
 
 def refuse_unbuilt(document: dict[str, Any], faults: FaultList) -> None:
@@ -76,6 +77,6 @@ def _nodes(path: KeyPath, node: Any, depth: int) -> Iterator[tuple[KeyPath, dict
 def _pattern(path: KeyPath) -> str:
     """A key path without indices and free names, as NOT_BUILT spells it."""
     parts = [part for part in path if isinstance(part, str)]
-    if len(parts) > 1 and parts[0] in _TABLES_OF_FREE_NAMES:
+    if len(parts) > 1 and parts[0] in TABLES_OF_FREE_NAMES:
         parts[1] = "*"
     return ".".join(parts)

@@ -91,11 +91,14 @@ def section_from(
     from crosscheck.section_file.attachments import AttachmentReader
     from crosscheck.section_file.faces import midlines_from_faces
     from crosscheck.section_file.forms import well_formed
-    from crosscheck.section_file.geometry import GeometryCheck
+    from crosscheck.section_file.geometry import GeometryCheck, seen_by
     from crosscheck.section_file.graph import WallGraph
+    from crosscheck.section_file.loads import LoadReader
     from crosscheck.section_file.materials import read_materials
+    from crosscheck.section_file.mirror import Mirror, mirror_axes
     from crosscheck.section_file.numbers import Numbers
     from crosscheck.section_file.points import read_points
+    from crosscheck.section_file.profiles import ProfilePlacer, read_profiles
     from crosscheck.section_file.tables import with_tables
     from crosscheck.section_file.unwalled import section_outline
     from crosscheck.section_file.walls import WallReader
@@ -108,25 +111,32 @@ def section_from(
     numbers = Numbers(faults, document.get("parameters", {}), overrides, _names(given, "parameters"))
     material_names, point_names = _names(given, "materials"), _names(given, "points")
     materials, base_material = read_materials(document, material_names, numbers, notes)
-    points = read_points(document, numbers)
+    points = read_points(document.get("points", {}), numbers)
     reader = WallReader(numbers, points, point_names, material_names, base_material)
     graph = WallGraph(points, *reader.read(document.get("walls", [])))
-    written = dict(points)  # as the file has them, before faces are turned into midlines
-    notes += midlines_from_faces(graph, reader.faces, reader.tapers, (), faults)
     complete = reader.complete and ("walls" in document or "outline" in document)
+    written = dict(points)  # as the file has them, before faces are turned into midlines
+    before = len(faults) + faults.left_out
+    axes = mirror_axes(document.get("mirror", {}).get("about", ()))
+    notes += midlines_from_faces(graph, reader.faces, reader.tapers, axes, faults)
+    profiles = read_profiles(document, numbers, material_names, base_material)
+    placer = ProfilePlacer(graph, numbers, profiles, _names(given, "profiles"), base_material)
+    placer.place(document.get("placed", []))
+    mirrors = [Mirror(axis, len(axes) == 1) for axis in axes]
+    for mirror in mirrors:
+        mirror.double(graph, faults)
+    complete = complete and len(faults) + faults.left_out == before
+    places, all_points = {**graph.points, **written}, {**point_names, **dict.fromkeys(graph.points)}
+    loads = LoadReader(document, numbers, places, all_points).loads()
     attachments = AttachmentReader(
-        document,
-        numbers,
-        written,
-        point_names,
-        graph.walls if complete else None,
-        base_material,
-        material_names,
+        document, numbers, places, all_points, graph if complete else None, base_material, material_names
     )
-    loads, cuts = attachments.loads(), attachments.cuts()
-    probes, booms = attachments.probes(), attachments.booms()
-    corners, stated = attachments.corners(), attachments.stated()
-    criteria = attachments.criteria(notes)
+    cuts, probes, corners = attachments.cuts(), attachments.probes(), attachments.corners()
+    booms = (*attachments.booms(), *placer.booms)
+    stated, criteria = attachments.stated(), attachments.criteria(notes)
+    for mirror in mirrors:
+        booms, corners = mirror.booms(booms, graph), mirror.corners(corners)
+        cuts, probes = mirror.cuts(cuts, seen_by(graph.walls, "theory")), mirror.probes(probes, faults)
     load_points = [load.through_point for load in loads if load.through_point is not None]
     notes += GeometryCheck(graph.walls, graph.named, points, faults).run(
         cuts, complete, load_points, outlined="outline" in document

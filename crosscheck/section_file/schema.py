@@ -103,9 +103,16 @@ Level = Annotated[
     PlainValidator(_choice("midline", "corrected", "lumped")),
     _choice_schema("midline", "corrected", "lumped"),
 ]
+AxisDirection = Annotated[
+    Any, PlainValidator(_choice("+x", "-x", "+y", "-y")), _choice_schema("+x", "-x", "+y", "-y")
+]
 Pair = Annotated[list[Number], Field(min_length=2, max_length=2)]
 PlaceOrName = Annotated[
     Annotated[Pair, Tag(_LIST)] | Annotated[Name, Tag(_TEXT)], Discriminator(_list_or_text)
+]
+NameOrList = Annotated[
+    Annotated[Name, Tag(_TEXT)] | Annotated[list[Name], Field(min_length=1), Tag(_LIST)],
+    Discriminator(_list_or_text),
 ]
 NumberOrList = Annotated[
     Annotated[Number, Tag(_ONE)] | Annotated[list[Number], Field(min_length=1), Tag(_LIST)],
@@ -184,6 +191,35 @@ class WallTable(_Table):
     material: Name = Field(default=_ABSENT, description="a material of [materials]")
 
 
+class ProfileTable(_Table):
+    """A profile to be placed on walls, drawn standing on the left of a wall along its x axis."""
+
+    points: dict[Name, Pair] = Field(
+        description="places [L]; the first is the foot, those with y = 0 are feet"
+    )
+    walls: list[WallTable] = Field(min_length=1, description="as [[walls]]")
+
+
+class PlacedTable(_Table):
+    """A profile placed along walls, which it splits."""
+
+    profile: Name = Field(description="a profile of [profiles]")
+    wall: NameOrList = Field(description="the wall that carries it, or several, one after another")
+    at: NumberOrList = Field(default=_ABSENT, description="fractions of the wall's length [-]")
+    count: Count = Field(default=_ABSENT, description="so many, evenly spaced between the ends of the wall")
+    angle: Number = Field(
+        default=90, description="from the wall's direction to the profile's y axis, degrees"
+    )
+    side: Annotated[Any, PlainValidator(_choice("left", "right")), _choice_schema("left", "right")] = Field(
+        default="left", description="side of the wall in its direction; right is the mirror image"
+    )
+    seen_by: Sides = Field(default="both", description="which side sees the profile's walls")
+    boom: Number = Field(
+        default=_ABSENT,
+        description="area of a boom at the foot that theory sees instead, FE alone sees the walls [L^2]",
+    )
+
+
 class BoomTable(_Table):
     """Concentrated areas at a point or along a wall."""
 
@@ -221,6 +257,22 @@ class LoadTable(_Table):
     axial: Number = Field(default=_ABSENT, description="axial force at the centroid, tension positive [F]")
     moment: Pair = Field(default=_ABSENT, description="Mx puts +y in tension, My puts +x in tension [F L]")
     bimoment: Number = Field(default=_ABSENT, description="bimoment [F L^2]")
+    kind: Annotated[
+        Any, PlainValidator(_choice("limit", "ultimate")), _choice_schema("limit", "ultimate")
+    ] = Field(default=_ABSENT, description="a label that is echoed; nothing is multiplied")
+
+
+class LoadReferenceTable(_Table):
+    """What loads that do not say through are given about."""
+
+    at: PlaceOrName = Field(
+        description='where their shear acts: coordinates [L], a point, or "midline shear centre"'
+    )
+    x_axis: AxisDirection = Field(default="+x", description="what their x is in the file's axes")
+    y_axis: AxisDirection = Field(default="+y", description="what their y is in the file's axes")
+    axial_at: Annotated[Any, PlainValidator(_choice("centroid")), _choice_schema("centroid")] = Field(
+        default=_ABSENT, description="says that their axial force acts at the centroid"
+    )
 
 
 class CutTable(_Table):
@@ -236,6 +288,9 @@ class ProbeTable(_Table):
     label: Name = Field(description="name of the place")
     wall: Name = Field(description="the wall it lies on")
     at: Number = Field(description="fraction of its length, 0 to 1 [-]")
+    pitch: Number = Field(
+        default=_ABSENT, description="distance of its fasteners: fastener load is flow times pitch [L]"
+    )
 
 
 class StatedTable(_Table):
@@ -255,7 +310,15 @@ class StatedTable(_Table):
 class MirrorTable(_Table):
     """Everything in the file doubled about an axis."""
 
-    about: Annotated[Any, PlainValidator(_choice("x", "y", "xy")), _choice_schema("x", "y", "xy")]
+    about: Annotated[
+        Annotated[Any, PlainValidator(_choice("x", "y", "xy")), _choice_schema("x", "y", "xy"), Tag(_TEXT)]
+        | Annotated[
+            list[Annotated[Any, PlainValidator(_choice("x", "y")), _choice_schema("x", "y")]],
+            Field(min_length=1, max_length=2),
+            Tag(_LIST),
+        ],
+        Discriminator(_list_or_text),
+    ] = Field(description="the axis, or both: points on it are shared")
 
 
 class TablesTable(_Table):
@@ -307,9 +370,14 @@ class SectionDocument(_Table):
     materials: dict[Name, MaterialTable] = Field(default_factory=dict)
     points: dict[Name, Pair] = Field(default_factory=dict, description="places [L]")
     walls: list[WallTable] = Field(default_factory=list, min_length=1)
+    profiles: dict[Name, ProfileTable] = Field(
+        default_factory=dict, description="profiles that [[placed]] puts on walls"
+    )
+    placed: list[PlacedTable] = Field(default_factory=list)
     booms: list[BoomTable] = Field(default_factory=list)
     corners: dict[Name, CornerTable] = Field(default_factory=dict)
     loads: list[LoadTable] = Field(default_factory=list)
+    load_reference: LoadReferenceTable = Field(default=_ABSENT)
     cuts: list[CutTable] = Field(default_factory=list)
     probes: list[ProbeTable] = Field(default_factory=list)
     stated: list[StatedTable] = Field(default_factory=list)

@@ -13,7 +13,7 @@ from crosscheck.section_file.numbers import Numbers
 if TYPE_CHECKING:
     from crosscheck.section_file.outline import ReadOutline
 
-ON_WALLS = ("booms", "corners", "cuts", "probes")
+ON_WALLS = ("booms", "corners", "cuts", "probes", "placed", "mirror")
 
 
 def section_outline(

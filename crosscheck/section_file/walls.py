@@ -10,7 +10,7 @@ from typing import Any
 
 from crosscheck.faults import KeyPath, key_text, quoted, shown
 from crosscheck.section_file.faces import LEFT, RIGHT, Taper
-from crosscheck.section_file.graph import wall_length
+from crosscheck.section_file.graph import WallKey, sides_of, wall_key, wall_length
 from crosscheck.section_file.keys import WALL_LIMIT
 from crosscheck.section_file.model import (
     Place,
@@ -50,7 +50,7 @@ class WallReader:
 
     Attributes
     ----------
-    faces : LEFT or RIGHT by the name of each wall that is given by a face
+    faces : LEFT or RIGHT by the key of each wall that is given by a face
     tapers : paths whose thickness is linear by length
     """
 
@@ -70,7 +70,7 @@ class WallReader:
         self.declared_materials = declared_materials
         self.base_material = base_material
         self.prefix = prefix
-        self.faces: dict[str, int] = {}
+        self.faces: dict[WallKey, int] = {}
         self.tapers: list[Taper] = []
         self.complete = True  # False once an entry gave no walls
 
@@ -88,7 +88,7 @@ class WallReader:
         named: dict[str, bool] = {}
         for index, entry in enumerate(entries):
             for wall in self._entry(index, entry):
-                sides = ("theory", "fe") if wall.seen_by == "both" else (wall.seen_by,)
+                sides = sides_of(wall)
                 first = next((seen[side, wall.name] for side in sides if (side, wall.name) in seen), None)
                 if first is not None:
                     self._repeated_name(index, entry, wall, first, named[wall.name])
@@ -152,10 +152,10 @@ class WallReader:
             )
             walls.append(wall)
             if entry.get("line", "midline") != "midline":
-                self.faces[wall.name] = LEFT if entry["line"] == "left face" else RIGHT
+                self.faces[wall_key(wall)] = LEFT if entry["line"] == "left face" else RIGHT
         if isinstance(entry.get("thickness"), dict) and walls:
             ends = walls[0].thickness[0], walls[-1].thickness[1]
-            self.tapers.append(Taper(tuple(wall.name for wall in walls), *ends))
+            self.tapers.append(Taper(tuple(wall_key(wall) for wall in walls), *ends))
         return walls
 
     def _note_other_faults(

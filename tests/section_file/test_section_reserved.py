@@ -14,7 +14,6 @@ GOOD = (
 )
 
 NOT_BUILT_LINES = [
-    (GOOD + '[mirror]\nabout = "x"\n', "mirror"),
     (GOOD + '[tables]\npoints = "p.csv"\n', "tables.points"),
     (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
     (GOOD + "[allowables]\nshear = 100\n", "allowables"),
