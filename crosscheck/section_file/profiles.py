@@ -60,6 +60,8 @@ def read_profiles(
         reader = WallReader(numbers, points, drawn, materials, base_material, (*path, "walls"))
         graph = WallGraph(points, *reader.read(table.get("walls", [])))
         first = next(iter(drawn), None)
+        if len(faults) + faults.left_out > before:
+            continue
         if first in points and (points[first][1] != 0.0 or first not in graph.used):
             found = f"{quoted(first)} at y = {points[first][1]:.6g}" if points[first][1] else quoted(first)
             words = "a table whose first point is the foot: y = 0, and an end of one of its walls"

@@ -225,9 +225,8 @@ class WallReader:
         for position, point in enumerate(points):
             here = (*path, position)
             if point not in self.declared_points:
-                self.faults.add(
-                    here, quoted(point), "a point of [points]", near=(point, self.declared_points)
-                )
+                words = "a point of [points]" if self.prefix == ("walls",) else "a point of the profile"
+                self.faults.add(here, quoted(point), words, near=(point, self.declared_points))
             if position and point == points[position - 1]:
                 self.faults.add(
                     here, f"{quoted(point)} twice in a row", "a point other than the one before it"
