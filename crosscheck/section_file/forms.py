@@ -12,6 +12,7 @@ from pydantic_core import ErrorDetails
 from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
 from crosscheck.section_file import schema
 from crosscheck.section_file.keys import ENTRY_LIMITS, TABLES_OF_FREE_NAMES, refuse_unbuilt
+from crosscheck.section_file.schema_values import UNION_TAGS
 from crosscheck.units import UNIT_SYSTEMS
 
 _TABLES: Mapping[str, type[BaseModel]] = {
@@ -32,6 +33,11 @@ _TABLES: Mapping[str, type[BaseModel]] = {
     "stated": schema.StatedTable,
     "mirror": schema.MirrorTable,
     "tables": schema.TablesTable,
+    "tolerances": schema.TolerancesTable,
+    "allowables": schema.AllowablesTable,
+    "allowables.walls.*": schema.AllowableTable,
+    "document": schema.DocumentTable,
+    "document.changes": schema.ChangeTable,
 }
 _UNITS_TEXT = ", ".join(quoted(name) for name in UNIT_SYSTEMS)
 # What is asked for where the key alone says more than the kind of value.
@@ -168,7 +174,7 @@ def key_place(path: KeyPath) -> str:
 
 def _path(details: ErrorDetails) -> KeyPath:
     """Key path of an error, without the tags of unions."""
-    parts = [part for part in details["loc"] if part not in schema.UNION_TAGS]
+    parts = [part for part in details["loc"] if part not in UNION_TAGS]
     return tuple(parts[:-1]) if _is_about_key(details) else tuple(parts)
 
 
@@ -184,6 +190,8 @@ def _pattern(path: KeyPath) -> str:
         return _pattern(path[2:])  # points and walls of a profile are as those of the file
     if len(parts) > 1 and parts[0] in TABLES_OF_FREE_NAMES:
         parts[1] = "*"
+    if parts[:2] == ["allowables", "walls"] and len(parts) > 2:
+        parts[2] = "*"
     return ".".join(parts)
 
 

@@ -46,12 +46,14 @@ class WallGraph:
     points : places [L] by name
     walls : in file order
     named : for every wall's name whether the file gave it
+    paths : names of the walls of every path of several, by the name of the path
     pieces : of walls that were split, by the name of the whole wall, in its direction
     """
 
     points: dict[str, Place]
     walls: list[WallSpec]
     named: dict[str, bool]
+    paths: dict[str, tuple[str, ...]] = field(default_factory=dict)
     pieces: dict[str, tuple[Piece, ...]] = field(default_factory=dict)
 
     @property
@@ -75,6 +77,15 @@ class WallGraph:
     def used(self) -> dict[str, None]:
         """Names of the points that walls end at."""
         return dict.fromkeys(name for wall in self.walls for name in (wall.start, wall.end))
+
+    def walls_of(self, name: str) -> list[str]:
+        """Names of the walls that the name of a wall, a whole wall or a path stands for; none if unknown."""
+        names = self.paths.get(name, (name,))
+        names = tuple(piece for each in names for piece in self._pieces_of(each))
+        return [each for each in names if each in self.named]
+
+    def _pieces_of(self, name: str) -> tuple[str, ...]:
+        return tuple(piece.name for piece in self.pieces[name]) if name in self.pieces else (name,)
 
     def ends(self, wall: WallSpec) -> tuple[Place, Place]:
         """Places of both ends of a wall [L]."""

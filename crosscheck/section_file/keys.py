@@ -13,9 +13,6 @@ from crosscheck.faults import FaultList, KeyPath, shown
 # 'key="text"' one of its values. The text beside it says what works today.
 NOT_BUILT: dict[str, str] = {
     "tables.points": "write points in this file; loads may come from a table",  # reserved
-    "tolerances": "leave the table out",  # reserved
-    "allowables": "leave the table out",  # reserved
-    "document": "leave the table out",  # reserved
 }
 
 # Limits of one file; a fault names the limit that is passed.

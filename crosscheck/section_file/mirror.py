@@ -132,6 +132,8 @@ class Mirror:
             graph.named[wall.name] = graph.named[wall.name] or ends == (wall.start, wall.end)
             graph.named[image] = graph.named[wall.name]
             graph.walls.append(replace(wall, name=image, start=ends[0], end=ends[1], arc_through=through))
+        for path, walls in list(graph.paths.items()):
+            graph.paths[self.name(path)] = tuple(self.walls.get(name, self.name(name)) for name in walls)
         for whole, pieces in list(graph.pieces.items()):
             if self.walls[pieces[0].name] == pieces[0].name:
                 continue

@@ -25,6 +25,7 @@ ANY = Bound("a number", lambda value: True)
 POSITIVE = Bound("> 0", lambda value: value > 0.0)
 NOT_NEGATIVE = Bound(">= 0", lambda value: value >= 0.0)
 SHARE = Bound("from 0 to 1", lambda value: 0.0 <= value <= 1.0)
+BELOW_ONE = Bound("> 0 and < 1", lambda value: 0.0 < value < 1.0)
 ANGLE = Bound("from 1 to 179 degrees", lambda value: 1.0 <= value <= 179.0)
 POISSON = Bound("> -1 and <= 0.5", lambda value: -1.0 < value <= 0.5)
 

@@ -88,6 +88,7 @@ def section_from(
     SectionFaults : all faults at once, in the file's order
     """
     # pydantic and numpy load here, so that help and faults of the command line stay quick.
+    from crosscheck.section_file.allowables import read_allowables
     from crosscheck.section_file.attachments import AttachmentReader
     from crosscheck.section_file.faces import midlines_from_faces
     from crosscheck.section_file.forms import well_formed
@@ -100,6 +101,7 @@ def section_from(
     from crosscheck.section_file.points import read_points
     from crosscheck.section_file.profiles import ProfilePlacer, read_profiles
     from crosscheck.section_file.tables import with_tables
+    from crosscheck.section_file.tolerances import read_tolerances
     from crosscheck.section_file.unwalled import section_outline
     from crosscheck.section_file.walls import WallReader
 
@@ -113,7 +115,7 @@ def section_from(
     materials, base_material = read_materials(document, material_names, numbers, notes)
     points = read_points(document.get("points", {}), numbers)
     reader = WallReader(numbers, points, point_names, material_names, base_material)
-    graph = WallGraph(points, *reader.read(document.get("walls", [])))
+    graph = WallGraph(points, *reader.read(document.get("walls", [])), reader.paths)
     complete = reader.complete and ("walls" in document or "outline" in document)
     written = dict(points)  # as the file has them, before faces are turned into midlines
     before = len(faults) + faults.left_out
@@ -134,8 +136,10 @@ def section_from(
     cuts, probes, corners = attachments.cuts(), attachments.probes(), attachments.corners()
     booms = (*attachments.booms(), *placer.booms)
     stated, criteria = attachments.stated(), attachments.criteria(notes)
+    allowables = read_allowables(document, numbers, graph if complete else None)
     for mirror in mirrors:
         booms, corners = mirror.booms(booms, graph), mirror.corners(corners)
+        allowables = mirror.allowables(allowables)
         cuts, probes = mirror.cuts(cuts, seen_by(graph.walls, "theory")), mirror.probes(probes, faults)
     load_points = [load.through_point for load in loads if load.through_point is not None]
     notes += GeometryCheck(graph.walls, graph.named, points, faults).run(
@@ -143,6 +147,7 @@ def section_from(
     )
     folder = Path(source.path).parent
     outline = section_outline(document, folder, units[0], numbers, materials, loads)
+    tolerances = read_tolerances(document, numbers)
     faults.raise_any(given)
     tables = {table.name: table.sha256 for table in source.tables.values()}
     if outline is not None:
@@ -170,6 +175,9 @@ def section_from(
         probes=probes,
         stated=stated,
         criteria=criteria,
+        allowables=allowables,
+        tolerances=tolerances,
+        document=document.get("document", {}),
         notes=tuple(notes),
         tables=tables,
         outline=None if outline is None else outline.solid,

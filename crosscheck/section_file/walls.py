@@ -52,6 +52,7 @@ class WallReader:
     ----------
     faces : LEFT or RIGHT by the key of each wall that is given by a face
     tapers : paths whose thickness is linear by length
+    paths : names of the walls of every named path of several, by the name of the path
     """
 
     def __init__(
@@ -72,6 +73,7 @@ class WallReader:
         self.prefix = prefix
         self.faces: dict[WallKey, int] = {}
         self.tapers: list[Taper] = []
+        self.paths: dict[str, tuple[str, ...]] = {}
         self.complete = True  # False once an entry gave no walls
 
     def read(self, entries: Sequence[Mapping[str, Any]]) -> tuple[list[WallSpec], dict[str, bool]]:
@@ -153,6 +155,8 @@ class WallReader:
             walls.append(wall)
             if entry.get("line", "midline") != "midline":
                 self.faces[wall_key(wall)] = LEFT if entry["line"] == "left face" else RIGHT
+        if name is not None and several:
+            self.paths[name] = tuple(wall.name for wall in walls)
         if isinstance(entry.get("thickness"), dict) and walls:
             ends = walls[0].thickness[0], walls[-1].thickness[1]
             self.tapers.append(Taper(tuple(wall_key(wall) for wall in walls), *ends))

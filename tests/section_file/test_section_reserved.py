@@ -15,9 +15,6 @@ GOOD = (
 
 NOT_BUILT_LINES = [
     (GOOD + '[tables]\npoints = "p.csv"\n', "tables.points"),
-    (GOOD + "[tolerances]\nthickness = 0.1\n", "tolerances"),
-    (GOOD + "[allowables]\nshear = 100\n", "allowables"),
-    (GOOD + '[document]\nauthor = "x"\n', "document"),
 ]
 
 
