@@ -109,10 +109,9 @@ def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
     cut_vertices: dict[EndKey, Index] = {}
     bends: list[Bend] = []
     labels = [cluster_label(c) for c in parts.clusters] + [strip_label(w) for w in parts.strips]
-    seams_of = solid.seams
     prepared = [
-        boundary_points(c, _least_width(c, thickness), density.finer(levels.get(label, 0)), lines or ())
-        for c, label, lines in zip(parts.clusters, labels, seams_of, strict=False)
+        boundary_points(c, _least_width(c, thickness), density.finer(levels.get(label, 0)), among.seams)
+        for c, label, among in zip(parts.clusters, labels, solid.splits, strict=False)
     ]
     fillings = fill([p.region for p in prepared])
     for i, (cluster, points, filled) in enumerate(zip(parts.clusters, prepared, fillings, strict=True)):
@@ -125,7 +124,8 @@ def mesh(solid: Outline, density: Density, levels: Mapping[str, float]) -> Mesh:
             cluster,
             filled.triangles,
             filled.vertices,
-            _seam_edges(points.region.lines, seams_of[i]),
+            solid.splits[i],
+            _seam_edges(points.region.lines, solid.splits[i].seams),
             {(int(a), int(b)): key for key, at in points.cuts.items() for a, b in pairwise(at)},
             solid.bands,
         )
@@ -192,12 +192,8 @@ def _least_width(cluster: Cluster, thickness: Mapping[str, float]) -> float:
     return min([*(thickness[p] for p in cluster.points), *widths])
 
 
-def _seam_edges(
-    lines: Sequence[tuple[int, ...]], of: Sequence[Seam] | None
-) -> dict[tuple[int, int], str] | None:
-    """The wall to the left of every directed edge along seams; None where there are no seams to go by."""
-    if of is None:
-        return None
+def _seam_edges(lines: Sequence[tuple[int, ...]], of: Sequence[Seam]) -> dict[tuple[int, int], str]:
+    """The wall to the left of every directed edge along seams."""
     made: dict[tuple[int, int], str] = {}
     for row, seam in zip(lines, of, strict=True):
         for a, b in pairwise(row):

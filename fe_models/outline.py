@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field
+from collections.abc import Iterable, Iterator, Mapping
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
@@ -17,7 +17,7 @@ from .errors import OutlineError
 from .joint import Joint, joints
 from .partition import Partition, partition, solid
 from .rings import rings
-from .seams import Seam, seams
+from .seams import Split, split
 from .section import Section
 
 # More walls than this are refused: each joint is meshed on its own.
@@ -76,13 +76,9 @@ class Outline:
     moduli: Mapping[str, tuple[float, float]]
 
     @cached_property
-    def seams(self) -> list[list[Seam] | None]:
-        """Lines that split each cluster between walls of different moduli; None where none can be drawn."""
-
-        def differ(a: str, b: str) -> bool:
-            return self.moduli[a] != self.moduli[b]
-
-        return [seams(c, self.joints, differ) for c in self.parts.clusters]
+    def splits(self) -> list[Split]:
+        """How each cluster is split between walls of different moduli."""
+        return [split(c, self.joints, self.moduli) for c in self.parts.clusters]
 
     @property
     def chorded(self) -> bool:
@@ -147,7 +143,8 @@ def outline(section: Section) -> Outline:
         )
     extent = float(np.ptp(found[0], axis=0).max())
     moduli = {w.name: (w.e * w.direct_share, w.g) for w in section.walls}
-    return Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts), moduli)
+    made = Outline(section, bands, at, parts, tuple(found), extent, _notes(at, parts), moduli)
+    return replace(made, notes=(*made.notes, *_ownership_notes(made)))
 
 
 def _notes(at: dict[str, Joint], parts: Partition) -> tuple[str, ...]:
@@ -163,6 +160,16 @@ def _notes(at: dict[str, Joint], parts: Partition) -> tuple[str, ...]:
         if cluster.walls:
             made.append(f"meshed as part of its joint, without a strip: {', '.join(cluster.walls)}")
     return tuple(made)
+
+
+def _ownership_notes(made: Outline) -> Iterator[str]:
+    """Joints of walls with different moduli that no line splits."""
+    for cluster, among in zip(made.parts.clusters, made.splits, strict=True):
+        place = " ".join(cluster.points)
+        if among.whole is not None:
+            yield f"materials: the joint at {place} belongs whole to {among.whole}"
+        elif among.nearest:
+            yield f"materials: in the joint at {place} each element belongs to the nearest wall, an estimate"
 
 
 def _loops(at: dict[str, Joint], bands: dict[str, Band], parts: Partition) -> list[Array]:

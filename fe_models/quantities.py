@@ -31,11 +31,12 @@ def quantities(fields: Fields, solid: Outline) -> dict[str, Interval]:
     warping constant is an estimate.
     """
     basis = "bound on the interpolated outline" if solid.curved else "bound"
-    if None in solid.seams or solid.chorded:
+    if solid.chorded or any(s.nearest for s in solid.splits):
         # who owns what of a crowded joint then depends on the mesh; chords are not the outline
         basis = "estimate"
-    made = _exact(fields, solid)
-    off = GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0
+    doubt = ownership_doubt(fields, solid)
+    made = _exact(fields, solid, doubt)
+    off = doubt + (GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0)
     if solid.chorded:
         off += CHORDS
     made["torsion_constant"] = intervals.torsion_constant(fields, basis).widened(off)
@@ -58,8 +59,40 @@ def geometry_error(fields: Fields, solid: Outline) -> float:
     return float(max(off, abs(section.area / m.area - 1.0)))
 
 
-def _exact(fields: Fields, solid: Outline) -> dict[str, Interval]:
-    """Area to principal axes: from the outline's boundary where e is uniform, else from the mesh."""
+def ownership_doubt(fields: Fields, solid: Outline) -> float:
+    """Share of area and second moments in elements on the border between walls that no line splits [-].
+
+    Zero unless a crowded joint's elements go to the nearest wall: these then could as well be the
+    neighbour's.
+    """
+    m, weights = fields.space.mesh, fields.space.weights
+    on = np.zeros(len(m.triangles), dtype=bool)
+    spread = np.zeros((2, len(m.triangles)))
+    for part, among in enumerate(solid.splits):
+        if not among.nearest:
+            continue
+        rows = np.flatnonzero(m.region == part)
+        corners, owner = m.triangles[rows], m.owner[rows]
+        low, high = np.full(len(m.vertices), len(solid.moduli)), np.full(len(m.vertices), -1)
+        np.minimum.at(low, corners, owner[:, None])
+        np.maximum.at(high, corners, owner[:, None])
+        on[rows] = (low[corners] != high[corners]).any(axis=1)
+        spread[:, rows] = [[np.ptp(fields.moduli.e[rows])], [np.ptp(fields.moduli.g[rows])]]
+    if not on.any():
+        return 0.0
+    shares = []
+    for own, between in zip((fields.moduli.e, fields.moduli.g), spread, strict=True):
+        for kernel in (1.0, np.sum(fields.space.points**2, axis=-1)):
+            each = np.sum(weights * kernel, axis=1)
+            shares.append(float(np.sum(between[on] * each[on]) / np.sum(own * each)))
+    return max(shares)
+
+
+def _exact(fields: Fields, solid: Outline, doubt: float) -> dict[str, Interval]:
+    """Area to principal axes: from the outline's boundary where e is uniform, else from the mesh.
+
+    Estimates where it is in doubt which wall owns what.
+    """
     e, section, size = fields.moduli.e, fields.inertia, solid.extent
     if np.all(e == e[0]):
         m = solid.moments(section.centroid)
@@ -71,7 +104,8 @@ def _exact(fields: Fields, solid: Outline) -> dict[str, Interval]:
         off = GEOMETRY_FACTOR * geometry_error(fields, solid) if solid.curved else 0.0
         area, place = section.area, section.centroid
         xx, yy, xy = section.xx, section.yy, section.xy
-    tolerance = EXACT_ROUND_OFF + off
+    tolerance = EXACT_ROUND_OFF + off + doubt
+    basis = "estimate" if doubt else "exact"
     centre, radius = 0.5 * (xx + yy), float(np.hypot(0.5 * (xx - yy), xy))
     plain = {
         "area": area,
@@ -80,19 +114,15 @@ def _exact(fields: Fields, solid: Outline) -> dict[str, Interval]:
         "principal_moment_u": centre + radius,
         "principal_moment_v": centre - radius,
     }
-    made = {n: _exactly(float(v), tolerance * abs(float(v))) for n, v in plain.items()}
-    made["product_moment_xy"] = _exactly(float(xy), tolerance * float(np.sqrt(xx * yy)))
+    made = {n: around(float(v), tolerance * abs(float(v)), basis) for n, v in plain.items()}
+    made["product_moment_xy"] = around(float(xy), tolerance * float(np.sqrt(xx * yy)), basis)
     for i, axis in enumerate("xy"):
-        made[f"centroid_{axis}"] = _exactly(float(place[i]), tolerance * size)
+        made[f"centroid_{axis}"] = around(float(place[i]), tolerance * size, basis)
     if radius <= SAME_MOMENTS * centre:
         made["principal_angle"] = Interval(None, None, None, "exact", "both principal moments are equal")
     else:
         # axis u, of the larger moment: I_u = Ixx cos^2 + Iyy sin^2 - 2 Ixy sin cos
         angle = 0.5 * float(np.arctan2(-2.0 * xy, xx - yy))
         angle = angle + np.pi if angle <= -0.5 * np.pi else angle
-        made["principal_angle"] = _exactly(angle, tolerance * centre / radius)
+        made["principal_angle"] = around(angle, tolerance * centre / radius, basis)
     return made
-
-
-def _exactly(value: float, half: float) -> Interval:
-    return around(value, half, "exact")

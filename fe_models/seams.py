@@ -6,7 +6,7 @@ Lines are drawn only between walls of different moduli; elements are handed out 
 from __future__ import annotations
 
 from collections import deque
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -20,6 +20,8 @@ from .fill import Index
 from .joint import Joint
 from .partition import Cluster
 
+# Thicknesses within this share are the same.
+SAME = 1e-9
 # Least slope of a seam against the boundary it starts from and against another, as sine of the angle.
 CLEAR = 0.3
 
@@ -40,32 +42,60 @@ class Seam:
     across: bool = False
 
 
-def seams(
-    cluster: Cluster, joints: Mapping[str, Joint], differ: Callable[[str, str], bool]
-) -> list[Seam] | None:
+@dataclass(frozen=True)
+class Split:
+    """How a cluster's elements are handed out: along seams, whole to one wall, or each to the nearest wall.
+
+    Only the last depends on the mesh.
+    """
+
+    seams: tuple[Seam, ...] = ()
+    whole: str | None = None
+    nearest: bool = False
+
+
+def split(cluster: Cluster, joints: Mapping[str, Joint], moduli: Mapping[str, tuple[float, float]]) -> Split:
     """Seams of a cluster, one for each gap between two walls that differ.
 
-    None where they cannot be drawn: in the union of crowded walls, at steps and bevels, and where a line
-    would leave the solid, run along its boundary or beside another. Elements then go to the nearest wall,
-    and the split depends on the mesh.
+    Where they cannot be drawn (at steps and bevels, and where a line would leave the solid, run along its
+    boundary or beside another) a joint goes whole to its thickest wall, of equally thick ones to the one with
+    the largest e. Where short walls are part of the cluster its elements go to the nearest wall.
     """
     names = {e.band.name for p in cluster.points if p in joints for e in joints[p].ends}
-    if not any(differ(a, b) for a in names for b in names):
-        return []
-    if cluster.united:
-        return None
+    if len({moduli[n] for n in names}) < 2:
+        return Split()
+    drawn = None if cluster.united else _seams(cluster, joints, moduli)
+    if drawn is not None:
+        return Split(tuple(drawn))
+    if cluster.united or cluster.walls or len(cluster.points) != 1:
+        return Split(nearest=True)
+    return Split(whole=_stoutest(joints[cluster.points[0]], moduli))
+
+
+def _stoutest(joint: Joint, moduli: Mapping[str, tuple[float, float]]) -> str:
+    """The thickest wall at a joint, then that of the largest e and g; by name where nothing else differs."""
+    thickness = {e.band.name: 2.0 * float(e.band.half(e.along(0.0))) for e in joint.ends}
+    most = max(thickness.values())
+    thick = [name for name, t in thickness.items() if t >= most * (1.0 - SAME)]
+    return max(sorted(thick), key=lambda name: moduli[name])
+
+
+def _seams(
+    cluster: Cluster, joints: Mapping[str, Joint], moduli: Mapping[str, tuple[float, float]]
+) -> list[Seam] | None:
+    """Seams where all can be drawn, else None."""
     made: list[Seam] = []
     for name in cluster.points:
         joint = joints[name]
         if len(joint.ends) == 2 and all(c.kind in ("fillet", "rounding") for c in joint.chains):
             inner, outer = joint.chains
             first, second = inner.first.band.name, inner.second.band.name
-            if differ(first, second):
+            if moduli[first] != moduli[second]:
                 made.append(Seam(split_place(inner), name, split_place(outer), first, second, across=True))
             continue
         for chain in joint.chains:
             first, second = chain.first.band.name, chain.second.band.name
-            if first != second and differ(first, second):
+            if first != second and moduli[first] != moduli[second]:
                 if chain.kind in ("step", "bevel"):
                     # a line from the foot of a step runs along the wider wall's end
                     return None
@@ -105,7 +135,8 @@ def owners(
     cluster: Cluster,
     triangles: Index,
     vertices: Array,
-    seam_edges: Mapping[tuple[int, int], str] | None,
+    among: Split,
+    seam_edges: Mapping[tuple[int, int], str],
     cut_edges: Mapping[tuple[int, int], EndKey],
     bands: Mapping[str, Band],
 ) -> list[str]:
@@ -114,7 +145,7 @@ def owners(
     Parameters
     ----------
     seam_edges : mapping of directed vertex pair to wall name
-        The wall to the left of each directed edge of a seam; None where the nearest wall owns.
+        The wall to the left of each directed edge of a seam.
     cut_edges : mapping of directed vertex pair to wall end
 
     Raises
@@ -122,7 +153,9 @@ def owners(
     SolveError
         A part of the joint belongs to no wall.
     """
-    if seam_edges is None:
+    if among.whole is not None:
+        return [among.whole] * len(triangles)
+    if among.nearest:
         return _nearest(cluster, triangles, vertices, bands, {k[0] for k in cut_edges.values()})
     seeds = list(seam_edges.items()) + [(edge, key[0]) for edge, key in cut_edges.items()]
     if not seam_edges:

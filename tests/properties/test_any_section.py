@@ -91,18 +91,20 @@ def invariance(plan: Plan, at: Placement) -> list[str]:
         slack = {"warping_constant": 1e4 * extent}.get(name, 0.0) * at.scale**power
         wrong += apart(name, one, two, at.scale**power, slack)
     for x, y in CENTRES:
-        places = []
-        for result in (one, two):
-            place = complex(result.quantity(x).judged_theory, result.quantity(y).judged_theory)  # type: ignore[arg-type]
-            places.append(place)
-        if abs(at.place(places[0]) - places[1]) > 1e-8 * at.scale * 1e3:
-            wrong.append(f"theory's {x}, {y}: {at.place(places[0])}, {places[1]}")
-        found = [complex(r.quantity(x).fe.value, r.quantity(y).fe.value) for r in (one, two)]  # type: ignore[arg-type]
-        reach = sum(
-            k * math.hypot(r.quantity(x).fe.half_width or 0.0, r.quantity(y).fe.half_width or 0.0)
-            for r, k in ((one, at.scale), (two, 1.0))
-        )
-        if abs(at.place(found[0]) - found[1]) > reach + 1e-6 * at.scale:
+        rows = [(result.quantity(x), result.quantity(y)) for result in (one, two)]
+        if any(
+            (row.judged_theory is None) != (rows[0][0].judged_theory is None) for pair in rows for row in pair
+        ):
+            wrong.append(f"theory's {x}, {y}: defined in one placement only")
+            continue
+        if rows[0][0].judged_theory is not None:
+            places = [complex(p.judged_theory, q.judged_theory) for p, q in rows]
+            if abs(at.place(places[0]) - places[1]) > 1e-8 * at.scale * 1e3:
+                wrong.append(f"theory's {x}, {y}: {at.place(places[0])}, {places[1]}")
+        found = [complex(p.fe.value, q.fe.value) for p, q in rows]
+        widths = [math.hypot(p.fe.half_width, q.fe.half_width) for p, q in rows]
+        reach = at.scale * widths[0] + widths[1] + 1e-6 * at.scale
+        if abs(at.place(found[0]) - found[1]) > reach:
             wrong.append(f"FE's {x}, {y}: {at.place(found[0])}, {found[1]}, reach {reach}")
     return wrong
 
