@@ -18,7 +18,7 @@ import fe_models
 from crosscheck import Result, SectionFaults, compare, read_section
 
 REGRESSIONS = sorted((Path(__file__).parent / "regressions").glob("*.toml"))
-EVERYDAY = settings(max_examples=12, deadline=None, derandomize=True, suppress_health_check=list(HealthCheck))
+EVERYDAY = settings(max_examples=8, deadline=None, derandomize=True, suppress_health_check=list(HealthCheck))
 LONG = settings(max_examples=300, deadline=None, suppress_health_check=list(HealthCheck), print_blob=True)
 CENTRES = (("centroid_x", "centroid_y"), ("shear_centre_x", "shear_centre_y"))
 # Quantities without a direction, with their dimension as a power of length.
@@ -134,7 +134,7 @@ def test_coarse_and_fine_intervals_overlap(plan):
 
 
 @given(st.data())
-@settings(EVERYDAY, max_examples=6)
+@settings(EVERYDAY, max_examples=4)
 def test_both_sides_tend_to_each_other(data):
     plan = data.draw(plans(booms=False, thinner=0.25))
     thin = Plan(
