@@ -13,8 +13,8 @@ from crosscheck.verification.judging import RowOutcome
 # Shares below this are drawn at the left edge.
 LEAST = 1e-6
 ROW = 18
-LABEL = 330
-WIDTH = 1000
+LABEL = 420
+WIDTH = 1130
 INK, PALE, BAD = "#1a1a1a", "#c8c8c8", "#b00020"
 SIDE_WORDS = {"theory": "theory", "fe": "finite elements", "both": "their difference"}
 
@@ -25,14 +25,14 @@ def share_chart(sources: Mapping[str, Sequence[RowOutcome]]) -> str:
     top, bottom = 46, 34
     height = top + ROW * len(sources) + bottom
     left, right = LABEL + 12, WIDTH - 24
-    most = 10.0
+    most = 3.0
 
     def x(share: float) -> float:
         held = min(max(share, LEAST), most)
         return left + (right - left) * math.log10(held / LEAST) / math.log10(most / LEAST)
 
     parts = [_open(WIDTH, height, "share of tolerance used, by source")]
-    for power in range(-6, 2):
+    for power in range(-6, 1):
         place = x(10.0**power)
         strong = power == 0
         parts.append(
@@ -45,7 +45,7 @@ def share_chart(sources: Mapping[str, Sequence[RowOutcome]]) -> str:
     for i, (source, rows) in enumerate(sources.items()):
         y = top + ROW * (i + 0.5)
         parts.append(_line(left, y, right, y, "#ececec", 1))
-        parts.append(_text(LABEL, y + 4, f"{_cut(source, 46)}  ({len(rows)})", anchor="end"))
+        parts.append(_text(LABEL, y + 4, f"{_cut(source, 56)}  ({len(rows)})", anchor="end"))
         parts += [_mark(x(_held(row)), y, row) for row in rows if not known(row)]
     return "".join([*parts, "</svg>"])
 

@@ -10,6 +10,7 @@ from crosscheck.verification.check import CheckOutcome
 from crosscheck.verification.evidence import FIRM, by_source, groups, headline, known, obtained_counts
 from crosscheck.verification.judging import RowOutcome
 from crosscheck.verification.reference import OBTAINED_WORDS
+from crosscheck.verification.row_file import printed_half_unit
 from crosscheck.verification.statements import COMMON_CAUSES, DOMAIN_OF_USE, HOW_TO_REDO
 from crosscheck.verification.suite import SuiteResult
 
@@ -27,7 +28,9 @@ def page_bytes(result: SuiteResult) -> bytes:
         trim_blocks=True,
         lstrip_blocks=True,
     )
-    environment.filters.update(number=number, share=share_text, bar=bar_width)
+    environment.filters.update(
+        number=number, rough=rough, share=share_text, bar=bar_width, row_name=row_name, is_formula=is_formula
+    )
     rows = result.rows
     agreeing = [row for row in rows if not known(row)]
     checks = [o for o in result.outcomes if not isinstance(o, RowOutcome) and o.group != "coverage"]
@@ -41,7 +44,7 @@ def page_bytes(result: SuiteResult) -> bytes:
         failures=sorted(result.failures, key=lambda o: -_held(o)),
         obtained=[(way, count, OBTAINED_WORDS[way]) for way, count in counts.items()],
         firm=sum(counts.get(way, 0) for way in FIRM),
-        row_count=len({(row.case, row.name.removesuffix(" (fe)").removesuffix(" (theory)")) for row in rows}),
+        row_count=len({row_name(row) for row in rows}),
         sources=by_source(rows),
         share_chart=share_chart(by_source(agreeing)) if agreeing else "",
         order_charts=[c for o in checks if o.series and (c := order_chart(o.name, o.series))],
@@ -64,6 +67,21 @@ def number(value: float) -> str:
     return f"{mantissa}e{int(power)}" if power else text
 
 
+def rough(value: float) -> str:
+    """Two significant digits, for differences and error bars."""
+    return number(float(f"{value:.1e}")) if math.isfinite(value) else "none"
+
+
+def row_name(row: RowOutcome) -> str:
+    """The row's name without its side, which has a column of its own."""
+    return row.name.removesuffix(f" ({row.side})")
+
+
+def is_formula(printed: str) -> bool:
+    """Whether a reference is arithmetic rather than a number."""
+    return printed_half_unit(printed) is None
+
+
 def share_text(outcome: CheckOutcome) -> str:
     """Share of the tolerance used."""
     share = outcome.share
@@ -71,7 +89,9 @@ def share_text(outcome: CheckOutcome) -> str:
         return "-"
     if share > 10.0:
         return f"{share:.3g} times"
-    return f"{100 * share:.0f} %" if share >= 0.1 else f"{100 * share:.1g} %" if share >= 1e-5 else "0"
+    if share >= 0.095:
+        return f"{100 * share:.0f} %"
+    return f"{100 * share:.1g} %" if share >= 1e-5 else "0"
 
 
 def bar_width(outcome: CheckOutcome) -> int:

@@ -72,7 +72,8 @@ class Tolerance:
         """In words."""
         if self.kind == "printed":
             return "half a unit of the last digit printed"
-        return f"{self.size:.3g} of the value" if self.kind == "relative" else f"{self.size:.3g}"
+        size = f"{self.size:.3g}".replace("e-0", "e-")
+        return f"{size} of the value" if self.kind == "relative" else size
 
 
 @dataclass(frozen=True)

@@ -39,7 +39,6 @@ def j_of(section: Section) -> float:
 @pytest.mark.parametrize(("t", "exact", "tolerance"), [
     (0.02, 1.0091001466366916, 1e-7), (0.1, 1.0510043415424277, 1e-7), (0.3, 1.1948060828463192, 3e-5)
 ])  # fmt: skip
-@pytest.mark.rows("D050", "D052", "D054")
 def test_sharp_square_tube(t: float, exact: float, tolerance: float) -> None:
     """Rows D050, D052, D054: J of the solid over a^3 t; the midline value is 1."""
     section = polyline([(0, 0), (1, 0), (1, 1), (0, 1)], t, closed=True)
@@ -47,7 +46,6 @@ def test_sharp_square_tube(t: float, exact: float, tolerance: float) -> None:
 
 
 @pytest.mark.parametrize("t", [0.001, 0.05, 0.2, 0.8])
-@pytest.mark.rows("D030", "D031")
 def test_circular_tube(t: float) -> None:
     """Rows D030, D031: exact, J = pi (Ro^4 - Ri^4)/2."""
     section = Section(
@@ -90,7 +88,6 @@ def test_area_of_a_cell_corner() -> None:
     assert_allclose(cell_corner_area(math.pi / 2, 3.0, 3.0), 9 * kappa, rtol=1e-7)
 
 
-@pytest.mark.rows("D01")
 def test_free_end() -> None:
     """192/pi^5 sum of 1/n^5 over odd n (Timoshenko and Goodier, art. 109), row D01."""
     series = 192 / math.pi**5 * sum(1 / n**5 for n in range(1, 401, 2))
@@ -98,14 +95,12 @@ def test_free_end() -> None:
 
 
 @pytest.mark.parametrize(("ratio", "exact"), [(3.0, 0.7900), (5.0, 0.8740), (10.0, 0.93698), (20.0, 0.96849)])
-@pytest.mark.rows("D023", "D024")
 def test_rectangle(ratio: float, exact: float) -> None:
     """J over b t^3/3 of solid rectangles (rows A25J to D024, by the torsion series): two free ends."""
     strip = Section({"a": (0.0, 0.0), "b": (ratio, 0.0)}, (Wall("w", "a", "b", (1.0, 1.0)),))
     assert_allclose(j_of(strip) / (ratio / 3), exact, rtol=2e-4)
 
 
-@pytest.mark.rows("A31")
 def test_narrow_rectangle_has_own_axis_terms() -> None:
     """Own-axis second moment b t^3/12, secondary warping b^3 t^3/144 (row A31), centre in the middle."""
     solution = solve(
@@ -134,14 +129,12 @@ def test_tapered_strip_centre() -> None:
     ([(10, 0), (0, 0), (0, 10)], 1.0, 1.0 * (1000 + 1000) / 36),
     ([(30, 0), (0, 0), (0, 20)], 2.0, 8.0 * (27000 + 8000) / 36),
 ])  # fmt: skip
-@pytest.mark.rows("D350")
 def test_angle_secondary_warping(places: list[tuple[float, float]], thickness: float, want: float) -> None:
     """Row D350: t^3 (a^3 + b^3)/36 (Timoshenko and Gere)."""
     solution = solve(polyline(places, thickness), "corrected")
     assert_allclose(solution.require("warping_constant"), want, rtol=1e-12)
 
 
-@pytest.mark.rows("D36")
 def test_tee_secondary_warping() -> None:
     """Row D36: (t_f^3 b^3/4 + t_w^3 h^3)/36 (Timoshenko and Gere)."""
     points = {"l": (-5.0, 0.0), "m": (0.0, 0.0), "r": (5.0, 0.0), "b": (0.0, -10.0)}
@@ -152,14 +145,12 @@ def test_tee_secondary_warping() -> None:
 @pytest.mark.parametrize(
     ("t", "ratio", "tolerance"), [(2.0, 0.99805, 1e-5), (5.0, 0.99512, 1e-5), (20.0, 0.98039, 1e-4)]
 )
-@pytest.mark.rows("D310", "D311", "D313")
 def test_sharp_channel(t: float, ratio: float, tolerance: float) -> None:
     """Rows D310, D311, D313: J of the solid channel over t^3 (2 b + h)/3."""
     assert_allclose(j_of(channel(50, 100, t)) / (t**3 * 200 / 3), ratio, rtol=tolerance)
 
 
 @pytest.mark.parametrize(("t", "ratio"), [(2.0, 1.00192), (5.0, 1.01189), (20.0, 1.16767)])
-@pytest.mark.rows("D320", "D321", "D323")
 def test_channel_warping_comes_nearer(t: float, ratio: float) -> None:
     """Rows D320, D321, D323: I_w of the solid over the midline's; the secondary term covers half."""
     section = channel(50, 100, t)
@@ -169,7 +160,6 @@ def test_channel_warping_comes_nearer(t: float, ratio: float) -> None:
     assert found - 1.0 > 0.5 * (ratio - 1.0)
 
 
-@pytest.mark.rows("D10", "D16")
 def test_sharp_angle() -> None:
     """Row D10: solid 10 x 10 x 1 angle, J = 6.19574; row D16: what its corner adds, 0.0725 t^4."""
     j = j_of(polyline([(9.5, 0), (0, 0), (0, 9.5)], 1.0))
@@ -182,7 +172,6 @@ def test_sharp_angle() -> None:
     (0.5, 0.6, 4.079354698427734, 4.0762638753680775, 1e-3),
     (0.0, 1.0, 6.276875, 6.31016427387155, 6e-3),
 ])  # fmt: skip
-@pytest.mark.rows("D12", "D14", "D18", "D19")
 def test_tee_joint(fillet: float, stem: float, published: float, solid: float, tolerance: float) -> None:
     """Rows D18, D19 (El Darwish and Johnston) and D12's solid; the formula uses 0.105 t^4 for an end."""
     points = {"l": (-5.0, 0.0), "m": (0.0, 0.0), "r": (5.0, 0.0), "b": (0.0, -9.5)}
@@ -207,7 +196,6 @@ def i_section(h: float, b: float, tw: float, tf: float, r: float) -> Section:
     ((453.4, 189.9, 8.5, 12.7, 10.2), 371745.8221849678),
     ((8, 7.995, 0.285, 0.435, 0.394), 0.5369041501756935),
 ])  # fmt: skip
-@pytest.mark.rows("D20t", "D22t", "D23t", "D25t", "D27t")
 def test_rolled_i_sections_come_nearer(size: tuple[float, ...], solid: float) -> None:
     """Rows D20t to D27t: solid J; corrected within 1.2 % where the midline is 6 to 25 % off."""
     section = i_section(*size)
@@ -216,7 +204,6 @@ def test_rolled_i_sections_come_nearer(size: tuple[float, ...], solid: float) ->
     assert abs(midline / solid - 1) > 0.05
 
 
-@pytest.mark.rows("D28t")
 def test_rolled_channel() -> None:
     """Row D28t: UPE 200, sharp outside with a root fillet (Trayer and March)."""
     h, b, tw, tf, r = 200, 80, 6, 11, 13
@@ -323,7 +310,6 @@ def test_flows_of_corrected_level_carry_the_load() -> None:
         working(solution, Load("a", (1.0, 0.0)))
 
 
-@pytest.mark.rows("A33")
 def test_open_ring_sector_j() -> None:
     """Row A33: annulus slit along a radius, Ri/Ro = 0.9: exact series 0.0019690, ends and all."""
     slit = arc_section(0.95, math.pi, 0.1, pieces=2)
