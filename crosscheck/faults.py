@@ -194,7 +194,7 @@ class FaultList:
         self._aliases: dict[KeyPath, str] = {}
 
     def alias(self, path: KeyPath, text: str) -> None:
-        """Name an entry (two parts of a path) by where it really stands, such as a line of a table."""
+        """Name an entry, or what is below it, by where it really stands, such as a line of a table."""
         self._aliases[path] = one_line(text, 200)
 
     def __len__(self) -> int:
@@ -230,11 +230,12 @@ class FaultList:
         self._faults.append((path, Fault(self.file, text, found, allowed, remedy)))
 
     def key(self, path: KeyPath) -> str:
-        """A key path as text, an alias in front of what follows it."""
-        alias = self._aliases.get(path[:2])
-        if alias is None:
-            return key_text(path)
-        return f"{alias}: {key_text(path[2:])}" if path[2:] else alias
+        """A key path as text, the alias of its longest part in front of what follows it."""
+        for length in range(len(path) if self._aliases else 0, 1, -1):
+            if path[:length] in self._aliases:
+                alias, rest = self._aliases[path[:length]], path[length:]
+                return f"{alias}: {key_text(rest)}" if rest else alias
+        return key_text(path)
 
     def raise_any(self, document: Any = None) -> None:
         """Raise SectionFaults with all faults in the order of the document's keys, if there are any."""

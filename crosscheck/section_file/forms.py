@@ -11,7 +11,7 @@ from pydantic_core import ErrorDetails
 
 from crosscheck.faults import FaultList, KeyPath, key_text, quoted, shown
 from crosscheck.section_file import schema
-from crosscheck.section_file.keys import ENTRY_LIMITS, TABLES_OF_FREE_NAMES, refuse_unbuilt
+from crosscheck.section_file.keys import ENTRY_LIMITS, TABLES_OF_FREE_NAMES
 from crosscheck.section_file.schema_values import UNION_TAGS
 from crosscheck.units import UNIT_SYSTEMS
 
@@ -70,14 +70,13 @@ def well_formed(document: Mapping[str, Any], faults: FaultList) -> dict[str, Any
     Parameters
     ----------
     document : the parsed file, left as it is
-    faults : receives a fault for every key that is unknown, not built, missing or of the wrong form
+    faults : receives a fault for every key that is unknown, missing or of the wrong form
 
     Returns
     -------
     The copy: every value left in it has the form that the schema gives; required ones may be missing.
     """
     kept = _within_limits(document, faults)
-    refuse_unbuilt(kept, faults)
     if "outline" not in document:
         for key in schema.WALLED:
             if key not in document:

@@ -294,8 +294,10 @@ class MirrorTable(_Table):
 class TablesTable(_Table):
     """CSV files in the folder of the section file, hashed into the result."""
 
-    loads: Text = Field(default=ABSENT, description="more load cases, one a row")
     points: Text = Field(default=ABSENT, description="more points, one a row")
+    walls: Text = Field(default=ABSENT, description="more walls between two points, one a row")
+    booms: Text = Field(default=ABSENT, description="more booms, one a row")
+    loads: Text = Field(default=ABSENT, description="more load cases, one a row")
 
 
 Outline = Annotated[

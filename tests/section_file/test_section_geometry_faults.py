@@ -111,10 +111,7 @@ def test_zero_length_wall(fault_lines: Lines) -> None:
     ]
 
 
-def test_a_crossing_that_both_sides_see_is_said_once(
-    fault_lines: Lines, monkeypatch: pytest.MonkeyPatch
-) -> None:
-    monkeypatch.setattr("crosscheck.section_file.keys.NOT_BUILT", {})
+def test_a_crossing_that_both_sides_see_is_said_once(fault_lines: Lines) -> None:
     text = points_and_paths("a 0 0;b 10 10;c 10 0;d 0 10;e 20 20", "a b", "c d")
     text += '[[walls]]\npath = ["b", "e"]\nthickness = 0.1\nseen_by = "fe"\n'
     assert len(fault_lines(text)) == 1

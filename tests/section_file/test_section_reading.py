@@ -1,4 +1,4 @@
-"""What a good section file becomes, and that keys not built yet are ready behind their table."""
+"""What a good section file becomes."""
 
 from __future__ import annotations
 
@@ -14,7 +14,6 @@ import pytest
 from numpy.testing import assert_allclose
 
 from crosscheck.comparison.quantities import QUANTITIES
-from crosscheck.section_file import keys as section_keys
 from crosscheck.section_file.model import BoomSpec, CornerSpec, LoadSpec, ProbeSpec, StatedSpec
 from crosscheck.section_file.reader import (
     SectionFaults,
@@ -30,12 +29,6 @@ Read = Callable[..., SectionFile]
 SHIPPED = Path(__file__).parents[2] / "cases" / "sections"
 HEAD = 'units = "mm N"\n[points]\na = [0, 0]\nb = [50, 0]\nc = [50, 80]\nd = [0, 80]\n'
 WALL = '[[walls]]\npath = ["a", "b", "c"]\nthickness = 2\n'
-
-
-@pytest.fixture
-def all_built(monkeypatch: pytest.MonkeyPatch) -> None:
-    """Every reserved key switched on, as when its row is taken out of the table."""
-    monkeypatch.setattr("crosscheck.section_file.keys.NOT_BUILT", {})
 
 
 def test_lipped_channel() -> None:
@@ -204,8 +197,7 @@ def test_faults_are_the_same_every_time(tmp_path: Path) -> None:
     assert len(texts) == 1
 
 
-@pytest.mark.usefixtures("all_built")
-class TestKeysNotBuiltYet:
+class TestFurtherKeys:
     """The model carries them: taking a row out of the table is enough to read them."""
 
     def test_arc(self, read: Read) -> None:
@@ -314,15 +306,6 @@ def test_schema_for_editors() -> None:
     assert "from" in schema["$defs"]["TaperTable"]["properties"]
     assert "null" not in text
     assert "\\u001f" not in text
-
-
-def test_every_unbuilt_key_is_a_key_of_the_schema() -> None:
-    schema = json_schema()
-    tables = {"walls": "WallTable", "booms": "BoomTable", "tables": "TablesTable"}
-    for pattern in section_keys.NOT_BUILT:
-        table, _, key = pattern.split("=")[0].removesuffix("{}").partition(".")
-        known = schema["$defs"][tables[table]]["properties"] if key else schema["properties"]
-        assert (key or table) in known
 
 
 def test_known_quantities_are_those_of_the_comparison() -> None:
