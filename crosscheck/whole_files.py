@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import shutil
 import tempfile
 from collections.abc import Mapping
 from pathlib import Path
@@ -76,3 +77,44 @@ def _umask() -> int:
     mask = os.umask(0)
     os.umask(mask)
     return mask
+
+
+def write_tree(folder: Path, files: Mapping[str, bytes]) -> None:
+    """Write a folder with folders inside so that it is the old one or the whole new one.
+
+    Parameters
+    ----------
+    folder : Path
+        Where; what is there goes when the new one is complete.
+    files : mapping of name to bytes
+        What; names relative to the folder, parts separated by ``/``.
+
+    Raises
+    ------
+    ValueError
+        Where a name would leave the folder.
+    OSError
+        Where the folder cannot be made or written; nothing is left behind.
+    """
+    for name in files:
+        parts = name.split("/")
+        if not all(part and part not in (".", "..") and Path(part).name == part for part in parts):
+            raise ValueError(f"{name!r} is not a name inside a folder")
+    folder.parent.mkdir(parents=True, exist_ok=True)
+    made = Path(tempfile.mkdtemp(prefix=f".{folder.name}.", suffix=".part", dir=folder.parent))
+    try:
+        for name, content in files.items():
+            path = made / name
+            path.parent.mkdir(parents=True, exist_ok=True)
+            write_whole(path, content)
+        # mkdtemp makes the folder private to its owner.
+        made.chmod(0o777 & ~_umask())
+        if folder.exists():
+            with tempfile.TemporaryDirectory(prefix=f".{folder.name}.", dir=folder.parent) as aside:
+                folder.replace(Path(aside) / "old")
+                made.replace(folder)
+        else:
+            made.replace(folder)
+    except BaseException:
+        shutil.rmtree(made, ignore_errors=True)
+        raise

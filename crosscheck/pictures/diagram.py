@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import matplotlib as mpl
 import numpy as np
+from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
 from crosscheck.comparison.result import Array, Drawing, WallShape
@@ -18,6 +19,7 @@ from crosscheck.pictures.canvas import (
     SOFT,
     STYLE,
     WIDE_PAPER,
+    Frame,
     Lettering,
     frame_of,
     scale_drawing,
@@ -82,6 +84,36 @@ def along_walls(
     Figure, Lettering
         The lettering can place more labels.
     """
+    drawn = diagram(drawing, theory, marks, turned=turned, least_peak=least_peak, arrows=arrows)
+    figure, axes = scale_drawing(width_mm, drawn.frame, title, caption, length_unit)
+    lettering = draw_diagram(axes, drawn, letter, small=width_mm < WIDE_PAPER)
+    return figure, lettering
+
+
+@dataclass(frozen=True)
+class Diagram:
+    """A diagram before it is drawn: what it shows, the scale of its ordinates, its peak and its frame."""
+
+    drawing: Drawing
+    curves: Mapping[str, Array]
+    marks: Mapping[str, Sequence[Mark]]
+    arrows: Sequence[Array]
+    turned: bool
+    scale: float
+    peak: float
+    frame: Frame
+
+
+def diagram(
+    drawing: Drawing,
+    theory: Mapping[str, Array],
+    marks: Mapping[str, Sequence[Mark]],
+    *,
+    turned: bool = True,
+    least_peak: float = 0.0,
+    arrows: Sequence[Array] = (),
+) -> Diagram:
+    """Scale, curves and frame of a diagram; parameters as in :func:`along_walls`."""
     peaks = [float(np.abs(values).max()) for values in theory.values()]
     peaks += [abs(mark.fe) for row in marks.values() for mark in row]
     peak = max((*peaks, least_peak)) or 1.0
@@ -99,20 +131,27 @@ def along_walls(
     ]
     frame = frame_of([drawing.loops[0], *curves.values(), *(tip[None, :] for tip in tips), *arrows])
     frame = frame.grown(0.13 * drawing.extent)
-    figure, axes = scale_drawing(width_mm, frame, title, caption, length_unit)
+    return Diagram(drawing, curves, marks, arrows, turned, scale, peak, frame)
+
+
+def draw_diagram(axes: Axes, drawn: Diagram, letter: Callable[[float], str], *, small: bool) -> Lettering:
+    """Draw a diagram on axes of equal scale; the lettering can place more labels."""
+    drawing, scale, turned = drawn.drawing, drawn.scale, drawn.turned
     lettering = Lettering(axes)
-    for arrow in arrows:
+    for arrow in drawn.arrows:
         draw_arrow(axes, arrow[0], arrow[1], INK)
         lettering.keep_clear(np.linspace(arrow[0], arrow[1], 20))
-    for tip in tips:
-        # Twice, so that a mark weighs more than a bit of line and less than a label.
-        lettering.keep_clear(np.vstack((tip, tip)))
+    for wall in drawing.walls:
+        for mark in drawn.marks.get(wall.name, ()):
+            tip = _tip(wall, mark.s, mark.fe, scale, turned)[1]
+            # Twice, so that a mark weighs more than a bit of line and less than a label.
+            lettering.keep_clear(np.vstack((tip, tip)))
     with mpl.rc_context(STYLE):
         draw_solid(axes, drawing.loops, face="#ececec", edge="#b0b0b0")
         for wall in drawing.walls:
             axes.plot(wall.points[:, 0], wall.points[:, 1], color=SOFT, lw=0.5, zorder=2)
             lettering.keep_clear(wall.points)
-            curve = curves.get(wall.name)
+            curve = drawn.curves.get(wall.name)
             if curve is not None:
                 ring = np.vstack((wall.points, curve[::-1]))
                 axes.fill(ring[:, 0], ring[:, 1], color=HAND, alpha=0.12, lw=0, zorder=2)
@@ -120,13 +159,13 @@ def along_walls(
                 axes.plot(*np.vstack((wall.points[0], curve[0])).T, color=HAND, lw=0.4, zorder=3)
                 axes.plot(*np.vstack((wall.points[-1], curve[-1])).T, color=HAND, lw=0.4, zorder=3)
                 lettering.keep_clear(curve)
-            for mark in marks.get(wall.name, ()):
+            for mark in drawn.marks.get(wall.name, ()):
                 _draw_mark(axes, wall, mark, scale, turned)
         for wall in drawing.walls:
-            row = marks.get(wall.name, ())
+            row = drawn.marks.get(wall.name, ())
             if row and len(drawing.walls) <= 40:
-                _letter_peak(lettering, wall, row, peak, scale, turned, letter, small=width_mm < WIDE_PAPER)
-    return figure, lettering
+                _letter_peak(lettering, wall, row, drawn.peak, scale, turned, letter, small=small)
+    return lettering
 
 
 def _ordinates(wall: WallShape, values: Array, scale: float, turned: bool) -> Array:

@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import matplotlib as mpl
 import numpy as np
+from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
 from crosscheck.comparison.flow_comparison import NO_FLOW_REASON
-from crosscheck.comparison.result import Result, WallFlow
+from crosscheck.comparison.result import Array, Drawing, Result, WallFlow
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import HAND, INK, STYLE, plain_unit
 from crosscheck.pictures.diagram import Mark, along_walls
@@ -40,7 +43,7 @@ def flow_picture(result: Result, load: str, width_mm: int = 160) -> Figure | Non
     if (peak.verdict is None and not theory) or peak.reason == NO_FLOW_REASON:
         return None
     unit = plain_unit(flows[0].unit)
-    marks = {flow.wall: _marks(flow) for flow in flows}
+    marks = {flow.wall: flow_marks(flow) for flow in flows}
     judged = difference_text(peak, result.length_unit) if peak.verdict else peak.reason or "not compared"
     title = f"Shear flow, {one_line(load, 60)} [{unit}]: peak by hand {judged}"
     if peak.verdict is not None and judged != "equal":
@@ -68,13 +71,7 @@ def flow_picture(result: Result, load: str, width_mm: int = 160) -> Figure | Non
     )
     with mpl.rc_context(STYLE):
         axes = lettering.axes
-        largest = max((float(np.abs(values).max()) for values in theory.values()), default=0.0)
-        for wall in drawing.walls:
-            values = theory.get(wall.name)
-            if values is None or np.abs(values).max() < 0.01 * largest:
-                continue
-            i = int(np.argmax(np.abs(values[4:-4]))) + 4
-            draw_direction(axes, wall, float(np.sign(values[i])), colour=HAND, at=i / (len(values) - 1))
+        draw_flow_directions(axes, drawing, theory)
         if line is not None and line.torque:
             low, high = axes.get_xlim(), axes.get_ylim()
             aside = (low[0] + 0.1 * (low[1] - low[0]), high[0] + 0.1 * (high[1] - high[0]))
@@ -82,7 +79,18 @@ def flow_picture(result: Result, load: str, width_mm: int = 160) -> Figure | Non
     return figure
 
 
-def _marks(flow: WallFlow) -> tuple[Mark, ...]:
+def draw_flow_directions(axes: Axes, drawing: Drawing, theory: Mapping[str, Array]) -> None:
+    """An arrowhead along every wall where its flow is largest; none where it is next to nothing."""
+    largest = max((float(np.abs(values).max()) for values in theory.values()), default=0.0)
+    for wall in drawing.walls:
+        values = theory.get(wall.name)
+        if values is None or np.abs(values).max() < 0.01 * largest:
+            continue
+        i = int(np.argmax(np.abs(values[4:-4]))) + 4
+        draw_direction(axes, wall, float(np.sign(values[i])), colour=HAND, at=i / (len(values) - 1))
+
+
+def flow_marks(flow: WallFlow) -> tuple[Mark, ...]:
     """FE's probes of one wall."""
     return tuple(
         Mark(probe.s, probe.fe, probe.fe_error or 0.0, probe.theory)

@@ -42,6 +42,7 @@ from crosscheck.reports.wording import (
     number_text,
     one_row_a_family,
     percent_text,
+    value_text,
     verdict_sentence,
     worst_first,
 )
@@ -173,7 +174,7 @@ def _null_lines(rows: Sequence[QuantityResult]) -> Iterator[RenderableType]:
     reasons: dict[str, list[str]] = {}
     for row in rows:
         values = [
-            f"{side} {_value_text(row, value)}"
+            f"{side} {value_text(row, value)}"
             for side, value in (("hand", row.judged_theory), ("FE", row.fe.value))
             if value and row.reason != NO_FLOW
         ]
@@ -210,7 +211,7 @@ def _table(
             difference, _, effect = difference.rpartition(" ")
         cells = [
             name,
-            Text(_value_text(row, row.judged_theory).removesuffix(" deg")),
+            Text(value_text(row, row.judged_theory).removesuffix(" deg")),
             Text(_fe_text(row, unicode)),
             Text(difference),
         ]
@@ -233,29 +234,18 @@ def _fe_table(result: Result, unicode: bool) -> Table:
     return table
 
 
-def _value_text(row: QuantityResult, value: float | None, digits: int = 5) -> str:
-    """A value with five significant digits, an angle in degrees."""
-    if value is not None and row.unit == "rad":
-        # An angle of round-off is none.
-        value = 0.0 if abs(value) < 1e-12 else value
-        return f"{number_text(math.degrees(value), digits)} deg"
-    if value is not None and row.normaliser is not None and abs(value) < 1e-9 * row.normaliser:
-        return "0"
-    return number_text(value, digits)
-
-
 def _fe_text(row: QuantityResult, unicode: bool) -> str:
     """FE's value with its error: plus-minus before a bound, a tilde before an estimate, nothing if exact."""
     fe: FeValue = row.fe
     half = fe.half_width
-    text = _value_text(row, fe.value)
+    text = value_text(row, fe.value)
     if fe.value is None or half is None or fe.basis == "exact":
         return text
     if row.unit == "rad":
         half = math.degrees(half)
     error = f"{error_mark(fe, unicode)}{error_text(half)}"
     for digits in (5, 4, 3, 2):
-        text = _value_text(row, fe.value, digits)
+        text = value_text(row, fe.value, digits)
         if len(text) + 1 + len(error) <= FE_WIDTH:
             break
     return f"{text} {error}"

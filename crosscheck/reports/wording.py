@@ -47,6 +47,17 @@ def number_text(value: float | None, digits: int = 5) -> str:
     return f"{mantissa}e{int(exponent)}"
 
 
+def value_text(row: QuantityResult, value: float | None, digits: int = 5) -> str:
+    """A value with five significant digits, an angle in degrees."""
+    if value is not None and row.unit == "rad":
+        # An angle of round-off is none.
+        value = 0.0 if abs(value) < 1e-12 else value
+        return f"{number_text(math.degrees(value), digits)} deg"
+    if value is not None and row.normaliser is not None and abs(value) < 1e-9 * row.normaliser:
+        return "0"
+    return number_text(value, digits)
+
+
 def error_mark(fe: FeValue, unicode: bool = True) -> str:
     """What stands before an error: plus-minus for a bound, a tilde for an estimate."""
     return "~" if fe.basis == "estimate" else ("±" if unicode else "+-")

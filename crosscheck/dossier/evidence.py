@@ -1,0 +1,67 @@
+"""Everything a dossier says about one section, gathered before anything is written."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import asdict, dataclass
+from pathlib import Path
+from typing import Any
+
+from crosscheck.comparison.comparing import compare
+from crosscheck.comparison.result import Result
+from crosscheck.dossier.convergence import Convergence, converge
+from crosscheck.dossier.uncertainty import Uncertainty, uncertainty
+from crosscheck.section_file.model import SectionFile
+
+SCHEMA = "crosscheck.dossier/1"
+
+
+@dataclass(frozen=True)
+class SectionEvidence:
+    """One section: its files as they are, both sides compared, solution verification and budget.
+
+    ``files``: bytes of the section file and of every table beside it, by name, the section file first.
+    """
+
+    section: SectionFile
+    files: Mapping[str, bytes]
+    result: Result
+    convergence: Convergence
+    uncertainty: Uncertainty
+
+
+def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -> SectionEvidence:
+    """Solve everything that the dossier of one section needs.
+
+    Parameters
+    ----------
+    section : SectionFile
+        As read; its files must still be what was read.
+    accuracy : float
+        Half-width asked of FE's intervals [-].
+    tell : callable
+        Told in words what is being done.
+
+    Raises
+    ------
+    fe_models.FeError, beam_theory.TheoryError
+        Where a side fails.
+    OSError
+        Where a file cannot be read again.
+    """
+    path = Path(section.path)
+    files = {path.name: path.read_bytes()}
+    files |= {name: (path.parent / name).read_bytes() for name in section.tables}
+    result = compare(section, accuracy, tell, pictures=True, working=True)
+    convergence = converge(section, result, tell)
+    budget = uncertainty(section, result, tell)
+    return SectionEvidence(section, files, result, convergence, budget)
+
+
+def evidence_record(evidence: SectionEvidence) -> dict[str, Any]:
+    """Solution verification and budget as plain mappings, for JSON."""
+    return {
+        "schema": SCHEMA,
+        "solution_verification": asdict(evidence.convergence),
+        "uncertainty": asdict(evidence.uncertainty),
+    }
