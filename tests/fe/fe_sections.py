@@ -9,7 +9,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from fe_models import Section, Wall
+from fe_models import Boom, Section, Wall
 
 Place = tuple[float, float]
 
@@ -91,6 +91,31 @@ def mixed_cells() -> Section:
     )
     walls = tuple(replace(w, e=e[i], g=g[i], direct_share=float(share[i])) for i, w in enumerate(plain.walls))
     return replace(plain, walls=walls, points=dict(plain.points) | {"d": (102.0, 38.0)})
+
+
+def boomed_cells() -> Section:
+    """Six cells without symmetry of two materials, booms at joints and on walls."""
+    shake = np.random.default_rng(11).uniform(-12.0, 12.0, (4, 3, 2))
+    points = {
+        f"{i}{j}": (60.0 * i + float(shake[i, j, 0]), 50.0 * j + float(shake[i, j, 1]))
+        for i in range(4)
+        for j in range(3)
+    }
+    lines = [(f"{i}{j}", f"{i + 1}{j}") for i in range(3) for j in range(3)]
+    lines += [(f"{i}{j}", f"{i}{j + 1}") for i in range(4) for j in range(2)]
+    walls = tuple(
+        Wall(
+            f"w{k}",
+            a,
+            b,
+            (2.0, 2.0),
+            e=2.9 if k % 3 == 0 else 1.0,
+            g=2.6 if k % 3 == 0 else 1.0,
+        )
+        for k, (a, b) in enumerate(lines)
+    )
+    booms = (Boom(40.0, "00"), Boom(95.0, "21"), Boom(60.0, "32"), Boom(25.0, wall="w4", at=0.4))
+    return Section(points, walls, booms=booms)
 
 
 def _lipped(d: float, t: float) -> Section:
