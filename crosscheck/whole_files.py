@@ -5,19 +5,19 @@ from __future__ import annotations
 import os
 import shutil
 import tempfile
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from pathlib import Path
 
 
-def write_whole(path: Path, content: bytes) -> None:
+def write_whole(path: Path, content: bytes | Iterable[bytes]) -> None:
     """Write a file so that it is either the old one or the whole new one, whatever happens meanwhile.
 
     Parameters
     ----------
     path : Path
         Where; its folder must exist.
-    content : bytes
-        What.
+    content : bytes or iterable of bytes
+        What; in pieces where it need not be in memory all at once.
 
     Raises
     ------
@@ -28,7 +28,7 @@ def write_whole(path: Path, content: bytes) -> None:
     temporary = Path(name)
     try:
         with os.fdopen(descriptor, "wb") as stream:
-            stream.write(content)
+            stream.writelines((content,) if isinstance(content, bytes) else content)
             stream.flush()
             os.fsync(stream.fileno())
         # mkstemp makes the file private to its owner; a report is as readable as any other file.

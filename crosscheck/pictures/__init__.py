@@ -8,7 +8,7 @@ from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import Result
 from crosscheck.file_names import free_name
 from crosscheck.pictures.both_sides import both_sides_picture
-from crosscheck.pictures.canvas import picture_bytes
+from crosscheck.pictures.canvas import WIDTHS, picture_bytes
 from crosscheck.pictures.causes import causes_picture
 from crosscheck.pictures.criteria import criteria_picture
 from crosscheck.pictures.flow import flow_picture
@@ -27,8 +27,6 @@ __all__ = [
     "section_picture",
     "warping_picture",
 ]
-
-WIDTHS = (160, 80)
 
 
 def every_picture(result: Result) -> dict[str, bytes]:

@@ -37,6 +37,8 @@ DPI = 200
 LEADER_FROM = 20.0
 # Distances tried between a label and what it names [pixels].
 AIRS = (3.0, 8.0, 14.0, 22.0, 34.0, 52.0, 80.0, 120.0)
+# Every picture is drawn for a page and for a column [mm].
+WIDTHS = (160, 80)
 # Paper from this width on has room for every label [mm].
 WIDE_PAPER = 120
 # Any: the keys are a closed set in the stubs of newer versions only.

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import csv
 import io
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 
 from crosscheck.comparison.load_results import Governing
@@ -153,11 +153,14 @@ TABLES: Mapping[str, Callable[[Result], ResultTable]] = {
 
 def csv_bytes(table: ResultTable) -> bytes:
     """A table as CSV: commas, decimal points, full precision, a heading line, UTF-8."""
+    return b"".join(csv_line(cells) for cells in (table.columns, *table.rows))
+
+
+def csv_line(cells: Iterable[Cell]) -> bytes:
+    """One line of CSV; None is an empty cell."""
     stream = io.StringIO()
     writer = csv.writer(stream, lineterminator="\n")
-    writer.writerow(table.columns)
-    for row in table.rows:
-        writer.writerow(["" if cell is None else _csv_cell(cell) for cell in row])
+    writer.writerow(["" if cell is None else _csv_cell(cell) for cell in cells])
     return stream.getvalue().encode()
 
 

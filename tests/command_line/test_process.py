@@ -46,7 +46,7 @@ def test_no_command_shows_help_and_is_bad_input():
 
 
 def test_unknown_command_and_option_are_bad_input(channel):
-    for arguments in (("sweep", channel), ("compare", channel, "--acc", "1e-5")):
+    for arguments in (("compass", channel), ("compare", channel, "--acc", "1e-5")):
         ran = process(*arguments)
         assert ran.returncode == 2
         assert b"Traceback" not in ran.stderr
