@@ -28,7 +28,8 @@ if __name__ == "__main__":
                 found.append(outcome)
                 if len(found) == 10 and KILL:
                     os.kill(next(iter(crew.client.run(os.getpid).values())), 9)
-        print(sorted((each.number, each.found["square"]) for each in found) == [(n, n * n) for n in range(40)])
+        squares = sorted((each.number, each.found["square"]) for each in found)
+        print(squares == [(n, n * n) for n in range(40)])
         with Cluster(Task(trouble, None), address, 3.0) as crew:
             whats = [1, "exception", "hang", 2]
             found = sorted(crew.solve(Point(n, what) for n, what in enumerate(whats)), key=lambda o: o.number)
@@ -46,10 +47,19 @@ def script(tmp_path, kill):
     )
 
 
-@pytest.mark.parametrize("kill", [False, True])
+@pytest.mark.parametrize("kill", [True, pytest.param(False, marks=pytest.mark.long)])
 def test_every_point_has_its_outcome(tmp_path, kill):
     ran = script(tmp_path, kill)
     assert ran.stdout.splitlines() == ["True", "[1, 'exception', 'time-out', 4]"], ran.stderr[-2000:]
+
+
+def test_no_scheduler_there(monkeypatch):
+    from crosscheck.batch import cluster
+    from crosscheck.batch.task import BatchError, Task
+
+    monkeypatch.setattr(cluster, "CONNECT_LIMIT", 0.5)
+    with pytest.raises(BatchError, match="no scheduler answers"):
+        cluster.Cluster(Task(print, None), "tcp://127.0.0.1:1")
 
 
 def test_absent_library_is_told_with_the_remedy(monkeypatch):

@@ -99,7 +99,6 @@ def test_two_parameters_make_a_map(run, angle, tmp_path):
         (("--vary", "t from 1 to 2", "--resume"), "must be given with --out"),
         (("--vary", "t from 1 to 2", "--workers", "0"), "whole number from 1 to 256"),
         (("--vary", "t from 1 to 2", "--quantity", "weight"), "--quantity: must be one of area"),
-        (("--vary", "t from 1 to 2", "--cluster", "tcp://127.0.0.1:1"), "no scheduler answers"),
         ((), "--vary"),
     ],
 )
