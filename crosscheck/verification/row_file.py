@@ -242,7 +242,7 @@ class _Reader:
         parameters = {} if section is None else section.parameters
         self._check_quantity(at, keys, section)
         value = self._value(at, keys, parameters)
-        tolerance = self._tolerance(at, keys)
+        tolerance = self._tolerance(at, keys, value)
         place, point = self._places(at, keys)
         if len(self.faults) + self.faults.left_out > before or section is None:
             return None
@@ -309,7 +309,7 @@ class _Reader:
             self.faults.add((*at, "value"), f"{quoted(keys['value'])}: {fault}", words)
             return None
 
-    def _tolerance(self, at: KeyPath, keys: Mapping[str, Any]) -> Tolerance | None:
+    def _tolerance(self, at: KeyPath, keys: Mapping[str, Any], value: float | None) -> Tolerance | None:
         raw, why = keys.get("tolerance"), keys.get("why", "")
         if raw == "printed":
             half = printed_half_unit(str(keys.get("value", "")))
@@ -325,7 +325,7 @@ class _Reader:
             if kind in ("relative", "absolute") and number:
                 if not why:
                     self.faults.add((*at, "why"), "nothing", "given: why this tolerance")
-                if kind == "relative" and str(keys.get("value", "")).strip("+-.0") == "":
+                if kind == "relative" and value == 0.0:
                     self.faults.add((*at, "tolerance"), "relative, of zero", "absolute where the value is 0")
                 return Tolerance(kind, float(size), str(why))
         words = '{ relative = 1e-3 }, { absolute = 0.1 } or "printed"'
