@@ -1,13 +1,46 @@
-"""The checks of the verification suite as functions that say whether they pass, quick ones first."""
+"""The whole verification suite as functions that say whether they pass, the quick ones first."""
 
 from __future__ import annotations
 
+import sys
 from collections.abc import Callable
+from functools import partial
+from pathlib import Path
 
-from crosscheck.verification.code_checks import code_checks
+sys.path.insert(0, str(Path(__file__).parents[2]))
+
+from crosscheck.verification.check import CodeCheck
+from crosscheck.verification.suite import Job, plan, run_job
+
+Check = tuple[str, Callable[[], bool]]
 
 
-def suite_checks() -> list[tuple[str, Callable[[], bool]]]:
-    """Name and function of every code check; what earlier checks have solved is forgotten first."""
-    ordered = sorted(code_checks(), key=lambda c: not c.quick)
-    return [(c.name, lambda run=c.run: run().passed) for c in ordered]  # type: ignore[misc]
+def suite_checks(side: str | None = None) -> list[Check]:
+    """Name and function of every job of the suite that has to do with a side ("theory", "fe"; None: all)."""
+    quick = {_name(job) for job in plan(quick=True).jobs}
+    chosen = [job for job in plan().jobs if side is None or _of(job, side)]
+    chosen.sort(key=lambda job: (_name(job) not in quick, not isinstance(job, CodeCheck)))
+    return [(_name(job), partial(_passes, job)) for job in chosen]
+
+
+def forget() -> None:
+    """Drop what earlier checks of this process have kept."""
+    for module in list(sys.modules.values()):
+        if getattr(module, "__name__", "").startswith(("beam_theory", "fe_models", "crosscheck")):
+            for value in list(vars(module).values()):
+                if hasattr(value, "cache_clear") and "lru_cache" in type(value).__name__:
+                    value.cache_clear()
+
+
+def _passes(job: Job) -> bool:
+    return all(outcome.passed for outcome in run_job(job))
+
+
+def _name(job: Job) -> str:
+    return job.name
+
+
+def _of(job: Job, side: str) -> bool:
+    if isinstance(job, CodeCheck):
+        return job.side in (side, "both")
+    return any(side in row.sides or row.kind != "value" for row in job.rows)

@@ -77,16 +77,15 @@ def _words(tree: ast.Module) -> set[int]:
         parts: list[ast.AST | None] = []
         if isinstance(node, (ast.JoinedStr, ast.Raise, ast.Assert)):
             parts = [node]
-        elif isinstance(node, ast.AnnAssign):
-            parts = [node.annotation]
-        elif isinstance(node, ast.arg):
+        elif isinstance(node, (ast.AnnAssign, ast.arg)):
             parts = [node.annotation]
         elif isinstance(node, (ast.FunctionDef, ast.AsyncFunctionDef)):
             parts = [node.returns, *node.decorator_list]
         elif isinstance(node, ast.ClassDef):
             parts = [*node.decorator_list, *node.bases]
         elif isinstance(node, ast.Assign) and any(
-            isinstance(t, ast.Name) and t.id in ("__all__", "Index", "Array", "Position") for t in node.targets
+            isinstance(t, ast.Name) and t.id in ("__all__", "Index", "Array", "Position")
+            for t in node.targets
         ):
             parts = [node.value]
         for part in parts:
@@ -97,9 +96,7 @@ def _words(tree: ast.Module) -> set[int]:
 
 def _change(node: ast.expr) -> bool:
     """Make the node's one change; False where it has none."""
-    if isinstance(node, ast.BinOp) and type(node.op) in OPERATORS:
-        node.op = OPERATORS[type(node.op)]()  # type: ignore[assignment]
-    elif isinstance(node, ast.BoolOp):
+    if isinstance(node, (ast.BinOp, ast.BoolOp)) and type(node.op) in OPERATORS:
         node.op = OPERATORS[type(node.op)]()  # type: ignore[assignment]
     elif isinstance(node, ast.Compare) and type(node.ops[0]) in OPERATORS:
         node.ops[0] = OPERATORS[type(node.ops[0])]()  # type: ignore[assignment]

@@ -19,12 +19,12 @@ import sys
 import time
 import warnings
 from collections import Counter
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from pathlib import Path
 
 sys.path[:0] = [str(Path(__file__).parents[2]), str(Path(__file__).parent)]
 
-from checks import suite_checks
+from checks import Check, forget, suite_checks
 from mutants import ROOT, Mutant, mutants, mutated
 from transplant import transplant
 
@@ -43,7 +43,7 @@ def formula_files() -> list[str]:
     return found + [f"fe_models/{name}.py" for name in FE_FORMULAS]
 
 
-def outcome(mutant: Mutant, checks: Sequence[tuple[str, Callable[[], bool]]]) -> str | None:
+def outcome(mutant: Mutant, checks: Sequence[Check]) -> str | None:
     """The name of the check that finds a mutant; None where all pass."""
     read, write = os.pipe()
     child = os.fork()
@@ -65,11 +65,12 @@ def outcome(mutant: Mutant, checks: Sequence[tuple[str, Callable[[], bool]]]) ->
     return None if told == "survived" else told[1:] or "the process broke down"
 
 
-def _live(mutant: Mutant, checks: Sequence[tuple[str, Callable[[], bool]]], write: int) -> None:
+def _live(mutant: Mutant, checks: Sequence[Check], write: int) -> None:
     null = os.open(os.devnull, os.O_WRONLY)
     os.dup2(null, 1)
     os.dup2(null, 2)
     warnings.simplefilter("ignore")
+    forget()
     transplant(importlib.import_module(mutant.module), mutated(mutant))
     for name, passes in checks:
         try:
@@ -91,22 +92,24 @@ def main(arguments: Sequence[str]) -> int:
     asked = parser.parse_args(arguments)
     every = [m for path in asked.only or formula_files() for m in mutants(path)]
     chosen = random.Random(asked.seed).sample(every, min(asked.sample, len(every)))
-    checks = suite_checks()
-    for name, passes in checks:
+    checks = {side: suite_checks(side) for side in ("theory", "fe")}
+    for name, passes in suite_checks():
         if not passes():
             raise SystemExit(f"fails without any change: {name}")
     found: Counter[str] = Counter()
     alive: list[Mutant] = []
     begun = time.time()
     for i, mutant in enumerate(chosen):
-        by = outcome(mutant, checks)
+        by = outcome(mutant, checks["theory" if mutant.path.startswith("beam_theory") else "fe"])
         if by is None:
             alive.append(mutant)
             print(f"{mutant.path}:{mutant.line}: {mutant.told}", flush=True)
         else:
             found[by] += 1
         if (i + 1) % 50 == 0:
-            print(f"# {i + 1} of {len(chosen)}, {len(alive)} survive, {time.time() - begun:.0f} s", flush=True)
+            print(
+                f"# {i + 1} of {len(chosen)}, {len(alive)} survive, {time.time() - begun:.0f} s", flush=True
+            )
     n, share = len(chosen), len(alive) / len(chosen)
     half = 1.96 * math.sqrt(max(share * (1.0 - share), 1.0 / n) / n)
     print(f"{len(every)} mutants, {n} tried, {len(alive)} survive: {100 * share:.1f} % +- {100 * half:.1f} %")

@@ -35,10 +35,9 @@ def transplant(module: types.ModuleType, tree: ast.Module) -> None:
         if other is None or not other.__name__.startswith(PACKAGES):
             continue
         for alias, value in list(vars(other).items()):
-            for old, new in changed.values():
-                if value is old and not isinstance(old, (bool, int, type(None))):
-                    setattr(other, alias, new)
-                elif value is old and alias in changed and changed[alias][0] is old:
+            for name, (old, new) in changed.items():
+                # small numbers are one object wherever they stand, so they must bear the name as well
+                if value is old and (alias == name or callable(old)):
                     setattr(other, alias, new)
 
 

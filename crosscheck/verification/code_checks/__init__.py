@@ -18,6 +18,10 @@ MODULES: tuple[str, ...] = (
     "reciprocity",
     "redundancy",
     "invariances",
+    "stresses",
+    "hand_sheet",
+    "levels",
+    "fe_flows",
     "limits",
 )
 

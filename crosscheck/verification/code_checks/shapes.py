@@ -14,6 +14,7 @@ import beam_theory
 import fe_models
 
 Array = NDArray[np.float64]
+Complexes = NDArray[np.complex128]
 Place = tuple[float, float]
 GAUSS_POINTS = 16
 
@@ -97,26 +98,30 @@ class Shape:
         points = {name: at(xy) for name, xy in self.points.items()}
         return Shape(points, walls, {p: a * size**2 for p, a in self.booms.items()})
 
+    def curve(self, wall: Wall, u: Array) -> tuple[Complexes, Complexes]:
+        """Places and their derivative by the fraction of a wall, from its three points alone."""
+        a, b = complex(*self.points[wall.start]), complex(*self.points[wall.end])
+        if wall.through is None:
+            return np.asarray(a + u * (b - a)), np.asarray((b - a) + 0.0j * u)
+        m = complex(*wall.through)
+        # centre c: |a - c| = |b - c| = |m - c|
+        one, two = b - a, m - a
+        c = a + 1j * (one * abs(two) ** 2 - two * abs(one) ** 2) / (2.0 * (one.conjugate() * two).imag)
+        to_m, to_b = cmath.phase((m - c) / (a - c)), cmath.phase((b - c) / (a - c))
+        if not 0.0 < to_m / to_b < 1.0:
+            to_b -= math.copysign(2.0 * math.pi, to_b)
+        z = c + (a - c) * np.exp(1j * to_b * u)
+        return z, 1j * to_b * (z - c)
+
     def line(self, wall: Wall) -> Line:
         """Gauss points of a wall."""
         x, w = np.polynomial.legendre.leggauss(GAUSS_POINTS)
-        u, w = 0.5 * (x + 1.0), 0.5 * w
-        a, b = complex(*self.points[wall.start]), complex(*self.points[wall.end])
-        if wall.through is None:
-            z, dz = a + u * (b - a), np.full(len(u), b - a)
-        else:
-            m = complex(*wall.through)
-            # centre c: |a - c| = |b - c| = |m - c|
-            one, two = b - a, m - a
-            c = a + 1j * (one * abs(two) ** 2 - two * abs(one) ** 2) / (2.0 * (one.conjugate() * two).imag)
-            to_m, to_b = cmath.phase((m - c) / (a - c)), cmath.phase((b - c) / (a - c))
-            if not 0.0 < to_m / to_b < 1.0:
-                to_b -= math.copysign(2.0 * math.pi, to_b)
-            z = c + (a - c) * np.exp(1j * to_b * u)
-            dz = 1j * to_b * (z - c)
+        u = 0.5 * (x + 1.0)
+        z, rate = self.curve(wall, u)
+        step = 0.5 * w * rate
         t = wall.thickness[0] + u * (wall.thickness[1] - wall.thickness[0])
-        place, step = (np.stack([v.real, v.imag], -1) for v in (z, dz * w))
-        return Line(u, place, step, np.abs(dz) * w, t)
+        place, along = (np.stack([v.real, v.imag], -1) for v in (z, step))
+        return Line(u, place, along, np.abs(step), t)
 
     def rewritten(self) -> Shape:
         """The same section with every wall turned round, and walls and points listed backwards."""

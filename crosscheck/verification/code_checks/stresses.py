@@ -1,0 +1,214 @@
+"""Stresses of theory: what they must add up to, and what the numbers made from them must be."""
+
+from __future__ import annotations
+
+from functools import partial
+
+import numpy as np
+from numpy.typing import NDArray
+
+import beam_theory
+from crosscheck.verification.code_checks.equilibrium import solved
+from crosscheck.verification.code_checks.finding import Finding, code_check
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape
+
+GROUP = "stresses of theory"
+ROUND_OFF = 1e-9
+# Places of a wall at which a largest value is looked for, and what may lie between two of them.
+PLACES, BETWEEN = 801, 1e-4
+
+Array = NDArray[np.float64]
+
+LOADS = (
+    beam_theory.Load("pull", axial=130.0, moment=(2000.0, -900.0)),
+    beam_theory.Load("push", shear=(20.0, -35.0), through=(10.0, 5.0), torque=400.0, moment=(-800.0, 1500.0)),
+    beam_theory.Load("warp", shear=(-8.0, 12.0), torque=-90.0, bimoment=4.0e4),
+)
+
+
+def _fibres(shape: Shape, theory: beam_theory.Solution) -> Array:
+    """Fibres: x, y from the centroid, omega, area with its share, sigma of each load, (n, 7)."""
+    centre = np.array([theory.require("centroid_x"), theory.require("centroid_y")])
+    cases = [beam_theory.stress(theory, load) for load in LOADS]
+    rows = []
+    for wall in shape.walls:
+        line = shape.line(wall)
+        sigma = [case.direct(wall.name, line.fraction).mean(axis=1) for case in cases]
+        omega = theory.warping_at(wall.name, line.fraction)
+        area = wall.direct_share * line.thickness * line.weight
+        rows.append(np.column_stack([line.place - centre, omega, area, *sigma]))
+    for number, (p, a) in enumerate(shape.booms.items()):
+        wall = next(w for w in shape.walls if p in (w.start, w.end))
+        omega = theory.warping_at(wall.name, np.array([0.0 if p == wall.start else 1.0]))
+        sigma = [np.array([case.booms()[number].stress]) for case in cases]
+        place = np.array([shape.points[p]]) - centre
+        rows.append(np.column_stack([place, omega, [a], *sigma]))
+    return np.concatenate(rows)
+
+
+def resultants(name: str) -> Finding:
+    """N, Mx, My and B of the direct stress, summed over the fibres, against the loads."""
+    shape, theory, _ = solved(name)
+    found = _fibres(shape, theory)
+    x, y, omega, area = found[:, :4].T
+    worst = 0.0
+    for load, sigma in zip(LOADS, found[:, 4:].T, strict=True):
+        force = sigma * area
+        pairs = (
+            (np.ones_like(x), load.axial),
+            (y, load.moment[0]),
+            (x, load.moment[1]),
+            (omega, load.bimoment),
+        )
+        for arm, want in pairs:
+            worst = max(worst, abs(float(arm @ force) - want) / float(np.abs(arm) @ np.abs(force)))
+    return Finding(worst, ROUND_OFF, f"Largest miss {worst:.1e} of the sum of magnitudes.")
+
+
+def faces(name: str) -> Finding:
+    """Differences of both faces: direct stress as the load is bent through t, shear stress 2 g t twist.
+
+    The mean shear is q/t; von Mises stress is the root of sigma^2 + 3 tau^2.
+    """
+    shape, theory, _ = solved(name)
+    worst = 0.0
+    for load in LOADS:
+        case = beam_theory.stress(theory, load)
+        turned = load.shear != (0.0, 0.0) or load.torque != 0.0
+        flow = theory.flow(load) if turned else None
+        for wall in shape.walls:
+            line = shape.line(wall)
+            sigma, tau = case.direct(wall.name, line.fraction), case.shear(wall.name, line.fraction)
+            tangent = line.step / np.hypot(*line.step.T)[:, None]
+            normal = np.column_stack([-tangent[:, 1], tangent[:, 0]])
+            slope = np.array([case.slope.real, case.slope.imag])
+            bend = (
+                wall.e * line.thickness * (normal @ slope) if wall.direct_share > 0.0 else 0.0 * line.fraction
+            )
+            scale = float(np.abs(sigma).max()) or 1.0
+            worst = max(worst, float(np.abs(sigma[:, 0] - sigma[:, 1] - bend).max()) / scale)
+            q = np.zeros(len(tau)) if flow is None else flow.at(wall.name, line.fraction)
+            twist = 0.0 if flow is None or theory.in_cell(wall.name) else flow.twist
+            scale = float(np.abs(tau).max()) or 1.0
+            worst = max(worst, float(np.abs(tau.mean(axis=1) - q / line.thickness).max()) / scale)
+            split = tau[:, 1] - tau[:, 0] - 2.0 * wall.g * line.thickness * twist
+            worst = max(worst, float(np.abs(split).max()) / scale)
+            both = np.sqrt(sigma**2 + 3.0 * tau**2) - case.von_mises(wall.name, line.fraction)
+            worst = max(worst, float(np.abs(both).max()) / (float(np.abs(sigma).max()) + scale))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
+def peaks(name: str) -> Finding:
+    """Largest stresses and flows, and the envelope over all loads, against a dense search."""
+    shape, theory, _ = solved(name)
+    cases = [beam_theory.stress(theory, load) for load in LOADS]
+    over = {(r.kind, r.wall): r for r in beam_theory.envelope(theory, LOADS).walls}
+    u, worst = np.linspace(0.0, 1.0, PLACES), 0.0
+    for wall in shape.walls:
+        for kind in ("direct", "shear", "von_mises"):
+            dense = [float(np.abs(getattr(case, kind)(wall.name, u)).max()) for case in cases]
+            if max(dense) == 0.0:
+                continue
+            own = [abs(case.largest(kind, wall.name).stress) for case in cases]
+            worst = max(worst, *(abs(a - b) / max(dense) for a, b in zip(own, dense, strict=True)))
+            row = over[kind, wall.name]
+            worst = max(worst, abs(abs(row.value) - max(dense)) / max(dense))
+            if row.load != LOADS[int(np.argmax(dense))].name:
+                worst = float("inf")
+        flows = [theory.flow(load) for load in LOADS[1:]]
+        dense = [float(np.abs(f.at(wall.name, u)).max()) for f in flows]
+        own = [abs(f.peak(wall.name).flow) for f in flows]
+        worst = max(worst, *(abs(a - b) / max(dense) for a, b in zip(own, dense, strict=True)))
+        worst = max(worst, abs(abs(over["flow", wall.name].value) - max(dense)) / max(dense))
+    return Finding(worst, BETWEEN, f"Largest difference {worst:.1e} from a search at {PLACES} places a wall.")
+
+
+def numbers_from_faces(name: str) -> Finding:
+    """Section moduli, torsion modulus and Wagner coefficients against the real faces and sums over fibres."""
+    shape, theory, _ = solved(name)
+    made = beam_theory.faces.face_quantities(theory)
+    centre = np.array([theory.require("centroid_x"), theory.require("centroid_y")])
+    pole = np.array([theory.require("shear_centre_x"), theory.require("shear_centre_y")])
+    u = np.linspace(0.0, 1.0, PLACES)
+    reach, fastest = [], 0.0
+    torsion = beam_theory.stress(theory, beam_theory.Load("unit T", torque=1.0))
+    for wall in shape.walls:
+        tau = torsion.shear(wall.name, u)
+        fastest = max(fastest, float(np.abs(tau).max()))
+        if wall.direct_share == 0.0:
+            continue
+        z = theory.place(wall.name, u) - centre
+        d = np.gradient(z, axis=0)
+        d[0], d[-1] = (4 * z[1] - z[2] - 3 * z[0]) / 2, (3 * z[-1] + z[-3] - 4 * z[-2]) / 2
+        n = np.column_stack([-d[:, 1], d[:, 0]]) / np.hypot(*d.T)[:, None]
+        half = 0.5 * (wall.thickness[0] + u * (wall.thickness[1] - wall.thickness[0]))[:, None]
+        reach += [wall.e * (z + half * n), wall.e * (z - half * n)]
+    reach += [np.array([shape.points[p]]) - centre for p in shape.booms]
+    fibre = np.concatenate(reach)
+    angle = theory.require("principal_angle")
+    axis = np.array([np.cos(angle), np.sin(angle)])
+    across = np.array([-axis[1], axis[0]])
+    right, up = np.eye(2)
+    ways = {
+        "x_top": ("second_moment_xx", up), "x_bottom": ("second_moment_xx", -up),
+        "y_right": ("second_moment_yy", right), "y_left": ("second_moment_yy", -right),
+        "u_plus": ("principal_moment_u", across), "u_minus": ("principal_moment_u", -across),
+        "v_plus": ("principal_moment_v", axis), "v_minus": ("principal_moment_v", -axis),
+    }  # fmt: skip
+    want = {
+        f"section_modulus_{n}": theory.require(m) / float((fibre @ d).max()) for n, (m, d) in ways.items()
+    }
+    want["torsion_modulus"] = 1.0 / fastest
+    off = {n: abs(made[n].require(n) / v - 1.0) for n, v in want.items()}
+    # K = integral of sigma r^2 = N r_0^2 + Mx beta_x + My beta_y + B beta_w
+    found = _fibres(shape, theory)
+    square = ((found[:, :2] + centre - pole) ** 2).sum(axis=1)
+    for load, sigma in zip(LOADS, found[:, 4:].T, strict=True):
+        force = sigma * found[:, 3]
+        by_name = (
+            load.axial * made["polar_radius_squared"].require("polar radius")
+            + load.moment[0] * made["wagner_x"].require("wagner_x")
+            + load.moment[1] * made["wagner_y"].require("wagner_y")
+            + load.bimoment * made["wagner_omega"].require("wagner_omega")
+        )
+        off[f"Wagner, {load.name}"] = abs(float(square @ force) - by_name) / float(square @ np.abs(force))
+    where = max(off, key=off.__getitem__)
+    return Finding(
+        off[where], BETWEEN, f"Largest difference {off[where]:.1e} ({where}) of {len(off)} numbers."
+    )
+
+
+def stiffnesses() -> Finding:
+    """Stiffnesses of theory for E = 70, G = 27 against the quantities they are made from."""
+    _, theory, _ = solved("open section")
+    made = beam_theory.stiffness(theory, 70.0, 27.0, (3.0, -2.0))
+    q = theory.require
+    want = {
+        "EA": 70.0 * q("area"), "EIxx": 70.0 * q("second_moment_xx"), "EIyy": 70.0 * q("second_moment_yy"),
+        "EIxy": 70.0 * q("product_moment_xy"), "EIu": 70.0 * q("principal_moment_u"),
+        "EIv": 70.0 * q("principal_moment_v"), "angle": q("principal_angle"),
+        "GJ": 27.0 * q("torsion_constant"),
+        "EIw": 70.0 * q("warping_constant"), "GA_Vx": 27.0 * q("shear_area_x"),
+        "GA_Vy": 27.0 * q("shear_area_y"),
+        "coupling": q("shear_coupling") / 27.0, "centroid_x": q("centroid_x") - 3.0,
+        "centroid_y": q("centroid_y") + 2.0, "shear_centre_x": q("shear_centre_x") - 3.0,
+        "shear_centre_y": q("shear_centre_y") + 2.0,
+        "characteristic_length": np.sqrt(70.0 * q("warping_constant") / (27.0 * q("torsion_constant"))),
+    }  # fmt: skip
+    worst = max(abs(getattr(made, n).require(n) / v - 1.0) for n, v in want.items())
+    return Finding(worst, 1e-12, f"Largest difference {worst:.1e} of {len(want)} numbers.")
+
+
+CHECKS = (
+    *(
+        code_check(f"{what}, {name}", GROUP, "theory", partial(measure, name), quick=quick, features=features)
+        for what, measure, quick, features in (
+            ("resultants of direct stress", resultants, True, {"axial and moment", "bimoment"}),
+            ("stress at both faces", faces, True, {"torque"}),
+            ("largest stresses and envelope", peaks, False, set()),
+            ("numbers from the faces", numbers_from_faces, True, set()),
+        )
+        for name in SHAPES
+    ),
+    code_check("stiffnesses", GROUP, "theory", stiffnesses, quick=True),
+)
