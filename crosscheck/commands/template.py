@@ -44,11 +44,9 @@ def run(arguments: argparse.Namespace) -> int:
     from crosscheck.templates import template_names, template_text, template_title
 
     if arguments.schema:
-        import json
+        from crosscheck.section_file.json_schema import schema_text
 
-        from crosscheck.section_file.reader import json_schema
-
-        return _deliver(json.dumps(json_schema(), indent=2) + "\n", arguments.out)
+        return _deliver(schema_text(), arguments.out)
     if arguments.shape is None:
         width = max(len(name) for name in template_names())
         lines = (f"{name:<{width}}  {template_title(name)}" for name in template_names())

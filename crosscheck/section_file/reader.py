@@ -41,7 +41,6 @@ __all__ = [
     "SectionSource",
     "StatedSpec",
     "WallSpec",
-    "json_schema",
     "read_section",
     "read_source",
     "section_from",
@@ -182,18 +181,6 @@ def section_from(
         tables=tables,
         outline=None if outline is None else outline.solid,
     )
-
-
-def json_schema() -> dict[str, Any]:
-    """JSON Schema of the section file, for editors."""
-    from crosscheck.section_file.schema import SectionDocument
-
-    schema = SectionDocument.model_json_schema(by_alias=True)
-    for table in (schema, *schema.get("$defs", {}).values()):
-        for entry in table.get("properties", {}).values():
-            if entry.get("default", ...) is None:  # stands for "absent": TOML has no null
-                del entry["default"]
-    return schema
 
 
 def _units(document: Mapping[str, Any], faults: FaultList) -> tuple[str, str]:

@@ -326,11 +326,13 @@ class SectionDocument(_Table):
 
     model_config = ConfigDict(
         extra="forbid",
-        json_schema_extra={"anyOf": [{"required": list(WALLED)}, {"required": ["outline"]}]},
+        json_schema_extra={
+            "anyOf": [{"required": list(WALLED)}, {"required": ["outline"]}, {"required": ["tables"]}]
+        },
     )
 
     schema_number: Annotated[Any, PlainValidator(choice(1)), choice_schema(1)] = Field(
-        default=1, alias="schema"
+        default=1, alias="schema", description="number of the file format"
     )
     title: Text = Field(default=ABSENT, description="one line; the file's name when left out")
     units: Text = Field(description="unit of length and of force")
@@ -339,22 +341,28 @@ class SectionDocument(_Table):
     parameters: dict[str, Number] = Field(
         default_factory=dict, description="numbers or arithmetic on earlier ones"
     )
-    materials: dict[Name, MaterialTable] = Field(default_factory=dict)
+    materials: dict[Name, MaterialTable] = Field(
+        default_factory=dict, description="materials by name; without any, results are per unit modulus"
+    )
     points: dict[Name, Pair] = Field(default_factory=dict, description="places [L]")
-    walls: list[WallTable] = Field(default_factory=list, min_length=1)
+    walls: list[WallTable] = Field(default_factory=list, min_length=1, description="walls along paths")
     profiles: dict[Name, ProfileTable] = Field(
         default_factory=dict, description="profiles that [[placed]] puts on walls"
     )
-    placed: list[PlacedTable] = Field(default_factory=list)
-    booms: list[BoomTable] = Field(default_factory=list)
-    corners: dict[Name, CornerTable] = Field(default_factory=dict)
-    loads: list[LoadTable] = Field(default_factory=list)
-    load_reference: LoadReferenceTable = Field(default=ABSENT)
-    cuts: list[CutTable] = Field(default_factory=list)
-    probes: list[ProbeTable] = Field(default_factory=list)
-    stated: list[StatedTable] = Field(default_factory=list)
+    placed: list[PlacedTable] = Field(default_factory=list, description="profiles placed along walls")
+    booms: list[BoomTable] = Field(default_factory=list, description="areas that carry direct stress only")
+    corners: dict[Name, CornerTable] = Field(
+        default_factory=dict, description="rounding by point, or of every_bend where exactly two walls meet"
+    )
+    loads: list[LoadTable] = Field(default_factory=list, description="load cases")
+    load_reference: LoadReferenceTable = Field(
+        default=ABSENT, description="what loads without through are given about"
+    )
+    cuts: list[CutTable] = Field(default_factory=list, description="where the hand method cuts cells")
+    probes: list[ProbeTable] = Field(default_factory=list, description="named places where both sides report")
+    stated: list[StatedTable] = Field(default_factory=list, description="numbers to be judged")
     criteria: dict[str, Number] = Field(default_factory=dict, description="largest accepted difference [-]")
-    mirror: MirrorTable = Field(default=ABSENT)
+    mirror: MirrorTable = Field(default=ABSENT, description="everything doubled about an axis")
     tables: TablesTable = Field(default=ABSENT, description="CSV files beside this one")
     tolerances: TolerancesTable = Field(default=ABSENT, description="for the uncertainty budget")
     allowables: AllowablesTable = Field(default=ABSENT, description="for margins")

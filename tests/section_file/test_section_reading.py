@@ -18,7 +18,6 @@ from crosscheck.section_file.model import BoomSpec, CornerSpec, LoadSpec, ProbeS
 from crosscheck.section_file.reader import (
     SectionFaults,
     SectionFile,
-    json_schema,
     read_section,
     read_source,
     section_from,
@@ -292,20 +291,6 @@ def test_cuts_of_independent_cells(read: Read, fault_lines: Callable[..., list[s
     assert read(box + '[[cuts]]\nwall = "c-d"\nat = 0.5\n').cuts[0].wall == "c-d"
     (line,) = fault_lines(box + "".join(f'[[cuts]]\nwall = "{w}"\nat = 0.5\n' for w in ("c-d", "a-b")))
     assert line.startswith("cuts[0].wall: must be a wall of a cell that no other cut has opened")
-
-
-def test_schema_for_editors() -> None:
-    schema = json_schema()
-    text = json.dumps(schema)
-    walls = schema["$defs"]["WallTable"]
-    assert walls["required"] == ["path", "thickness"]
-    assert schema["required"] == ["units"]
-    assert schema["anyOf"] == [{"required": ["points", "walls"]}, {"required": ["outline"]}]
-    assert schema["additionalProperties"] is False
-    assert "schema" in schema["properties"]
-    assert "from" in schema["$defs"]["TaperTable"]["properties"]
-    assert "null" not in text
-    assert "\\u001f" not in text
 
 
 def test_known_quantities_are_those_of_the_comparison() -> None:
