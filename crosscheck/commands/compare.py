@@ -29,7 +29,17 @@ examples:
   crosscheck compare cases/sections/two_cell_tail_boom.toml --table stiffness --working --out report
   crosscheck compare cases/sections --json results.json"""
 # Names of crosscheck.reports.tables.TABLES, which help must not load.
-TABLE_NAMES = ("levels", "stiffness", "envelope", "probes", "stresses")
+TABLE_NAMES = (
+    "levels",
+    "stated",
+    "walls",
+    "margins",
+    "places",
+    "stiffness",
+    "envelope",
+    "probes",
+    "stresses",
+)
 
 # Endings that fe_models.write_fields takes.
 FIELD_FORMATS = ("vtu", "msh")
@@ -64,7 +74,8 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
         default=[],
         choices=TABLE_NAMES,
         metavar="NAME",
-        help=f"show a table below the screen, and write it as CSV into DIR: {', '.join(TABLE_NAMES)}",
+        help="show a table below the screen, and write it into DIR to paste from, as CSV, Markdown and HTML: "
+        f"{', '.join(TABLE_NAMES)}",
     )
     command.add_argument(
         "--fields",
@@ -244,7 +255,8 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
     from crosscheck.file_names import free_name
     from crosscheck.pictures import every_picture
     from crosscheck.reports.result_json import json_text
-    from crosscheck.reports.tables import TABLES, csv_bytes
+    from crosscheck.reports.result_table import table_bytes
+    from crosscheck.reports.tables import TABLES
     from crosscheck.whole_files import write_folder
 
     tell(f"{result.title}: pictures")
@@ -253,7 +265,8 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
     for load, text in (result.working or {}).items():
         sheets[free_name(f"working_{load}", sheets)] = text.encode()
     files |= {f"{name}.md": content for name, content in sheets.items()}
-    files |= {f"{name}.csv": csv_bytes(TABLES[name](result)) for name in tables}
+    for name in tables:
+        files |= table_bytes(TABLES[name](result))
     files |= result.field_files
     files["result.json"] = json_text([result]).encode()
     try:

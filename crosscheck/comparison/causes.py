@@ -1,6 +1,7 @@
 """Where a difference comes from: steps between the midline theory and the solid, one assumption at a time.
 
-    midline -> own thickness, free ends and joints -> bends and fillets by theory
+    midline [-> midline theory of the real walls, where the file gives each side its own]
+            -> own thickness, free ends and joints -> bends and fillets by theory
             -> FE with sharp corners, nu = 0 -> FE as drawn, nu = 0
 
 The steps of a quantity add up to its difference. The order is fixed, and the split depends on it. A step that
@@ -15,9 +16,11 @@ from dataclasses import dataclass, replace
 import beam_theory
 import fe_models
 from crosscheck.comparison import models
+from crosscheck.comparison.levels import Levels
 from crosscheck.comparison.result import CauseStep, QuantityResult
 from crosscheck.section_file.model import SectionFile
 
+MODELS = "theory's idealised model in place of the real walls"
 OWN_THICKNESS = "own thickness, free ends and joints, published"
 BENDS = "bends and fillets, by theory"
 SOLID = "FE in place of theory, corners sharp"
@@ -44,6 +47,8 @@ class Stations:
         FE as drawn.
     given : bool
         True where FE takes an outline that the walls did not make.
+    ideal : mapping of name to beam_theory.Quantity, optional
+        Midline theory of its own model where FE sees another; all of the above is then of FE's walls.
     """
 
     midline: Mapping[str, beam_theory.Quantity]
@@ -52,6 +57,7 @@ class Stations:
     sharp: Mapping[str, fe_models.Interval] | None
     drawn: Mapping[str, fe_models.Interval]
     given: bool = False
+    ideal: Mapping[str, beam_theory.Quantity] | None = None
 
 
 def stations(
@@ -59,11 +65,18 @@ def stations(
     solved: Mapping[str, beam_theory.Solution],
     fe: fe_models.Solution,
     accuracy: float,
+    real: Levels | None = None,
 ) -> Stations:
-    """Solve what the breakdown needs beside the levels and the FE solution at hand."""
+    """Solve what the breakdown needs beside the levels and the FE solution at hand.
+
+    ``real``: theory of the walls that FE sees, where those are others than theory's.
+    """
     if not solved:
         return Stations({}, {}, None, None, fe.quantities, given=True)
-    theory, given = models.theory_section(section), section.outline is not None
+    theory, given, ideal = models.theory_section(section), section.outline is not None, None
+    if real is not None:
+        ideal, solved = solved["midline"].quantities, real.solutions
+        theory = models.real_section(section) or theory
     midline = solved["midline"].quantities
     corrected = solved["corrected"].quantities if "corrected" in solved else {}
     unrounded, sharp = None, None
@@ -75,7 +88,7 @@ def stations(
             sharp = fe_models.solve(replace(solid, corners={}), accuracy).quantities
         except fe_models.OutlineError:
             sharp = None
-    return Stations(midline, corrected, unrounded, sharp, fe.quantities, given)
+    return Stations(midline, corrected, unrounded, sharp, fe.quantities, given, ideal)
 
 
 def causes(at: Stations, rows: Sequence[QuantityResult]) -> tuple[CauseStep, ...]:
@@ -91,6 +104,9 @@ def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
         return
     scale = row.normaliser
     value, note = start.value, None
+    ideal = None if at.ideal is None else at.ideal[row.name].value
+    if ideal is not None:
+        yield CauseStep(row.name, None, MODELS, (ideal - value) / scale, 0.0)
     better = at.corrected.get(row.name)
     if better is None or better.value is None:
         reason = "no such level" if better is None else better.reason

@@ -14,9 +14,10 @@ import fe_models
 from crosscheck.comparison import models
 from crosscheck.comparison.causes import causes, stations
 from crosscheck.comparison.drawing import drawing_of
-from crosscheck.comparison.levels import Levels, solve_levels
+from crosscheck.comparison.levels import Levels, solve_levels, solve_real_walls
 from crosscheck.comparison.load_comparison import compare_loads
 from crosscheck.comparison.outline_agreement import outline_agreement
+from crosscheck.comparison.panels import two_models
 from crosscheck.comparison.properties import indicator_rows, shear_coefficient_rows, stiffness_rows
 from crosscheck.comparison.provenance import provenance
 from crosscheck.comparison.result import CheckResult, FeValue, MeshResult, Result
@@ -122,7 +123,8 @@ def join(
         name: replace(fe_value(interval), nu_reason=nu_reason) if name in WITH_NU else fe_value(interval)
         for name, interval in fe.quantities.items()
     }
-    loads = compare_loads(section, levels, fe, values)
+    real = solve_real_walls(section)
+    loads = compare_loads(section, levels, fe, values, real)
     rows = [*section_rows(section, levels, fe, values), loads.torsion_modulus, *loads.rows]
     theory = levels.judged_solution
     drawing = drawing_of(section, theory, fe, loads.cases, loads.judged_flows) if pictures else None
@@ -140,7 +142,7 @@ def join(
         flows=loads.flows,
         theory_peaks=loads.theory_peaks,
         stated=judge_stated(section, rows),
-        causes=causes(stations(section, levels.solutions, fe, accuracy), rows),
+        causes=causes(stations(section, levels.solutions, fe, accuracy, real), rows),
         working=sheets,
         mesh=MeshResult(fe.mesh.order, fe.mesh.unknowns, fe.mesh.elements, fe.mesh.strips, fe.mesh.joints),
         checks=(*_theory_checks(levels), *_checks("FE", fe.checks)),
@@ -159,6 +161,11 @@ def join(
         indicators=indicator_rows(section, levels, values),
         theory_notes={level: tuple(solution.notes) for level, solution in levels.solutions.items()},
         section_notes=section.notes,
+        walls_by_loads=loads.walls_by_loads,
+        margins=loads.margins,
+        named_probes=loads.named_probes,
+        load_kinds={load.name: load.kind for load in section.loads if load.kind is not None},
+        models=two_models(section),
         outline_alone=not levels.solutions,
         nu=None if fe.poisson is None else fe.poisson.nu,
         nu_reason=nu_reason,

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field
 
 import beam_theory
@@ -125,14 +125,29 @@ def solve_levels(section: SectionFile) -> Levels:
     """
     if not section.walls:
         return Levels(section.judged, {}, dict.fromkeys(LEVELS, OUTLINE_ALONE))
-    model = models.theory_section(section)
+    return _solved(models.theory_section(section), section.judged, ("midline", section.judged))
+
+
+def solve_real_walls(section: SectionFile) -> Levels | None:
+    """Theory of the walls and booms that FE sees; None where those are theory's own, or theory cannot."""
+    model = models.real_section(section)
+    if model is None:
+        return None
+    try:
+        return _solved(model, "midline", ("midline",))
+    except beam_theory.TheoryError:
+        return None
+
+
+def _solved(model: beam_theory.Section, judged: str, needed: Collection[str]) -> Levels:
+    """Every level of a model; those needed must have a solution."""
     solutions: dict[str, beam_theory.Solution] = {}
     refused: dict[str, str] = {}
     for level in LEVELS:
         try:
             solutions[level] = beam_theory.solve(model, level)
         except beam_theory.TheoryError as fault:
-            if level in ("midline", section.judged):
+            if level in needed:
                 raise
             refused[level] = str(fault)
-    return Levels(section.judged, solutions, refused)
+    return Levels(judged, solutions, refused)

@@ -19,9 +19,20 @@ from crosscheck.comparison.flow_comparison import (
 )
 from crosscheck.comparison.levels import Levels, TheoryFlow, TheoryStress
 from crosscheck.comparison.load_case import UNIT_CASES, LoadCase, fe_torque
-from crosscheck.comparison.load_envelope import envelopes
-from crosscheck.comparison.load_results import BoomFibre, FilletPeak, ProbeEnvelope, WallEnvelope, WallStress
+from crosscheck.comparison.load_envelope import envelopes, shear_envelopes
+from crosscheck.comparison.load_results import (
+    BoomFibre,
+    FilletPeak,
+    Margin,
+    NamedProbe,
+    ProbeEnvelope,
+    WallByLoad,
+    WallEnvelope,
+    WallStress,
+)
 from crosscheck.comparison.load_rows import flow_rows, stress_rows, torsion_modulus_row, twist_row
+from crosscheck.comparison.margins import margins
+from crosscheck.comparison.named_probes import named_probes
 from crosscheck.comparison.panels import Panel, panels_of
 from crosscheck.comparison.quantities import flow_unit, stress_unit
 from crosscheck.comparison.result import FeValue, QuantityResult, TheoryPeak, WallFlow
@@ -33,6 +44,7 @@ from crosscheck.comparison.stress_comparison import (
     unit_faces,
     wall_stresses,
 )
+from crosscheck.comparison.walls_by_loads import walls_by_loads
 
 if TYPE_CHECKING:
     from crosscheck.section_file.model import SectionFile
@@ -51,12 +63,19 @@ class LoadComparison:
     stresses: tuple[WallStress, ...]
     boom_fibres: tuple[BoomFibre, ...]
     fillet_peaks: tuple[FilletPeak, ...]
+    walls_by_loads: tuple[WallByLoad, ...]
+    margins: tuple[Margin, ...]
+    named_probes: tuple[NamedProbe, ...]
     wall_envelopes: tuple[WallEnvelope, ...]
     probe_envelopes: tuple[ProbeEnvelope, ...]
 
 
 def compare_loads(
-    section: SectionFile, levels: Levels, fe: fe_models.Solution, values: Mapping[str, FeValue]
+    section: SectionFile,
+    levels: Levels,
+    fe: fe_models.Solution,
+    values: Mapping[str, FeValue],
+    real: Levels | None = None,
 ) -> LoadComparison:
     """Compare unit loads and loads of a file.
 
@@ -70,6 +89,8 @@ def compare_loads(
         FE.
     values : mapping of name to FeValue
         FE's quantities.
+    real : Levels, optional
+        Theory of the walls that FE sees, where those are others than theory's.
     """
     cases = load_cases(section, levels)
     theory = [levels.flows(case) for case in cases]
@@ -123,6 +144,7 @@ def compare_loads(
         judged,
         (flow_unit("", *units), stress_unit("", *units)),
     )
+    shear = shear_envelopes(own, judged, stress_unit("", *units)) if section.allowables else ()
     return LoadComparison(
         cases=cases,
         judged_flows=tuple(flow[judged] for flow in theory),
@@ -135,6 +157,9 @@ def compare_loads(
         ),
         boom_fibres=fibres,
         fillet_peaks=tuple(_fillet_peaks(section, fe, values, cases)),
+        walls_by_loads=walls_by_loads(section, flows, panels, real),
+        margins=margins(section.allowables, (*walls, *shear), panels),
+        named_probes=named_probes(section, flows),
         wall_envelopes=walls,
         probe_envelopes=places,
     )

@@ -10,7 +10,7 @@ import numpy as np
 from crosscheck.comparison.flow_comparison import LoadFlows
 from crosscheck.comparison.load_results import Governing, ProbeEnvelope, WallEnvelope
 from crosscheck.comparison.result import Array
-from crosscheck.comparison.stress_comparison import FACES, LoadStress, measure
+from crosscheck.comparison.stress_comparison import FACES, LoadStress, measure, peak_error
 
 KINDS = ("flow", "direct", "von_mises")
 
@@ -25,6 +25,7 @@ class _Field:
     loads: tuple[str, ...]
     theory: Array
     fe: Array
+    error: Array
 
 
 def envelopes(
@@ -51,11 +52,22 @@ def envelopes(
     direct = any(found.case.has_direct for found in stresses)
     for kind in KINDS if direct else ("flow", "von_mises"):
         unit = units[0] if kind == "flow" else units[1]
-        fields = _flow_fields(flows) if kind == "flow" else _stress_fields(kind, stresses, judged)
-        for field in fields:
+        for field in _fields(kind, flows, stresses, judged):
             walls.append(_wall(kind, field, unit))
             probes += [_probe(kind, field, i, unit) for i in range(len(field.s))]
     return tuple(walls), tuple(probes)
+
+
+def shear_envelopes(stresses: Sequence[LoadStress], judged: str, unit: str) -> tuple[WallEnvelope, ...]:
+    """Largest shear stress at the faces of every wall over the loads, as :func:`envelopes` gives others."""
+    return tuple(_wall("shear", field, unit) for field in _fields("shear", (), stresses, judged))
+
+
+def _fields(
+    kind: str, flows: Sequence[LoadFlows], stresses: Sequence[LoadStress], judged: str
+) -> Iterable[_Field]:
+    """Values of one kind, wall by wall."""
+    return _flow_fields(flows) if kind == "flow" else _stress_fields(kind, stresses, judged)
 
 
 def _flow_fields(flows: Sequence[LoadFlows]) -> Iterable[_Field]:
@@ -67,12 +79,12 @@ def _flow_fields(flows: Sequence[LoadFlows]) -> Iterable[_Field]:
         first = rows[0].probes
         theory = [[[_nan(probe.theory) for probe in row.probes]] for row in rows]
         fe = [[[_nan(probe.fe) for probe in row.probes]] for row in rows]
+        error = [[[_nan(probe.fe_error) for probe in row.probes]] for row in rows]
         labels = tuple(probe.label for probe in first)
         s = np.array([probe.s for probe in first])
         shape = (len(loads), 1, len(first))
-        yield _Field(
-            rows[0].wall, s, labels, loads, np.array(theory).reshape(shape), np.array(fe).reshape(shape)
-        )
+        values = (np.array(side).reshape(shape) for side in (theory, fe, error))
+        yield _Field(rows[0].wall, s, labels, loads, *values)
 
 
 def _stress_fields(kind: str, stresses: Sequence[LoadStress], judged: str) -> Iterable[_Field]:
@@ -84,14 +96,16 @@ def _stress_fields(kind: str, stresses: Sequence[LoadStress], judged: str) -> It
         nothing = np.full((2, len(walls[0].s)), np.nan)
         theory = [measure(kind, wall.theory[judged]) if judged in wall.theory else nothing for wall in walls]
         fe = [measure(kind, wall.fe) for wall in walls]
+        error = [peak_error(kind, wall) for wall in walls]
         labels = tuple(probe.label for probe in walls[0].probes)
-        yield _Field(walls[0].wall, walls[0].s, labels, loads, np.array(theory), np.array(fe))
+        values = (np.array(side) for side in (theory, fe, error))
+        yield _Field(walls[0].wall, walls[0].s, labels, loads, *values)
 
 
 def _wall(kind: str, field: _Field, unit: str) -> WallEnvelope:
     """The value of largest magnitude of a wall on each side."""
     shared = np.where(np.isnan(field.fe), np.nan, field.theory)
-    theory, fe = _largest(kind, field, shared), _largest(kind, field, field.fe)
+    theory, fe = _largest(kind, field, shared), _largest(kind, field, field.fe, field.error)
     difference = None
     if theory is not None and fe is not None and fe.value != 0.0:
         difference = (abs(theory.value) - abs(fe.value)) / abs(fe.value)
@@ -108,11 +122,12 @@ def _probe(kind: str, field: _Field, i: int, unit: str) -> ProbeEnvelope:
                 ends.append(None)
                 continue
             load, face = np.unravel_index(int(find(here)), here.shape)
-            ends.append(_governing(kind, field, int(load), int(face), i, float(here[load, face])))
+            at, error = (int(load), int(face), i), None if side is field.theory else field.error
+            ends.append(_governing(kind, field, at, float(here[load, face]), error))
     return ProbeEnvelope(kind, field.wall, float(field.s[i]), field.labels[i], unit, *ends)
 
 
-def _largest(kind: str, field: _Field, values: Array) -> Governing | None:
+def _largest(kind: str, field: _Field, values: Array, error: Array | None = None) -> Governing | None:
     """The largest magnitude; of equal ones the first load's."""
     if not np.isfinite(values).any():
         return None
@@ -121,11 +136,16 @@ def _largest(kind: str, field: _Field, values: Array) -> Governing | None:
     flat = np.nan_to_num(size, nan=-1.0).ravel()
     first = int(np.argmax(flat >= np.nanmax(size) * (1.0 - 1e-9)))
     load, face, i = (int(k) for k in np.unravel_index(first, values.shape))
-    return _governing(kind, field, load, face, i, float(values[load, face, i]))
+    return _governing(kind, field, (load, face, i), float(values[load, face, i]), error)
 
 
-def _governing(kind: str, field: _Field, load: int, face: int, i: int, value: float) -> Governing:
-    return Governing(value, field.loads[load], float(field.s[i]), None if kind == "flow" else FACES[face])
+def _governing(
+    kind: str, field: _Field, at: tuple[int, int, int], value: float, error: Array | None
+) -> Governing:
+    """A value with its load, place, face and error; ``at``: numbers of load, face and probe."""
+    face = None if kind == "flow" else FACES[at[1]]
+    half = None if error is None else float(error[at])
+    return Governing(value, field.loads[at[0]], float(field.s[at[2]]), face, half)
 
 
 def _nan(value: float | None) -> float:

@@ -66,12 +66,16 @@ class FilletPeak:
 
 @dataclass(frozen=True)
 class Governing:
-    """The value that governs, with its sign, the load it belongs to, and where; ``face`` for stresses."""
+    """The value that governs, with its sign, the load it belongs to, and where.
+
+    ``face`` is there for stresses, ``error`` for FE's.
+    """
 
     value: float
     load: str
     s: float
     face: str | None = None
+    error: float | None = None
 
 
 @dataclass(frozen=True)
@@ -102,3 +106,93 @@ class ProbeEnvelope:
     theory_high: Governing | None
     fe_low: Governing | None
     fe_high: Governing | None
+
+
+@dataclass(frozen=True)
+class FlowStep:
+    """What one assumption adds to the difference of a wall's flow, over the wall's own peak [-]."""
+
+    step: str
+    change: float
+
+
+@dataclass(frozen=True)
+class WallByLoad:
+    """How far theory's flow is from FE's in one wall under one load; null with a reason where not compared.
+
+    ``difference``, ``uncertainty`` are over ``normaliser``, the wall's own FE peak and at least 5 % of the
+    section's; ``theory`` and ``fe`` are the flows there, at ``s``, the means those over the wall's strip,
+    whose difference is over the same. ``steps`` add up to the difference.
+    """
+
+    load: str
+    wall: str
+    unit: str
+    criterion: float
+    difference: float | None = None
+    uncertainty: float | None = None
+    normaliser: float | None = None
+    verdict: str | None = None
+    s: float | None = None
+    theory: float | None = None
+    fe: float | None = None
+    theory_mean: float | None = None
+    fe_mean: float | None = None
+    mean_difference: float | None = None
+    steps: tuple[FlowStep, ...] = ()
+    reason: str | None = None
+
+    @property
+    def cause(self) -> FlowStep | None:
+        """The step that adds most in the sense of the difference."""
+        if self.difference is None or not self.steps:
+            return None
+        sign = 1.0 if self.difference >= 0.0 else -1.0
+        return max(self.steps, key=lambda step: sign * step.change)
+
+
+@dataclass(frozen=True)
+class Margin:
+    """Allowable over stress minus one in one wall [-], by theory and by FE, with the loads that govern.
+
+    ``kind``: shear_flow, shear_stress, direct_stress or von_mises_stress; ``fe_low``, ``fe_high``: with the
+    FE error; ``effect``: that of using theory's stress. A side without stress in the wall has None.
+    """
+
+    wall: str
+    kind: str
+    unit: str
+    allowable: float
+    source: str
+    theory: float | None
+    fe: float | None
+    fe_low: float | None
+    fe_high: float | None
+    theory_stress: Governing | None
+    fe_stress: Governing | None
+    effect: str | None
+    reason: str | None = None
+
+
+@dataclass(frozen=True)
+class NamedProbe:
+    """Flow of both sides at one of the user's probes under one load, and the load of one fastener.
+
+    ``fe_error``: half of FE's interval of the flow; fastener loads are flow times ``pitch``, if given.
+    """
+
+    label: str
+    wall: str
+    s: float
+    x: float
+    y: float
+    load: str
+    unit: str
+    theory: float | None
+    fe: float | None
+    fe_error: float | None
+    pitch: float | None
+    fastener_unit: str
+    theory_fastener: float | None
+    fe_fastener: float | None
+    reason: str | None = None

@@ -51,6 +51,25 @@ def young_modulus(section: SectionFile) -> float | None:
 
 def theory_section(section: SectionFile) -> beam_theory.Section:
     """Classical theory's model: every wall it sees, booms and cuts."""
+    return _lines(section, "theory")
+
+
+def real_section(section: SectionFile) -> beam_theory.Section | None:
+    """The walls and booms that FE sees as a model of theory; None where they are theory's own."""
+    sides = {*(wall.seen_by for wall in section.walls), *(boom.seen_by for boom in section.booms)}
+    same = sides == {"both"} and all(w.share_in_theory == w.direct_share for w in section.walls)
+    if same or section.outline is not None:
+        return None
+    return _lines(section, "fe")
+
+
+def has_two_models(section: SectionFile) -> bool:
+    """Whether the two sides see other walls, booms or shares."""
+    return real_section(section) is not None
+
+
+def _lines(section: SectionFile, side: str) -> beam_theory.Section:
+    """Walls, booms and corners that a side sees as a model of theory; cuts where they are theory's."""
     walls = tuple(
         beam_theory.Wall(
             name=wall.name,
@@ -60,10 +79,10 @@ def theory_section(section: SectionFile) -> beam_theory.Section:
             arc_through=wall.arc_through,
             e=ratios[0],
             g=ratios[1],
-            direct_share=wall.share_in_theory,
+            direct_share=wall.share_in_theory if side == "theory" else wall.direct_share,
         )
         for wall in section.walls
-        if wall.seen_by != "fe"
+        if wall.seen_by in ("both", side)
         for ratios in (modulus_ratios(section, wall.material),)
     )
     booms = tuple(
@@ -75,9 +94,9 @@ def theory_section(section: SectionFile) -> beam_theory.Section:
             e=modulus_ratios(section, boom.material)[0],
         )
         for boom in section.booms
-        if boom.seen_by != "fe"
+        if boom.seen_by in ("both", side)
     )
-    cuts = tuple(beam_theory.Cut(cut.wall, cut.at) for cut in section.cuts)
+    cuts = tuple(beam_theory.Cut(cut.wall, cut.at) for cut in section.cuts if side == "theory")
     corners = tuple(
         beam_theory.Corner(point, corner.inner_radius, corner.outer_radius)
         for point, corner in rounded_points(section, walls).items()

@@ -18,7 +18,8 @@ from itertools import pairwise
 import numpy as np
 
 from crosscheck.comparison.midline import Midline
-from crosscheck.comparison.result import Array
+from crosscheck.comparison.models import has_two_models
+from crosscheck.comparison.result import Array, TwoModels
 from crosscheck.section_file.model import SectionFile, WallSpec
 
 # Number of a wall within its path: "skin 2", "gutter 2.1".
@@ -144,6 +145,21 @@ def panels_of(section: SectionFile) -> dict[str, Panel]:
         for panel in () if group is None else _matched(section, *group):
             made[_free(panel.name, made)] = panel
     return {name: panel if panel.name == name else _renamed(panel, name) for name, panel in made.items()}
+
+
+def two_models(section: SectionFile) -> TwoModels | None:
+    """What each side is made of; None where both see the same."""
+    if not has_two_models(section):
+        return None
+    seen = {
+        (kind, side): sum(part.seen_by in ("both", side) for part in parts)
+        for kind, parts in (("walls", section.walls), ("booms", section.booms))
+        for side in ("theory", "fe")
+    }
+    both = sum(panel.seen_by == "both" for panel in panels_of(section).values())
+    return TwoModels(
+        seen["walls", "theory"], seen["booms", "theory"], seen["walls", "fe"], seen["booms", "fe"], both
+    )
 
 
 def _free(name: str, taken: Mapping[str, Panel]) -> str:

@@ -9,7 +9,16 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-from crosscheck.comparison.load_results import BoomFibre, FilletPeak, ProbeEnvelope, WallEnvelope, WallStress
+from crosscheck.comparison.load_results import (
+    BoomFibre,
+    FilletPeak,
+    Margin,
+    NamedProbe,
+    ProbeEnvelope,
+    WallByLoad,
+    WallEnvelope,
+    WallStress,
+)
 
 Array = NDArray[np.float64]
 Verdict = Literal["within", "outside", "inconclusive"]
@@ -194,6 +203,17 @@ class StatedJudgement:
 
 
 @dataclass(frozen=True)
+class TwoModels:
+    """How many walls and booms each side sees, and how many panels are compared."""
+
+    theory_walls: int
+    theory_booms: int
+    fe_walls: int
+    fe_booms: int
+    panels: int
+
+
+@dataclass(frozen=True)
 class CheckResult:
     """One self-check of a side: what was found and what is allowed."""
 
@@ -316,7 +336,9 @@ class Result:
     level of theory; ``section_notes``: those made on reading the file. ``outline_alone``: the
     section has no walls, so theory says nothing and nothing is judged. ``nu``: Poisson's ratio
     of values with nu, ``nu_reason``: why there are none; ``shear_coefficients``: A_V/A by two definitions.
-    ``field_files``: mesh and fields of FE by file name, where asked for.
+    ``field_files``: mesh and fields of FE by file name, where asked for. ``walls_by_loads``: worst first.
+    ``models``: what each side is made of, where the file gives them models of their own.
+    ``load_kinds``: "limit" or "ultimate" by load, as the file labels them.
     """
 
     title: str
@@ -352,6 +374,11 @@ class Result:
     nu_reason: str | None = None
     shear_coefficients: tuple[PropertyRow, ...] = ()
     field_files: Mapping[str, bytes] = field(default_factory=dict)
+    walls_by_loads: tuple[WallByLoad, ...] = ()
+    margins: tuple[Margin, ...] = ()
+    named_probes: tuple[NamedProbe, ...] = ()
+    load_kinds: Mapping[str, str] = field(default_factory=dict)
+    models: TwoModels | None = None
 
     def require_drawing(self) -> Drawing:
         """The drawing; ValueError where the comparison was made without."""

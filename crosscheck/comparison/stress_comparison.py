@@ -251,7 +251,7 @@ def fe_peak(kind: str, walls: Sequence[WallFaces]) -> FacePeak | None:
         value = np.where(counted(kind, wall), np.abs(measure(kind, wall.fe)), np.nan)
         if not np.isfinite(value).any():
             continue
-        error = _peak_error(kind, wall)
+        error = peak_error(kind, wall)
         high = max(high, float(np.nanmax(value + error)))
         widest = max(widest, float(np.nanmax(np.where(np.isfinite(value), error, np.nan))))
         face, i = np.unravel_index(int(np.nanargmax(value)), value.shape)
@@ -265,7 +265,7 @@ def fe_peak(kind: str, walls: Sequence[WallFaces]) -> FacePeak | None:
     return FacePeak(best.value, max(best.value - half, 0.0), best.value + half, best.wall, best.face, best.s)
 
 
-def _peak_error(kind: str, wall: WallFaces) -> Array:
+def peak_error(kind: str, wall: WallFaces) -> Array:
     """Error of a kind of stress (2, n): the parts' errors pass to von Mises stress at most undiminished."""
     direct, shear = wall.fe_error
     if kind == "direct":

@@ -14,6 +14,7 @@ from crosscheck.pictures.criteria import criteria_picture
 from crosscheck.pictures.flow import flow_picture
 from crosscheck.pictures.joints import joints_picture
 from crosscheck.pictures.section import section_picture
+from crosscheck.pictures.walls_by_loads import walls_by_loads_picture
 from crosscheck.pictures.warping import warping_picture
 
 __all__ = [
@@ -25,6 +26,7 @@ __all__ = [
     "joints_picture",
     "picture_bytes",
     "section_picture",
+    "walls_by_loads_picture",
     "warping_picture",
 ]
 
@@ -61,6 +63,7 @@ def figures(result: Result, width_mm: int) -> dict[str, Figure]:
     }
     for load in (*UNIT_LOADS, *(line.name for line in result.require_drawing().loads if line.has_shear)):
         drawn[free_name(f"flow_{load}", drawn)] = flow_picture(result, load, width_mm)
+    drawn["walls_by_loads"] = walls_by_loads_picture(result, width_mm)
     drawn["warping"] = warping_picture(result, width_mm)
     drawn["joints"] = joints_picture(result, width_mm)
     return {name: figure for name, figure in drawn.items() if figure is not None}

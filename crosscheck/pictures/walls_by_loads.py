@@ -1,13 +1,13 @@
-"""How far the hand flow is from FE's in every wall under every load, as a table of shades and numbers."""
+"""Walls by loads: how far the hand method's flow is off in every wall under every load, in numbers."""
 
 from __future__ import annotations
 
 import matplotlib as mpl
-import numpy as np
+from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.patches import Rectangle
 
-from crosscheck.comparison.quantities import QUANTITIES, UNIT_LOADS
+from crosscheck.comparison.load_results import WallByLoad
 from crosscheck.comparison.result import Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
@@ -18,19 +18,21 @@ from crosscheck.pictures.canvas import (
     WIDE_PAPER,
     caption_in_lines,
     sheet,
+    text_width,
     title_in_lines,
-    wrapped,
     write_caption,
     write_title,
 )
+from crosscheck.reports.load_tables import share_text
 
-ROW_MM = 4.6
-MOST_WALLS = 36
-MOST_LOADS = {160: 10, 80: 4}
+MOST_WALLS = 40
+ROW_MM, LEAST_COLUMN_MM = 4.6, 9.0
+# Grey of a cell that uses its whole criterion, and from how many criteria on no cell grows darker.
+LIGHTEST, DARKEST, FULL = 0.97, 0.6, 4.0
 
 
 def walls_by_loads_picture(result: Result, width_mm: int = 160) -> Figure | None:
-    """Walls down, loads across; the worst where there are too many. None where no flow is compared.
+    """Table of differences as a picture; None where no wall was compared.
 
     Parameters
     ----------
@@ -38,99 +40,92 @@ def walls_by_loads_picture(result: Result, width_mm: int = 160) -> Figure | None
         What a comparison found.
     width_mm : int
         Width of the paper.
+
+    Returns
+    -------
+    Figure or None
     """
-    found = {(f.wall, f.load): f.difference for f in result.flows if f.difference is not None}
-    if not found:
+    cells = {(row.wall, row.load): row for row in result.walls_by_loads if row.difference is not None}
+    if not cells:
         return None
-    own = [load for load in dict.fromkeys(f.load for f in result.flows) if load not in UNIT_LOADS]
-    loads = [load for load in own or UNIT_LOADS if any(key[1] == load for key in found)]
-    loads = loads or list(dict.fromkeys(load for _, load in found))
-    walls = list(dict.fromkeys(wall for wall, load in found if load in loads))
-    told = ""
-    if len(walls) > MOST_WALLS or len(loads) > MOST_LOADS[width_mm]:
-        told = f" The worst of {len(walls)} walls and {len(loads)} loads."
-        loads = _worst(found, loads, 1, MOST_LOADS[width_mm])
-        walls = _worst(found, walls, 0, MOST_WALLS)
-    criterion = next(
-        (row.criterion for row in result.quantities if row.name == "flow_at_probes"),
-        QUANTITIES["flow_at_probes"].default_criterion,
-    )
-    beyond = sum(abs(found.get((w, load), 0.0)) > criterion for w in walls for load in loads)
-    title = (
-        f"Hand flow against FE, wall by wall: {beyond} of {len(walls) * len(loads)} places beyond "
-        f"{100 * criterion:g} % of the wall's own peak"
-    )
+    wide = width_mm >= WIDE_PAPER
+    walls = list(dict.fromkeys(wall for wall, _ in cells))
+    left = min(max(text_width(one_line(wall, 30), FONT) for wall in walls) + 4.0, 0.3 * width_mm)
+    right = 52.0 if wide else 3.0
+    worst_loads = list(dict.fromkeys(load for _, load in cells))
+    shown = set(worst_loads[: int((width_mm - left - right) / LEAST_COLUMN_MM)])
+    order = dict.fromkeys(flow.load for flow in result.flows)
+    loads = [load for load in order if load in shown]
+    rows = walls[:MOST_WALLS]
+    title = title_in_lines("Shear flow of the hand method, wall by wall, load by load", width_mm)
     caption = (
-        "Difference of the hand flow from FE's at the worst probe, per cent of the wall's own peak (at "
-        f"least 5 % of the section's); + high, - low; framed beyond {100 * criterion:g} %. Empty: no flow to "
-        f"compare.{told}"
+        "Per cent of the wall's own peak in FE where the two are farthest apart: + hand high, - hand low. "
+        "Darker: farther apart. Framed, bold: more than the criterion. Worst wall first"
     )
-    return _draw(found, walls, loads, criterion, title, caption, width_mm)
-
-
-def _worst(found: dict[tuple[str, str], float], names: list[str], part: int, most: int) -> list[str]:
-    """The names with the largest differences, in their given order."""
-    size = {name: max((abs(v) for k, v in found.items() if k[part] == name), default=0.0) for name in names}
-    chosen = set(sorted(names, key=lambda name: -size[name])[:most])
-    return [name for name in names if name in chosen]
-
-
-def _draw(
-    found: dict[tuple[str, str], float],
-    walls: list[str],
-    loads: list[str],
-    criterion: float,
-    title: str,
-    caption: str,
-    width_mm: int,
-) -> Figure:
-    titles, captions = title_in_lines(title, width_mm), caption_in_lines(caption, width_mm)
-    left = 42.0 if width_mm >= WIDE_PAPER else 26.0
-    cell = min((width_mm - left - 4.0) / len(loads), 34.0)
-    heads = [wrapped(one_line(load, 40), cell - 1.0, FONT - 0.5)[:3] for load in loads]
-    above = 5.0 + 4.2 * len(titles) + 3.2 * max(len(head) for head in heads)
-    below = 3.0 + 3.2 * len(captions)
-    height = above + below + ROW_MM * len(walls)
+    caption += ", its largest cause on the right." if wide else "."
+    if len(loads) < len(worst_loads) or len(rows) < len(walls):
+        caption += (
+            f" The worst {len(rows)} of {len(walls)} walls and {len(loads)} of {len(worst_loads)} loads."
+        )
+    captions = caption_in_lines(caption, width_mm)
+    names = [one_line(load, 24) for load in loads]
+    head = max(text_width(name, FONT) for name in names) + 3.0
+    above, below = 4.0 + 4.2 * len(title) + head, 4.0 + 3.2 * len(captions)
+    height = above + below + ROW_MM * len(rows)
+    column = min((width_mm - left - right) / len(loads), 24.0)
     with mpl.rc_context(STYLE):
         figure = sheet(width_mm, height)
         axes = figure.add_axes(
-            (left / width_mm, below / height, cell * len(loads) / width_mm, ROW_MM * len(walls) / height)
+            (left / width_mm, below / height, column * len(loads) / width_mm, ROW_MM * len(rows) / height)
         )
         axes.set_xlim(0, len(loads))
-        axes.set_ylim(len(walls), 0)
-        axes.axis("off")
-        for column, head in enumerate(heads):
-            axes.text(
-                column + 0.5, -0.15, "\n".join(head), ha="center", va="bottom", fontsize=FONT - 0.5, color=INK
-            )
-        for row, wall in enumerate(walls):
-            axes.text(
-                -0.4 / cell * 4, row + 0.5, one_line(wall, int((left - 3) / 1.25)), ha="right", va="center",
-                fontsize=FONT - 0.5,
-            )  # fmt: skip
-            for column, load in enumerate(loads):
-                value = found.get((wall, load))
-                if value is None:
-                    continue
-                shade = 0.85 * float(np.clip(abs(value) / (2.0 * criterion), 0.0, 1.0)) ** 0.7
-                frame = abs(value) > criterion
-                axes.add_patch(
-                    Rectangle(
-                        (column + 0.03, row + 0.06), 0.94, 0.88, fc=mpl.colormaps["Blues"](shade),
-                        lw=1.0 if frame else 0.3, ec=INK if frame else "#c0c0c0",
-                    )
-                )  # fmt: skip
-                axes.text(
-                    column + 0.5, row + 0.52, _percent(value), ha="center", va="center", fontsize=FONT - 0.5,
-                    color="white" if shade > 0.55 else INK,
-                )  # fmt: skip
-        write_title(figure, titles)
+        axes.set_ylim(len(rows), 0)
+        axes.set_axis_off()
+        for j, name in enumerate(names):
+            axes.text(j + 0.5, -0.25, name, rotation=90, ha="center", va="bottom", fontsize=FONT)
+        for i, wall in enumerate(rows):
+            name = one_line(wall, max(int((left - 3.0) / 1.25), 6))
+            axes.text(-0.06, i + 0.5, name, ha="right", va="center", fontsize=FONT, color=INK)
+            found = [cells[wall, load] for load in loads if (wall, load) in cells]
+            for j, load in enumerate(loads):
+                _draw_cell(axes, i, j, cells.get((wall, load)))
+            if wide and found:
+                _write_cause(axes, i, len(loads), found)
+        write_title(figure, title)
         write_caption(figure, captions)
-        figure.texts[-1].set_color(SOFT)
     return figure
 
 
-def _percent(value: float) -> str:
-    """A difference in per cent with its sign, short."""
-    percent = 100.0 * value
-    return "0" if abs(percent) < 0.005 else f"{percent:+.2g} %" if abs(percent) < 10 else f"{percent:+.0f} %"
+def _draw_cell(axes: Axes, i: int, j: int, row: WallByLoad | None) -> None:
+    """One cell: grey by share of the criterion, the number in it."""
+    if row is None or row.difference is None:
+        axes.text(j + 0.5, i + 0.5, "-", ha="center", va="center", fontsize=FONT, color=SOFT)
+        return
+    used = min(abs(row.difference) / row.criterion / FULL, 1.0)
+    grey = LIGHTEST - (LIGHTEST - DARKEST) * used
+    outside = row.verdict == "outside"
+    axes.add_patch(
+        Rectangle(
+            (j + 0.03, i + 0.06), 0.94, 0.88, facecolor=str(grey), clip_on=False, lw=0.9,
+            edgecolor=INK if outside else "white", zorder=3 if outside else 2,
+        )
+    )  # fmt: skip
+    axes.text(
+        j + 0.5,
+        i + 0.52,
+        share_text(row.difference),
+        ha="center",
+        va="center",
+        fontsize=FONT,
+        weight="bold" if outside else "normal",
+        color=INK,
+        zorder=4,
+    )
+
+
+def _write_cause(axes: Axes, i: int, columns: int, found: list[WallByLoad]) -> None:
+    """Largest cause of the worst cell of a row."""
+    worst = max(found, key=lambda row: abs(row.difference or 0.0))
+    if worst.cause is not None and abs(worst.difference or 0.0) >= 1e-4:
+        text = one_line(f"{worst.cause.step} {share_text(worst.cause.change)} %", 48)
+        axes.text(columns + 0.12, i + 0.5, text, ha="left", va="center", fontsize=FONT - 0.5, color=SOFT)

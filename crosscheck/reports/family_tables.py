@@ -10,7 +10,7 @@ from crosscheck.batch.journal import Journal
 from crosscheck.comparison.result import LEVELS
 from crosscheck.family.members import Member, Row
 from crosscheck.family.sweep import Sweep, members_of
-from crosscheck.reports.tables import Cell, csv_line
+from crosscheck.reports.result_table import Cell, csv_line
 
 SWEEP_SCHEMA = "crosscheck.sweep/1"
 

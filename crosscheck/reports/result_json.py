@@ -55,6 +55,11 @@ def document(result: Result) -> dict[str, Any]:
             "walls": _records(result.wall_envelopes),
             "probes": _records(result.probe_envelopes),
         },
+        "walls_by_loads": _records(result.walls_by_loads),
+        "margins": _records(result.margins),
+        "named_probes": _records(result.named_probes),
+        "load_kinds": dict(result.load_kinds),
+        "models": None if result.models is None else asdict(result.models),
         "stiffness": [_property(row) for row in result.stiffness],
         "indicators": [_property(row) for row in result.indicators],
         "poisson": {

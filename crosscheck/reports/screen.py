@@ -11,21 +11,24 @@ from rich.table import Table
 from rich.text import Text
 
 from crosscheck.comparison.flow_comparison import NO_FLOW_REASON as NO_FLOW
-from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import FeValue, QuantityResult, Result, Verdict
 from crosscheck.faults import one_line
+from crosscheck.reports.result_table import ResultTable
 from crosscheck.reports.screen_blocks import (
     cause_lines,
     curved_boundary_lines,
     governing_lines,
     level_lines,
     levels_block,
+    margin_lines,
+    model_lines,
     poisson_line,
+    probe_lines,
     restrained_line,
     table_block,
+    wall_line,
 )
 from crosscheck.reports.stated import stated_heading, stated_lines
-from crosscheck.reports.tables import ResultTable
 from crosscheck.reports.wording import (
     FE_ASSUMPTIONS,
     FEW_LOADS,
@@ -281,10 +284,17 @@ def _notes(
     """Lines under the table with their style."""
     yield from _factor_notes(rows)
     yield from ((line, "") for line in cause_lines(result))
-    yield from _wall_note(result)
+    yield from ((line, "") for line in model_lines(result))
+    flows_off = wall_line(result)
+    if flows_off is not None:
+        yield flows_off, ""
     if not result.outline_alone:
         yield from ((line, "dim") for line in level_lines(result))
-    yield from ((line, "") for line in governing_lines(result))
+    if result.load_kinds:
+        kinds = ", ".join(f"{load} ({kind})" for load, kind in result.load_kinds.items())
+        yield one_line(f"Loads: {kinds}", 400), ""
+    for lines in (governing_lines, margin_lines, probe_lines):
+        yield from ((line, "") for line in lines(result))
     yield from ((line, "") for line in curved_boundary_lines(result))
     loads = {row.load for row in result.quantities if row.name == "von_mises_stress"}
     if len(loads) > FEW_LOADS:
@@ -338,21 +348,3 @@ def _factor_notes(rows: Sequence[QuantityResult]) -> Iterator[tuple[str, str]]:
         most = SHOWN_FACTORS + 1 if len(told) == SHOWN_FACTORS + 1 else SHOWN_FACTORS
         more = f" and {len(told) - most} more" if len(told) > most else ""
         yield f"To use the FE value instead, multiply the hand value: {', '.join(told[:most])}{more}.", ""
-
-
-def _wall_note(result: Result) -> Iterator[tuple[str, str]]:
-    """The wall whose flow differs most on its own peak, when that exceeds the criterion of flows."""
-    criterion = next(
-        (row.criterion for row in result.quantities if row.name == "flow_at_probes"),
-        QUANTITIES["flow_at_probes"].default_criterion,
-    )
-    over = [flow for flow in result.flows if flow.difference is not None and abs(flow.difference) > criterion]
-    if over:
-        worst = max(over, key=lambda flow: abs(flow.difference or 0.0))
-        way = "high" if (worst.difference or 0.0) > 0 else "low"
-        places = "1 place" if len(over) == 1 else f"{len(over)} places"
-        line = (
-            f"Walls: flow off by more than {100 * criterion:g} % of the wall's own peak at {places}; "
-            f"most: {worst.wall}, {worst.load}: {percent_text(worst.difference or 0.0)} {way}"
-        )
-        yield one_line(line, 300), ""

@@ -9,12 +9,12 @@ from rich.console import Group, RenderableType
 from rich.table import Table
 from rich.text import Text
 
-from crosscheck.comparison.load_results import WallEnvelope
+from crosscheck.comparison.load_results import NamedProbe, WallEnvelope
 from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import LEVELS, QuantityResult, Result
 from crosscheck.faults import one_line
-from crosscheck.reports.tables import Cell, ResultTable
-from crosscheck.reports.wording import difference_text, name_of, number_text, worst_first
+from crosscheck.reports.result_table import ResultTable, table_text
+from crosscheck.reports.wording import difference_text, name_of, number_text, percent_text, worst_first
 
 # Quantities shown at every level: those at which the levels differ most.
 LEVEL_ROWS = 4
@@ -100,7 +100,7 @@ def level_text(row: QuantityResult, level: str, length_unit: str) -> str:
 
 
 def governing_lines(result: Result) -> Iterator[str]:
-    """Which load governs the walls, by kind, and at the named probes; nothing with fewer than two loads."""
+    """Which load governs the walls, by kind; nothing with fewer than two loads."""
     loads = {entry.load for entry in result.stresses}
     if len(loads) < 2:
         return
@@ -108,23 +108,89 @@ def governing_lines(result: Result) -> Iterator[str]:
         entries = [entry for entry in result.wall_envelopes if entry.kind == kind and _counts(entry)]
         if entries:
             yield one_line(f"Governs, {words}: {_governs(entries)}", 400)
-    for probe in result.probe_envelopes:
-        if (
-            probe.label is None
-            or probe.kind != "flow"
-            or probe.theory_low is None
-            or probe.theory_high is None
-        ):
-            continue
-        hand = max(probe.theory_low, probe.theory_high, key=lambda end: abs(end.value))
-        ends = [end for end in (probe.fe_low, probe.fe_high) if end is not None]
-        fe = max(ends, key=lambda end: abs(end.value), default=None)
-        told = "no FE value in a joint" if fe is None else f"FE {number_text(fe.value)}"
-        by = "" if fe is None or fe.load == hand.load else f" ({fe.load})"
-        yield one_line(
-            f"{probe.label}: largest flow {number_text(hand.value)} {probe.unit} ({hand.load}), {told}{by}",
-            300,
-        )
+
+
+def probe_lines(result: Result) -> Iterator[str]:
+    """Largest flow at every named probe, and the load of one fastener where its pitch is given."""
+    places: dict[str, list[NamedProbe]] = {}
+    for row in result.named_probes:
+        places.setdefault(row.label, []).append(row)
+    for label, rows in places.items():
+        hand = max(rows, key=lambda row: abs(row.theory or 0.0))
+        fe = max(rows, key=lambda row: abs(row.fe or 0.0))
+        unit, by = hand.unit, "" if fe.load == hand.load or hand.theory is None else f" ({fe.load})"
+        if hand.theory is None:
+            told = f"largest flow in FE {number_text(fe.fe)} {unit} ({fe.load}); {hand.reason}"
+        else:
+            other = f"FE {number_text(fe.fe)}{by}" if fe.fe is not None else str(hand.reason)
+            told = f"largest flow {number_text(hand.theory)} {unit} ({hand.load}), {other}"
+        if hand.pitch is not None:
+            loads = [row for row in (hand.theory_fastener, fe.fe_fastener) if row is not None]
+            values = ", FE ".join(number_text(abs(value)) for value in loads)
+            only = "" if hand.theory_fastener is not None else "FE "
+            told += f"; one fastener, pitch {number_text(hand.pitch)}: {only}{values} {hand.fastener_unit}"
+        yield one_line(f"{label}: {told}", 300)
+
+
+def wall_line(result: Result) -> str | None:
+    """In how many walls the flow is off by more than the criterion, where most and why, and their means."""
+    known = [row for row in result.walls_by_loads if row.difference is not None]
+    over = [row for row in known if row.verdict == "outside"]
+    if not over:
+        return None
+    worst, walls, of = over[0], {row.wall for row in over}, {row.wall for row in known}
+    way = "high" if (worst.difference or 0.0) > 0 else "low"
+    cause = "" if worst.cause is None else f", mostly {worst.cause.step}"
+    line = (
+        f"Walls: flow off by more than {100 * worst.criterion:g} % of the wall's own peak in {len(walls)} of "
+        f"{len(of)}; most: {worst.wall}, {worst.load}: {percent_text(worst.difference or 0.0)} {way}{cause}"
+    )
+    means = {row.wall for row in known if abs(row.mean_difference or 0.0) > row.criterion}
+    return one_line(f"{line}. Mean flow off by more: in {len(means)}. --table walls", 400)
+
+
+def model_lines(result: Result) -> Iterator[str]:
+    """What each side sees where the file gives them models of their own, and how far those are apart."""
+    seen = result.models
+    if seen is None:
+        return
+    sides = []
+    for side, walls, booms in (
+        ("theory", seen.theory_walls, seen.theory_booms),
+        ("FE", seen.fe_walls, seen.fe_booms),
+    ):
+        with_booms = f" and {booms} booms" if booms else ""
+        sides.append(f"{side} sees {walls} walls{with_booms}")
+    area, x, y = (result.quantity(name) for name in ("area", "centroid_x", "centroid_y"))
+    apart = ", ".join(
+        f"{name} {number_text(row.judged_theory)} and {number_text(row.fe.value)} {row.unit} "
+        f"({difference_text(row, result.length_unit)})"
+        for name, row in (("area", area), ("centroid x", x), ("y", y))
+    )
+    yield one_line(
+        f"Two models: {', '.join(sides)}; {seen.panels} walls compared by name. Hand and FE: {apart}.", 400
+    )
+
+
+def margin_lines(result: Result) -> Iterator[str]:
+    """Smallest margin of both sides, and walls whose margin changes its sign."""
+    if not result.margins:
+        return
+    told = []
+    for side, stress in (("theory", "theory_stress"), ("fe", "fe_stress")):
+        known = [row for row in result.margins if getattr(row, side) is not None]
+        if known:
+            least = min(known, key=lambda row: float(getattr(row, side)))
+            words = f"{least.wall}, {least.kind.replace('_', ' ')}, {getattr(least, stress).load}"
+            name = "by hand" if side == "theory" else "with FE"
+            told.append(f"{name} {number_text(getattr(least, side), 3)} ({words})")
+    if told:
+        yield one_line(f"Smallest margin, allowable / stress - 1: {'; '.join(told)}", 400)
+    for row in result.margins:
+        if row.theory is not None and row.fe is not None and (row.theory < 0.0) != (row.fe < 0.0):
+            hand, fe = number_text(row.theory, 3), number_text(row.fe, 3)
+            kind = row.kind.replace("_", " ")
+            yield one_line(f"Margin of {row.wall}, {kind}: {hand} by hand but {fe} with FE", 300)
 
 
 def _counts(entry: WallEnvelope) -> bool:
@@ -197,30 +263,27 @@ def curved_boundary_lines(result: Result) -> Iterator[str]:
 
 def table_block(table: ResultTable, width: int) -> RenderableType:
     """A table for the screen: numbers are never broken; the last columns go where room is short."""
-    filled = {
-        name: [_cell(row[i]) for row in table.rows]
-        for i, name in enumerate(table.columns)
-        if any(row[i] is not None for row in table.rows)
-    }
-    names = [name for name in table.shown if name in filled]
-    least = {name: max(_least_width(cell) for cell in filled[name]) for name in names}
-    while len(names) > 1 and sum(least[name] + 1 for name in names) > width:
-        names.pop()
+    text = table_text(table)
+    if not text.rows:
+        return Group(Text(), Text(f"{table.title}: nothing to show", style="bold"))
+    columns = range(len(text.columns))
+    least = [max(_least_width(row[i]) for row in (text.columns, *text.rows)) for i in columns]
+    many = len(text.columns)
+    while many > 1 and sum(least[i] + 1 for i in range(many)) > width:
+        many -= 1
     shown = Table(box=None, padding=(0, 1, 0, 0), header_style="dim", pad_edge=False, width=width)
-    for name in names:
-        numeric = any(isinstance(row[table.columns.index(name)], float) for row in table.rows)
-        shown.add_column(name, justify="right" if numeric else "left", min_width=least[name], overflow="fold")
-    for row in zip(*(filled[name] for name in names), strict=True):
-        shown.add_row(*(Text(cell) for cell in row))
+    for i in range(many):
+        shown.add_column(
+            text.columns[i],
+            justify="right" if text.numeric[i] else "left",
+            min_width=least[i],
+            overflow="fold",
+        )
+    for row in text.rows:
+        shown.add_row(*(Text(one_line(cell, 60)) for cell in row[:many]))
     return Group(Text(), Text(table.title, style="bold"), shown)
 
 
 def _least_width(cell: str) -> int:
     """Columns that a cell needs without breaking a word; very long words may break."""
     return min(max(map(len, cell.split()), default=0), 16)
-
-
-def _cell(cell: Cell) -> str:
-    if cell is None:
-        return ""
-    return one_line(cell, 60) if isinstance(cell, str) else number_text(cell)

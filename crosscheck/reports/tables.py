@@ -1,31 +1,14 @@
-"""Tables of a result, for the screen and as CSV: levels, stiffness, envelope, probes, stresses."""
+"""Tables of a result by name: levels, stiffness, envelope, probes, stresses, and those of load_tables."""
 
 from __future__ import annotations
 
-import csv
-import io
-from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping
 
 from crosscheck.comparison.load_results import Governing
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import LEVELS, PropertyRow, Result
-
-Cell = str | float | None
-
-
-@dataclass(frozen=True)
-class ResultTable:
-    """Rows of words and numbers under their headings; None is an empty cell.
-
-    ``shown``: the columns that a screen has room for; CSV has all.
-    """
-
-    name: str
-    title: str
-    columns: tuple[str, ...]
-    rows: tuple[tuple[Cell, ...], ...]
-    shown: tuple[str, ...]
+from crosscheck.reports.load_tables import margins_table, places_table, stated_table, walls_table
+from crosscheck.reports.result_table import Cell, ResultTable
 
 
 def levels_table(result: Result) -> ResultTable:
@@ -144,26 +127,12 @@ def stresses_table(result: Result) -> ResultTable:
 
 TABLES: Mapping[str, Callable[[Result], ResultTable]] = {
     "levels": levels_table,
+    "stated": stated_table,
+    "walls": walls_table,
+    "margins": margins_table,
+    "places": places_table,
     "stiffness": stiffness_table,
     "envelope": envelope_table,
     "probes": probes_table,
     "stresses": stresses_table,
 }
-
-
-def csv_bytes(table: ResultTable) -> bytes:
-    """A table as CSV: commas, decimal points, full precision, a heading line, UTF-8."""
-    return b"".join(csv_line(cells) for cells in (table.columns, *table.rows))
-
-
-def csv_line(cells: Iterable[Cell]) -> bytes:
-    """One line of CSV; None is an empty cell."""
-    stream = io.StringIO()
-    writer = csv.writer(stream, lineterminator="\n")
-    writer.writerow(["" if cell is None else _csv_cell(cell) for cell in cells])
-    return stream.getvalue().encode()
-
-
-def _csv_cell(cell: str | float) -> str | float:
-    """A cell; text that a spreadsheet would take for a formula gets an apostrophe in front."""
-    return f"'{cell}" if isinstance(cell, str) and cell[:1] in ("=", "+", "-", "@", "\t") else cell

@@ -27,6 +27,7 @@ NAMES = {
     "flow_unit_Vx",
     "flow_unit_Vy",
     "flow_gust",
+    "walls_by_loads",
     "warping",
     "joints",
 }

@@ -10,7 +10,8 @@ import pytest
 from numpy.testing import assert_allclose
 
 from crosscheck.comparison.comparing import join
-from crosscheck.reports.tables import TABLES, csv_bytes, stiffness_table
+from crosscheck.reports.result_table import csv_text
+from crosscheck.reports.tables import TABLES, stiffness_table
 
 from .stand_in import FE_OVER_THEORY, both_sides, channel_of_steel
 
@@ -75,7 +76,7 @@ def test_wagner_coefficients_are_theorys_alone(result):
 @pytest.mark.parametrize("name", list(TABLES))
 def test_tables_as_csv_read_back(result, name):
     table = TABLES[name](result)
-    read = list(csv.reader(io.StringIO(csv_bytes(table).decode())))
+    read = list(csv.reader(io.StringIO(csv_text(table))))
     assert tuple(read[0]) == table.columns
     assert len(read) == len(table.rows) + 1
     assert {len(row) for row in read} == {len(table.columns)}
@@ -90,4 +91,4 @@ def test_a_name_cannot_become_a_formula_of_a_spreadsheet(result):
 
     first = replace(result.wall_envelopes[0], wall="=cmd()")
     changed = replace(result, wall_envelopes=(first,))
-    assert b",'=cmd()," in csv_bytes(TABLES["envelope"](changed))
+    assert ",'=cmd()," in csv_text(TABLES["envelope"](changed))
