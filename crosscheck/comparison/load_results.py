@@ -173,6 +173,11 @@ class Margin:
     effect: str | None
     reason: str | None = None
 
+    @property
+    def changes_sign(self) -> bool:
+        """Whether one side finds the wall strong enough and the other does not."""
+        return self.theory is not None and self.fe is not None and (self.theory < 0.0) != (self.fe < 0.0)
+
 
 @dataclass(frozen=True)
 class NamedProbe:

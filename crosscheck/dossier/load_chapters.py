@@ -8,6 +8,8 @@ from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import ProbeResult, Result, WallFlow
 from crosscheck.dossier.content import Block, Chapter, Column, Figure, Paragraph, Table, Tone
 from crosscheck.dossier.texts import plain_unit, share_text
+from crosscheck.reports.load_tables import margins_table
+from crosscheck.reports.result_table import table_text
 from crosscheck.reports.screen_blocks import KIND_WORDS
 from crosscheck.reports.wording import number_text
 
@@ -108,8 +110,12 @@ def _row(flow: WallFlow, probe: ProbeResult, place: str) -> tuple[str, ...]:
 
 def margins_chapter(result: Result) -> Chapter:
     """Margins against the allowables of the file."""
-    return Chapter(
-        "margins",
-        "Margins",
-        (Paragraph("The section file gives no allowables, so no margins are formed."),),
-    )
+    if not result.margins:
+        words = "The section file gives no allowables, so no margins are formed."
+        return Chapter("margins", "Margins", (Paragraph(words),))
+    text = table_text(margins_table(result))
+    kinds = zip(text.columns, text.numeric, strict=True)
+    columns = tuple(Column(name, "number" if numeric else "text") for name, numeric in kinds)
+    tones: tuple[Tone, ...] = tuple("doubt" if row.changes_sign else "plain" for row in result.margins)
+    caption = f"{text.title}; marked where it changes its sign"
+    return Chapter("margins", "Margins", (Table(caption, columns, text.rows, tones),))

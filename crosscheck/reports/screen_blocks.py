@@ -187,7 +187,7 @@ def margin_lines(result: Result) -> Iterator[str]:
     if told:
         yield one_line(f"Smallest margin, allowable / stress - 1: {'; '.join(told)}", 400)
     for row in result.margins:
-        if row.theory is not None and row.fe is not None and (row.theory < 0.0) != (row.fe < 0.0):
+        if row.changes_sign:
             hand, fe = number_text(row.theory, 3), number_text(row.fe, 3)
             kind = row.kind.replace("_", " ")
             yield one_line(f"Margin of {row.wall}, {kind}: {hand} by hand but {fe} with FE", 300)
