@@ -1,7 +1,8 @@
 """Reading a section file: from a path to a checked, frozen SectionFile, or all its faults at once.
 
-bytes -> document (section_source) -> forms (section_forms) -> numbers and walls (section_numbers,
-section_walls, section_loads) -> geometry (section_checks) -> SectionFile (section_model)
+bytes -> document (source, tables) -> forms (forms, schema) -> numbers and walls (numbers, walls) -> midlines
+of faces, placed profiles, mirror (faces, profiles, mirror) -> what refers to them (loads, attachments) ->
+geometry (geometry) -> SectionFile (model)
 """
 
 from __future__ import annotations
