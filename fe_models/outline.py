@@ -102,6 +102,19 @@ class Outline:
             total += _ring_moments(_strip_ring(strip.band, strip.span), pole)
         return Moments(float(total[0]), total[1:3], total[3:])
 
+    def fine_loops(self, rise: float) -> tuple[Array, ...]:
+        """Closed polygons of the boundary of walls, the outer one first, within ``rise`` of its arcs [L].
+
+        As ``loops`` where crowded walls were united.
+        """
+        if any(c.united for c in self.parts.clusters):
+            return self.loops
+        found, _ = rings(self.joints, {}, list(self.joints))
+        radius = max(p.radius for r in found for p in r if not p.straight) if self.curved else 1.0
+        polygons = [polyline(r, min(0.05, float(np.sqrt(8.0 * rise / radius)))) for r in found]
+        polygons.sort(key=lambda p: -float(np.prod(np.ptp(p, axis=0))))
+        return tuple(polygons)
+
     @property
     def slenderness(self) -> float:
         """Mean length over thickness of the walls; that of a stout wall for a solid without walls [-]."""

@@ -3,6 +3,7 @@
     midline [-> midline theory of the real walls, where the file gives each side its own]
             -> own thickness, free ends and joints -> bends and fillets by theory
             -> FE with sharp corners, nu = 0 -> FE as drawn, nu = 0
+            -> FE of the given outline, nu = 0, where the file gives one beside its walls
 
 The steps of a quantity add up to its difference. The order is fixed, and the split depends on it. A step that
 cannot be made is merged into the next one, which says so. Poisson's ratio stands beside.
@@ -26,7 +27,8 @@ BENDS = "bends and fillets, by theory"
 SOLID = "FE in place of theory, corners sharp"
 GIVEN = "FE of the given outline in place of theory"
 ROUNDING = "FE as drawn, corners rounded"
-UNDRAWN = "includes what sharp corners would show: the outline is given, not made from the walls"
+TRACED = "the given outline in place of the walls' own solid"
+UNDRAWN = "includes what the walls' own solid would show: it cannot be built"
 MERGED = "includes what the level corrected would show: {reason}"
 NU = "with the material's nu FE would change by {change:+.2g}"
 
@@ -44,9 +46,11 @@ class Stations:
     sharp : mapping of name to fe_models.Interval, optional
         FE with sharp corners; None where the section has no rounding or its sharp solid cannot be built.
     drawn : mapping of name to fe_models.Interval
-        FE as drawn.
-    given : bool
-        True where FE takes an outline that the walls did not make.
+        FE as drawn; of the walls' own solid where the file gives an outline beside them.
+    given : mapping of name to fe_models.Interval, optional
+        FE of the outline that the file gives; None where FE takes the walls.
+    built : bool
+        False where an outline is given and the walls' own solid cannot be built: ``drawn`` is the given one.
     ideal : mapping of name to beam_theory.Quantity, optional
         Midline theory of its own model where FE sees another; all of the above is then of FE's walls.
     """
@@ -56,7 +60,8 @@ class Stations:
     unrounded: Mapping[str, beam_theory.Quantity] | None
     sharp: Mapping[str, fe_models.Interval] | None
     drawn: Mapping[str, fe_models.Interval]
-    given: bool = False
+    given: Mapping[str, fe_models.Interval] | None = None
+    built: bool = True
     ideal: Mapping[str, beam_theory.Quantity] | None = None
 
 
@@ -72,8 +77,8 @@ def stations(
     ``real``: theory of the walls that FE sees, where those are others than theory's.
     """
     if not solved:
-        return Stations({}, {}, None, None, fe.quantities, given=True)
-    theory, given, ideal = models.theory_section(section), section.outline is not None, None
+        return Stations({}, {}, None, None, fe.quantities)
+    theory, ideal = models.theory_section(section), None
     if real is not None:
         ideal, solved = solved["midline"].quantities, real.solutions
         theory = models.real_section(section) or theory
@@ -82,13 +87,20 @@ def stations(
     unrounded, sharp = None, None
     if theory.corners and corrected:
         unrounded = beam_theory.solve(replace(theory, corners=()), level="corrected").quantities
-    solid = None if given else models.fe_section(section)
-    if solid is not None and solid.corners:
+    solid, drawn = models.fe_section(section), fe.quantities
+    built = bool(solid.walls)
+    given = None if section.outline is None else fe.quantities
+    if given is not None and built:
+        try:
+            drawn = fe_models.solve(solid, accuracy).quantities
+        except fe_models.OutlineError:
+            built = False
+    if solid.corners and built:
         try:
             sharp = fe_models.solve(replace(solid, corners={}), accuracy).quantities
         except fe_models.OutlineError:
             sharp = None
-    return Stations(midline, corrected, unrounded, sharp, fe.quantities, given, ideal)
+    return Stations(midline, corrected, unrounded, sharp, drawn, given, built, ideal)
 
 
 def causes(at: Stations, rows: Sequence[QuantityResult]) -> tuple[CauseStep, ...]:
@@ -119,18 +131,24 @@ def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
         else:
             yield CauseStep(row.name, None, OWN_THICKNESS, (value - better.value) / scale, 0.0)
         value = better.value
+    last = end if at.given is None or not at.built else at.given.get(row.name, end)
     beside = None
-    if end.with_nu is not None:
-        beside = NU.format(change=(end.with_nu - end.value) / scale)
+    if last.with_nu is not None and last.value is not None:
+        beside = NU.format(change=(last.with_nu - last.value) / scale)
+    traced = last is not end and last.value is not None
+    own = None if traced else beside
     sharp = None if at.sharp is None else at.sharp.get(row.name)
     if sharp is None or sharp.value is None:
-        step, merged = (GIVEN, UNDRAWN) if at.given else (SOLID, None)
+        step, merged = (SOLID, None) if at.built else (GIVEN, UNDRAWN)
         change, doubt = (value - end.value) / scale, end.half_width / scale
-        yield CauseStep(row.name, None, step, change, doubt, _both(note, merged, beside))
-        return
-    yield CauseStep(row.name, None, SOLID, (value - sharp.value) / scale, sharp.half_width / scale, note)
-    doubt = (sharp.half_width + end.half_width) / scale
-    yield CauseStep(row.name, None, ROUNDING, (sharp.value - end.value) / scale, doubt, beside)
+        yield CauseStep(row.name, None, step, change, doubt, _both(note, merged, own))
+    else:
+        yield CauseStep(row.name, None, SOLID, (value - sharp.value) / scale, sharp.half_width / scale, note)
+        doubt = (sharp.half_width + end.half_width) / scale
+        yield CauseStep(row.name, None, ROUNDING, (sharp.value - end.value) / scale, doubt, own)
+    if traced and last.value is not None:
+        doubt = (end.half_width + last.half_width) / scale
+        yield CauseStep(row.name, None, TRACED, (end.value - last.value) / scale, doubt, beside)
 
 
 def _both(*notes: str | None) -> str | None:

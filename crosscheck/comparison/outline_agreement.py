@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -52,12 +53,19 @@ def outline_agreement(section: SectionFile, levels: Levels) -> str | None:
     return f"FE takes the outline, theory the walls, which idealise (seen_by): {found}"
 
 
+def _with_solid(section: SectionFile) -> SectionFile:
+    """The section with walls for FE: theory's own where FE sees none."""
+    if any(wall.seen_by != "theory" for wall in section.walls):
+        return section
+    return replace(section, walls=tuple(replace(w, seen_by="both") for w in section.walls), booms=())
+
+
 def _of_walls(section: SectionFile, levels: Levels) -> tuple[float | None, np.ndarray | None]:
     """Area [L^2] and centroid (2,) [L] of the walls and booms."""
     plain = all(wall.direct_share == 1.0 for wall in section.walls)
     if plain:
         try:
-            solid = fe_models.outline_of_walls(models.fe_section(section)).moments(np.zeros(2))
+            solid = fe_models.outline_of_walls(models.fe_section(_with_solid(section))).moments(np.zeros(2))
         except fe_models.OutlineError:
             plain = False
     if plain:

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import os
 from collections.abc import Iterable, Mapping
+from dataclasses import replace
 from pathlib import Path, PurePath
 from typing import Any
 
@@ -155,7 +156,7 @@ def section_from(
             notes.append(f"{outline.file}: {'; '.join(outline.notes)}")
         if outline.file is not None and outline.sha256 is not None:
             tables[outline.file] = outline.sha256
-    return SectionFile(
+    section = SectionFile(
         path=source.path,
         sha256=source.sha256,
         title=document.get("title") or one_line(PurePath(source.path).stem),
@@ -182,6 +183,27 @@ def section_from(
         tables=tables,
         outline=None if outline is None else outline.solid,
     )
+    return _with_outline_that_applies(section, source)
+
+
+def _with_outline_that_applies(section: SectionFile, source: SectionSource) -> SectionFile:
+    """The section without its outline, where parameters set anew have changed its walls but not the outline.
+
+    A drawing is of the walls as the file has them; other walls make their own solid.
+    """
+    if section.outline is None or not section.walls or not section.overrides:
+        return section
+    try:
+        plain = section_from(source)
+    except SectionFaults:
+        return section
+    same_walls = all(
+        getattr(plain, name) == getattr(section, name) for name in ("points", "walls", "booms", "corners")
+    )
+    if same_walls or plain.outline != section.outline:
+        return section
+    note = "the outline is of other walls than these: FE takes the solid that the walls make"
+    return replace(section, outline=None, notes=(*section.notes, note))
 
 
 def _units(document: Mapping[str, Any], faults: FaultList) -> tuple[str, str]:

@@ -1,0 +1,1 @@
+"""Walls found in an outline: from a drawing to a section file."""
