@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import os
 import sys
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
@@ -64,9 +63,9 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
     command.add_argument(
         "--workers",
         type=_workers,
-        default=min(os.cpu_count() or 1, 8),
+        default=None,
         metavar="N",
-        help="processes of one numerical thread each (default: the processors, at most 8)",
+        help="processes of one numerical thread each (default: the cores that may be used, at most 8)",
     )
     command.set_defaults(run=run)
 
@@ -76,10 +75,11 @@ def run(arguments: argparse.Namespace) -> int:
     planned = _planned(arguments)
     if planned is None:
         return ExitStatus.BAD_INPUT
+    from crosscheck.batch.workers import usable_cores
     from crosscheck.verification.suite import run as run_plan
 
     with _progress() as tell:
-        result = run_plan(planned, arguments.workers, tell)
+        result = run_plan(planned, arguments.workers or min(usable_cores(), 8), tell)
     status = ExitStatus.NOT_WITHIN if result.failures else ExitStatus.WITHIN
     written = _write(result, arguments)
     _show(result, written[0] if written else None, sys.stderr if arguments.json_path == "-" else sys.stdout)

@@ -25,10 +25,11 @@ def verify_screen(result: SuiteResult, written: str | None = None) -> Renderable
     if rows:
         counts = obtained_counts(rows)
         firm = sum(counts.get(way, 0) for way in FIRM)
+        sources = f"{len(by_source(rows))} sources" if len(by_source(rows)) > 1 else "one source"
         words = ", ".join(f"{count} {way}" for way, count in counts.items())
         blocks.append(
             Text(
-                f"{len(rows)} comparisons with values from {len(by_source(rows))} sources; {firm} rest on "
+                f"{len(rows)} comparisons with values from {sources}; {firm} rest on "
                 f"values that were read or are exact. Obtained: {words}."
             )
         )
@@ -37,7 +38,7 @@ def verify_screen(result: SuiteResult, written: str | None = None) -> Renderable
     problems = [row for row in rows if known(row)]
     for row in problems:
         blocks += [Text(), Text(f"Known problem of a reference: {row.name}, {row.known_problem}.")]
-    kind = "Quick run" if result.quick else "The whole suite" if result.whole else "A part of the suite"
+    kind = "Quick run" if result.quick else "The whole suite" if result.whole else "Not the whole suite"
     blocks += [Text(), Text(f"{kind}, {result.seconds:.0f} s.")]
     if written is not None:
         blocks.append(Text(f"Evidence: {written}"))

@@ -32,6 +32,8 @@ def share_chart(sources: Mapping[str, Sequence[RowOutcome]]) -> str:
         return left + (right - left) * math.log10(held / LEAST) / math.log10(most / LEAST)
 
     parts = [_open(WIDTH, height, "share of tolerance used, by source")]
+    heights = [top + ROW * (i + 0.5) for i in range(len(sources))]
+    parts += [_line(left, y, right, y, "#ececec", 1) for y in heights]
     for power in range(-6, 1):
         place = x(10.0**power)
         strong = power == 0
@@ -42,9 +44,7 @@ def share_chart(sources: Mapping[str, Sequence[RowOutcome]]) -> str:
         parts.append(_text(place, height - bottom + 18, words, anchor="middle", small=True))
     parts.append(_text(x(LEAST), height - 2, "or less", anchor="middle", small=True))
     parts.append(_marks_key(left))
-    for i, (source, rows) in enumerate(sources.items()):
-        y = top + ROW * (i + 0.5)
-        parts.append(_line(left, y, right, y, "#ececec", 1))
+    for y, (source, rows) in zip(heights, sources.items(), strict=True):
         parts.append(_text(LABEL, y + 4, f"{_cut(source, 56)}  ({len(rows)})", anchor="end"))
         parts += [_mark(x(_held(row)), y, row) for row in rows if not known(row)]
     return "".join([*parts, "</svg>"])

@@ -59,7 +59,9 @@ def outcome_keys(outcome: CheckOutcome) -> dict[str, Any]:
     if isinstance(outcome, RowOutcome):
         return keys | {
             "case": outcome.case,
+            "section": outcome.section,
             "quantity": outcome.quantity,
+            "asked": outcome.asked or None,
             "level": outcome.level or None,
             "unit": outcome.unit or None,
             "found": _number(outcome.found),

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import time
 from dataclasses import dataclass, field, replace
+from pathlib import PurePath
 
 import beam_theory
 import fe_models
@@ -24,12 +25,15 @@ GROUPS = {"value": "reference values", "relative difference": "known differences
 class RowOutcome(CheckOutcome):
     """What came of a reference row on one side: `value` is found minus reference, `allowed` its tolerance.
 
+    section: file and parameters set in it; asked: load and place of the quantity.
     found: the number found; expected: the reference's; half: half of FE's interval, 0 for theory.
     known_problem: why the reference is known to be wrong; then passed means that it still disagrees.
     """
 
     case: str = ""
+    section: str = ""
     quantity: str = ""
+    asked: str = ""
     found: float = math.nan
     expected: float = math.nan
     printed: str = ""
@@ -119,7 +123,9 @@ def _outcome(
         detail=detail,
         features=features,
         case=case.name,
+        section=_section_words(case),
         quantity=row.quantity if row.kind == "value" else f"{row.quantity}: {row.kind} of theory from FE",
+        asked=_asked_words(row),
         found=found,
         expected=row.value,
         printed=row.printed,
@@ -134,6 +140,26 @@ def _outcome(
         note=row.note,
         known_problem=row.known_problem,
     )
+
+
+def _section_words(case: ReferenceCase) -> str:
+    """The section file's name and the parameters set, as `crosscheck compare --set` takes them."""
+    set_here = ", ".join(f"{name} = {value}" for name, value in case.overrides.items())
+    name = PurePath(case.section.path).name
+    return f"{name}: {set_here}" if set_here else name
+
+
+def _asked_words(row: ReferenceRow) -> str:
+    """Load, wall and place that the quantity is asked for."""
+    words = [row.load] if row.load else []
+    if row.wall is not None:
+        face = f", {row.face} face" if row.face else ""
+        words.append(f"wall {row.wall} at {row.at:g}{face}")
+    if row.point is not None:
+        words.append(f"at ({row.point[0]:g}, {row.point[1]:g})")
+    if row.nu:
+        words.append("with nu")
+    return ", ".join(words)
 
 
 def _side(side: str) -> Side:

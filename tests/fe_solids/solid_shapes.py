@@ -47,20 +47,6 @@ def rectangle(b: float, h: float) -> ClosedLine:
     return polygon((-b / 2, -h / 2), (b / 2, -h / 2), (b / 2, h / 2), (-b / 2, h / 2))
 
 
-def regular(sides: int, circumradius: float) -> ClosedLine:
-    a = 2.0 * np.pi * np.arange(sides) / sides
-    return polygon(*zip(circumradius * np.cos(a), circumradius * np.sin(a), strict=True))
-
-
-def sector(radius: float, degrees: float) -> ClosedLine:
-    """A sector from the x axis on."""
-    a = math.radians(degrees)
-    at = [(radius * math.cos(v), radius * math.sin(v)) for v in (0.0, a / 2, a)]
-    if degrees == 180.0:
-        return ClosedLine((at[0], at[2]), (at[1], None))
-    return ClosedLine(((0.0, 0.0), at[0], at[2]), (None, at[1], None))
-
-
 def ellipse(a: float, b: float, error: float) -> ClosedLine:
     """Arcs within ``error`` of an ellipse."""
 
@@ -69,13 +55,6 @@ def ellipse(a: float, b: float, error: float) -> ClosedLine:
 
     (line,) = closed_lines(fitted_edges(place, 0.0, 2.0 * np.pi, error, 4), 1e-9 * a).lines
     return line
-
-
-def keyway(b: float) -> ClosedLine:
-    """Shaft of radius 1 with a groove of radius b centred on its edge at (1, 0)."""
-    x = 1.0 - b * b / 2.0
-    y = math.sqrt(1.0 - x * x)
-    return ClosedLine(((x, y), (x, -y)), ((-1.0, 0.0), (1.0 - b, 0.0)))
 
 
 def rounded(corners: Sequence[Place], radii: Sequence[float]) -> ClosedLine:
