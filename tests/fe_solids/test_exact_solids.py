@@ -8,8 +8,9 @@ from __future__ import annotations
 import math
 
 import numpy as np
+import pytest
 from numpy.testing import assert_allclose
-from solid_shapes import ellipse, holds, polygon, row, solved
+from solid_shapes import ellipse, holds, polygon, rectangle, row, solved
 
 from fe_models import Actions, ClosedLine
 
