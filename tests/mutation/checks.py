@@ -4,23 +4,28 @@ from __future__ import annotations
 
 import sys
 from collections.abc import Callable
-from functools import partial
+from functools import cache, partial
 from pathlib import Path
 
 sys.path.insert(0, str(Path(__file__).parents[2]))
 
 from crosscheck.verification.check import CodeCheck
+from crosscheck.verification.code_checks import code_checks
 from crosscheck.verification.suite import Job, plan, run_job
 
 Check = tuple[str, Callable[[], bool]]
 
 
-def suite_checks(side: str | None = None) -> list[Check]:
-    """Name and function of every job of the suite that has to do with a side ("theory", "fe"; None: all)."""
-    quick = {_name(job) for job in plan(quick=True).jobs}
-    chosen = [job for job in plan().jobs if side is None or _of(job, side)]
-    chosen.sort(key=lambda job: (_name(job) not in quick, not isinstance(job, CodeCheck)))
-    return [(_name(job), partial(_passes, job)) for job in chosen]
+@cache
+def suite_checks(side: str | None = None, rows: bool = True) -> tuple[Check, ...]:
+    """Name and function of every job of the suite that has to do with a side, or of all.
+
+    side: "theory" or "fe"; None for all. rows: reference rows as well as code checks.
+    """
+    jobs: tuple[Job, ...] = plan().jobs if rows else code_checks()
+    chosen = [job for job in jobs if side is None or _of(job, side)]
+    chosen.sort(key=lambda job: (not job.quick, not isinstance(job, CodeCheck)))
+    return tuple((_name(job), partial(_passes, job)) for job in chosen)
 
 
 def forget() -> None:
@@ -37,7 +42,8 @@ def _passes(job: Job) -> bool:
 
 
 def _name(job: Job) -> str:
-    return job.name
+    """Unique: rows of two files may bear one name."""
+    return job.name if isinstance(job, CodeCheck) else f"{job.file}: {job.name}"
 
 
 def _of(job: Job, side: str) -> bool:

@@ -22,6 +22,7 @@ MODULES: tuple[str, ...] = (
     "hand_sheet",
     "levels",
     "fe_flows",
+    "judgement",
     "limits",
 )
 

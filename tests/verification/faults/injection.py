@@ -1,0 +1,68 @@
+"""Runs the verification suite with a deliberate fault in place, in a forked process."""
+
+from __future__ import annotations
+
+import ast
+import importlib
+import json
+import os
+import sys
+import warnings
+from collections.abc import Iterable, Sequence
+from pathlib import Path
+
+from comparison_faults import COMPARISON
+from fault import Fault
+from fe_faults import FE
+from theory_faults import THEORY
+
+ROOT = Path(__file__).resolve().parents[3]
+sys.path.insert(0, str(ROOT / "tests" / "mutation"))
+
+from checks import Check, forget
+from transplant import transplant
+
+CATALOGUE: tuple[Fault, ...] = (*THEORY, *FE, *COMPARISON)
+
+
+def side(fault: Fault) -> str | None:
+    """The side whose checks can see a fault; None for the comparison."""
+    return {"beam_theory": "theory", "fe_models": "fe"}.get(fault.path.split("/")[0])
+
+
+def altered(fault: Fault) -> ast.Module:
+    """The file's tree with the fault in it; the text must stand there exactly once."""
+    text = (ROOT / fault.path).read_text(encoding="utf-8")
+    if text.count(fault.old) != 1:
+        raise ValueError(f"{fault.name}: {fault.old!r} stands {text.count(fault.old)} times in {fault.path}")
+    return ast.parse(text.replace(fault.old, fault.new))
+
+
+def turned_red(fault: Fault, first: Sequence[Check], then: Iterable[Check] = ()) -> list[str]:
+    """Names of the checks in ``first`` that fail with a fault; where none does, one of ``then``."""
+    read, write = os.pipe()
+    child = os.fork()
+    if child == 0:
+        os.close(read)
+        null = os.open(os.devnull, os.O_WRONLY)
+        os.dup2(null, 1)
+        os.dup2(null, 2)
+        warnings.simplefilter("ignore")
+        try:
+            forget()
+            transplant(
+                importlib.import_module(fault.path.removesuffix(".py").replace("/", ".")), altered(fault)
+            )
+            red = [name for name, passes in first if not passes()]
+            if not red:
+                red = next(([name] for name, passes in then if not passes()), [])
+        except BaseException as broken:
+            red = [f"broke down: {type(broken).__name__}: {broken}"]
+        with os.fdopen(write, "w") as out:
+            json.dump(red, out)
+        os._exit(0)
+    os.close(write)
+    with os.fdopen(read) as told:
+        text = told.read()
+    os.waitpid(child, 0)
+    return json.loads(text) if text else ["broke down"]

@@ -1,0 +1,101 @@
+"""Deliberate faults in beam_theory."""
+
+from __future__ import annotations
+
+from fault import Fault
+
+B = "beam_theory/"
+THEORY = (
+    Fault("sign of the closing flow", B + "shear.py", "closing(graph, -sums)", "closing(graph, sums)"),
+    Fault("sign of a boom's step", B + "shear.py", "balance = -graph.boom *", "balance = graph.boom *"),
+    Fault("open walls by t^3/2", B + "torsion.py", "cubes / 3.0", "cubes / 2.0"),
+    Fault("factor two of the cell area", B + "torsion.py", "twice = 2.0 * graph", "twice = 1.0 * graph"),
+    Fault(
+        "sign of shared walls", B + "torsion.py", "-flexibility, -flexibility]", "flexibility, flexibility]"
+    ),
+    Fault("shifted centroid", B + "inertia.py", ".sum()) / area)", ".sum()) / area * 1.001)"),
+    Fault(
+        "moduli left out of weights",
+        B + "network.py",
+        "self.e[:, None] * self.t * self.ds",
+        "self.t * self.ds",
+    ),
+    Fault("direct share left out", B + "network.py", "wall.e * wall.direct_share", "wall.e"),
+    Fault("g left out of flexibilities", B + "network.py", "(self.g * self.t_log)", "self.t_log"),
+    Fault("taper by the mean thickness", B + "network.py", "t0 * safe / span)", "0.5 * (t0 + t1))"),
+    Fault(
+        "product moment's sign in bending", B + "inertia.py", "xx * given.real - xy", "xx * given.real + xy"
+    ),
+    Fault("sign of y_s", B + "midline.py", "y_s = -(k_x", "y_s = (k_x"),
+    Fault(
+        "sign of an arm", B + "solution.py", "arm.real * vy - arm.imag * vx", "arm.real * vy + arm.imag * vx"
+    ),
+    Fault("sign of the swept area in warping", B + "warping.py", "- curves.swept(u))", "+ curves.swept(u))"),
+    Fault("mean of the warping function", B + "warping.py", "corner - mean, inside - mean", "corner, inside"),
+    Fault("shear energy twice", B + "shear.py", "np.array([a @ form @ a,", "np.array([2.0 * (a @ form @ a),"),
+    Fault(
+        "bow of an arc left out of areas",
+        B + "curve.py",
+        "self.travel(u)) + bow",
+        "self.travel(u)) + 0.0 * bow",
+    ),
+    Fault("torque of open walls lost", B + "solution.py", "rest = twist * self", "rest = 0.0 * twist * self"),
+    Fault(
+        "sign of the bimoment",
+        B + "stress.py",
+        "value + self.warping * omega",
+        "value - self.warping * omega",
+    ),
+    Fault(
+        "fibres a whole thickness off",
+        B + "stress.py",
+        "half = 0.5 * (p.t0[piece] +",
+        "half = (p.t0[piece] +",
+    ),
+    Fault("faces exchanged", B + "stress.py", "[mean - twist, mean + twist]", "[mean + twist, mean - twist]"),
+    Fault("von Mises with 2 tau^2", B + "stress.py", "sigma**2 + 3.0 * tau**2", "sigma**2 + 2.0 * tau**2"),
+    Fault("first moment of an arc", B + "curve.py", "u**2 * (a * p2 +", "u**2 * (2.0 * a * p2 +"),
+    Fault("end of a free wall", B + "corner_terms.py", "FREE_END = ", "FREE_END = 1.1 * "),
+    Fault(
+        "bend on its inner radius",
+        B + "bends.py",
+        "0.5 * (corner.inner_radius + outer)",
+        "corner.inner_radius",
+    ),
+    Fault(
+        "ends of a boom pair exchanged",
+        B + "lumps.py",
+        "(weight * (1.0 - xi) * stress)",
+        "(weight * xi * stress)",
+    ),
+    Fault("own-axis second moments", B + "own_axis.py", "cube = (p.e / 12.0)", "cube = (p.e / 10.0)"),
+    Fault("secondary warping", B + "own_axis.py", "float((((p.e / 12.0)", "float((((p.e / 10.0)"),
+    Fault("a term of the sheet's polynomial", B + "wall_flow.py", "0.5 * line * rise", "line * rise"),
+    Fault("an arc's term of the sheet", B + "wall_flow.py", "b1 = weight * (-1j", "b1 = weight * (1j"),
+    Fault("sheet's boom step", B + "working.py", "boom_step = -(np", "boom_step = (np"),
+    Fault(
+        "least load taken as governing",
+        B + "envelope.py",
+        "abs(value) > abs(best.value)",
+        "abs(value) < abs(best.value)",
+    ),
+    Fault(
+        "sense of the principal angle",
+        B + "inertia.py",
+        "math.atan2(-2.0 * self.xy",
+        "math.atan2(2.0 * self.xy",
+    ),
+    Fault("G J with E", B + "stiffness.py", 'times("torsion_constant", G)', 'times("torsion_constant", E)'),
+    Fault(
+        "cut moved",
+        B + "shear.py",
+        "graph.chord_at[:, None], at[cut]",
+        "0.5 + 0.0 * graph.chord_at[:, None], at[cut]",
+    ),
+    Fault(
+        "x and y of the Wagner coefficients",
+        B + "faces.py",
+        '"wagner_x": Quantity(bending(mass.slope(0.0, 1.0)))',
+        '"wagner_x": Quantity(bending(mass.slope(1.0, 0.0)))',
+    ),
+)
