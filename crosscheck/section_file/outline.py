@@ -157,7 +157,7 @@ def _from_places(table: Mapping[str, Any], numbers: Numbers, nu: float | None) -
     keys += [("outline", "openings", i) for i in range(len(openings))]
     before = len(faults) + faults.left_out
     rings = [_ring(raw, key, numbers) for raw, key in zip([table["boundary"], *openings], keys, strict=True)]
-    if len(faults) + faults.left_out > before:
+    if None in rings or len(faults) + faults.left_out > before:
         return None
     solid = fe_models.Solid(tuple(r for r in rings if r is not None), nu=nu)
     made = _judged(solid, keys, faults, ReadOutline(solid, ()))
@@ -179,6 +179,7 @@ def _ring(raw: Any, key: KeyPath, numbers: Numbers) -> fe_models.ClosedLine | No
     before = len(faults) + faults.left_out
     points: list[fe_models.Place] = []
     through: list[fe_models.Place | None] = []
+    sound = True  # a number may be missing for a fault of a parameter, which is noted there
     for i, entry in enumerate(raw):
         if isinstance(entry, dict):
             for unknown in entry.keys() - {"through", "to"}:
@@ -187,14 +188,16 @@ def _ring(raw: Any, key: KeyPath, numbers: Numbers) -> fe_models.ClosedLine | No
             middle = _place(entry.get("through"), (*key, i, "through"), numbers)
             if i == 0:
                 faults.add((*key, 0), shown(entry), f"{PLACE_WORDS}: a ring begins at a corner")
+            sound = sound and middle is not None
         else:
             to, middle = _place(entry, (*key, i), numbers), None
         if to is None:
+            sound = False
             continue
         if i > 0:
             through.append(middle)
         points.append(to)
-    if len(faults) + faults.left_out > before:
+    if not sound or len(faults) + faults.left_out > before:
         return None
     if points[-1] == points[0]:
         points.pop()
