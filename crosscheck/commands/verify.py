@@ -75,11 +75,16 @@ def run(arguments: argparse.Namespace) -> int:
     planned = _planned(arguments)
     if planned is None:
         return ExitStatus.BAD_INPUT
+    from crosscheck.batch.task import BatchError
     from crosscheck.batch.workers import usable_cores
     from crosscheck.verification.suite import run as run_plan
 
-    with _progress() as tell:
-        result = run_plan(planned, arguments.workers or min(usable_cores(), 8), tell)
+    try:
+        with _progress() as tell:
+            result = run_plan(planned, arguments.workers or min(usable_cores(), 8), tell)
+    except BatchError as fault:
+        complain([f"verify: {fault}"])
+        return ExitStatus.FAILED
     status = ExitStatus.NOT_WITHIN if result.failures else ExitStatus.WITHIN
     written = _write(result, arguments)
     _show(result, written[0] if written else None, sys.stderr if arguments.json_path == "-" else sys.stdout)

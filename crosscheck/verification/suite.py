@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-import multiprocessing
-import os
+import base64
+import pickle
 import time
 from collections.abc import Callable, Iterable, Mapping, Sequence
-from concurrent.futures import Future, ProcessPoolExecutor, as_completed
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
+from crosscheck.batch.task import Point, Task
+from crosscheck.batch.workers import Crew
 from crosscheck.case_files import case_folder
 from crosscheck.faults import SectionFaults
 from crosscheck.verification.check import FEATURES, CheckOutcome, CodeCheck
@@ -21,8 +22,8 @@ from crosscheck.verification.row_file import read_rows, row_files
 
 Job = ReferenceCase | CodeCheck
 Told = Callable[[int, int, str], None]
-# Variables that numerical libraries take their number of threads from.
-THREADS = ("OMP_NUM_THREADS", "OPENBLAS_NUM_THREADS", "MKL_NUM_THREADS", "NUMEXPR_NUM_THREADS")
+# Longest time for one case or check [s].
+TIME_LIMIT = 600.0
 
 
 @dataclass(frozen=True)
@@ -185,18 +186,18 @@ def _ran(jobs: Sequence[Job], workers: int) -> Iterable[tuple[Job, tuple[CheckOu
         for job in jobs:
             yield job, run_job(job)
         return
-    for name in THREADS:
-        os.environ.setdefault(name, "1")
-    # spawn: children import anew, with one thread each, whatever this process has loaded.
-    context = multiprocessing.get_context("spawn")
-    with ProcessPoolExecutor(min(workers, len(jobs)), mp_context=context) as pool:
-        running: dict[Future[tuple[CheckOutcome, ...]], Job] = {pool.submit(run_job, j): j for j in jobs}
-        for future in as_completed(running):
-            job = running[future]
-            try:
-                yield job, future.result()
-            except Exception as fault:  # a worker that died is a failure of its job, told as such
-                yield job, (_broken(job, fault),)
+    with Crew(Task(_packed, tuple(jobs)), min(workers, len(jobs)), TIME_LIMIT) as crew:
+        for outcome in crew.solve(Point(number, number) for number in range(len(jobs))):
+            job = jobs[outcome.number]
+            if outcome.failure is None:
+                yield job, pickle.loads(base64.b64decode(outcome.found))
+            else:
+                yield job, (_broken(job, outcome.failure.text),)
+
+
+def _packed(jobs: tuple[Job, ...], number: int) -> str:
+    """Outcomes of a job as a worker sends them: text."""
+    return base64.b64encode(pickle.dumps(run_job(jobs[number]))).decode()
 
 
 def run_job(job: Job) -> tuple[CheckOutcome, ...]:
@@ -207,13 +208,14 @@ def run_job(job: Job) -> tuple[CheckOutcome, ...]:
             return run_case(job)
         outcome = job.run()
     except Exception as fault:  # whatever goes wrong in a check is its failure
-        return (_broken(job, fault),)
+        return (_broken(job, f"{type(fault).__name__}: {fault}"),)
     return (replace(outcome, seconds=time.perf_counter() - start, features=outcome.features | job.features),)
 
 
-def _broken(job: Job, fault: Exception) -> CheckOutcome:
+def _broken(job: Job, what: str) -> CheckOutcome:
+    """The failure of a job that did not come to an end."""
     group = "reference values" if isinstance(job, ReferenceCase) else job.group
-    detail = f"stopped by {type(fault).__name__}: {' '.join(str(fault).split())[:300]}"
+    detail = f"stopped by {' '.join(what.split())[:300]}"
     return CheckOutcome(job.name, group, "both", False, 1.0, 0.0, detail)
 
 
