@@ -8,10 +8,10 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from crosscheck.comparison import models
+from crosscheck.comparison.drawn import Array, BoomMark, Drawing, LoadLine, PictureMesh, WallShape
 from crosscheck.comparison.flow_comparison import flow_on
 from crosscheck.comparison.midline import Midline
 from crosscheck.comparison.panels import Panel, Stretch, line_of, panels_of
-from crosscheck.comparison.result import Array, BoomMark, Drawing, LoadLine, PictureMesh, WallShape
 
 if TYPE_CHECKING:
     import beam_theory

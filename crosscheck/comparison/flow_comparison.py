@@ -8,11 +8,12 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.levels import TheoryFlow
 from crosscheck.comparison.load_case import LoadCase
 from crosscheck.comparison.panels import Panel
 from crosscheck.comparison.quantities import flow_unit
-from crosscheck.comparison.result import Array, FeValue, ProbeResult, TheoryPeak, WallFlow
+from crosscheck.comparison.result import FeValue, ProbeResult, TheoryPeak, WallFlow
 from crosscheck.comparison.verdicts import FLOOR
 
 if TYPE_CHECKING:

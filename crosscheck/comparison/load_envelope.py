@@ -7,9 +7,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.flow_comparison import LoadFlows
 from crosscheck.comparison.load_results import Governing, ProbeEnvelope, WallEnvelope
-from crosscheck.comparison.result import Array
 from crosscheck.comparison.stress_comparison import FACES, LoadStress, measure, peak_error
 
 KINDS = ("flow", "direct", "von_mises")

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from crosscheck.comparison.result import Array
+from crosscheck.comparison.drawn import Array
 from crosscheck.section_file.model import Place, arc_angle
 
 

@@ -17,9 +17,10 @@ from itertools import pairwise
 
 import numpy as np
 
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.midline import Midline
 from crosscheck.comparison.models import has_two_models
-from crosscheck.comparison.result import Array, TwoModels
+from crosscheck.comparison.result import TwoModels
 from crosscheck.section_file.model import SectionFile, WallSpec
 
 # Number of a wall within its path: "skin 2", "gutter 2.1".

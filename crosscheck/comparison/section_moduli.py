@@ -16,8 +16,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from crosscheck.comparison import models
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.levels import Levels
-from crosscheck.comparison.result import Array, FeValue
+from crosscheck.comparison.result import FeValue
 from crosscheck.comparison.verdicts import EQUAL_MOMENTS
 
 if TYPE_CHECKING:

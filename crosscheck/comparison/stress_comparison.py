@@ -10,12 +10,13 @@ import numpy as np
 
 import fe_models
 from crosscheck.comparison import models
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.flow_comparison import Probe
 from crosscheck.comparison.levels import TheoryStress
 from crosscheck.comparison.load_case import LoadCase
 from crosscheck.comparison.load_results import FaceSeries, Series, WallStress
 from crosscheck.comparison.panels import Panel
-from crosscheck.comparison.result import Array, FeValue
+from crosscheck.comparison.result import FeValue
 from crosscheck.comparison.verdicts import ROUND_OFF
 
 if TYPE_CHECKING:

@@ -12,13 +12,14 @@ from collections.abc import Mapping, Sequence
 import numpy as np
 
 from crosscheck.comparison import verdicts
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.flow_comparison import LoadFlows, signed_gap
 from crosscheck.comparison.levels import Levels
 from crosscheck.comparison.load_case import LoadCase
 from crosscheck.comparison.load_results import FlowStep, WallByLoad
 from crosscheck.comparison.panels import Panel
 from crosscheck.comparison.quantities import QUANTITIES
-from crosscheck.comparison.result import Array, ProbeResult, WallFlow
+from crosscheck.comparison.result import ProbeResult, WallFlow
 from crosscheck.comparison.rows import criterion
 from crosscheck.section_file.model import SectionFile
 

@@ -18,7 +18,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from crosscheck.comparison.comparing import compare
-from crosscheck.comparison.result import Array, FeValue, Result
+from crosscheck.comparison.drawn import Array
+from crosscheck.comparison.result import FeValue, Result
 from crosscheck.section_file.model import SectionFile
 
 ACCURACIES = (1e-3, 1e-4, 1e-5, 1e-6, 1e-7)

@@ -8,8 +8,9 @@ from typing import Any
 
 import numpy as np
 
+from crosscheck.comparison.drawn import Array, Drawing, WallShape
 from crosscheck.comparison.quantities import UNIT_LOADS
-from crosscheck.comparison.result import Array, Drawing, Result, WallFlow, WallShape
+from crosscheck.comparison.result import Result, WallFlow
 from crosscheck.dossier.content import Diagram
 from crosscheck.dossier.texts import plain_unit, share_text
 from crosscheck.reports.wording import number_text

@@ -8,8 +8,9 @@ from dataclasses import dataclass, field
 import numpy as np
 
 from crosscheck.batch.journal import Journal
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.quantities import QUANTITIES
-from crosscheck.comparison.result import LEVELS, Array
+from crosscheck.comparison.result import LEVELS
 from crosscheck.family.members import Family, Member, Row, member_from
 
 Key = tuple[str, str | None]

@@ -71,7 +71,26 @@ def hand_sheet(section: SectionFile, levels: Levels, case: LoadCase) -> str:
         lines += flow_sections(section, sheet, case)
     if case.has_direct:
         lines += _direct(section, solution, case, sheet)
+    if case.has_shear:
+        lines += _named_probes(section, solution, load)
     return "\n".join([*lines, ""])
+
+
+def _named_probes(section: SectionFile, solution: beam_theory.Solution, load: beam_theory.Load) -> list[str]:
+    """Final flow at the file's probes, and the load of one fastener where a pitch is given."""
+    flow, rows = solution.flow(load), []
+    known = {wall.name for wall in section.walls if wall.seen_by != "fe"}
+    for probe in section.probes:
+        if probe.wall in known:
+            q = float(flow.at(probe.wall, np.array([probe.at]))[0])
+            parts = ("", "") if probe.pitch is None else (number(probe.pitch), number(q * probe.pitch))
+            rows.append((probe.label, probe.wall, number(probe.at), number(q), *parts))
+    if not rows:
+        return []
+    length, force = section.length_unit, section.force_unit
+    head = ("probe", "wall", "at", f"q [{force}/{length}]", f"pitch [{length}]", f"q x pitch [{force}]")
+    words = "The final flow along the wall at a fraction of its length, and what one fastener carries:"
+    return [*heading("Named probes"), words, "", *table(head, rows)]
 
 
 def _load_lines(section: SectionFile, case: LoadCase) -> list[str]:

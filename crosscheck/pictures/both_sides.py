@@ -9,8 +9,9 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.drawn import Array, WallShape
 from crosscheck.comparison.quantities import unit_text
-from crosscheck.comparison.result import Array, Result, WallShape
+from crosscheck.comparison.result import Result
 from crosscheck.pictures.canvas import (
     FE,
     FONT,

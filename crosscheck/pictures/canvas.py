@@ -18,7 +18,7 @@ from matplotlib.figure import Figure
 from matplotlib.font_manager import FontProperties
 from matplotlib.text import Text
 
-from crosscheck.comparison.result import Array
+from crosscheck.comparison.drawn import Array
 
 if TYPE_CHECKING:
     from matplotlib.backend_bases import RendererBase

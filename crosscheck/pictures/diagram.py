@@ -10,7 +10,7 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
-from crosscheck.comparison.result import Array, Drawing, WallShape
+from crosscheck.comparison.drawn import Array, Drawing, WallShape
 from crosscheck.pictures.canvas import (
     FE,
     FONT,

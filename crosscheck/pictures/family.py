@@ -13,8 +13,9 @@ from matplotlib.figure import Figure
 from matplotlib.ticker import FixedLocator, FuncFormatter, MaxNLocator, NullLocator
 from numpy.typing import NDArray
 
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.quantities import QUANTITIES
-from crosscheck.comparison.result import LEVELS, Array
+from crosscheck.comparison.result import LEVELS
 from crosscheck.family.sweep import Key, Series, Sweep
 from crosscheck.faults import one_line
 from crosscheck.file_names import free_name

@@ -9,8 +9,9 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.drawn import Array, Drawing
 from crosscheck.comparison.flow_comparison import NO_FLOW_REASON
-from crosscheck.comparison.result import Array, Drawing, Result, WallFlow
+from crosscheck.comparison.result import Result, WallFlow
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import HAND, INK, STYLE, plain_unit
 from crosscheck.pictures.diagram import Mark, along_walls

@@ -11,8 +11,9 @@ from matplotlib.colors import Normalize
 from matplotlib.figure import Figure
 from matplotlib.tri import Triangulation
 
+from crosscheck.comparison.drawn import Array, Drawing, PictureMesh
 from crosscheck.comparison.quantities import unit_text
-from crosscheck.comparison.result import Array, Drawing, PictureMesh, Result
+from crosscheck.comparison.result import Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FONT,

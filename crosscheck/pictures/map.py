@@ -8,8 +8,9 @@ from matplotlib.axes import Axes
 from matplotlib.contour import QuadContourSet
 from matplotlib.figure import Figure
 
+from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.quantities import QUANTITIES
-from crosscheck.comparison.result import LEVELS, Array
+from crosscheck.comparison.result import LEVELS
 from crosscheck.family.sweep import Series, Sweep
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (

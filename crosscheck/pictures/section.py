@@ -9,7 +9,8 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
-from crosscheck.comparison.result import Array, LoadLine, Result
+from crosscheck.comparison.drawn import Array, LoadLine
+from crosscheck.comparison.result import Result
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FE,
@@ -216,7 +217,8 @@ def _draw_load(axes: Axes, result: Result, load: LoadLine, lettering: Lettering)
     """Line of action, arrow and size of a load; a couple as a round arrow."""
     extent = result.require_drawing().extent
     force = math.hypot(*load.shear)
-    words = one_line(load.name, 30)
+    kind = result.load_kinds.get(load.name)
+    words = one_line(load.name, 30) + (f" ({kind})" if kind else "")
     if force > 0 and load.through is not None:
         direction = np.array(load.shear) / force
         through = np.array(load.through)

@@ -9,7 +9,7 @@ from matplotlib.axes import Axes
 from matplotlib.patches import FancyArrowPatch, PathPatch
 from matplotlib.path import Path
 
-from crosscheck.comparison.result import Array, Drawing, WallShape
+from crosscheck.comparison.drawn import Array, Drawing, WallShape
 from crosscheck.pictures.canvas import EDGE, FONT, INK, SOFT, SOLID
 
 

@@ -63,7 +63,7 @@ def margins_table(result: Result) -> ResultTable:
             )
         )  # fmt: skip
     title = "Margins: allowable over the largest stress at the probes, minus 1, the smallest first"
-    shown = ("wall", "kind", "allowable", "margin hand", "margin FE", "using hand is", "FE load", "unit")
+    shown = ("wall", "kind", "allowable", "unit", "margin hand", "margin FE", "using hand is", "FE load")
     return ResultTable("margins", title, columns, tuple(rows), shown)
 
 

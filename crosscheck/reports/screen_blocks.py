@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import replace
+from typing import Literal
 
 from rich.console import Group, RenderableType
 from rich.table import Table
@@ -271,14 +272,14 @@ def table_block(table: ResultTable, width: int) -> RenderableType:
     many = len(text.columns)
     while many > 1 and sum(least[i] + 1 for i in range(many)) > width:
         many -= 1
-    shown = Table(box=None, padding=(0, 1, 0, 0), header_style="dim", pad_edge=False, width=width)
+    wanted = [max(len(row[i]) for row in (text.columns, *text.rows)) for i in range(many)]
+    shown = Table(box=None, padding=(0, 1, 0, 0), header_style="dim", pad_edge=False)
+    spare = width - sum(least[i] + 1 for i in range(many))
     for i in range(many):
-        shown.add_column(
-            text.columns[i],
-            justify="right" if text.numeric[i] else "left",
-            min_width=least[i],
-            overflow="fold",
-        )
+        more = min(wanted[i] - least[i], spare)
+        spare -= more
+        justify: Literal["left", "right"] = "right" if text.numeric[i] else "left"
+        shown.add_column(text.columns[i], justify=justify, width=least[i] + more, overflow="fold")
     for row in text.rows:
         shown.add_row(*(Text(one_line(cell, 60)) for cell in row[:many]))
     return Group(Text(), Text(table.title, style="bold"), shown)

@@ -260,3 +260,25 @@ def test_numbers_have_the_promised_digits() -> None:
     assert number(1234567.89) == "1234568"
     assert number(-0.0) == "0"
     assert number(1 / 3) == "0.3333333"
+
+
+def test_named_probes_with_their_fasteners_close_the_sheet():
+    from dataclasses import replace
+
+    from crosscheck.comparison.comparing import join
+    from crosscheck.section_file.model import ProbeSpec
+
+    from .stand_in import both_sides, channel_file
+
+    section = channel_file()
+    section = replace(section, probes=(ProbeSpec("rivets", "web", 0.3, 25.0), ProbeSpec("bond", "top", 0.5)))
+    result = join(section, *both_sides(section), working=True)
+    last = result.working["gust"].split("## Named probes")[1]
+    rows = [
+        [cell.strip() for cell in line.split("|")[1:-1]] for line in last.split("\n") if line.startswith("| ")
+    ]
+    assert [row[0] for row in rows] == ["probe", "rivets", "bond"]
+    (rivets,) = [probe for probe in result.named_probes if probe.label == "rivets"]
+    assert float(rows[1][3]) == pytest.approx(rivets.theory, rel=1e-6)
+    assert float(rows[1][5]) == pytest.approx(25.0 * rivets.theory, rel=1e-6)
+    assert rows[2][4:] == ["", ""]

@@ -11,7 +11,7 @@ from numpy.testing import assert_allclose
 
 from crosscheck.comparison.comparing import join
 from crosscheck.comparison.drawing import mesh_values
-from crosscheck.comparison.result import PictureMesh
+from crosscheck.comparison.drawn import PictureMesh
 from crosscheck.pictures import every_picture, figures, picture_bytes, section_picture
 from crosscheck.pictures.canvas import MM, text_width, wrapped
 from crosscheck.pictures.joints import torsion_stress
