@@ -24,7 +24,7 @@ from crosscheck.comparison.result import TwoModels
 from crosscheck.section_file.model import SectionFile, WallSpec
 
 # Number of a wall within its path: "skin 2", "gutter 2.1".
-NUMBER = re.compile(r" \d+(\.\d+)?\Z")
+NUMBER = re.compile(r" \d+(\.\d+)*\Z")
 # Paths of the two sides whose ends are farther apart than this share of their length are not one.
 NEAR = 0.25
 # Stretches shorter than this share of a path are round-off.
