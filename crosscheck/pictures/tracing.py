@@ -6,7 +6,7 @@ import matplotlib as mpl
 import numpy as np
 from matplotlib.figure import Figure
 
-from crosscheck.comparison.result import Array
+from crosscheck.comparison.drawn import Array
 from crosscheck.pictures.canvas import (
     FE,
     FONT,

@@ -254,7 +254,7 @@ def test_fault_in_a_table_is_one_line_with_both_files(run, tmp_path):
     ran = run("compare", with_table(tmp_path, LOADS.replace("900,5", "many")))
     assert ran.status == 2
     (line,) = ran.err.splitlines()
-    assert "channel.toml: loads.csv line 2: shear[1]: must be a number" in line
+    assert "channel.toml: loads.csv line 2, column shear_y: must be a number" in line
 
 
 def test_envelope_and_governing_load_reach_json_and_screen(run, tmp_path):
