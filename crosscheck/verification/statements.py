@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from crosscheck.verification import common_causes
+
 DOMAIN_OF_USE = (
     "Prismatic, straight beams of linear-elastic, isotropic materials; small displacements.",
     "Saint-Venant torsion and flexure; the cross-section keeps its shape; restrained warping enters only as "
@@ -15,15 +17,9 @@ DOMAIN_OF_USE = (
     "engineer decide.",
 )
 
-COMMON_CAUSES = (
-    "Both sides take the same mechanics: Saint-Venant's and Vlasov's hypotheses. Agreement says nothing "
-    "about what these leave out.",
-    "Both are built from one section file by one reader: a wrong dimension in the file, or a fault of the "
-    "reader, is wrong on both. Rows entered as an outline as well as by walls look for that.",
-    "Both use double precision and the same numerical libraries (numpy, scipy); FE also gmsh and shapely.",
-    "Signs, axes and the definition of every quantity are agreed between the sides and written by the same "
-    "people.",
-    "The unit of a value is that of its section file; nothing checks that a file's numbers are in its units.",
+COMMON_CAUSES = tuple(
+    f"{cause.name.capitalize()}. {cause.text} What shows it: {cause.shows}"
+    for cause in common_causes.COMMON_CAUSES
 )
 
 HOW_TO_REDO = (

@@ -17,13 +17,16 @@ Check = tuple[str, Callable[[], bool]]
 
 
 @cache
-def suite_checks(side: str | None = None, rows: bool = True) -> tuple[Check, ...]:
+def suite_checks(side: str | None = None, rows: bool = True, quick: bool = False) -> tuple[Check, ...]:
     """Name and function of every job of the suite that has to do with a side, or of all.
 
-    side: "theory" or "fe"; None for all. rows: reference rows as well as code checks.
+    side: "theory" or "fe"; None for all. rows: reference rows as well as code checks. quick: of code
+    checks and of rows that need finite elements only those of the quick run.
     """
     jobs: tuple[Job, ...] = plan().jobs if rows else code_checks()
     chosen = [job for job in jobs if side is None or _of(job, side)]
+    if quick:
+        chosen = [job for job in chosen if job.quick or not (isinstance(job, CodeCheck) or job.needs_fe)]
     chosen.sort(key=lambda job: (not job.quick, not isinstance(job, CodeCheck)))
     return tuple((_name(job), partial(_passes, job)) for job in chosen)
 

@@ -15,7 +15,8 @@ from pathlib import Path
 
 sys.path[:0] = [str(Path(__file__).parents[3]), str(Path(__file__).parent)]
 
-from injection import CATALOGUE, side, suite_checks, turned_red
+import injection
+from checks import suite_checks
 
 
 def main(arguments: Sequence[str]) -> int:
@@ -23,13 +24,13 @@ def main(arguments: Sequence[str]) -> int:
     wanted = [a for a in arguments if not a.startswith("--")]
     unseen = {name for name, _ in suite_checks()}
     silent = []
-    for fault in CATALOGUE:
+    for fault in injection.CATALOGUE:
         if wanted and not any(w in fault.name for w in wanted):
             continue
         start = time.time()
-        checks = suite_checks(side(fault))
+        checks = suite_checks(injection.side(fault))
         first = [c for c in checks if c[0] in unseen] if covering else checks
-        red = turned_red(fault, first, [c for c in checks if c not in first])
+        red = injection.turned_red(fault, first, [c for c in checks if c not in first])
         unseen -= set(red)
         if not red:
             silent.append(fault.name)
