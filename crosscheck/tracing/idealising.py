@@ -8,7 +8,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import fe_models
-from crosscheck.faults import SectionFaults
+from crosscheck.faults import Fault, SectionFaults
 from crosscheck.section_file.model import SectionFile
 from crosscheck.section_file.reader import SectionSource, section_from
 from crosscheck.tracing.drawing_source import DrawingSource
@@ -75,13 +75,17 @@ def idealise(source: DrawingSource, tolerance: float | None = None) -> Idealisat
 
 def _readable(source: DrawingSource, tolerance: float | None) -> tuple[WallModel, SectionFile]:
     """The walls as found, or more plainly joined where a section file of them would have faults."""
+    faults: Sequence[Fault] = ()
     for caution in (0, 1):
         model = wall_model(source.solid, tolerance, caution)
         try:
             return model, _read(section_text(model, source, ()), source)
-        except SectionFaults:
-            continue
+        except SectionFaults as error:
+            faults = error.faults
     model = wall_model(source.solid, tolerance, 2)
+    first = faults[0]
+    lost = Remark(f"walls that were found make no section: {first.key}: must be {first.allowed}")
+    model = replace(model, remarks=(*model.remarks, lost), clear_share=0.0)
     return model, _read(section_text(model, source, ()), source)
 
 
