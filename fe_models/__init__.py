@@ -14,7 +14,7 @@ from .picture import PictureMesh
 from .poisson import PoissonFlexure
 from .recovery import FlowSamples
 from .section import Boom, Rounding, Section, Wall
-from .solid import ClosedLine, Place, Solid, outline_of_solid
+from .solid import ClosedLine, Place, Solid, loops_of_solid, outline_of_solid
 from .solution import (
     ACCURACY_RANGE,
     DEFAULT_ACCURACY,
@@ -60,6 +60,7 @@ __all__ = [
     "closed_lines",
     "fitted_edges",
     "imbalance",
+    "loops_of_solid",
     "outline_of_solid",
     "outline_of_walls",
     "require_mesh_library",

@@ -80,6 +80,22 @@ def outline_of_solid(solid: Solid) -> Outline:
     OutlineError
         Rings that do not bound one solid; ``walls`` names them as rings[0], rings[1], ...
     """
+    oriented = _oriented(solid)
+    cluster = Cluster((), (NAME,), with_widths(oriented))
+    drawn = tuple(polyline(r) for r in oriented)
+    extent = float(np.ptp(drawn[0], axis=0).max())
+    section = Section({}, (), nu=solid.nu)
+    moduli = {NAME: (solid.e, solid.g)}
+    return Outline(section, {}, {}, Partition({}, (cluster,)), drawn, extent, (), moduli)
+
+
+def loops_of_solid(solid: Solid) -> tuple[Array, ...]:
+    """Check a solid as ``outline_of_solid`` does; closed polygons (n, 2), the outer one first [L]."""
+    return tuple(polyline(r) for r in _oriented(solid))
+
+
+def _oriented(solid: Solid) -> list[Ring]:
+    """The rings of a solid with the material on their left, the outer one first."""
     names = [f"rings[{i}]" for i in range(len(solid.rings))]
     if not names:
         raise OutlineError("ring", (NAME,), "no ring")
@@ -88,12 +104,7 @@ def outline_of_solid(solid: Solid) -> Outline:
     outer = _outer(loops, names)
     oriented = [_turned(r, p, i == outer) for i, (r, p) in enumerate(zip(rings, loops, strict=True))]
     oriented.insert(0, oriented.pop(outer))
-    cluster = Cluster((), (NAME,), with_widths(oriented))
-    drawn = tuple(polyline(r) for r in oriented)
-    extent = float(np.ptp(drawn[0], axis=0).max())
-    section = Section({}, (), nu=solid.nu)
-    moduli = {NAME: (solid.e, solid.g)}
-    return Outline(section, {}, {}, Partition({}, (cluster,)), drawn, extent, (), moduli)
+    return oriented
 
 
 def _ring(line: ClosedLine, name: str) -> Ring:

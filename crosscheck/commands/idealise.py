@@ -48,6 +48,11 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
         "--gap", metavar="0.01", type=_positive, help="ends of a DXF no farther apart are joined"
     )
     command.add_argument(
+        "--even",
+        action="store_true",
+        help="write out the evened outline of an uneven boundary, for FE, instead of attaching the drawing",
+    )
+    command.add_argument(
         "--tolerance",
         type=_share,
         metavar="0.005",
@@ -95,9 +100,9 @@ def run(arguments: argparse.Namespace) -> int:
         try:
             source = drawing_source(path, arguments.units, options)
             tell(f"{path}: walls")
-            found = idealise(source, arguments.tolerance)
+            found = idealise(source, arguments.tolerance, even=arguments.even)
         except SectionFaults as faults:
-            complain(faults.lines)
+            complain(map(_in_options, faults.lines))
             return ExitStatus.BAD_INPUT
         except fe_models.OutlineError as fault:
             complain([f"{path}: {fault}"])
@@ -128,6 +133,14 @@ def run(arguments: argparse.Namespace) -> int:
             )
             return ExitStatus.BAD_INPUT
     return status
+
+
+def _in_options(line: str) -> str:
+    """A fault of a drawing in the words of this command's options."""
+    for key in ("drawing_unit", "layers", "gap"):
+        option = f"--{key.replace('_', '-')}"
+        line = line.replace(f"outline.{key}:", f"{option}:").replace(f"{key} = ", f"{option} ")
+    return line
 
 
 def _write(found: Idealisation, folder: Path, replace: bool) -> list[str] | None:

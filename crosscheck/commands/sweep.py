@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING
 
 from crosscheck.commands.arguments import complain, told_progress
 from crosscheck.commands.batch_arguments import add_family_arguments, family_of, hands_of, told_batch
+from crosscheck.commands.tracing_cost import tell_tracing_cost
 from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
@@ -108,6 +109,7 @@ def run(arguments: argparse.Namespace) -> int:
         )
         return ExitStatus.BAD_INPUT
     show(sweep, arguments.out)
+    tell_tracing_cost(arguments)
     return sweep_status(sweep)
 
 

@@ -120,7 +120,7 @@ def _judged(
 ) -> ReadOutline | None:
     """What was read, if its rings bound one solid."""
     try:
-        fe_models.outline_of_solid(solid)
+        fe_models.loops_of_solid(solid)
     except fe_models.OutlineError as fault:
         which = [
             int(w.removeprefix("rings[").removesuffix("]")) for w in fault.walls if w.startswith("rings[")
@@ -161,7 +161,7 @@ def _from_places(table: Mapping[str, Any], numbers: Numbers, nu: float | None) -
         return None
     solid = fe_models.Solid(tuple(r for r in rings if r is not None), nu=nu)
     made = _judged(solid, keys, faults, ReadOutline(solid, ()))
-    outer = None if made is None else fe_models.outline_of_solid(solid).loops[0]
+    outer = None if made is None else fe_models.loops_of_solid(solid)[0]
     if outer is not None and not np.isclose(outer, solid.rings[0].points[0], rtol=1e-9).all(axis=1).any():
         faults.add(keys[0], "a boundary inside an opening", "the ring round all openings")
     return made

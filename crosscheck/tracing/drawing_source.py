@@ -69,6 +69,38 @@ class DrawingSource:
         return UNIT_SYSTEMS[self.units].length
 
 
+def outline_table(solid: fe_models.Solid) -> dict[str, Any]:
+    """A solid as a table [outline], places to nine digits."""
+    rings = [_entries(ring) for ring in solid.rings]
+    outer = max(range(len(rings)), key=lambda k: _reach(solid.rings[k]))
+    openings = [ring for k, ring in enumerate(rings) if k != outer]
+    return {"boundary": rings[outer], "openings": openings} if openings else {"boundary": rings[outer]}
+
+
+def _entries(ring: fe_models.ClosedLine) -> list[Any]:
+    """Corners and arcs of a ring, in order."""
+
+    def rounded(place: fe_models.Place) -> list[float]:
+        return [float(f"{v:.9g}") for v in place]
+
+    through = ring.through or (None,) * len(ring.points)
+    entries: list[Any] = [rounded(ring.points[0])]
+    for k, middle in enumerate(through):
+        to = rounded(ring.points[(k + 1) % len(ring.points)])
+        if middle is not None:
+            entries.append({"through": rounded(middle), "to": to})
+        elif k + 1 < len(through):
+            entries.append(to)
+    return entries
+
+
+def _reach(ring: fe_models.ClosedLine) -> float:
+    """Overall size of a ring's places [L]."""
+    places = [*ring.points, *(p for p in ring.through if p is not None)]
+    xs, ys = zip(*places, strict=True)
+    return (max(xs) - min(xs)) * (max(ys) - min(ys))
+
+
 def drawing_source(path: Path, units: str, options: Mapping[str, Any]) -> DrawingSource:
     """Read a drawing, or the outline of a section file.
 

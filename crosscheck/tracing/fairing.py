@@ -171,13 +171,13 @@ def _evened(
 
 
 def _closed(places: Array, scale: float, thickness: float) -> fe_models.ClosedLine:
-    """A ring that is one run: begun at its farthest vertex, then once more at a break in its middle."""
+    """A ring that is one run: begun at its farthest vertex, then once more at its sharpest break."""
     start = int(np.argmax(np.hypot(*(places - places.mean(axis=0)).T)))
     for _ in range(2):
         places = np.roll(places, -start, axis=0)
         run = np.concatenate([places, places[:1]])
         breaks = _breaks(run, scale)
-        start = breaks[len(breaks) // 2][0]
+        start = _sharpest(run, breaks)
     if len(breaks) == 1:
         arc = fitted_line(run[:-1], loop=True, arc=True)
         x, y = arc.centre
@@ -186,14 +186,37 @@ def _closed(places: Array, scale: float, thickness: float) -> fe_models.ClosedLi
     return fe_models.ClosedLine(tuple(_place(c) for c in corners), tuple(middles))
 
 
+def _sharpest(run: Array, breaks: list[tuple[int, int, bool]]) -> int:
+    """The vertex between two stretches at which the chords turn most."""
+    chords = np.array([run[b] - run[a] for a, b, _ in breaks])
+    before = np.roll(chords, 1, axis=0)
+    turn = np.arctan2(
+        before[:, 0] * chords[:, 1] - before[:, 1] * chords[:, 0], (before * chords).sum(axis=1)
+    )
+    # the run's own start is left out: whether it is a break is to be found out
+    return breaks[int(np.argmax(np.abs(turn[1:]))) + 1][0] if len(breaks) > 1 else 0
+
+
 def _breaks(run: Array, scale: float) -> list[tuple[int, int, bool]]:
     """First and last vertex of every stretch of a run, and True where it is an arc."""
     dense, number = _dense(run)
-    n = len(run)
-    count = min(n, MOST_BREAKS)
-    nodes = np.unique(np.round(np.linspace(0, n - 1, count)).astype(int))
-    at = np.searchsorted(number, nodes)
     sums = _sums(dense)
+    n = len(run)
+    if n <= MOST_BREAKS:
+        return _cheapest(np.arange(n), number, sums, scale)
+    # first among some vertices, then among all that are near the breaks found
+    stride = int(np.ceil(n / MOST_BREAKS))
+    coarse = _cheapest(np.unique(np.append(np.arange(0, n, stride), n - 1)), number, sums, scale)
+    ends = np.array([a for a, _, _ in coarse] + [n - 1])
+    near = (ends[:, None] + np.arange(-stride, stride + 1)).ravel()
+    return _cheapest(np.unique(near[(near >= 0) & (near < n)]), number, sums, scale)
+
+
+def _cheapest(
+    nodes: np.ndarray, number: np.ndarray, sums: Array, scale: float
+) -> list[tuple[int, int, bool]]:
+    """The cheapest way to take a run as lines and arcs between vertices of a choice, its ends among them."""
+    at = np.searchsorted(number, nodes)
     best = np.full(len(nodes), np.inf)
     best[0] = 0.0
     origin = np.zeros(len(nodes), dtype=int)

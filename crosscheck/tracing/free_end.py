@@ -78,7 +78,9 @@ def free_end(wall: FittedWall, polygon: Polygon, radius: float | None) -> FreeEn
         return FreeEnd(cut + depth, 0.0, middle, "")
     short = depth - reach
     remark = (
-        "" if not wall.straight or abs(short) < NOT_SQUARE * thickness else "a free end that is not square, taken as a square one of its area"
+        ""
+        if not wall.straight or abs(short) < NOT_SQUARE * thickness
+        else "a free end that is not square, taken as a square one of its area"
     )
     return FreeEnd(cut + reach, 0.0, middle, remark)
 

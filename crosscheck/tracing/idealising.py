@@ -11,7 +11,7 @@ import fe_models
 from crosscheck.faults import Fault, SectionFaults
 from crosscheck.section_file.model import SectionFile
 from crosscheck.section_file.reader import SectionSource, section_from
-from crosscheck.tracing.drawing_source import DrawingSource
+from crosscheck.tracing.drawing_source import DrawingSource, outline_table
 from crosscheck.tracing.lumps import with_lumps
 from crosscheck.tracing.model import Remark, WallModel
 from crosscheck.tracing.naming import Names, names
@@ -43,7 +43,7 @@ class Idealisation:
     remarks: tuple[Remark, ...]
 
 
-def idealise(source: DrawingSource, tolerance: float | None = None) -> Idealisation:
+def idealise(source: DrawingSource, tolerance: float | None = None, *, even: bool = False) -> Idealisation:
     """Find the walls of a drawing and write them as a section file.
 
     Parameters
@@ -51,8 +51,12 @@ def idealise(source: DrawingSource, tolerance: float | None = None) -> Idealisat
     source : DrawingSource
     tolerance : float, optional
         Largest distance of a drawn face from its wall's over the thickness [-].
+    even : bool
+        True to write out the evened outline instead of attaching the drawing.
     """
     model, section = _readable(source, tolerance)
+    if even:
+        source = replace(source, outline=outline_table(model.even))
     rebuilt = rebuilt_outline(section)
     while isinstance(rebuilt, fe_models.OutlineError) and rebuilt.kind == "radius":
         model = _less_rounded(model, rebuilt.walls)

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 from shapely.geometry import Polygon
 
+import fe_models
 from crosscheck.tracing.faces import Array, FacedOutline
 from crosscheck.tracing.wall_fit import FittedWall
 
@@ -73,6 +74,7 @@ class WallModel:
     outline : the outline as faces
     tolerance : share of the thickness within which faces follow their walls [-]
     drawn : the solid as drawn
+    even : the solid with its uneven boundary evened, on which walls were found
     noise : standard deviation of the drawn boundary's unevenness [L]
     clear_share : share of the area that lies in clear walls [-]
     holes : openings of the drawing
@@ -84,6 +86,7 @@ class WallModel:
     remarks: tuple[Remark, ...]
     outline: FacedOutline
     drawn: Polygon
+    even: fe_models.Solid
     tolerance: float
     noise: float
     clear_share: float

@@ -65,7 +65,7 @@ def _nouns(model: WallModel) -> list[str]:
             noun = "nose" if wall.through is not None else "web" if _upright(wall) else "skin"
             made.append(noun if wall.through is None or len(walls) < 6 else "skin")
         elif not free[i]:
-            made.append("web" if _upright(wall) == upright else "flange")
+            made.append("web" if _upright(wall) == upright and not any(in_cell) else "flange")
         else:
             held = wall.start if degree[wall.end] == 1 else wall.end
             beside = [w.length for k, w in enumerate(walls) if k != i and held in (w.start, w.end)]

@@ -54,6 +54,7 @@ def wall_model(solid: fe_models.Solid, tolerance: float | None = None, caution: 
         tuple(draft.remarks),
         outline,
         even.polygon or outline.polygon,
+        even.solid,
         share,
         even.noise,
         min(clear / outline.polygon.area, 1.0),

@@ -38,9 +38,9 @@ def drawn(section: SectionFile) -> Solid:
     return Solid(tuple(lines))
 
 
-def save_dxf(solid: Solid, path: Path) -> Path:
+def save_dxf(solid: Solid, path: Path, units: int = 4) -> Path:
     """A DXF of closed polylines, arcs as bulges."""
-    document = ezdxf.new(units=4)
+    document = ezdxf.new(units=units)
     for ring in solid.rings:
         through = ring.through or (None,) * len(ring.points)
         corners = []

@@ -28,9 +28,9 @@ from fe_models import Solid
 
 
 def found_in(solid: Solid) -> Idealisation:
-    start = time.perf_counter()
+    start = time.process_time()
     found = idealise(DrawingSource(Path("part.dxf"), solid, "part", "mm N", {"file": "part.dxf"}))
-    assert time.perf_counter() - start < 5.0
+    assert time.process_time() - start < 5.0
     return found
 
 
