@@ -21,6 +21,7 @@ MODULES: tuple[str, ...] = (
     "stresses",
     "hand_sheet",
     "levels",
+    "joint_terms",
     "fe_flows",
     "judgement",
     "limits",

@@ -1,0 +1,137 @@
+"""Terms of joints at level `corrected`, entered a second time from their sources or by another formula."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import replace
+from functools import partial
+
+import beam_theory
+import fe_models
+from beam_theory.corner_terms import (
+    FREE_END,
+    SHARP_CORNER,
+    cell_corner_area,
+    cell_corner_length,
+    fillet_corner,
+    tee,
+)
+from crosscheck.verification.code_checks.finding import Finding, code_check
+from crosscheck.verification.code_checks.shapes import Shape, Wall
+
+GROUP = "joint terms"
+ROUND_OFF = 1e-12
+
+
+def tee_term() -> Finding:
+    """El Darwish and Johnston 1965: alpha D^4 of a tee, less tf tw^3/6 of the stem inside the flange."""
+    worst = 0.0
+    for tf, tw, r in ((10.0, 6.0, 0.0), (12.7, 7.5, 12.0), (8.0, 8.0, 4.0)):
+        alpha = (
+            -0.042
+            + 0.2204 * (tw / tf)
+            + 0.1355 * (r / tf)
+            - 0.0865 * (tw * r / tf**2)
+            - 0.0725 * (tw / tf) ** 2
+        )
+        d = ((tf + r) ** 2 + (r + 0.25 * tw) * tw) / (2.0 * r + tf)
+        worst = max(worst, abs(tee(tf, tw, r) / (alpha * d**4 - tf * tw**3 / 6.0) - 1.0))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e} of three tees.")
+
+
+def fillet_term() -> Finding:
+    """Roark's table 10.1 for an angle with a fillet: alpha = (d/b)(0.07 + 0.076 r/b), in both orders."""
+    worst = 0.0
+    for b, d, r in ((8.0, 6.0, 5.0), (5.0, 5.0, 2.5), (9.0, 4.0, 0.0)):
+        alpha = (d / b) * (0.07 + 0.076 * r / b)
+        across = 2.0 * (d + b + 3.0 * r - math.sqrt(2.0) * math.sqrt((2.0 * r + b) * (2.0 * r + d)))
+        want = alpha * across**4 + (d * b**3 - b * d**3) / 6.0
+        for first, second in ((b, d), (d, b)):
+            worst = max(worst, abs(fillet_corner(first, second, r) / want - 1.0))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e} of three angles, in both orders.")
+
+
+def cell_corner() -> Finding:
+    """Length of a cell's corner: Hall 1968 at a right angle, the digamma form for walls of one thickness."""
+    from scipy.special import digamma
+
+    worst = abs(cell_corner_length(math.pi / 2.0, 1.0, 1.0) / (-2.0 / math.pi * math.log(2.0)) - 1.0)
+    for b in (0.5, 2.0, 3.0):
+        hall = (
+            1.0 / b
+            - 2.0 / math.pi * math.log(4.0 * b / (b**2 + 1.0))
+            + (b**2 - 1.0) / (math.pi * b) * math.acos((b**2 - 1.0) / (b**2 + 1.0))
+        )
+        worst = max(
+            worst, abs(cell_corner_length(math.pi / 2.0, 1.0, b) / (hall - 0.5 * (b + 1.0 / b)) - 1.0)
+        )
+    for degrees in (30.0, 75.0, 120.0, 150.0):
+        turn = math.radians(degrees)
+        closed = math.tan(turn / 2.0) + 2.0 / math.pi * float(
+            digamma(0.5 - turn / (2.0 * math.pi)) - digamma(0.5)
+        )
+        closed_off = abs(cell_corner_length(turn, 2.0, 2.0) / closed - 1.0)
+        worst = max(worst, closed_off * 1e-4)
+    return Finding(worst, 1e-9, f"Largest difference {worst:.1e} (of the digamma form, 1e-4 times).")
+
+
+def cell_corner_square() -> Finding:
+    """Area of a right-angled corner of a cell by plain quadrature of the conformal map along the bisector."""
+    from scipy.integrate import quad
+
+    def slope(v: float) -> float:
+        return 2.0 * v * math.sqrt(1.0 / math.tan(math.pi * v * v / 2.0))
+
+    def rho(s: float) -> float:
+        return float(quad(slope, 0.0, math.sqrt(s))[0])
+
+    along = 0.5 - 0.25 * float(quad(lambda s: rho(s) ** 2, 0.0, 1.0)[0])
+    kappa = 0.5 + math.log(2.0) / math.pi - 1.25 + 2.0 * along
+    off = abs(cell_corner_area(math.pi / 2.0, 3.0, 3.0) / (9.0 * kappa) - 1.0)
+    return Finding(off, 1e-7, f"Difference {off:.1e}.")
+
+
+def constants() -> Finding:
+    """Free end by its series; the sharp corner by FE's bounds of J of a sharp angle."""
+    series = 192.0 / math.pi**5 * sum(1.0 / n**5 for n in range(1, 401, 2)) / 6.0
+    off = abs(FREE_END / series - 1.0) / 1e-8
+    angle = Shape(
+        {"a": (20.0, 0.0), "o": (0.0, 0.0), "b": (0.0, 20.0)},
+        (Wall("a", "o", (1.0, 1.0)), Wall("o", "b", (1.0, 1.0))),
+        {},
+    )
+    j = fe_models.solve(angle.solid(), 1e-8).quantities["torsion_constant"]
+    corner = j.known - 40.0 / 3.0 + 2.0 * series
+    off = max(off, abs(corner - SHARP_CORNER) / (j.half_width + 1e-7))
+    return Finding(off, 1.0, f"Sharp corner {corner:.8f} by FE, {SHARP_CORNER:.8f} in use.")
+
+
+def _rolled(kind: str) -> tuple[Shape, str]:
+    if kind == "tee":
+        points = {"l": (-20.0, 30.0), "m": (0.0, 30.0), "r": (20.0, 30.0), "s": (0.0, 0.0)}
+        walls = (Wall("l", "m", (5.0, 5.0)), Wall("m", "r", (5.0, 5.0)), Wall("m", "s", (4.0, 4.0)))
+        return Shape(points, walls, {}), "m"
+    points = {"a": (25.0, 0.0), "o": (0.0, 0.0), "b": (0.0, 30.0)}
+    return Shape(points, (Wall("a", "o", (5.0, 5.0)), Wall("o", "b", (4.0, 4.0))), {}), "o"
+
+
+def filleted(kind: str) -> Finding:
+    """J of a stout tee or angle with a fillet against FE: the fits are good to some hundredths."""
+    shape, point = _rolled(kind)
+    corner = beam_theory.Corner(point, 4.0, 0.0 if kind == "angle" else None)
+    theory = beam_theory.solve(replace(shape.theory(), corners=(corner,)), "corrected")
+    rounding = fe_models.Rounding(4.0, 0.0 if kind == "angle" else None)
+    fe = fe_models.solve(replace(shape.solid(), corners={point: rounding}), 1e-5)
+    off = theory.require("torsion_constant") / fe.quantities["torsion_constant"].known - 1.0
+    return Finding(abs(off), 0.04, f"J at level corrected {off:+.2%} from FE.")
+
+
+CHECKS = (
+    code_check("tee", GROUP, "theory", tee_term, quick=True),
+    code_check("angle with a fillet", GROUP, "theory", fillet_term, quick=True),
+    code_check("corner of a cell, length", GROUP, "theory", cell_corner, quick=True),
+    code_check("corner of a cell, area", GROUP, "theory", cell_corner_square, quick=True),
+    code_check("free end and sharp corner", GROUP, "both", constants),
+    code_check("tee with a fillet in J", GROUP, "both", partial(filleted, "tee"), features={"fillet"}),
+    code_check("angle with a fillet in J", GROUP, "both", partial(filleted, "angle"), features={"fillet"}),
+)
