@@ -32,6 +32,8 @@ MOST_BREAKS = 500
 LINE, ARC = 24.0, 34.0
 # Part of the mean thickness at both ends of a fitted stretch that is left out, where a break may be off.
 TRIM = 0.25
+# A stretch up to this many mean edges long between long ones may cut a corner.
+CUT = 2.5
 # Stretches whose directions differ by more at a break [cosine] meet at a corner.
 CORNER = np.cos(np.radians(12.0))
 
@@ -282,6 +284,7 @@ def _corners(
     run: Array, breaks: list[tuple[int, int, bool]], thickness: float, *, closed: bool
 ) -> tuple[list[Array], list[fe_models.Place | None]]:
     """Corners between stretches, and a third place of each stretch that is an arc."""
+    breaks = _without_cut_corners(run, breaks, thickness)
     fitted = [fitted_line(_trimmed(run[a : b + 1], thickness), loop=False, arc=arc) for a, b, arc in breaks]
     corners: list[Array] = []
     for k, (a, _, _) in enumerate(breaks):
@@ -302,6 +305,25 @@ def _corners(
         s += full * np.round((np.array(curve.span) - s) / full)
         middles.append(_place(curve.at(0.5 * float(s.sum()))))
     return corners, middles
+
+
+def _without_cut_corners(
+    run: Array, breaks: list[tuple[int, int, bool]], thickness: float
+) -> list[tuple[int, int, bool]]:
+    """Stretches without those of an edge or two that only cut a corner which no vertex hit."""
+    length = np.hypot(*np.diff(run, axis=0).T)
+    longest = min(CUT * float(np.median(length)), SOFT_LENGTH * thickness)
+    kept = [breaks[0]]
+    for a, b, arc in breaks[1:]:
+        first, last, _ = kept[-1]
+        cuts = len(kept) > 1 and last - first <= 3 and length[first:last].sum() <= longest
+        if cuts and kept[-2][1] - kept[-2][0] > 3 and b - a > 3:
+            middle = (first + last) // 2
+            start, _, before = kept[-2]
+            kept[-2:] = [(start, middle, before), (middle, b, arc)]
+        else:
+            kept.append((a, b, arc))
+    return kept
 
 
 def _trimmed(places: Array, thickness: float) -> Array:
