@@ -113,6 +113,11 @@ def test_direct_stress_is_compared_at_the_booms_where_theorys_walls_carry_none()
     assert row.judged_theory == pytest.approx(max(abs(fibre.theory) for fibre in fibres))
     assert row.fe.value == pytest.approx(max(abs(fibre.fe) for fibre in fibres))
     assert result.quantity("von_mises_stress", "freight").verdict is None
+    kinds = {entry.kind for entry in result.wall_envelopes if entry.theory is not None}
+    assert kinds == {"flow"}
+    assert {entry.kind for entry in result.wall_envelopes if entry.fe is not None} == {
+        "flow", "direct", "von_mises",
+    }  # fmt: skip
 
 
 def test_a_probe_on_a_wall_that_only_theory_sees_has_theorys_value():
