@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 
 import matplotlib as mpl
 import numpy as np
@@ -42,6 +43,9 @@ Place = tuple[float, float]
 FEW_WALLS = 6
 MANY_WALLS = 16
 TOO_MANY_WALLS = 48
+# Labels of forces and couples on narrow and on wide paper; more of them are numbers, told in the caption.
+MOST_LABELS = (4, 8)
+MOST_NUMBERED = 20
 # Length of a force arrow and radius of a couple's, over the larger overall dimension.
 ARROW = 0.13
 CIRCLE = 0.07
@@ -77,7 +81,11 @@ def section_picture(result: Result, width_mm: int = 160) -> Figure:
     gap = 0.16 * drawing.extent if width_mm >= WIDE_PAPER else 0.22 * drawing.extent
     frame = frame_of(groups).grown(gap)
     directions = DIRECTIONS if drawing.walls else ""
-    caption = " ".join(filter(None, (SIGNS, directions, _offset_text(result, hand, fe))))
+    numbered = _many_labels(drawing.loads) > MOST_LABELS[width_mm >= WIDE_PAPER]
+    labels = _load_labels(result, numbered=numbered)
+    listed = [f"{label} {text}" for label, text in labels.values() if numbered and label]
+    loads = f"Loads: {'; '.join(listed)}." if listed else ""
+    caption = " ".join(filter(None, (SIGNS, directions, _offset_text(result, hand, fe), loads)))
     figure, axes = scale_drawing(width_mm, frame, one_line(result.title, 200), caption, unit)
     with mpl.rc_context(STYLE):
         draw_solid(axes, drawing.loops)
@@ -94,7 +102,7 @@ def section_picture(result: Result, width_mm: int = 160) -> Figure:
         for load in drawing.loads:
             _keep_clear_of_load(load, drawing.extent, centre_of(drawing), lettering)
         for load in drawing.loads:
-            _draw_load(axes, result, load, lettering)
+            _draw_load(axes, result, load, labels[load.name][0], lettering, numbered=numbered)
         _mark_centres(axes, result, hand, fe, lettering)
         for words, place in stated.items():
             axes.plot(*place, marker="D", ms=4.5, mfc="none", mec=INK, mew=0.9, zorder=5)
@@ -213,12 +221,35 @@ def _keep_clear_of_load(load: LoadLine, extent: float, middle: Place, lettering:
         lettering.keep_clear_of_circle(load.through or middle, CIRCLE * extent)
 
 
-def _draw_load(axes: Axes, result: Result, load: LoadLine, lettering: Lettering) -> None:
+def _many_labels(loads: Sequence[LoadLine]) -> int:
+    """How many forces and couples there are to letter."""
+    return sum((load.shear != (0.0, 0.0)) + (load.torque != 0.0) for load in loads)
+
+
+def _load_labels(result: Result, *, numbered: bool) -> dict[str, tuple[str, str]]:
+    """Label of every load that is drawn, its name or a number, and its sizes in words."""
+    labels = {}
+    for number, load in enumerate(result.require_drawing().loads, 1):
+        kind = result.load_kinds.get(load.name)
+        words = one_line(load.name, 30) + (f" ({kind})" if kind else "")
+        sizes = []
+        if load.shear != (0.0, 0.0):
+            sizes.append(f"{number_text(math.hypot(*load.shear), 4)} {result.force_unit}")
+        if load.torque:
+            couple = f"{number_text(abs(load.torque), 4)} {result.force_unit} {result.length_unit}"
+            sizes.append(f"T {couple}")
+        labels[load.name] = (str(number) if numbered else words, f"{words} {', '.join(sizes)}".strip())
+    if numbered and len(labels) > MOST_NUMBERED:
+        return dict.fromkeys(labels, ("", ""))
+    return labels
+
+
+def _draw_load(
+    axes: Axes, result: Result, load: LoadLine, label: str, lettering: Lettering, *, numbered: bool
+) -> None:
     """Line of action, arrow and size of a load; a couple as a round arrow."""
     extent = result.require_drawing().extent
     force = math.hypot(*load.shear)
-    kind = result.load_kinds.get(load.name)
-    words = one_line(load.name, 30) + (f" ({kind})" if kind else "")
     if force > 0 and load.through is not None:
         direction = np.array(load.shear) / force
         through = np.array(load.through)
@@ -232,19 +263,21 @@ def _draw_load(axes: Axes, result: Result, load: LoadLine, lettering: Lettering)
         )
         tail, head = through, through + ARROW * extent * direction
         draw_arrow(axes, tail, head, INK)
-        middle = (tail + head) / 2
+        middle = head if numbered else (tail + head) / 2
         size = f"{number_text(force, 4)} {result.force_unit}"
-        lettering.write(
-            (f"{words}\n{size}", f"{words} {size}"),
-            (float(middle[0]), float(middle[1])),
-            (1.0, 0.0) if abs(direction[1]) > 0.5 else (0.0, 1.0),
-        )
+        away = (1.0, 0.0) if abs(direction[1]) > 0.5 else (0.0, 1.0)
+        texts = (label,) if numbered else (f"{label}\n{size}", f"{label} {size}")
+        if label:
+            lettering.write(texts, (float(middle[0]), float(middle[1])), away)
     if load.torque:
         place = load.through or centre_of(result.require_drawing())
         draw_torque(axes, place, CIRCLE * extent, load.torque, INK)
         couple = f"{number_text(abs(load.torque), 4)} {result.force_unit} {result.length_unit}"
         top = (place[0], place[1] + CIRCLE * extent)
-        lettering.write((f"{words} T\n{couple}", f"{words} T {couple}"), top, (0.3, 1.0))
+        if not numbered:
+            lettering.write((f"{label} T\n{couple}", f"{label} T {couple}"), top, (0.3, 1.0))
+        elif label and force == 0.0:
+            lettering.write(label, top, (0.3, 1.0))
 
 
 def _name_walls(result: Result, lettering: Lettering, *, short: bool) -> None:

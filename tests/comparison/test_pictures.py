@@ -145,3 +145,15 @@ def test_cells_are_shown_anticlockwise_and_other_walls_up_or_right(result):
     turns = {wall.name: wall.turn for wall in result.drawing.walls}
     # bottom runs left, web up, top right.
     assert turns == {"bottom": -1, "web": 1, "top": 1}
+
+
+def test_many_loads_are_numbered_and_told_in_the_caption(result):
+    drawing = result.drawing
+    loads = tuple(replace(drawing.loads[0], name=f"case {k}") for k in range(10))
+    many = replace(result, drawing=replace(drawing, loads=loads), load_kinds={"case 3": "limit"})
+    for width in (80, 160):
+        figure = section_picture(many, width)
+        told = " ".join(text.get_text() for text in reversed(figure.texts))
+        assert "4 case 3 (limit) 1200 N;" in " ".join(told.split())
+        written = {text.get_text() for text in figure.axes[0].texts}
+        assert {str(k) for k in range(1, 11)} <= written
