@@ -7,7 +7,7 @@ import os
 import sys
 from collections.abc import Sequence
 
-from crosscheck.commands import compare, dossier, draw, idealise, sweep, template, verify
+from crosscheck.commands import compare, dossier, draw, idealise, sweep, template, threshold, verify
 from crosscheck.commands.arguments import OneLineParser
 from crosscheck.exit_status import ExitStatus
 
@@ -31,7 +31,7 @@ def parser() -> argparse.ArgumentParser:
     )
     top.add_argument("--version", action="store_true", help="print the version and stop")
     commands = top.add_subparsers(dest="command", metavar="COMMAND", title="commands")
-    for command in (compare, draw, idealise, sweep, template, verify, dossier):
+    for command in (compare, draw, idealise, sweep, template, threshold, verify, dossier):
         command.add(commands)
     return top
 

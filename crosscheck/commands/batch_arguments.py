@@ -23,7 +23,7 @@ def add_workers(command: argparse.ArgumentParser) -> None:
     )
 
 
-def add_family_arguments(command: argparse.ArgumentParser) -> None:
+def add_family_arguments(command: argparse.ArgumentParser, *, ratio: bool = True) -> None:
     """The file, what varies, who solves."""
     command.add_argument("path", metavar="FILE", help="section file")
     command.add_argument(
@@ -34,11 +34,12 @@ def add_family_arguments(command: argparse.ArgumentParser) -> None:
         metavar='"t from 1 to 12 in 23"',
         help='one parameter, or two by giving it twice; also "t from 1 to 12 in 23 log" and "t in 1, 1.5, 2"',
     )
-    command.add_argument(
-        "--ratio",
-        metavar='"t / depth"',
-        help="arithmetic on parameters to tell beside the first parameter, and to draw as a second axis",
-    )
+    if ratio:
+        command.add_argument(
+            "--ratio",
+            metavar='"t / depth"',
+            help="arithmetic on parameters to tell beside the first parameter, and to draw as a second axis",
+        )
     command.add_argument("--out", metavar="DIR", help="folder for tables, pictures and the journal")
     add_workers(command)
     command.add_argument(

@@ -66,13 +66,12 @@ def run(arguments: argparse.Namespace) -> int:
     """Solve every member, then tables and pictures."""
     from crosscheck.batch.running import run_points
     from crosscheck.batch.task import BatchError
-    from crosscheck.comparison.quantities import QUANTITIES
     from crosscheck.family.sweep import summarised
     from crosscheck.faults import SectionFaults
 
-    unknown = [name for name in arguments.quantities if name not in QUANTITIES]
+    unknown = unknown_quantities(arguments.quantities)
     if unknown:
-        complain(f"--quantity: must be one of {', '.join(QUANTITIES)}, got {name!r}" for name in unknown)
+        complain(unknown)
         return ExitStatus.BAD_INPUT
     if arguments.resume and arguments.out is None:
         complain(["--resume: must be given with --out, whose folder has the journal, got no --out"])
@@ -111,6 +110,14 @@ def run(arguments: argparse.Namespace) -> int:
     show(sweep, arguments.out)
     tell_tracing_cost(arguments)
     return sweep_status(sweep)
+
+
+def unknown_quantities(names: list[str]) -> list[str]:
+    """A line for each name that is no quantity."""
+    from crosscheck.comparison.quantities import QUANTITIES
+
+    unknown = [name for name in names if name not in QUANTITIES]
+    return [f"--quantity: must be one of {', '.join(QUANTITIES)}, got {name!r}" for name in unknown]
 
 
 @contextmanager

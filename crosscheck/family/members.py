@@ -9,7 +9,7 @@ from itertools import product
 from math import prod
 from typing import TYPE_CHECKING, Any, NamedTuple
 
-from crosscheck.batch.task import Point, Task
+from crosscheck.batch.task import Outcome, Point, Task
 from crosscheck.comparison.provenance import PACKAGES, installed_version
 from crosscheck.comparison.result import LEVELS, QuantityResult, Verdict
 from crosscheck.family.ranges import Range
@@ -156,7 +156,7 @@ class Family:
 
 
 def solve_member(family: Family, values: Sequence[float]) -> dict[str, Any]:
-    """Compare both sides of one member; see :func:`member_from` for what it gives."""
+    """Compare both sides of one member; see :func:`member_of` for what it gives."""
     import beam_theory
     import fe_models
     from crosscheck.comparison.comparing import compare
@@ -203,10 +203,11 @@ def _row(row: QuantityResult) -> Row:
     )
 
 
-def member_from(found: Mapping[str, Any] | None, failure: str | None = None) -> Member:
+def member_of(outcome: Outcome) -> Member:
     """A member from what :func:`solve_member` gave, or from the reason why it gave nothing."""
-    if found is None:
-        return Member("failed", reason=failure or "nothing came of it")
+    if outcome.failure is not None:
+        return Member("failed", reason=f"{outcome.failure.kind}: {outcome.failure.text}")
+    found = outcome.found
     return Member(
         found["status"],
         tuple(Row(*row) for row in found.get("rows", ())),

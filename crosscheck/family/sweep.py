@@ -11,7 +11,7 @@ from crosscheck.batch.journal import Journal
 from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import LEVELS
-from crosscheck.family.members import Family, Member, Row, member_from
+from crosscheck.family.members import Family, Member, Row, member_of
 
 Key = tuple[str, str | None]
 VERDICTS = ("outside", "inconclusive", "within", None)
@@ -117,8 +117,7 @@ class Series:
 def members_of(family: Family, journal: Journal) -> Iterator[tuple[tuple[float, ...], Member]]:
     """Members with their values in order, read from the journal one at a time."""
     for values, outcome in zip(family.grid(), journal.outcomes(), strict=True):
-        failure = None if outcome.failure is None else f"{outcome.failure.kind}: {outcome.failure.text}"
-        yield values, member_from(outcome.found, failure)
+        yield values, member_of(outcome)
 
 
 def summarised(family: Family, journal: Journal) -> Sweep:

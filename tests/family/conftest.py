@@ -88,6 +88,17 @@ def started(*arguments: object, **options) -> subprocess.Popen[str]:
     )
 
 
+@pytest.fixture(scope="session")
+def channel_text():
+    return CHANNEL
+
+
+@pytest.fixture(scope="session")
+def command_started():
+    """Starts a process of the command line."""
+    return started
+
+
 @pytest.fixture
 def process():
     """Start a process of the command line; one that still runs afterwards is ended."""
