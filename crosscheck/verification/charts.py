@@ -102,18 +102,24 @@ def order_chart(title: str, series: Mapping[str, Series]) -> str:
         return left + (right - left) * across, bottom - (bottom - top) * up
 
     first = next(iter(drawn.values()))
-    parts = [_open(width, height, title), _text(left, 16, _cut(title, 62), strong=True)]
+    parts = [_open(width, height, title), _text(4, 16, _cut(title, 64), strong=True)]
     parts += [_line(left, bottom, right, bottom, INK, 1), _line(left, top, left, bottom, INK, 1)]
-    for power in _powers(x_low, x_high):
-        px, _ = place(10.0**power, 10.0**y_low)
-        parts += [_line(px, bottom, px, bottom + 4, INK, 1), _power(px, bottom + 18, power, "middle")]
-    for power in _powers(y_low, y_high):
-        _, py = place(10.0**x_low, 10.0**power)
-        parts += [_line(left - 4, py, left, py, INK, 1), _power(left - 7, py + 4, power, "end")]
+    for value in dict.fromkeys((min(xs), max(xs))):
+        px, _ = place(value, ys[0])
+        parts += [_line(px, bottom, px, bottom + 4, INK, 1)]
+        parts.append(_text(px, bottom + 18, f"{value:.3g}", anchor="middle", small=True))
+    powers = _powers(y_low, y_high)
+    for power in powers if len(powers) > 1 else ():
+        _, py = place(xs[0], 10.0**power)
+        parts += [_line(left - 4, py, left, py, INK, 1), _power(left - 7, py + 4, power)]
+    for value in dict.fromkeys((min(ys), max(ys))) if len(powers) < 2 else ():
+        _, py = place(xs[0], value)
+        parts += [_line(left - 4, py, left, py, INK, 1)]
+        parts.append(_text(left - 7, py + 4, f"{value:.2g}", anchor="end", small=True))
     parts.append(_text((left + right) / 2, bottom + 38, first.x_label, anchor="middle", small=True))
     middle = (top + bottom) / 2
     parts.append(
-        f'<text transform="translate(14 {middle}) rotate(-90)" text-anchor="middle" class="small">'
+        f'<text transform="translate(12 {middle}) rotate(-90)" text-anchor="middle" class="small">'
         f"{html.escape(first.y_label)}</text>"
     )
     lines = []
@@ -123,7 +129,7 @@ def order_chart(title: str, series: Mapping[str, Series]) -> str:
         dash = ("", "6 3", "2 3", "8 3 2 3")[number % 4]
         parts.append(f'<polyline points="{path}" fill="none" stroke="{INK}" stroke-dasharray="{dash}"/>')
         parts += [f'<circle cx="{px:.1f}" cy="{py:.1f}" r="2.6" fill="{INK}"/>' for px, py in points]
-        lines.append((points[-1], _slope_words(name, one)))
+        lines.append((points[-1], _slope_words(name if len(drawn) > 1 else "slope", one)))
     for at, wanted, words in _apart(lines, top, bottom):
         parts.append(_line(at[0], at[1], right + 8, wanted, PALE, 1))
         parts.append(_text(right + 11, wanted + 4, words, small=True))
@@ -169,9 +175,9 @@ def _powers(low: float, high: float) -> list[int]:
     return found[::step]
 
 
-def _power(x: float, y: float, power: int, anchor: str) -> str:
+def _power(x: float, y: float, power: int) -> str:
     return (
-        f'<text x="{x:.1f}" y="{y:.1f}" text-anchor="{anchor}" class="small">10<tspan dy="-4" font-size="8">'
+        f'<text x="{x:.1f}" y="{y:.1f}" text-anchor="end" class="small">10<tspan dy="-4" font-size="8">'
         f"{power}</tspan></text>"
     )
 

@@ -37,7 +37,9 @@ def fails() -> CheckOutcome:
 
 
 def orders() -> CheckOutcome:
-    series = {"error <of J>": Series((1.0, 10.0, 100.0), (1e-1, 1e-3, 1e-5), "unknowns", "error", -2.0, -2.0)}
+    series = {
+        "error <of J>": Series((1.0, 10.0, 100.0), (1e-1, 1e-3, 1e-5), "unknowns", "error <of J>", -2.0, -2.0)
+    }
     return CheckOutcome("orders", "manufactured", "fe", True, 0.01, 0.1, "as it should", series=series)
 
 
