@@ -10,6 +10,7 @@ from dataclasses import dataclass
 from crosscheck.comparison.quantities import unit_text
 from crosscheck.comparison.result import Result
 from crosscheck.dossier.convergence import Convergence
+from crosscheck.dossier.texts import plain_unit
 from crosscheck.reports.wording import name_of, number_text, percent_text
 from crosscheck.section_file.model import SectionFile
 
@@ -137,7 +138,7 @@ def _gross(section: SectionFile, result: Result) -> Iterator[Assumption]:
         if material is not None:
             k = FREE if free else HELD
             stress = k * math.pi**2 * material.E / (12.0 * (1.0 - material.nu**2)) / ratio**2
-            unit = unit_text(-2, 1, result.length_unit, result.force_unit)
+            unit = plain_unit(unit_text(-2, 1, result.length_unit, result.force_unit))
             evidence += (
                 f"; elastic plate stress in even compression {number_text(stress, 3)} {unit} (k = "
                 f"{k:g}, simply supported edges, common practice; an indicator, no buckling check)"

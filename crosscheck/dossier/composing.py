@@ -16,9 +16,12 @@ from crosscheck.dossier.opening import changes, document_title, front_fields, ou
 from crosscheck.dossier.section_chapters import section_chapters
 from crosscheck.dossier.shared_chapters import shared_chapters
 from crosscheck.dossier.suite import SuiteEvidence
+from crosscheck.faults import one_line
+from crosscheck.pictures.holding import Curve
 from crosscheck.pictures.intervals import Line
 from crosscheck.pictures.plates import Extras, Plate
 from crosscheck.pictures.shares import Share
+from crosscheck.reports.wording import name_of, one_row_a_family, worst_first
 
 NOTICE = (
     "Verification and model comparison: neither test evidence nor an approval. The applicable code and a "
@@ -55,8 +58,44 @@ def plate_extras(evidence: SectionEvidence, suite: SuiteEvidence | None) -> Extr
         if suite is None
         else [Share(c.name, c.share, c.passed) for c in suite.checks if c.share is not None],
         suite_words=NOT_ATTACHED if suite is None else suite.words,
-        holding=None,
-        holding_words="No threshold or sweep of this section was made.",
+        factors=() if evidence.holding is None else evidence.holding.factors,
+        curves=holding_curves(evidence),
+        holding_words=holding_words(evidence),
+    )
+
+
+def holding_words(evidence: SectionEvidence) -> str:
+    """How far the hand method reaches around this section, in a sentence."""
+    found = evidence.holding
+    if found is None:
+        return "The solid is given by its outline, so its thicknesses were not varied."
+    used = [[track.used[i] for track in found.tracks] for i in range(len(found.factors))]
+    held = [
+        factor
+        for factor, values in zip(found.factors, used, strict=True)
+        if any(v is not None for v in values) and all(v is None or v <= 1.0 for v in values)
+    ]
+    if not held:
+        return "At no thickness solved do the hand methods hold for every quantity."
+    if len(held) == len(found.factors):
+        return f"Hand methods hold for every quantity at {held[0]:.3g} to {held[-1]:.3g} times the thickness."
+    told = ", ".join(f"{factor:.3g}" for factor in held)
+    return (
+        f"Of the thicknesses solved, hand methods hold for every quantity at {told} times that of the file."
+    )
+
+
+def holding_curves(evidence: SectionEvidence) -> list[Curve]:
+    """One row of each family over the factors of thickness, those that use most of their criterion first."""
+    found = evidence.holding
+    if found is None:
+        return []
+    told = one_row_a_family(worst_first(evidence.result.quantities))
+    tracks = {(track.quantity, track.load): track.used for track in found.tracks}
+    rows = [row for row in told if row.verdict is not None]
+    curves = [Curve(one_line(name_of(row), 34), tracks[row.name, row.load]) for row in rows]
+    return sorted(
+        curves, key=lambda curve: -max((used for used in curve.used if used is not None), default=0.0)
     )
 
 

@@ -10,6 +10,7 @@ from typing import Any
 from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.result import Result
 from crosscheck.dossier.convergence import Convergence, converge
+from crosscheck.dossier.holding import Holding, holding
 from crosscheck.dossier.uncertainty import Uncertainty, uncertainty
 from crosscheck.section_file.model import SectionFile
 
@@ -18,7 +19,7 @@ SCHEMA = "crosscheck.dossier/1"
 
 @dataclass(frozen=True)
 class SectionEvidence:
-    """One section: its files as they are, both sides compared, solution verification and budget.
+    """One section: its files as they are, both sides compared, solution verification, budget, reach.
 
     ``files``: bytes of the section file and of every table beside it, by name, the section file first.
     """
@@ -28,6 +29,7 @@ class SectionEvidence:
     result: Result
     convergence: Convergence
     uncertainty: Uncertainty
+    holding: Holding | None
 
 
 def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -> SectionEvidence:
@@ -55,7 +57,7 @@ def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -
     result = compare(section, accuracy, tell, pictures=True, working=True)
     convergence = converge(section, result, tell)
     budget = uncertainty(section, result, tell)
-    return SectionEvidence(section, files, result, convergence, budget)
+    return SectionEvidence(section, files, result, convergence, budget, holding(section, result, tell))
 
 
 def evidence_record(evidence: SectionEvidence) -> dict[str, Any]:
@@ -64,4 +66,5 @@ def evidence_record(evidence: SectionEvidence) -> dict[str, Any]:
         "schema": SCHEMA,
         "solution_verification": asdict(evidence.convergence),
         "uncertainty": asdict(evidence.uncertainty),
+        "holding": None if evidence.holding is None else asdict(evidence.holding),
     }

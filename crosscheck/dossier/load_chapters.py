@@ -3,16 +3,20 @@
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 
+from crosscheck.comparison.load_results import Margin
 from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import ProbeResult, Result, WallFlow
 from crosscheck.dossier.content import Block, Chapter, Column, Figure, Paragraph, Table, Tone
 from crosscheck.dossier.texts import plain_unit, share_text
-from crosscheck.reports.load_tables import margins_table
-from crosscheck.reports.result_table import table_text
+from crosscheck.reports.load_tables import margins_table, places_table, walls_table
+from crosscheck.reports.result_table import ResultTable, table_text
 from crosscheck.reports.screen_blocks import KIND_WORDS
 from crosscheck.reports.wording import number_text
 
+# Rows of the walls by loads that paper has; all are in the result.
+MOST_ROWS = 30
 Figures = Callable[[str], Figure]
 
 
@@ -39,6 +43,8 @@ def walls_by_loads_chapter(result: Result, figure: Figures) -> Chapter:
             )
         )
         tones.append("plain" if same else "doubt")
+    if result.walls_by_loads:
+        blocks.append(block_of(walls_table(result), MOST_ROWS))
     if not rows:
         blocks.append(Paragraph("The file has no loads, so no load governs a wall."))
         return Chapter("walls", title, tuple(blocks))
@@ -68,16 +74,18 @@ def flows_chapter(result: Result, figure: Figures) -> Chapter:
         Column("FE error", "number"),
         Column("unit"),
     )
-    named, worst = [], []
+    unit, worst = [], []
     for flow in result.flows:
         for probe in flow.probes:
-            if probe.label is not None:
-                named.append(_row(flow, probe, f"{probe.label} ({flow.wall})"))
+            if probe.label is not None and flow.load in UNIT_LOADS:
+                unit.append(_row(flow, probe, f"{probe.label} ({flow.wall})"))
         if flow.load not in UNIT_LOADS and (most := _largest(flow)) is not None:
             worst.append(_row(flow, most, flow.wall))
     blocks: list[Block] = [figure("unit_flows")]
-    if named:
-        blocks.append(Table("Shear flow at the named places", columns, tuple(named)))
+    if result.named_probes:
+        blocks.append(block_of(places_table(result)))
+    if unit:
+        blocks.append(Table("Shear flow of the unit loads at the named places", columns, tuple(unit)))
     else:
         blocks.append(Paragraph("The file names no places on walls ([[probes]])."))
     if worst:
@@ -113,9 +121,25 @@ def margins_chapter(result: Result) -> Chapter:
     if not result.margins:
         words = "The section file gives no allowables, so no margins are formed."
         return Chapter("margins", "Margins", (Paragraph(words),))
-    text = table_text(margins_table(result))
+    tones: tuple[Tone, ...] = tuple(
+        "bad" if _negative(row) else "doubt" if row.changes_sign else "plain" for row in result.margins
+    )
+    table = replace(block_of(margins_table(result)), tones=tones)
+    words = "A negative margin is marked; so is one whose sign depends on the side."
+    return Chapter("margins", "Margins", (Paragraph(words), table))
+
+
+def _negative(row: Margin) -> bool:
+    """Whether both sides find the wall too weak."""
+    return row.theory is not None and row.fe is not None and row.theory < 0.0 and row.fe < 0.0
+
+
+def block_of(table: ResultTable, most: int | None = None) -> Table:
+    """A table of the result as a block: the columns that a page has room for, the first rows of many."""
+    text = table_text(table)
     kinds = zip(text.columns, text.numeric, strict=True)
     columns = tuple(Column(name, "number" if numeric else "text") for name, numeric in kinds)
-    tones: tuple[Tone, ...] = tuple("doubt" if row.changes_sign else "plain" for row in result.margins)
-    caption = f"{text.title}; marked where it changes its sign"
-    return Chapter("margins", "Margins", (Table(caption, columns, text.rows, tones),))
+    count = len(text.rows)
+    rows = tuple(tuple(plain_unit(cell) for cell in row) for row in text.rows[:most])
+    told = f"; the first {most} of {count}, all in result.json" if most is not None and count > most else ""
+    return Table(f"{text.title}{told}", columns, rows)

@@ -8,6 +8,7 @@ from crosscheck.comparison.result import Result
 from crosscheck.dossier.content import Block, Column, Paragraph, Table
 from crosscheck.dossier.evidence import SectionEvidence
 from crosscheck.dossier.texts import TONES, bare_value, fe_error, share_text, unit_of
+from crosscheck.reports.stated import stated_heading, stated_lines
 from crosscheck.reports.wording import (
     difference_text,
     effect_text,
@@ -97,6 +98,13 @@ def _of_one(evidence: SectionEvidence) -> tuple[Block, ...]:
             f"{len(result.checks)} passed. {_total_words(changed)}"
         ),
     ]
+    blocks += [
+        Paragraph(f"Stated: {line}", "bad" if verdict == "outside" else "doubt")
+        for line, verdict in stated_lines(result)
+        if verdict != "within"
+    ]
+    if result.stated and all(stated.verdict == "within" for stated in result.stated):
+        blocks.append(Paragraph((stated_heading(result) or "").rstrip(":") + ".", "good"))
     blocks.append(nearest_table(result))
     blocks += [
         Paragraph(

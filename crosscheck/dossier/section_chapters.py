@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Iterator, Mapping, Sequence
 
 from crosscheck.comparison.result import Result
@@ -282,7 +283,46 @@ def _stated(result: Result) -> Chapter:
 
 
 def _holding(evidence: SectionEvidence, figure: Figures) -> Chapter:
-    return Chapter("holding", "Where the hand method stops holding", (figure("holding"),))
+    """The reach of the hand method around this section, and where each quantity crosses its criterion."""
+    title = "Where the hand method stops holding"
+    found = evidence.holding
+    if found is None:
+        words = "The solid is given by its outline, so its thicknesses were not varied."
+        return Chapter("holding", title, (Paragraph(words), figure("holding")))
+    names = {(row.name, row.load): name_of(row) for row in evidence.result.quantities}
+    blocks: list[Block] = [
+        Paragraph(
+            "All thicknesses of the section were multiplied by one factor, and the section solved "
+            "again on both sides. Between two factors the place of a crossing is interpolated, an estimate."
+        ),
+        figure("holding"),
+    ]
+    if found.crossings:
+        columns = (
+            Column("quantity", "text", 1.6),
+            Column("crosses between", "word"),
+            Column("about", "number"),
+            Column("holds", "word"),
+        )
+        rows = tuple(
+            (
+                names[c.quantity, c.load],
+                f"{c.low:.3g} and {c.high:.3g}",
+                f"{c.about:.2g}",
+                "below" if c.within_below else "above",
+            )
+            for c in sorted(found.crossings, key=lambda c: abs(math.log(c.about)))
+        )
+        caption = "Factors on all thicknesses at which a quantity crosses its criterion, nearest first"
+        blocks.append(Table(caption, columns, rows))
+    else:
+        blocks.append(Paragraph("No quantity crosses its criterion within the factors solved."))
+    blocks += [
+        Paragraph(f"At {factor:.3g} times the thickness there is no comparison: {reason}", "doubt")
+        for factor, reason in zip(found.factors, found.reasons, strict=True)
+        if reason
+    ]
+    return Chapter("holding", title, tuple(blocks))
 
 
 def _warnings(evidence: SectionEvidence, figure: Figures) -> Chapter:

@@ -10,6 +10,7 @@ from pathlib import Path
 from typing import Any
 
 from crosscheck.faults import Fault, SectionFaults
+from crosscheck.reports.wording import percent_text
 
 LIMIT = 50_000_000
 
@@ -56,7 +57,7 @@ class SuiteEvidence:
         part = "" if self.whole and not self.quick else " of a part of the suite"
         text = f"Verification suite: {self.passed} of {len(self.checks)} checks{part} passed"
         return (
-            f"{text}; the tightest uses {100 * (worst.share or 0.0):.2g} % of what it allows."
+            f"{text}; the tightest uses {percent_text(worst.share or 0.0)} of what it allows."
             if worst
             else f"{text}."
         )

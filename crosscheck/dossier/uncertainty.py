@@ -10,10 +10,11 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 
+import beam_theory
+import fe_models
 from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.result import QuantityResult, Result, Verdict
 from crosscheck.comparison.verdicts import verdict
-from crosscheck.faults import CrosscheckError
 from crosscheck.section_file.model import SectionFile
 
 CURVES = "bound on the interpolated outline"
@@ -62,16 +63,16 @@ def uncertainty(section: SectionFile, nominal: Result, tell: Callable[[str], Non
     tell : callable
         Told in words what is being done.
     """
-    tolerances = dict(getattr(section, "tolerances", {}))
+    tolerances = dict(section.tolerances)
     varied: dict[str, list[list[Result]]] = {}
     notes: list[str] = []
     for source, ways in variations(section, tolerances).items():
         tell(f"uncertainty, {source}")
         try:
             varied[source] = [[compare(each, nominal.accuracy) for each in way] for way in ways]
-        except (CrosscheckError, ValueError, ArithmeticError, RuntimeError) as fault:
+        except (fe_models.FeError, beam_theory.TheoryError) as fault:
             notes.append(f"{source} was not re-solved: {fault}")
-    if getattr(section, "outline", None) is not None:
+    if section.outline is not None:
         notes.append("the solid is given by its outline, which tolerances of the walls do not move")
     budgets = tuple(
         _budget(row, nominal, varied, tolerances) for row in nominal.quantities if row.verdict is not None
@@ -90,7 +91,7 @@ def variations(
     """
     found: dict[str, tuple[tuple[SectionFile, SectionFile], ...]] = {}
     if thickness := tolerances.get("thickness"):
-        found["thickness"] = ((_thicker(section, 1.0 - thickness), _thicker(section, 1.0 + thickness)),)
+        found["thickness"] = ((thickened(section, 1.0 - thickness), thickened(section, 1.0 + thickness)),)
     if dimension := tolerances.get("dimension"):
         xs, ys = zip(*section.points.values(), strict=True)
         pairs = []
@@ -108,8 +109,8 @@ def variations(
     return found
 
 
-def _thicker(section: SectionFile, factor: float) -> SectionFile:
-    """All walls of a section with their thickness multiplied."""
+def thickened(section: SectionFile, factor: float) -> SectionFile:
+    """A section with the thickness of all its walls multiplied."""
     walls = (
         replace(wall, thickness=(wall.thickness[0] * factor, wall.thickness[1] * factor))
         for wall in section.walls

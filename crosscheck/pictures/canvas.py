@@ -263,12 +263,14 @@ def size_text(value: float) -> str:
 class Lettering:
     """Places labels beside what they name, clear of each other and of what is drawn.
 
-    Obstacles are points of the drawing and boxes of labels already placed, both in pixels.
+    Obstacles are points of the drawing and boxes of labels already placed, both in pixels. ``inside``: labels
+    stay between the left and the right end of the axes, which have neighbours.
     """
 
     axes: Axes
     points: list[Array] = field(default_factory=list)
     boxes: list[tuple[float, float, float, float]] = field(default_factory=list)
+    inside: bool = False
 
     def keep_clear(self, places: Array) -> None:
         """Add places (n, 2) [L] that labels should not cover."""
@@ -377,7 +379,7 @@ class Lettering:
             cost += 3000.0 * hit.all(axis=2).sum(axis=1)
         frame = self.axes.get_window_extent()
         # On the right the paper's edge counts, not that of the axes: there is nothing beside them.
-        edge = self.axes.figure.bbox.x1 - 4.0
+        edge = float(frame.x1) if self.inside else self.axes.figure.bbox.x1 - 4.0
         over = np.maximum(np.array((frame.x0, frame.y0)) - low, 0).sum(axis=1)
         over += np.maximum(high - np.array((edge, frame.y1)), 0).sum(axis=1)
         cost += 8.0 * over + 4000.0 * (over > 0)

@@ -134,10 +134,15 @@ def diagram(
     return Diagram(drawing, curves, marks, arrows, turned, scale, peak, frame)
 
 
-def draw_diagram(axes: Axes, drawn: Diagram, letter: Callable[[float], str], *, small: bool) -> Lettering:
-    """Draw a diagram on axes of equal scale; the lettering can place more labels."""
+def draw_diagram(
+    axes: Axes, drawn: Diagram, letter: Callable[[float], str], *, small: bool, inside: bool = False
+) -> Lettering:
+    """Draw a diagram on axes of equal scale; the lettering can place more labels.
+
+    ``small``: little room, so fewer labels; ``inside``: the axes have neighbours on the right.
+    """
     drawing, scale, turned = drawn.drawing, drawn.scale, drawn.turned
-    lettering = Lettering(axes)
+    lettering = Lettering(axes, inside=inside)
     for arrow in drawn.arrows:
         draw_arrow(axes, arrow[0], arrow[1], INK)
         lettering.keep_clear(np.linspace(arrow[0], arrow[1], 20))

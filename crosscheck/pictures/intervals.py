@@ -87,16 +87,7 @@ def intervals_picture(
             )  # fmt: skip
             ends.append((math.log10(halves[-1]), line.words, SHADES[i % 6]))
         _slope(axes, shown, corner_order)
-        low, high = (math.log10(value) for value in axes.get_ylim())
-        # Words stand beside the ends of their lines, as far apart as letters need.
-        step = (high - low) * 3.4 / TALL
-        place = -math.inf
-        for end, words, colour in sorted(ends):
-            place = max(end, place + step)
-            axes.text(
-                1.02, (place - low) / (high - low), words, color=colour, fontsize=FONT - 0.5, va="center",
-                transform=axes.transAxes,
-            )  # fmt: skip
+        words_beside(axes, ends, TALL)
         axes.set_xlabel("unknowns [-]", labelpad=1)
         axes.set_ylabel("half interval over normaliser [-]", labelpad=1)
         axes.xaxis.set_major_locator(LogLocator(subs=(1.0, 2.0, 5.0)))
@@ -111,6 +102,22 @@ def intervals_picture(
         write_title(figure, title)
         write_caption(figure, captions)
     return figure
+
+
+def words_beside(axes: mpl.axes.Axes, ends: Sequence[tuple[float, str, str]], tall_mm: float) -> None:
+    """Words beside the ends of lines, as far apart as letters need; ends as (log of y, words, colour)."""
+    low, high = (math.log10(value) for value in axes.get_ylim())
+    step = (high - low) * 3.4 / tall_mm
+    places: list[float] = []
+    for end, _, _ in sorted(ends):
+        places.append(max(end, places[-1] + step) if places else end)
+    # What does not fit under the top moves down together.
+    shift = max(0.0, places[-1] - high) if places else 0.0
+    for place, (_, words, colour) in zip(places, sorted(ends), strict=True):
+        axes.text(
+            1.02, (place - shift - low) / (high - low), words, color=colour, fontsize=FONT - 0.5, va="center",
+            transform=axes.transAxes,
+        )  # fmt: skip
 
 
 def _slope(axes: mpl.axes.Axes, lines: Sequence[Line], order: float | None) -> None:

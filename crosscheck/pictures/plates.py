@@ -17,6 +17,7 @@ from crosscheck.pictures.canvas import FONT, MM, SOFT, STYLE, picture_bytes
 from crosscheck.pictures.causes import causes_picture
 from crosscheck.pictures.criteria import criteria_picture
 from crosscheck.pictures.flow import flow_picture
+from crosscheck.pictures.holding import Curve, holding_picture
 from crosscheck.pictures.intervals import Line, intervals_picture
 from crosscheck.pictures.section import section_picture
 from crosscheck.pictures.shares import Share, shares_picture
@@ -42,13 +43,14 @@ class Plate:
 
 @dataclass(frozen=True)
 class Extras:
-    """What plates show beside the result: intervals against unknowns, the suite's checks, and why not."""
+    """What plates show beside the result: intervals, reach over thickness, the suite's checks."""
 
     intervals: Sequence[Line]
     corner_order: float | None
     suite: Sequence[Share]
     suite_words: str
-    holding: Figure | None
+    factors: Sequence[float]
+    curves: Sequence[Curve]
     holding_words: str
 
 
@@ -75,6 +77,7 @@ def _drawn(result: Result, extras: Extras) -> list[tuple[str, str, Figure | None
     unit_flows = unit_flows_picture(result, WIDTH)
     criteria = criteria_picture(result, WIDTH)
     intervals = intervals_picture(extras.intervals, extras.corner_order, WIDTH)
+    reach = holding_picture(extras.factors, extras.curves, extras.holding_words, WIDTH)
     suite = shares_picture(extras.suite, extras.suite_words, WIDTH) if extras.suite else None
     return [
         (
@@ -111,7 +114,7 @@ def _drawn(result: Result, extras: Extras) -> list[tuple[str, str, Figure | None
             else "Every FE value is exact or has one mesh only, so there is no error to follow.",
             intervals,
         ),
-        ("holding", extras.holding_words, extras.holding),
+        ("holding", extras.holding_words, reach),
         ("suite", extras.suite_words, suite),
     ]
 

@@ -89,7 +89,7 @@ def unit_flows_picture(result: Result, width_mm: int = 160) -> Figure | None:
                 axes.spines[side].set_visible(False)
             axes.tick_params(length=2, pad=1.5, color=SOFT, labelcolor=SOFT)
             axes.locator_params(nbins=5)
-            draw_diagram(axes, panel, lambda q: number_text(q, 4), small=columns > 1)
+            draw_diagram(axes, panel, lambda q: number_text(q, 4), small=columns > 1, inside=columns > 1)
             draw_flow_directions(axes, drawing, drawing.flows.get(load, {}))
         write_title(figure, titles)
         write_caption(figure, captions)

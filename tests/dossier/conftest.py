@@ -14,67 +14,10 @@ from crosscheck.section_file.reader import read_section
 from crosscheck.verification.check import CheckOutcome
 from crosscheck.verification.evidence_files import outcome_keys
 
+from .sections import RAIL, hostile_file
+
 # One day, in seconds since 1970, as reproducible builds name it.
 DAY = 1_767_225_600
-
-RAIL = """\
-schema = 1
-title = "Winch rail, plain channel"
-units = "mm N"
-[parameters]
-t = 4
-[materials.sheet]
-E = 72000
-nu = 0.33
-[points]
-a = [35, 0]
-b = [0, 0]
-c = [0, 80]
-d = [35, 80]
-[[walls]]
-name = "lower flange"
-path = ["a", "b"]
-thickness = "t"
-[[walls]]
-name = "web"
-path = ["b", "c"]
-thickness = "t"
-[[walls]]
-name = "upper flange"
-path = ["c", "d"]
-thickness = "t"
-[[loads]]
-name = "pull"
-shear = [0, -1200]
-through = "b"
-[[loads]]
-name = "jerk"
-shear = [300, -2100]
-through = "c"
-torque = 9000
-[[probes]]
-label = "rivets"
-wall = "web"
-at = 0.3
-[[stated]]
-quantity = "torsion_constant"
-value = 3200
-source = "data sheet"
-[tolerances]
-thickness = 0.04
-dimension = 0.5
-[document]
-number = "WR-17"
-issue = "B"
-date = "2 March"
-part = "winch rail"
-prepared = "A. Nother"
-intended_use = "Sizing of the winch rail of the cargo glider."
-changes = [
-  { issue = "A", date = "1 March", text = "first issue" },
-  { issue = "B", date = "2 March", text = "jerk" },
-]
-"""
 
 
 @dataclass(frozen=True)
@@ -133,3 +76,11 @@ def package(tmp_path_factory) -> Made:
 def rail(package) -> SectionEvidence:
     """Evidence of the winch rail."""
     return gather(read_section(str(package.section)), 1e-5, lambda _: None)
+
+
+@pytest.fixture(scope="session")
+def hostile_evidence(tmp_path_factory) -> SectionEvidence:
+    """Evidence of a section whose words a careless writer would run."""
+    path = tmp_path_factory.mktemp("hostile") / "rail.toml"
+    path.write_text(hostile_file(), encoding="utf-8")
+    return gather(read_section(str(path)), 1e-5, lambda _: None)

@@ -11,6 +11,7 @@ from numpy.testing import assert_allclose
 from crosscheck.comparison.result import FeValue
 from crosscheck.dossier.assumptions import register
 from crosscheck.dossier.convergence import Run, convergence_index, observed_order, sharpest_corner
+from crosscheck.dossier.holding import Track, crossings_of
 from crosscheck.dossier.suite import read_suite
 from crosscheck.faults import SectionFaults
 
@@ -96,6 +97,27 @@ def test_shares_add_up_to_the_total(rail):
         parts += [share or 0.0 for share in budget.shares.values()]
         assert_allclose(budget.total, sum(parts), rtol=1e-12)
         assert budget.shares["material"] is None
+
+
+def test_a_crossing_is_placed_between_logarithms():
+    # A share of 8 f^3 crosses one at f = 1/2, wherever the factors beside it lie.
+    factors = (0.25, 0.4, 0.7, 1.0)
+    track = Track("area", None, tuple(8.0 * f**3 for f in factors))
+    (crossing,) = crossings_of(track, factors)
+    assert (crossing.low, crossing.high, crossing.within_below) == (0.4, 0.7, True)
+    assert_allclose(crossing.about, 0.5, rtol=1e-9)
+    assert crossings_of(Track("area", None, (2.0, None, 0.5, 0.2)), factors) == []
+
+
+def test_thicker_walls_leave_theory_behind(rail):
+    assert rail.holding is not None
+    used = {(track.quantity, track.load): track.used for track in rail.holding.tracks}
+    today = rail.holding.factors.index(1.0)
+    for row in rail.result.quantities:
+        if row.verdict is not None:
+            assert used[row.name, row.load][today] == row.criterion_used
+    torsion = [share for share in used["torsion_constant", None] if share is not None]
+    assert torsion == sorted(torsion)
 
 
 def test_the_register_says_what_this_section_shows(rail):
