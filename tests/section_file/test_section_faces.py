@@ -11,6 +11,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from crosscheck.comparison.comparing import compare
 from crosscheck.section_file.model import Place, SectionFile, WallSpec, arc_angle
 from crosscheck.section_file.reader import SectionSource, section_from
 
@@ -192,6 +193,24 @@ def test_same_as_by_midlines(case: str) -> None:
     section = read(faces)
     assert_same(section, read(midlines))
     assert section.notes == ()
+
+
+@pytest.mark.parametrize(
+    "case", ["box, outer faces", "angle, heel", "zed", "tee: three walls, faces of two paths"]
+)
+def test_both_sides_give_the_same_numbers(case: str) -> None:
+    faces, midlines = (compare(read(drawn)) for drawn in SAME[case])
+    compared = 0
+    for own, other in zip(faces.quantities, midlines.quantities, strict=True):
+        for value, expected in (
+            (own.theory["midline"], other.theory["midline"]),
+            (own.fe.value, other.fe.value),
+        ):
+            assert (value is None) == (expected is None)
+            if value is not None:
+                compared += 1
+                assert value == pytest.approx(expected, rel=1e-12, abs=0.0)
+    assert compared > 40
 
 
 def test_three_walls_at_any_angles() -> None:

@@ -279,6 +279,18 @@ def test_one_fault(fault_lines: Lines, text: str, start: str) -> None:
     assert line.startswith(start)
 
 
+def test_a_path_is_told_by_its_walls(fault_lines: Lines) -> None:
+    text = SKIN.replace('path = ["a", "b"]', 'path = ["a", "b", "c"]').replace(
+        'name = "web"\npath', "path", 1
+    )
+    (line,) = fault_lines(
+        HEAD
+        + text.replace('path = ["b", "c"]', 'path = ["c", "a"]')
+        + '[[placed]]\nprofile = "zed"\nwall = "skin"\nat = 0.5\n'
+    )
+    assert line.endswith('the walls of that path are "skin 1", "skin 2": name one or a list')
+
+
 def test_faces_within_a_profile(read: Read) -> None:
     text = SKIN.replace("thickness = 1.5", 'thickness = 2, line = "left face"')
     section = read(HEAD + text + '[[placed]]\nprofile = "zed"\nwall = "skin"\nat = 0.5\n')
