@@ -193,7 +193,7 @@ class AttachmentReader:
     def stated(self) -> tuple[StatedSpec, ...]:
         """Stated values in file order."""
         stated = []
-        loads = [table.get("name") for table in self.document.get("loads", [])]
+        loads = [table["name"] for table in self.document.get("loads", []) if "name" in table]
         for index, table in enumerate(self.document.get("stated", [])):
             path: KeyPath = ("stated", index)
             quantity = table.get("quantity", "")

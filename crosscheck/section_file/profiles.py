@@ -157,9 +157,9 @@ class ProfilePlacer:
                 if walls:
                     of_path = ", ".join(map(quoted, self.graph.paths.get(wall_name, ())[:4]))
                     remedy = f"the walls of that path are {of_path}: name one or a list" if of_path else ""
-                    near = None if of_path else (wall_name, walls)
+                    like = None if of_path else (wall_name, walls)
                     found, words = quoted(wall_name), "the name of a wall"
-                    self.faults.add((*path, "wall"), found, words, remedy, near=near)
+                    self.faults.add((*path, "wall"), found, words, remedy, near=like)
                 continue
             if len(walls[wall_name]) > 1:
                 found = f"{quoted(wall_name)}, a wall of theory and one of FE"
