@@ -1,9 +1,10 @@
 """Prints which checks each deliberate fault turns red.
 
-    python tests/verification/faults/matrix.py [PART OF A FAULT'S NAME] [--covering]
+    python tests/verification/faults/matrix.py [PART OF A FAULT'S NAME] [--covering] [--quick]
 
 With --covering each fault runs only the checks that no fault before it has turned red, and others only until
-one fails: enough to see that every fault and every check is accounted for, in a few minutes.
+one fails: enough to see that every fault and every check is accounted for, in a few minutes. With --quick
+the checks are those of the quick run and theory's rows.
 """
 
 from __future__ import annotations
@@ -20,15 +21,15 @@ from checks import suite_checks
 
 
 def main(arguments: Sequence[str]) -> int:
-    covering = "--covering" in arguments
+    covering, quick = "--covering" in arguments, "--quick" in arguments
     wanted = [a for a in arguments if not a.startswith("--")]
-    unseen = {name for name, _ in suite_checks()}
+    unseen = {name for name, _ in suite_checks(quick=quick)}
     silent = []
     for fault in injection.CATALOGUE:
         if wanted and not any(w in fault.name for w in wanted):
             continue
         start = time.time()
-        checks = suite_checks(injection.side(fault))
+        checks = suite_checks(injection.side(fault), quick=quick)
         first = [c for c in checks if c[0] in unseen] if covering else checks
         red = injection.turned_red(fault, first, [c for c in checks if c not in first])
         unseen -= set(red)
