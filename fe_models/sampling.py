@@ -56,7 +56,7 @@ def stresses(fields: Fields, at: Samples, poisson: PoissonFlexure | None = None)
     space, e = fields.space, at.elements
     c, q, _ = at.reference.shape
     slopes = gradients(space.element.order, at.reference.reshape(-1, 2)).reshape(c, q, -1, 2)
-    inverse = np.linalg.inv(np.einsum("cka,cqkb->cqab", space.places[e], slopes))
+    inverse = np.linalg.inv(np.einsum("cka,cqkb->cqab", space.offsets[e], slopes))
     points = places(fields, at)
     arm = np.stack([-points[..., 1], points[..., 0]], axis=-1)
     g = fields.moduli.g[e][:, None, None]

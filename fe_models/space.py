@@ -32,6 +32,8 @@ class Space:
         Number of nodes N.
     places : (e, k, 2) array
         Node positions [L].
+    offsets : (e, k, 2) array
+        The same from each element's first corner: positions would lose the digits of tiny elements [L].
     """
 
     mesh: Mesh
@@ -39,11 +41,12 @@ class Space:
     nodes: Index
     count: int
     places: Array
+    offsets: Array
 
     @cached_property
     def jacobian(self) -> Array:
         """d(x, y)/d(reference) at the quadrature points, (e, q, 2, 2)."""
-        return np.einsum("eka,qkb->eqab", self.places, self.element.gradients)
+        return np.einsum("eka,qkb->eqab", self.offsets, self.element.gradients)
 
     @cached_property
     def inverse(self) -> Array:
@@ -163,9 +166,13 @@ def space(mesh: Mesh, order: int, centre: Array) -> Space:
     columns.append(base + np.arange(len(t))[:, None] * inside + np.arange(inside))
     nodes = np.concatenate(columns, axis=1)
     corners = (mesh.vertices - centre)[t]
-    places = np.einsum("kc,eca->eka", _linear(el), corners)
+    offsets = np.einsum("kc,eca->eka", _linear(el), corners - corners[:, :1])
+    straight = corners[:, :1] + offsets
+    places = straight.copy()
     _bend(places, mesh, el, centre)
-    return Space(mesh, el, nodes, int(base + len(t) * inside), places)
+    bent = (places != straight).any(axis=(1, 2))
+    offsets[bent] = places[bent] - places[bent, :1]
+    return Space(mesh, el, nodes, int(base + len(t) * inside), places, offsets)
 
 
 def _bend(places: Array, mesh: Mesh, el: Element, centre: Array) -> None:

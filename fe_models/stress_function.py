@@ -87,6 +87,7 @@ def _rises(on: Contours, elements: Index, sides: Index, slopes: Array) -> Array:
     """Integral of (2) with e = 1 from the start of element edges to each of their nodes, (m, p + 1)."""
     order = on.space.element.order
     places = on.space.places[elements[:, None], on.edge_nodes[sides]]
+    offsets = on.space.offsets[elements[:, None], on.edge_nodes[sides]]
     u = np.arange(order + 1) / order
     lagrange = np.linalg.inv(np.vander(u, increasing=True))
     powers = np.arange(order + 1)
@@ -97,7 +98,7 @@ def _rises(on: Contours, elements: Index, sides: Index, slopes: Array) -> Array:
         t = 0.5 * u[n] * (g + 1.0)
         at = np.einsum("gk,mkc->mgc", t[:, None] ** powers @ lagrange, places)
         slope = powers * t[:, None] ** np.maximum(powers - 1, 0) @ lagrange
-        d = np.einsum("gk,mkc->mgc", slope, places)
+        d = np.einsum("gk,mkc->mgc", slope, offsets)
         rate = 0.5 * (slopes[0] * at[..., 0] ** 2 * d[..., 1] - slopes[1] * at[..., 1] ** 2 * d[..., 0])
         out[:, n] = rate @ (0.5 * u[n] * w)
     return out

@@ -41,7 +41,11 @@ SECTIONS = {
 }
 # Order 3 on all, order 4 with tiny elements at corners on some.
 CASES = [(name, 1e-4) for name in SECTIONS]
+CASES += [(n, 1e-5) for n in ("zed", "mixed moduli", "six cells, two materials, booms")]
 CASES += [(n, 1e-6) for n in ("channel", "triangular cell", "bow tie", "slender three cells", "mixed moduli")]
+# Largest imbalance anywhere over the mean stress: the finer the elements at corners, the more digits their
+# stress functions lose.
+ANYWHERE = {1e-4: 1e-9, 1e-5: 1e-8, 1e-6: 1e-7}
 
 
 @cache
@@ -125,12 +129,14 @@ def out_of_balance(on: Fields, values: np.ndarray, slopes: np.ndarray) -> dict[s
     }
 
 
-def assert_balanced(name: str, on: Fields, found: dict[str, np.ndarray], mean: float, unit: float) -> None:
+def assert_balanced(
+    name: str, on: Fields, found: dict[str, np.ndarray], mean: float, unit: float, anywhere: float
+) -> None:
     """Below 1e-9 of the mean stress wherever elements are not tiny; tiny ones leak next to nothing.
 
-    Elements at singular corners are 1e-5 t small: coordinates known to 1e-16 of the depth make their stress
-    uncertain by 1e-16 D / h, far more than 1e-9; what leaks through their edges stays below 1e-11 of the
-    load (1e-9 of the largest stress function in torsion).
+    Elements at singular corners are down to 1e-5 t small: a stress function known to 1e-16 of its largest
+    value makes their stress uncertain by 1e-16 D / h, up to some 1e-9 at the default accuracy; what leaks
+    through their edges stays below 1e-11 of the load (1e-9 of the largest stress function in torsion).
     """
     p = on.space.places[:, :3]
     length = np.hypot(*np.moveaxis(np.roll(p, -1, axis=1) - p, -1, 0))
@@ -139,11 +145,12 @@ def assert_balanced(name: str, on: Fields, found: dict[str, np.ndarray], mean: f
     assert coarse.sum() > 10
     slender = 10.0 if name.startswith("slender") else 1.0
     for what, value in found.items():
-        assert value[coarse].max() <= slender * 1e-9 * mean, what
+        assert value.max() <= slender * anywhere * mean, what
+        assert value[coarse].max() <= 1e-9 * mean, what
         per_edge = value if value.ndim == 2 else value[:, None]
         assert (per_edge * length).max() <= 10.0 * slender * unit, what
         rms = np.sqrt(float(np.sum(per_edge**2 * length)) / float(length.sum()))
-        assert rms <= 1e-7 * mean, what
+        assert rms <= 1e-9 * mean, what
 
 
 @pytest.mark.parametrize(("name", "accuracy"), CASES)
@@ -155,7 +162,7 @@ def test_flexure_is_in_equilibrium(name: str, accuracy: float) -> None:
     on = fields(name, accuracy)
     for axis, pair in enumerate(on.flexure):
         found = out_of_balance(on, pair.static, on.inertia.slopes(1.0 - axis, float(axis)))
-        assert_balanced(name, on, found, 1.0 / on.inertia.area, 1e-12)
+        assert_balanced(name, on, found, 1.0 / on.inertia.area, 1e-12, ANYWHERE[accuracy])
 
 
 @pytest.mark.parametrize(("name", "accuracy"), CASES)
@@ -164,7 +171,7 @@ def test_torsion_is_in_equilibrium(name: str, accuracy: float) -> None:
     on = fields(name, accuracy)
     mean = float(np.sqrt(on.space.integral((on.torsion.static**2).sum(-1)) / on.inertia.area))
     unit = 1e-9 * float(np.abs(on.torsion.function).max())
-    assert_balanced(name, on, out_of_balance(on, on.torsion.static, np.zeros(2)), mean, unit)
+    assert_balanced(name, on, out_of_balance(on, on.torsion.static, np.zeros(2)), mean, unit, 1e-9)
 
 
 def test_the_evaluator_sees_what_is_out_of_balance() -> None:
@@ -178,7 +185,7 @@ def test_the_evaluator_sees_what_is_out_of_balance() -> None:
     assert out_of_balance(on, on.flexure[0].static, of_vy)["inside"].max() > 1e-2 * mean
     with pytest.raises(AssertionError):
         assert_balanced(
-            "lopsided cell", on, out_of_balance(on, on.flexure[0].static, 1.001 * of_vx), mean, 1e-12
+            "lopsided cell", on, out_of_balance(on, on.flexure[0].static, 1.001 * of_vx), mean, 1e-12, 1.0
         )
 
 
