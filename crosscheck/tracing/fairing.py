@@ -11,6 +11,7 @@ from dataclasses import dataclass
 from itertools import pairwise
 
 import numpy as np
+import shapely
 from shapely.geometry import Polygon
 
 import fe_models
@@ -24,6 +25,10 @@ LEAST_EDGES = 6
 # mean thickness.
 SOFT_TURN = np.radians(20.0)
 SOFT_LENGTH = 0.5
+# Places nearer to the evened boundary than this share of the mean thickness have not moved.
+SAME = 1e-5
+# Vertices of a run from which its unevenness is told.
+LEAST_UNEVEN = 60
 # Unevenness below this share of the mean thickness is none.
 EVEN = 2e-3
 # Vertices between which breaks are looked for.
@@ -68,7 +73,9 @@ def faired(solid: fe_models.Solid) -> Faired:
     runs = [_runs(ring, thickness) for ring in solid.rings]
     if not any(runs):
         return Faired(solid)
-    noise = _unevenness([_stretch(p, a, n) for p, found in zip(loops, runs, strict=True) for a, n in found])
+    noise = _unevenness(
+        [_stretch(p, a, n) for p, found in zip(loops, runs, strict=True) for a, n in found], thickness
+    )
     noise = noise if noise > EVEN * thickness else 0.0
     scale = max(noise, EVEN * thickness)
     rings = []
@@ -79,7 +86,11 @@ def faired(solid: fe_models.Solid) -> Faired:
         rings.append(made)
     if after == before:
         return Faired(solid)
-    remark = f"{before:,} edges taken as {after:,} lines and arcs"
+    made = shapely.union_all([shapely.LinearRing(_chorded(r)) for r in rings])
+    off = float(shapely.distance(shapely.points(np.concatenate(loops)), made).max())
+    remark = ""
+    if off > SAME * thickness:
+        remark = f"{before:,} edges taken as {after:,} lines and arcs within {off:.2g}"
     if noise > 0.0:
         remark += f"; the boundary is uneven, by {noise:.2g} (standard deviation)"
     return Faired(fe_models.Solid(tuple(rings), solid.e, solid.g, solid.nu), polygon, noise, remark)
@@ -126,11 +137,12 @@ def _stretch(places: Array, first: int, edges: int) -> Array:
     return places[(first + np.arange(edges + 1)) % len(places)]
 
 
-def _unevenness(runs: list[Array]) -> float:
+def _unevenness(runs: list[Array], thickness: float) -> float:
     """Standard deviation of vertices across their boundary, by fourth differences: curves have none."""
     found = []
     for p in runs:
-        if len(p) < 9:
+        edges = np.hypot(*np.diff(p, axis=0).T)
+        if len(p) < LEAST_UNEVEN or np.median(edges) > SOFT_LENGTH * thickness:
             continue
         fourth = p[:-4] - 4.0 * p[1:-3] + 6.0 * p[2:-2] - 4.0 * p[3:-1] + p[4:]
         chord = p[4:] - p[:-4]
