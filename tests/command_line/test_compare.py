@@ -336,3 +336,34 @@ def test_judged_level_decides_the_verdicts(run, tmp_path, level):
     )
     # The corrected level meets 0.4 %, the lumped one has the midline's constant and does not.
     assert row["verdict"] == {"corrected": "within", "lumped": "outside"}[level]
+
+
+def test_a_stated_value_that_does_not_stand_decides_the_status(run, tmp_path):
+    path = tmp_path / "stated.toml"
+    # Wide enough for the hand method itself, so that only the stated value decides.
+    held = CHANNEL + "[criteria]\nwarping_constant = 0.2\nshear_area_x = 0.2\n"
+    path.write_text(held)
+    assert run("compare", path).status == 0
+    for value, told, status in ((600, "stands", 0), (640, "does not stand", 1)):
+        stated = f"quantity = 'area'\nvalue = {value}\nsource = 'sheet 3'\ntolerance = 0.02\n"
+        path.write_text(f"{held}[[stated]]\n{stated}")
+        ran = run("compare", path)
+        assert f"(sheet 3) {told}: FE 600.00" in " ".join(ran.out.split())
+        assert ran.status == status
+
+
+def test_a_stated_quantity_of_a_load_names_its_load(run, tmp_path):
+    path = tmp_path / "stated.toml"
+    more = '[[loads]]\nname = "two"\ntorque = 3\n[[stated]]\nquantity = "peak_flow"\nvalue = 3\n'
+    path.write_text(CHANNEL + more)
+    ran = run("compare", path)
+    assert ran.status == 2
+    assert "stated[0].load: must be given for peak_flow" in ran.err
+
+
+def test_tables_are_written_to_paste_from(run, channel, tmp_path):
+    ran = run("compare", channel, "--table", "walls", "--out", tmp_path / "report")
+    assert ran.status in (0, 1)
+    names = {entry.name for entry in (tmp_path / "report").iterdir() if entry.stem == "walls"}
+    assert names == {"walls.csv", "walls.md", "walls.html"}
+    assert "<script" not in (tmp_path / "report" / "walls.html").read_text()
