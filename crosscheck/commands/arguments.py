@@ -39,6 +39,13 @@ def accuracy(text: str) -> float:
     return value
 
 
+def worker_count(text: str) -> int:
+    """Number of worker processes."""
+    if not text.isdecimal() or not 1 <= int(text) <= 256:
+        raise argparse.ArgumentTypeError(f"must be a whole number from 1 to 256, got {text!r}")
+    return int(text)
+
+
 def add_model_arguments(command: argparse.ArgumentParser) -> None:
     """Accuracy and overriding of parameters."""
     command.add_argument(

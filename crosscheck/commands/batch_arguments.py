@@ -8,7 +8,7 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import TYPE_CHECKING
 
-from crosscheck.commands.arguments import add_model_arguments
+from crosscheck.commands.arguments import add_model_arguments, worker_count
 
 if TYPE_CHECKING:
     from crosscheck.batch.running import Hands, Told
@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 def add_workers(command: argparse.ArgumentParser) -> None:
     """Who solves."""
     command.add_argument(
-        "--workers", type=_count, metavar="N", help="worker processes (default: one for each core)"
+        "--workers", type=worker_count, metavar="N", help="worker processes (default: one for each core)"
     )
 
 
@@ -108,12 +108,6 @@ def told_batch(total: int, done: int = 0) -> Iterator[Told]:
             progress.update(bar, advance=1, lost=f", {lost} without a result" if lost else "")
 
         yield tell
-
-
-def _count(text: str) -> int:
-    if not text.isdecimal() or not 1 <= int(text) <= 256:
-        raise argparse.ArgumentTypeError(f"must be a whole number from 1 to 256, got {text!r}")
-    return int(text)
 
 
 def _seconds(text: str) -> float:

@@ -7,13 +7,14 @@ import os
 import sys
 from collections.abc import Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
-from crosscheck.commands.arguments import add_model_arguments, complain, told_progress
+from crosscheck.commands.arguments import add_model_arguments, complain, told_progress, worker_count
 from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
     import fe_models
+    from crosscheck.commands.several import Reported
     from crosscheck.comparison.comparing import Progress
     from crosscheck.comparison.result import Result
     from crosscheck.faults import Fault
@@ -85,6 +86,17 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
         metavar="FORMAT",
         help="write FE's mesh and fields, fields.FORMAT in DIR: " + ", ".join(FIELD_FORMATS),
     )
+    command.add_argument(
+        "--envelope",
+        metavar="PATH",
+        help="an envelope of threshold: say whether the section is inside, at the edge or outside",
+    )
+    command.add_argument(
+        "--workers",
+        type=worker_count,
+        metavar="N",
+        help="compare several sections in N worker processes, one numerical thread each",
+    )
     add_model_arguments(command)
     command.set_defaults(run=run)
 
@@ -93,38 +105,111 @@ def run(arguments: argparse.Namespace) -> int:
     """Compare every section; one that cannot be read or solved does not stop the others."""
     if arguments.fields and not fields_can_be_written(arguments.out):
         return ExitStatus.BAD_INPUT
+    envelope_faults = unreadable_envelope(arguments.envelope)
     paths, missing = section_paths(arguments.paths)
-    complain(missing)
+    complain((*envelope_faults, *missing))
+    if envelope_faults:
+        return ExitStatus.BAD_INPUT
     status = ExitStatus.BAD_INPUT if missing else ExitStatus.WITHIN
     folders = output_folders(paths, arguments.out)
-    results: list[Result] = []
-    for path, folder in zip(paths, folders, strict=True):
-        with told_progress() as tell:
-            result, found = compare_file(
-                path,
-                arguments.overrides,
-                arguments.accuracy,
-                tell,
-                pictures=folder is not None,
-                working=arguments.working,
-                fields=tuple(dict.fromkeys(arguments.fields)),
-            )
-            status = max(status, found)
-            if result is None:
-                continue
-            if folder is not None:
-                found = write_report(result, folder, arguments.tables, tell)
-                status = max(status, found)
-        results.append(result)
-        # Standard output belongs to the JSON when that is asked for.
-        stream = sys.stderr if arguments.json_path == "-" else sys.stdout
-        where = str(folder) if folder is not None and found < ExitStatus.BAD_INPUT else None
-        show(result, where, stream, arguments.tables)
-        if result.working is not None and folder is None and arguments.json_path is None:
-            stream.write("\n".join(("", *result.working.values())))
-    if arguments.json_path is not None and results:
-        status = max(status, write_json(results, arguments.json_path))
+    from crosscheck.commands.several import reported_by_workers, show_summary
+
+    if len(paths) > 1 and arguments.workers is not None:
+        from crosscheck.batch.task import BatchError
+
+        try:
+            reports = list(reported_by_workers(arguments, paths, folders))
+        except BatchError as fault:
+            complain([str(fault)])
+            return ExitStatus.FAILED
+    else:
+        reports = [report(path, folder, arguments) for path, folder in zip(paths, folders, strict=True)]
+    status = max((status, *(ExitStatus(each.status) for each in reports)))
+    if len(reports) > 1:
+        show_summary(reports, error_stream=arguments.json_path == "-")
+    documents = [each.document for each in reports if each.document is not None]
+    if documents:
+        status = max(status, write_json(documents, arguments.json_path))
     return status
+
+
+def report(path: str, folder: Path | None, arguments: argparse.Namespace) -> Reported:
+    """One section from its file to its screen, its folder and what is left for the end."""
+    from crosscheck.commands.several import Reported
+
+    with told_progress() as tell:
+        result, status = compare_file(
+            path,
+            arguments.overrides,
+            arguments.accuracy,
+            tell,
+            pictures=folder is not None,
+            working=arguments.working,
+            fields=tuple(dict.fromkeys(arguments.fields)),
+        )
+        if result is None:
+            return Reported(path, status)
+        written = ExitStatus.WITHIN
+        if folder is not None:
+            written = write_report(result, folder, arguments.tables, tell)
+    # Standard output belongs to the JSON when that is asked for.
+    stream = sys.stderr if arguments.json_path == "-" else sys.stdout
+    where = str(folder) if folder is not None and written < ExitStatus.BAD_INPUT else None
+    show(result, where, stream, arguments.tables)
+    if arguments.envelope is not None:
+        show_standing(path, arguments, result, stream)
+    if result.working is not None and folder is None and arguments.json_path is None:
+        stream.write("\n".join(("", *result.working.values())))
+    return left_of(path, result, max(status, written), json=arguments.json_path is not None)
+
+
+def left_of(path: str, result: Result, status: ExitStatus, *, json: bool) -> Reported:
+    """What the summary and the JSON need of a result."""
+    from crosscheck.commands.several import Reported
+    from crosscheck.reports.result_json import document
+    from crosscheck.reports.wording import (
+        full_difference_text,
+        name_of,
+        one_row_a_family,
+        verdict_sentence,
+        worst_first,
+    )
+
+    rows = [row for row in one_row_a_family(worst_first(result.quantities)) if row.verdict is not None]
+    worst = f"{name_of(rows[0])}: {full_difference_text(rows[0], result.length_unit)}" if rows else ""
+    held = sum(row.verdict == "within" for row in rows), len(rows)
+    content = document(result) if json else None
+    return Reported(path, status, content, verdict_sentence(result), held, worst)
+
+
+def unreadable_envelope(path: str | None) -> tuple[str, ...]:
+    """Lines of what is wrong with the envelope given, if anything is."""
+    if path is None:
+        return ()
+    from crosscheck.family.validity import read_envelope
+    from crosscheck.faults import SectionFaults
+
+    try:
+        read_envelope(path)
+    except SectionFaults as faults:
+        return faults.lines
+    return ()
+
+
+def show_standing(path: str, arguments: argparse.Namespace, result: Result, stream: object) -> None:
+    """Where the section stands to the envelope."""
+    from rich.console import Console
+
+    from crosscheck.family.validity import read_envelope, standings
+    from crosscheck.reports.standing_lines import standing_lines
+    from crosscheck.section_file.reader import read_source, section_from
+
+    source = read_source(path)
+    section = section_from(source, tuple(arguments.overrides))
+    found = standings(read_envelope(arguments.envelope), source, section, result)
+    console = Console(stderr=stream is sys.stderr, highlight=False, markup=False, emoji=False)
+    for line in standing_lines(arguments.envelope, found):
+        console.print(line)
 
 
 def fields_can_be_written(out: str | None) -> bool:
@@ -277,12 +362,12 @@ def write_report(result: Result, folder: Path, tables: Sequence[str], tell: Prog
     return ExitStatus.WITHIN
 
 
-def write_json(results: Sequence[Result], path: str) -> ExitStatus:
+def write_json(documents: Sequence[dict[str, Any]], path: str) -> ExitStatus:
     """The JSON to a file, whole or not at all, or to standard output."""
-    from crosscheck.reports.result_json import json_text
+    from crosscheck.reports.result_json import documents_text
     from crosscheck.whole_files import write_whole
 
-    text = json_text(results)
+    text = documents_text(documents)
     if path == "-":
         sys.stdout.write(text)
         return ExitStatus.WITHIN

@@ -199,7 +199,11 @@ def json_text(results: Sequence[Result]) -> str:
     ValueError
         Where a number is not finite: JSON has no word for it, and no result should hold it.
     """
-    documents = [document(result) for result in results]
+    return documents_text([document(result) for result in results])
+
+
+def documents_text(documents: Sequence[dict[str, Any]]) -> str:
+    """JSON of documents as :func:`document` gives them; see :func:`json_text`."""
     try:
         if len(documents) == 1:
             return f"{_record_a_line(documents[0])}\n"
