@@ -26,6 +26,9 @@ OPERATORS: dict[type[ast.AST], type[ast.AST]] = {
     ast.Or: ast.And,
 }
 
+# Constants up to this size guard against round-off: ten per cent of one changes no result.
+ROUND_OFF = 1e-6
+
 
 @dataclass(frozen=True)
 class Mutant:
@@ -94,15 +97,23 @@ def _words(tree: ast.Module) -> set[int]:
     return found
 
 
+def _number(node: ast.expr | ast.AST) -> bool:
+    return isinstance(node, ast.Constant) and isinstance(node.value, (int, float))
+
+
 def _change(node: ast.expr) -> bool:
     """Make the node's one change; False where it has none."""
+    if isinstance(node, ast.BinOp) and any(
+        isinstance(n, (ast.JoinedStr, ast.Constant)) and not _number(n) for n in ast.walk(node)
+    ):
+        return False
     if isinstance(node, (ast.BinOp, ast.BoolOp)) and type(node.op) in OPERATORS:
         node.op = OPERATORS[type(node.op)]()  # type: ignore[assignment]
     elif isinstance(node, ast.Compare) and type(node.ops[0]) in OPERATORS:
         node.ops[0] = OPERATORS[type(node.ops[0])]()  # type: ignore[assignment]
     elif isinstance(node, ast.UnaryOp) and isinstance(node.op, ast.USub):
         node.op = ast.UAdd()
-    elif isinstance(node, ast.Constant) and type(node.value) is float:
+    elif isinstance(node, ast.Constant) and type(node.value) is float and not 0.0 < node.value <= ROUND_OFF:
         node.value = 1.0 if node.value == 0.0 else 1.1 * node.value
     elif isinstance(node, ast.Constant) and type(node.value) is int:
         node.value += 1

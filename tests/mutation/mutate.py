@@ -108,7 +108,7 @@ def main(arguments: Sequence[str]) -> int:
             print(f"{mutant.path}:{mutant.line}: {mutant.told}", flush=True)
         else:
             found[by] += 1
-        if (i + 1) % 50 == 0:
+        if (i + 1) % 20 == 0:
             print(
                 f"# {i + 1} of {len(chosen)}, {len(alive)} survive, {time.time() - begun:.0f} s", flush=True
             )

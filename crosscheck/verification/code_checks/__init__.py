@@ -24,6 +24,7 @@ MODULES: tuple[str, ...] = (
     "joint_terms",
     "fe_flows",
     "judgement",
+    "self_checks",
     "limits",
 )
 

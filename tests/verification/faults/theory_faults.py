@@ -23,9 +23,7 @@ THEORY = (
     Fault("direct share left out", B + "network.py", "wall.e * wall.direct_share", "wall.e"),
     Fault("g left out of flexibilities", B + "network.py", "(self.g * self.t_log)", "self.t_log"),
     Fault("taper by the mean thickness", B + "network.py", "t0 * safe / span)", "0.5 * (t0 + t1))"),
-    Fault(
-        "product moment's sign in bending", B + "inertia.py", "xx * given.real - xy", "xx * given.real + xy"
-    ),
+    Fault("axes of bending", B + "inertia.py", "(of_x, of_y) * axis.conjugate()", "(of_x, of_y) * axis"),
     Fault("sign of y_s", B + "midline.py", "y_s = -(k_x", "y_s = (k_x"),
     Fault(
         "sign of an arm", B + "solution.py", "arm.real * vy - arm.imag * vx", "arm.real * vy + arm.imag * vx"
