@@ -12,13 +12,14 @@ from collections.abc import Iterator, Mapping
 from importlib import resources
 from pathlib import Path
 from typing import Any, Literal
+from unicodedata import bidirectional
 
 from crosscheck.dossier.content import Block, Chapter, Diagram, Dossier, Figure, Symbol
 from crosscheck.dossier.equations import EQUATIONS
-from crosscheck.pictures.fonts import covered, font_folder
+from crosscheck.pictures.fonts import covered_text, font_folder
 
-# Longer runs of letters get places where a line may break.
-LONGEST_WORD = 22
+# Longer runs of letters get places where a line may break, after so many of them.
+LONGEST_WORD, PIECE = 18, 6
 _LONG = re.compile(rf"\S{{{LONGEST_WORD + 1},}}")
 
 
@@ -136,14 +137,14 @@ def _plain(value: Any) -> Any:
 def printable(text: str) -> str:
     """Text that paper can show: control characters and letters without a shape by their numbers.
 
-    Very long words get places to break, so that they stay on the paper.
+    Very long words get places to break, so that they stay on the paper; text with letters that run from right
+    to left is isolated, so that it turns nothing beside it.
     """
-    shown = "".join(
-        c if c == "\n" or (c.isprintable() and covered(c)) else f"[U+{ord(c):04X}]"
-        for c in text.replace("\t", "    ")
-    )
-    return _LONG.sub(lambda word: "\u200b".join(_pieces(word[0])), shown)
+    plain = (c if c == "\n" or c.isprintable() else f"[U+{ord(c):04X}]" for c in text.replace("\t", "    "))
+    shown = covered_text("".join(plain))
+    shown = _LONG.sub(lambda word: "\u200b".join(_pieces(word[0])), shown)
+    return f"\u2068{shown}\u2069" if any(bidirectional(c) in ("R", "AL") for c in text) else shown
 
 
 def _pieces(word: str) -> list[str]:
-    return [word[i : i + LONGEST_WORD] for i in range(0, len(word), LONGEST_WORD)]
+    return [word[i : i + PIECE] for i in range(0, len(word), PIECE)]

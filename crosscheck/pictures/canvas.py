@@ -19,6 +19,8 @@ from matplotlib.font_manager import FontProperties
 from matplotlib.text import Text
 
 from crosscheck.comparison.drawn import Array
+from crosscheck.faults import one_line
+from crosscheck.pictures.fonts import covered_text
 
 if TYPE_CHECKING:
     from matplotlib.backend_bases import RendererBase
@@ -80,6 +82,9 @@ def picture_bytes(figure: Figure, kind: str, dpi: int = DPI) -> bytes:
         "png": {"Software": "crosscheck"},
     }
     metadata = kinds[kind]
+    for label in figure.findobj(Text):
+        if isinstance(label, Text) and not label.get_text().isascii():
+            label.set_text(covered_text(label.get_text()))
     with mpl.rc_context(STYLE):
         figure.savefig(stream, format=kind, metadata=metadata, dpi=dpi)
     return stream.getvalue()
@@ -211,6 +216,14 @@ def wrapped(text: str, width_mm: float, size: float = FONT, *, bold: bool = Fals
     return lines
 
 
+def fitted(text: str, width_mm: float, size: float = FONT) -> str:
+    """Text on one line, cut to a width in millimetres."""
+    letters = len(text)
+    while letters > 1 and text_width(one_line(text, letters), size) > width_mm:
+        letters -= 1
+    return one_line(text, letters)
+
+
 def _pieces(word: str, width_mm: float, size: float, bold: bool) -> list[str]:
     """A word, in pieces where it is wider than a line."""
     if text_width(word, size, bold=bold) <= width_mm:
@@ -226,7 +239,7 @@ def text_width(text: str, size: float, *, bold: bool = False) -> float:
     """Width of one line of text in millimetres."""
     with mpl.rc_context(STYLE):
         font = FontProperties(size=size, weight="bold" if bold else "normal")
-        width, _, _ = _ruler().get_text_width_height_descent(text, font, ismath=False)
+        width, _, _ = _ruler().get_text_width_height_descent(covered_text(text), font, ismath=False)
     return float(width) / DPI / MM
 
 
@@ -334,7 +347,7 @@ class Lettering:
         with mpl.rc_context(STYLE):
             return self.axes.text(
                 *place,
-                text,
+                covered_text(text),
                 color=colour,
                 fontsize=size,
                 ha="center",

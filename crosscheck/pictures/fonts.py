@@ -22,6 +22,11 @@ def _shapes() -> frozenset[int]:
     return frozenset(get_font(str(font_folder() / NAME)).get_charmap())
 
 
+def covered_text(text: str) -> str:
+    """Text that the font can show: a letter without a shape by its number."""
+    return "".join(c if c.isspace() or covered(c) else f"[U+{ord(c):04X}]" for c in text)
+
+
 def covered(letter: str) -> bool:
     """Whether the font has a shape for a letter."""
     return ord(letter) in _shapes()

@@ -8,7 +8,6 @@ from dataclasses import dataclass
 import matplotlib as mpl
 from matplotlib.figure import Figure
 
-from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FONT,
     HAND,
@@ -17,6 +16,7 @@ from crosscheck.pictures.canvas import (
     STYLE,
     WIDE_PAPER,
     caption_in_lines,
+    fitted,
     sheet,
     title_in_lines,
     write_caption,
@@ -68,7 +68,7 @@ def shares_picture(checks: Sequence[Share], title: str, width_mm: int = 160) -> 
                 edgecolor="white" if check.passed else INK, lw=0.3,
             )  # fmt: skip
             beside = axes.get_yaxis_transform()
-            axes.text(-0.02, place, one_line(check.name, int((left - 3) / 1.25)), ha="right", va="center",
+            axes.text(-0.02, place, fitted(check.name, left - 3.0, FONT - 0.5), ha="right", va="center",
                       fontsize=FONT - 0.5, transform=beside)  # fmt: skip
             axes.text(
                 1.02, place, f"{100 * check.used:.2g} %", va="center", fontsize=FONT - 0.5, transform=beside

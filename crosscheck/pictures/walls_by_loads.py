@@ -17,6 +17,7 @@ from crosscheck.pictures.canvas import (
     STYLE,
     WIDE_PAPER,
     caption_in_lines,
+    fitted,
     sheet,
     text_width,
     title_in_lines,
@@ -84,7 +85,7 @@ def walls_by_loads_picture(result: Result, width_mm: int = 160) -> Figure | None
         for j, name in enumerate(names):
             axes.text(j + 0.5, -0.25, name, rotation=90, ha="center", va="bottom", fontsize=FONT)
         for i, wall in enumerate(rows):
-            name = one_line(wall, max(int((left - 3.0) / 1.25), 6))
+            name = fitted(wall, left - 3.0)
             axes.text(-0.06, i + 0.5, name, ha="right", va="center", fontsize=FONT, color=INK)
             found = [cells[wall, load] for load in loads if (wall, load) in cells]
             for j, load in enumerate(loads):
