@@ -20,10 +20,10 @@ from crosscheck.pictures.canvas import (
     STYLE,
     WIDE_PAPER,
     Frame,
-    Lettering,
     frame_of,
     scale_drawing,
 )
+from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.walls import draw_arrow, draw_solid
 
 # Largest ordinate over the larger and over the smaller overall dimension: diagrams of a flat box stay apart.

@@ -28,7 +28,6 @@ from crosscheck.pictures.canvas import (
     STYLE,
     WIDE_PAPER,
     WIDTHS,
-    Lettering,
     caption_in_lines,
     picture_bytes,
     sheet,
@@ -37,6 +36,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
+from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.map import map_picture
 from crosscheck.pictures.parameter_axis import scale_axis
 

@@ -21,7 +21,6 @@ from crosscheck.pictures.canvas import (
     SOFT,
     STYLE,
     WIDE_PAPER,
-    Lettering,
     caption_in_lines,
     sheet,
     size_text,
@@ -29,6 +28,7 @@ from crosscheck.pictures.canvas import (
     write_caption,
     write_title,
 )
+from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.parameter_axis import scale_axis
 
 CONTOURS = (1.0, 2.0, 5.0, 10.0)

@@ -21,11 +21,11 @@ from crosscheck.pictures.canvas import (
     SOFT,
     STYLE,
     WIDE_PAPER,
-    Lettering,
     frame_of,
     scale_drawing,
     size_text,
 )
+from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.walls import (
     centre_of,
     draw_arrow,

@@ -14,10 +14,10 @@ from crosscheck.pictures.canvas import (
     INK,
     SOFT,
     STYLE,
-    Lettering,
     frame_of,
     scale_drawing,
 )
+from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.walls import draw_solid
 from crosscheck.reports.wording import number_text
 from crosscheck.tracing.idealising import Idealisation
