@@ -99,7 +99,7 @@ def faces(name: str) -> Finding:
 
 
 def peaks(name: str) -> Finding:
-    """Largest stresses and flows, and the envelope over all loads, against a dense search."""
+    """Largest stresses, and their envelope over all loads, against a dense search."""
     shape, theory, _ = solved(name)
     cases = [beam_theory.stress(theory, load) for load in LOADS]
     over = {(r.kind, r.wall): r for r in beam_theory.envelope(theory, LOADS).walls}
@@ -115,11 +115,30 @@ def peaks(name: str) -> Finding:
             worst = max(worst, abs(abs(row.value) - max(dense)) / max(dense))
             if row.load != LOADS[int(np.argmax(dense))].name:
                 worst = float("inf")
-        flows = [theory.flow(load) for load in LOADS[1:]]
+        flow = max(abs(theory.flow(load).peak(wall.name).flow) for load in LOADS[1:])
+        worst = max(worst, abs(abs(over["flow", wall.name].value) / flow - 1.0))
+    return Finding(worst, BETWEEN, f"Largest difference {worst:.1e} from a search at {PLACES} places a wall.")
+
+
+def flow_peaks(name: str) -> Finding:
+    """Largest flows of unit and other loads, and where they stand still, against a dense search."""
+    shape, theory, _ = solved(name)
+    loads = (beam_theory.Load("Vx", (1.0, 0.0)), beam_theory.Load("Vy", (0.0, 1.0)), *LOADS[1:])
+    flows = [theory.flow(load) for load in loads]
+    u, worst = np.linspace(0.0, 1.0, PLACES), 0.0
+    for wall in shape.walls:
         dense = [float(np.abs(f.at(wall.name, u)).max()) for f in flows]
-        own = [abs(f.peak(wall.name).flow) for f in flows]
-        worst = max(worst, *(abs(a - b) / max(dense) for a, b in zip(own, dense, strict=True)))
-        worst = max(worst, abs(abs(over["flow", wall.name].value) - max(dense)) / max(dense))
+        for flow, largest in zip(flows, dense, strict=True):
+            peak = flow.peak(wall.name)
+            there = float(flow.at(wall.name, np.array([peak.at]))[0])
+            worst = max(
+                worst, abs(abs(peak.flow) - largest) / max(dense), abs(there - peak.flow) / max(dense)
+            )
+            q = flow.shear_at(wall.name, u)
+            turns = np.flatnonzero(np.diff(np.sign(np.diff(q))) != 0)
+            still = flow.stationary(wall.name)
+            if wall.direct_share > 0.0 and len(still) != len(turns):
+                worst = float("inf")
     return Finding(worst, BETWEEN, f"Largest difference {worst:.1e} from a search at {PLACES} places a wall.")
 
 
@@ -205,6 +224,7 @@ CHECKS = (
         for what, measure, quick, features in (
             ("resultants of direct stress", resultants, True, {"axial and moment", "bimoment"}),
             ("stress at both faces", faces, True, {"torque"}),
+            ("largest flows", flow_peaks, True, set()),
             ("largest stresses and envelope", peaks, False, set()),
             ("numbers from the faces", numbers_from_faces, True, set()),
         )
