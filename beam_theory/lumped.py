@@ -25,6 +25,8 @@ class LumpedSolution(Solution):
 
     parts: int = field(default=1)
     walls: Solution | None = field(default=None, repr=False)
+    # Flow and stress of one load ask for the same booms.
+    made: dict[tuple[float, float], Solution] = field(default_factory=dict, repr=False, compare=False)
 
     def lumps_of(self, load: Load) -> tuple[Lump, ...]:
         """Booms made from the walls for the shear of a load."""
@@ -39,7 +41,9 @@ class LumpedSolution(Solution):
         """The section of shear-only skins with the booms made for the shear of a load, solved."""
         if load.shear == (0.0, 0.0):
             return self._base
-        return midline(_with_booms(self._base, self.lumps_of(load)), "lumped")
+        if load.shear not in self.made:
+            self.made[load.shear] = midline(_with_booms(self._base, self.lumps_of(load)), "lumped")
+        return self.made[load.shear]
 
     def flow(self, load: Load) -> Flow:
         """Shear flow of a load in the skins between the booms made for it; stepwise constant.

@@ -116,7 +116,7 @@ def difference_picture(sweep: Sweep, series: Series, width_mm: int = 160) -> Fig
     title_lines = title_in_lines(one_line(title, 200), width_mm)
     caption_lines = caption_in_lines(one_line(caption, 600), width_mm)
     ratio = sweep.family.ratio if np.isfinite(series.ratios).sum() > 1 else None
-    above = 4.0 + 4.2 * len(title_lines) + (8.0 if ratio else 0.0)
+    above = 4.0 + 4.2 * len(title_lines) + (9.0 if ratio else 0.0)
     below = 11.0 + 3.2 * len(caption_lines)
     left, right = 15.0, 19.0 if width_mm >= WIDE_PAPER else 15.0
     tall = 0.5 * width_mm if width_mm >= WIDE_PAPER else 0.62 * width_mm
@@ -245,6 +245,6 @@ def _ratio_axis(axes: Axes, x: Array, ratios: Array, text: str) -> None:
         FuncFormatter(lambda value, _: f"{ticks[int(np.argmin(np.abs(places - value)))]:g}")
     )
     top.tick_params(length=2, pad=1.0, color=SOFT, labelcolor=SOFT, labelsize=FONT - 0.5)
-    top.set_xlabel(one_line(text, 60), labelpad=2, fontsize=FONT)
+    top.set_xlabel(one_line(text, 60), labelpad=4, fontsize=FONT)
     for side in ("bottom", "right", "left"):
         top.spines[side].set_visible(False)

@@ -67,20 +67,29 @@ def _rows_picture(study: Study, width_mm: int) -> Figure:
     (line,) = study.lines
     levels = levels_of(study)
     judged = study.judged if study.judged in levels else levels[0]
-    rows = [each for each in line.of_level(judged) if each.known is not None][:MOST_ROWS]
     by_key = {(each.key, each.level): each for each in line.thresholds}
+    known = [each for each in line.of_level(judged) if each.known is not None]
+    # What never fails is counted: rows of full bars tell nothing.
+    failing = [each for each in known if any(_fails(by_key[each.key, level]) for level in levels)]
+    rows = (failing or known)[:MOST_ROWS]
     first = study.family.ranges[0]
     caption = (
         f"Bars: where the criterion holds at the levels {', '.join(levels)}, from the top; no bar: it "
         f"does not, or nothing is compared. Upright: the file as it stands, {first.name} = "
         f"{size_text(study.today[0])}."
     )
+    if failing and len(failing) < len(known):
+        caption += f" {len(known) - len(failing)} more quantities hold throughout at all of these levels."
     left = 46.0 if width_mm >= WIDE_PAPER else 31.0
     names = [wrapped(one_line(_name(each), 60), left - 4) for each in rows]
     pitch = [max(5.0, 3.0 * len(name) + 1.0) for name in names]
     return _chart(
         study, width_mm, left, sum(pitch) or 5.0, caption, _RowsDrawn(rows, by_key, levels, names, pitch)
     )
+
+
+def _fails(each: Threshold) -> bool:
+    return each.known is not None and not each.throughout
 
 
 class _RowsDrawn:
