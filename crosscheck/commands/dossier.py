@@ -15,7 +15,7 @@ from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
     from crosscheck.comparison.comparing import Progress
-    from crosscheck.dossier.evidence import SectionEvidence
+    from crosscheck.dossier.evidence import Envelope, SectionEvidence
     from crosscheck.dossier.suite import SuiteEvidence
 
 LIBRARIES = ("typst", "jinja2")
@@ -48,6 +48,9 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
     command.add_argument("--check", metavar="DIR", help="check a package instead of writing one")
     command.add_argument(
         "--evidence", metavar="PATH", help="stored evidence of 'crosscheck verify --json PATH'"
+    )
+    command.add_argument(
+        "--envelope", metavar="PATH", help="envelope of threshold that the sections are held against"
     )
     command.add_argument(
         "--hand-sheet",
@@ -106,20 +109,21 @@ def _write(arguments: argparse.Namespace) -> int:
         return ExitStatus.BAD_INPUT
     try:
         suite = _suite(arguments.evidence)
+        envelope = _envelope(arguments.envelope)
     except SectionFaults as faults:
         complain(faults.lines)
         return ExitStatus.BAD_INPUT
     if missing:
         return ExitStatus.BAD_INPUT
     with told_progress() as tell:
-        evidence, status = _gathered(paths, arguments, tell)
+        evidence, status = _gathered(paths, arguments, envelope, tell)
         if status >= ExitStatus.BAD_INPUT:
             return status
         unknown = _unknown_loads(evidence, arguments.hand_sheets)
         if unknown:
             complain(unknown)
             return ExitStatus.BAD_INPUT
-        files = package_files(evidence, suite, arguments.hand_sheets, tell)
+        files = package_files(evidence, suite, arguments.hand_sheets, tell, envelope)
         try:
             write_tree(out, files)
         except OSError as fault:
@@ -139,8 +143,16 @@ def _suite(path: str | None) -> SuiteEvidence | None:
     return read_suite(path)
 
 
+def _envelope(path: str | None) -> Envelope | None:
+    if path is None:
+        return None
+    from crosscheck.dossier.evidence import read_envelope_file
+
+    return read_envelope_file(path)
+
+
 def _gathered(
-    paths: list[str], arguments: argparse.Namespace, tell: Progress
+    paths: list[str], arguments: argparse.Namespace, envelope: Envelope | None, tell: Progress
 ) -> tuple[list[SectionEvidence], ExitStatus]:
     """Evidence of every section; faults of all of them are told, and then nothing is written."""
     import beam_theory
@@ -159,7 +171,7 @@ def _gathered(
             status = max(status, ExitStatus.BAD_INPUT)
             continue
         try:
-            found.append(gather(section, arguments.accuracy, partial(_tell_of, tell, path)))
+            found.append(gather(section, arguments.accuracy, partial(_tell_of, tell, path), envelope))
         except fe_models.OutlineError as fault:
             complain([outline_fault(path, section, fault).text])
             status = max(status, ExitStatus.BAD_INPUT)

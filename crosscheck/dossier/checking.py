@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import Any
 
 from crosscheck.comparison.provenance import provenance
-from crosscheck.dossier.evidence import evidence_record, gather
+from crosscheck.dossier.evidence import evidence_record, gather, read_envelope_file
 from crosscheck.dossier.package import MANIFEST, SCHEMA, sealed
 from crosscheck.faults import one_line
 from crosscheck.reports.result_json import document
@@ -120,7 +120,8 @@ def _numbers(
 ) -> tuple[list[str], int, int]:
     """Differences between stored numbers and those of a new run; counts of all and of exact ones."""
     read = read_section(str(folder / section["file"]), tuple(options["overrides"]))
-    evidence = gather(read, float(options["accuracy"]), tell)
+    envelope = None if options["envelope"] is None else read_envelope_file(str(folder / options["envelope"]))
+    evidence = gather(read, float(options["accuracy"]), tell, envelope)
     home = folder / section["folder"]
     stored_result = json.loads((home / "result.json").read_bytes())
     stored_record = json.loads((home / "verification.json").read_bytes())

@@ -12,9 +12,32 @@ from crosscheck.comparison.result import Result
 from crosscheck.dossier.convergence import Convergence, converge
 from crosscheck.dossier.holding import Holding, holding
 from crosscheck.dossier.uncertainty import Uncertainty, uncertainty
+from crosscheck.family.validity import Standing, read_envelope, standings
 from crosscheck.section_file.model import SectionFile
+from crosscheck.section_file.source import read_source
 
 SCHEMA = "crosscheck.dossier/1"
+
+
+@dataclass(frozen=True)
+class Envelope:
+    """An envelope of ``threshold`` that sections are held against: its file, whole, and what it says."""
+
+    name: str
+    content: bytes
+    document: Mapping[str, Any]
+
+
+def read_envelope_file(path: str) -> Envelope:
+    """An envelope with its bytes.
+
+    Raises
+    ------
+    SectionFaults
+        Where it is none.
+    """
+    document = read_envelope(path)
+    return Envelope(Path(path).name, Path(path).read_bytes(), document)
 
 
 @dataclass(frozen=True)
@@ -30,9 +53,12 @@ class SectionEvidence:
     convergence: Convergence
     uncertainty: Uncertainty
     holding: Holding | None
+    standings: tuple[Standing, ...] | None = None
 
 
-def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -> SectionEvidence:
+def gather(
+    section: SectionFile, accuracy: float, tell: Callable[[str], None], envelope: Envelope | None = None
+) -> SectionEvidence:
     """Solve everything that the dossier of one section needs.
 
     Parameters
@@ -43,6 +69,8 @@ def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -
         Half-width asked of FE's intervals [-].
     tell : callable
         Told in words what is being done.
+    envelope : Envelope, optional
+        Held against the section.
 
     Raises
     ------
@@ -57,7 +85,11 @@ def gather(section: SectionFile, accuracy: float, tell: Callable[[str], None]) -
     result = compare(section, accuracy, tell, pictures=True, working=True)
     convergence = converge(section, result, tell)
     budget = uncertainty(section, result, tell)
-    return SectionEvidence(section, files, result, convergence, budget, holding(section, result, tell))
+    reach = holding(section, result, tell)
+    found = None
+    if envelope is not None:
+        found = tuple(standings(envelope.document, read_source(section.path), section, result))
+    return SectionEvidence(section, files, result, convergence, budget, reach, found)
 
 
 def evidence_record(evidence: SectionEvidence) -> dict[str, Any]:
@@ -67,4 +99,5 @@ def evidence_record(evidence: SectionEvidence) -> dict[str, Any]:
         "solution_verification": asdict(evidence.convergence),
         "uncertainty": asdict(evidence.uncertainty),
         "holding": None if evidence.holding is None else asdict(evidence.holding),
+        "standings": None if evidence.standings is None else [asdict(each) for each in evidence.standings],
     }

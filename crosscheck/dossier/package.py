@@ -12,7 +12,7 @@ from pathlib import Path
 from typing import Any
 
 from crosscheck.dossier.composing import compose, plate_extras, run_id
-from crosscheck.dossier.evidence import SectionEvidence, evidence_record
+from crosscheck.dossier.evidence import Envelope, SectionEvidence, evidence_record
 from crosscheck.dossier.page import page_bytes
 from crosscheck.dossier.paper import equation_pictures, pdf_bytes
 from crosscheck.dossier.suite import SuiteEvidence
@@ -22,6 +22,7 @@ from crosscheck.reports.result_json import json_text
 
 SCHEMA = "crosscheck.package/1"
 MANIFEST = "manifest.json"
+SUITE, ENVELOPE = "attached/verification.json", "attached/envelope.json"
 
 
 def today() -> str:
@@ -36,6 +37,7 @@ def package_files(
     suite: SuiteEvidence | None,
     hand_sheets: Sequence[str],
     tell: Callable[[str], None],
+    envelope: Envelope | None = None,
 ) -> dict[str, bytes]:
     """Every file of a package by its name, the manifest last.
 
@@ -49,6 +51,8 @@ def package_files(
         Loads whose hand sheets are wanted; none: the load that governs most walls.
     tell : callable
         Told in words what is being done.
+    envelope : Envelope, optional
+        That the sections were held against.
     """
     made, number = today(), run_id(evidence, suite)
     folders: list[str] = []
@@ -62,8 +66,12 @@ def package_files(
         drawn.append({plate.name: plate for plate in own})
         files |= _section_files(folder, each, own)
     if suite is not None:
-        files[f"evidence/{free_name(Path(suite.name).stem, ())}.json"] = suite.content
-    options = _options(evidence, folders, suite, hand_sheets)
+        files[SUITE] = suite.content
+    if envelope is not None:
+        files[ENVELOPE] = envelope.content
+    options = _options(evidence, folders, hand_sheets)
+    options["evidence"] = None if suite is None else SUITE
+    options["envelope"] = None if envelope is None else ENVELOPE
     tell("document")
     document = compose(evidence, drawn, suite, made, again(options), hand_sheets)
     tell("PDF")
@@ -90,7 +98,6 @@ def _section_files(folder: str, evidence: SectionEvidence, own: Sequence[Plate])
 def _options(
     evidence: Sequence[SectionEvidence],
     folders: Sequence[str],
-    suite: SuiteEvidence | None,
     hand_sheets: Sequence[str],
 ) -> dict[str, Any]:
     """What makes the package again."""
@@ -103,7 +110,6 @@ def _options(
         "sections": sections,
         "accuracy": first.result.accuracy,
         "overrides": [f"{name} = {text}" for name, text in first.section.overrides.items()],
-        "evidence": None if suite is None else f"evidence/{free_name(Path(suite.name).stem, ())}.json",
         "hand_sheets": list(hand_sheets),
         "version": first.result.provenance.version,
         "packages": dict(first.result.provenance.packages),
@@ -116,8 +122,9 @@ def again(options: Mapping[str, Any]) -> str:
     words += ["--accuracy", f"{options['accuracy']:g}"]
     for text in options["overrides"]:
         words += ["--set", text]
-    if options["evidence"]:
-        words += ["--evidence", options["evidence"]]
+    for name in ("evidence", "envelope"):
+        if options[name]:
+            words += [f"--{name}", options[name]]
     for load in options["hand_sheets"]:
         words += ["--hand-sheet", load]
     return shlex.join(words)

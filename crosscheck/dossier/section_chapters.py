@@ -49,6 +49,7 @@ from crosscheck.reports.wording import (
 )
 
 MOST_CAUSES = 12
+STANDING_ORDER = ("outside", "at the edge", "inside", "not covered")
 QUIET: Tone = "quiet"
 # Differences smaller than this have no causes told [-].
 LEAST_CAUSE = 5e-4
@@ -322,7 +323,27 @@ def _holding(evidence: SectionEvidence, figure: Figures) -> Chapter:
         for factor, reason in zip(found.factors, found.reasons, strict=True)
         if reason
     ]
-    return Chapter("holding", title, tuple(blocks))
+    return Chapter("holding", title, (*blocks, *_standings(evidence)))
+
+
+def _standings(evidence: SectionEvidence) -> tuple[Block, ...]:
+    """Where the section stands to the envelope given with the run."""
+    if evidence.standings is None:
+        return (
+            Paragraph("No envelope of a family of sections was given with this run (--envelope).", "quiet"),
+        )
+    names = {(row.name, row.load): name_of(row) for row in evidence.result.quantities}
+    columns = (Column("standing", "word"), Column("quantity", "text", 1.0), Column("reason", "text", 2.2))
+    found = sorted(evidence.standings, key=lambda each: STANDING_ORDER.index(each.word))
+    tones: dict[str, Tone] = {"outside": "bad", "at the edge": "doubt"}
+    return (
+        Table(
+            "Standing of this section to the envelope attached to the package",
+            columns,
+            tuple((each.word, names[each.name, each.load], each.reason) for each in found),
+            tuple(tones.get(each.word, "plain") for each in found),
+        ),
+    )
 
 
 def _warnings(evidence: SectionEvidence, figure: Figures) -> Chapter:

@@ -6,6 +6,7 @@ import html.parser
 import io
 import json
 import re
+from dataclasses import replace
 from importlib import resources
 
 import pypdf
@@ -18,6 +19,7 @@ from crosscheck.dossier.equations import EQUATIONS
 from crosscheck.dossier.page import page_bytes
 from crosscheck.dossier.paper import equation_pictures, pdf_bytes, printable
 from crosscheck.dossier.suite import read_suite
+from crosscheck.family.validity import Standing
 from crosscheck.pictures.plates import Plate
 
 from .conftest import suite_file
@@ -242,3 +244,19 @@ def test_data_of_the_diagram_cannot_end_its_script(hostile):
     assert data is not None
     walls = json.loads(data[1])["walls"]
     assert MARKUP in walls
+
+
+def test_a_standing_outside_the_envelope_is_seen(rail):
+    rows = [row for row in rail.result.quantities if row.load is None][:2]
+    words = ("inside", "outside")
+    found = tuple(
+        Standing(row.name, None, word, f"reason {word}") for row, word in zip(rows, words, strict=True)
+    )
+    document = compose(
+        [replace(rail, standings=found)], [plain_plates()], None, "2026-01-01", "crosscheck dossier"
+    )
+    (chapter,) = [chapter for chapter in chapters(document) if chapter.key == "holding"]
+    table = chapter.blocks[-1]
+    assert isinstance(table, Table)
+    assert [row[0] for row in table.rows] == ["outside", "inside"]
+    assert table.tones == ("bad", "plain")
