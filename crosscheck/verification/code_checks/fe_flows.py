@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import partial
 
 import numpy as np
@@ -143,6 +144,24 @@ def circle_with_nu() -> Finding:
     return Finding(worst, 2e-6, f"Largest difference {worst:.1e} (Cowper, J. Appl. Mech. 33, 1966).")
 
 
+def without_nu() -> Finding:
+    """Flexure with nu = 0 on a section without symmetry: shear centre and shear areas of the comparison."""
+    section = replace(SHAPES["open section"]().solid(), nu=0.0)
+    fe = fe_models.solve(section, 1e-4)
+    assert fe.poisson is not None
+    q = fe.quantities
+    worst = max(
+        abs(float(fe.poisson.shear_centre[i]) - q[f"shear_centre_{axis}"].known) / fe.outline.extent
+        for i, axis in enumerate("xy")
+    )
+    for i, axis in enumerate("xy"):
+        own = float(fe.poisson.energy_coefficient[i]) * q["area"].known
+        area = q[f"shear_area_{axis}"]
+        # one is the mean of both areas, the other the inverse of the mean energy
+        worst = max(worst, abs(own - area.known) / area.known - (area.half_width / area.known) ** 2)
+    return Finding(worst, 1e-9, f"Largest difference {worst:.1e}.")
+
+
 CHECKS = (
     *(
         code_check(f"change of flow along strips, {name}", GROUP, "fe", partial(change, name), quick=True)
@@ -163,5 +182,6 @@ CHECKS = (
     code_check(
         "rectangle with nu", GROUP, "fe", rectangle_with_nu, quick=True, features={"nu", "outline solid"}
     ),
+    code_check("nu = 0 on a section without symmetry", GROUP, "fe", without_nu, quick=True, features={"nu"}),
     code_check("circle with nu", GROUP, "fe", circle_with_nu, quick=True, features={"nu", "outline solid"}),
 )

@@ -57,6 +57,7 @@ def sheet(name: str) -> Finding:
     closing = np.array([0.0, *(c.closing for c in found.cells)])
     torsion = np.array([0.0, *(c.torque_flow for c in found.cells)])
     walls = {w.name: w for w in shape.walls}
+    twisted = 0.0
     for wall, basic, shear, total in zip(found.walls, found.basic, found.shear, found.total, strict=True):
         at = wall.first + (wall.last - wall.first) * v
         final = flow.at(wall.wall, at)
@@ -80,6 +81,10 @@ def sheet(name: str) -> Finding:
         seen.see(f"torsion of {wall.wall}", wall.torsion, stiff, found.torque.torsion_constant)
         if own.through is not None:
             seen.see(f"radius of {wall.wall}", wall.radius * abs(wall.sweep), wall.length, wall.length)
+        arm = line.place - np.array(found.centroid)
+        moment = arm[:, 0] * line.step[:, 1] - arm[:, 1] * line.step[:, 0]
+        twisted += float(basic.at(line.fraction) @ moment)
+    seen.see("torque of the basic flow", found.basic_torque, twisted, peak * float(np.abs(moment).sum()))
     for boom in found.booms:
         want = -boom.stiffness * (found.a * boom.place[0] + found.b * boom.place[1])
         seen.see("boom", boom.step, want, peak)

@@ -66,7 +66,7 @@ FE = (
         "np.array([[self.yy, self.xy], [self.xy, self.xx]])",
         "np.array([[self.yy, 0.0], [0.0, self.xx]])",
     ),
-    Fault("mesh's centroid", F + "fields.py", "r = p - shift", "r = p"),
+    Fault("mesh's centroid", F + "fields.py", "Inertia(area, centre + shift", "Inertia(area, centre - shift"),
     Fault(
         "one side of J only",
         F + "intervals.py",
