@@ -19,7 +19,7 @@ from crosscheck.pictures.canvas import (
 )
 from crosscheck.pictures.lettering import Lettering
 from crosscheck.pictures.walls import draw_solid
-from crosscheck.reports.wording import number_text
+from crosscheck.reports.wording import counted, number_text
 from crosscheck.tracing.idealising import Idealisation
 
 CAPTION = (
@@ -27,6 +27,8 @@ CAPTION = (
     "offered as booms. Numbers in rings: what the walls do not represent, as listed in the section file. "
     "Cross: where both boundaries are farthest apart."
 )
+# Outlines nearer than this share of the mean thickness are drawn as one.
+SAME = 1e-3
 # More walls than this are not named on wide and narrow paper.
 MOST_NAMES = {160: 24, 80: 8}
 
@@ -46,11 +48,13 @@ def tracing_picture(found: Idealisation, width_mm: int = 160) -> Figure:
     """
     quality, model = found.quality, found.model
     unit = found.source.length_unit
-    title = f"{found.source.name}: {len(model.walls)} walls, {model.cells} cells"
+    title = f"{found.source.name}: {counted(len(model.walls), 'wall')}, {counted(model.cells, 'cell')}"
     if quality.distance is not None:
         away = ", lumps apart" if model.lumps else ""
-        title += f"; outlines within {number_text(quality.distance, 2)} {unit}{away}"
-    frame = frame_of([quality.loops[0]])
+        near = quality.distance < SAME * quality.thickness
+        apart = "coincide" if near else f"within {number_text(quality.distance, 2)} {unit}"
+        title += f"; outlines {apart}{away}"
+    frame = frame_of([quality.loops[0], *quality.rebuilt_loops[:1]])
     size = max(frame.size)
     figure, axes = scale_drawing(width_mm, frame.grown(0.06 * size), title, CAPTION, unit)
     with mpl.rc_context(STYLE):
@@ -76,7 +80,7 @@ def tracing_picture(found: Idealisation, width_mm: int = 160) -> Figure:
         for lump in model.lumps:
             letters.keep_clear_of_mark((float(lump.place[0]), float(lump.place[1])), 3.5)
             axes.plot(*lump.place, marker="s", ms=5, mfc="none", mec=FE, mew=1.0, zorder=5)
-        if quality.place is not None and quality.distance and quality.distance > 1e-3 * quality.thickness:
+        if quality.place is not None and quality.distance and quality.distance > SAME * quality.thickness:
             axes.plot(*quality.place, marker="x", ms=5, color=FE, mew=1.0, zorder=5)
         for number, remark in enumerate(found.remarks, 1):
             if remark.place is not None:

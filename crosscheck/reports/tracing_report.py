@@ -9,7 +9,7 @@ from rich.console import Group, RenderableType
 from rich.table import Table
 from rich.text import Text
 
-from crosscheck.reports.wording import number_text
+from crosscheck.reports.wording import counted, number_text
 from crosscheck.tracing.idealising import Idealisation
 
 SCHEMA = "crosscheck.tracing/1"
@@ -30,10 +30,10 @@ def tracing_screen(found: Idealisation, written: Sequence[str]) -> RenderableTyp
     unit = found.source.length_unit
     lines = [Text(f"{found.source.title}    units {', '.join(found.source.units.split())}", style="bold")]
     counts = [
-        _counted(len(model.walls), "wall"),
-        _counted(len(model.points), "point"),
-        _counted(model.cells, "cell"),
-        _counted(len(model.lumps), "lump"),
+        counted(len(model.walls), "wall"),
+        counted(len(model.points), "point"),
+        counted(model.cells, "cell"),
+        counted(len(model.lumps), "lump"),
     ]
     lines.append(Text(f"Found: {', '.join(counts)}."))
     if quality.unsuited:
@@ -58,10 +58,6 @@ def tracing_screen(found: Idealisation, written: Sequence[str]) -> RenderableTyp
         parts += [Text(""), Text(f"Written: {', '.join(written)}")]
         parts.append(Text(f"Next: crosscheck compare {written[0]}"))
     return Group(*parts)
-
-
-def _counted(number: int, noun: str) -> str:
-    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"
 
 
 def _walls(found: Idealisation) -> Table:

@@ -32,6 +32,11 @@ UNDECIDED = "inconclusive: the FE error is too large to tell; ask for a finer --
 VERDICT_ORDER = {"outside": 0, "inconclusive": 1, "within": 2, None: 3}
 
 
+def counted(number: int, noun: str) -> str:
+    """A number of things in words."""
+    return f"{number:,} {noun}" if number == 1 else f"{number:,} {noun}s"
+
+
 def number_text(value: float | None, digits: int = 5) -> str:
     """A number with the given significant digits, as an engineer writes it; a dash for None."""
     if value is None:

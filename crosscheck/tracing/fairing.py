@@ -138,20 +138,34 @@ def _stretch(places: Array, first: int, edges: int) -> Array:
 
 
 def _unevenness(runs: list[Array], thickness: float) -> float:
-    """Standard deviation of vertices across their boundary, by fourth differences: curves have none."""
+    """Standard deviation of vertices across their boundary, off cubics: smooth curves have none."""
     found = []
     for p in runs:
         edges = np.hypot(*np.diff(p, axis=0).T)
         if len(p) < LEAST_UNEVEN or np.median(edges) > SOFT_LENGTH * thickness:
             continue
-        fourth = p[:-4] - 4.0 * p[1:-3] + 6.0 * p[2:-2] - 4.0 * p[3:-1] + p[4:]
-        chord = p[4:] - p[:-4]
-        size = np.hypot(*chord.T)
-        size[size == 0.0] = 1.0
-        found.append(np.abs(chord[:, 0] * fourth[:, 1] - chord[:, 1] * fourth[:, 0]) / size)
+        found.append(_off_cubic(p))
     if not found:
         return 0.0
-    return float(np.median(np.concatenate(found))) / (0.6745 * np.sqrt(70.0))
+    return float(np.median(np.concatenate(found))) / 0.6745
+
+
+def _off_cubic(p: Array) -> Array:
+    """Distance of vertices from the cubic through two neighbours to each side, over its own spread [L]."""
+    s = np.concatenate([[0.0], np.cumsum(np.hypot(*np.diff(p, axis=0).T))])
+    around = [s[:-4], s[1:-3], s[3:-1], s[4:]]
+    at = s[2:-2]
+    weights = []
+    for k, own in enumerate(around):
+        others = [other for i, other in enumerate(around) if i != k]
+        weights.append(np.prod([(at - o) / (own - o) for o in others], axis=0))
+    places = [p[:-4], p[1:-3], p[3:-1], p[4:]]
+    off = p[2:-2] - sum(w[:, None] * q for w, q in zip(weights, places, strict=True))
+    chord = p[4:] - p[:-4]
+    size = np.hypot(*chord.T)
+    size[size == 0.0] = 1.0
+    spread = np.sqrt(1.0 + sum(w * w for w in weights))
+    return np.abs(chord[:, 0] * off[:, 1] - chord[:, 1] * off[:, 0]) / (size * spread)
 
 
 def _evened(

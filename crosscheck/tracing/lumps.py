@@ -13,6 +13,8 @@ from crosscheck.tracing.model import Lump, TracedWall, WallModel
 
 # Least area of a lump over the squared thickness of the wall that it lies on.
 LEAST = 0.4
+# Parts thinner than twice this share of the wall's thickness are no lumps.
+SLIVER = 0.2
 # A lump no farther than this many thicknesses from a point sits at it.
 AT_POINT = 1.5
 
@@ -29,7 +31,7 @@ def with_lumps(model: WallModel, rebuilt: Polygon) -> WallModel:
         i = int(np.argmin([part.distance(line) for line in lines]))
         wall = model.walls[i]
         thickness = wall.fitted.at_thickness(0.5 * sum(wall.fitted.span))
-        if part.area < 0.05 * thickness**2:
+        if part.buffer(-SLIVER * thickness).is_empty:
             continue
         apart = [float(shapely.Point(*p.place).distance(part.centroid)) for p in model.points]
         n = int(np.argmin(apart))

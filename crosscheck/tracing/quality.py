@@ -6,6 +6,8 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from scipy.sparse import coo_matrix
+from scipy.sparse.csgraph import connected_components
 from shapely.geometry import Polygon
 
 import fe_models
@@ -25,6 +27,8 @@ MOST_APART = 0.02
 MOST_DISTANT = 0.5
 # Area, and centroid over the overall size, nearer than this are one section's to compare (its limit: 0.005).
 AGREES = 0.004
+# Walls at a point whose directions differ by less run on [cosine].
+ONWARD = 0.98
 # Rise of a chord of the rebuilt outline over the mean thickness.
 RISE = 1e-3
 # Boundaries nearer to a lump than this many roots of its area are its own.
@@ -173,6 +177,24 @@ def _segments(polygon: Polygon) -> Array:
     return np.asarray(shapely.linestrings(np.concatenate(parts)))
 
 
+def _slenderness(model: WallModel) -> list[float]:
+    """Length over thickness of walls [-], those that run on smoothly taken as one."""
+    walls = model.walls
+    pairs = []
+    for n in range(len(model.points)):
+        at = [(i, k) for i, w in enumerate(walls) for k, p in enumerate((w.start, w.end)) if p == n]
+        if len(at) == 2:
+            a, b = (walls[i].fitted.tangent(walls[i].fitted.span[k]) * (1 - 2 * k) for i, k in at)
+            if a @ b < -ONWARD:
+                pairs.append((at[0][0], at[1][0]))
+    rows = np.array(pairs, dtype=int).reshape(-1, 2)
+    graph = coo_matrix((np.ones(len(rows)), rows.T), shape=(len(walls), len(walls)))
+    chain = connected_components(graph, directed=False)[1]
+    lengths = np.array([w.length for w in walls])
+    thickness = np.array([max(w.thickness) for w in walls])
+    return [float(lengths[chain == c].sum() / thickness[chain == c].max()) for c in np.unique(chain)]
+
+
 def _unsuited(model: WallModel) -> tuple[str, ...]:
     """Reasons against thin-walled theory, with their numbers."""
     reasons = []
@@ -181,7 +203,7 @@ def _unsuited(model: WallModel) -> tuple[str, ...]:
             f"only {100 * model.clear_share:.0f} % of the area lies in walls clear of their joints and ends "
             f"(at least {100 * LEAST_CLEAR:.0f} % expected)"
         )
-    slender = max(w.length / max(w.thickness) for w in model.walls)
+    slender = max(_slenderness(model))
     if slender < LEAST_SLENDER:
         reasons.append(
             f"the longest wall is {slender:.2g} times as long as thick (at least {LEAST_SLENDER:g} expected)"
