@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 
 from crosscheck.commands.arguments import complain, told_progress
 from crosscheck.commands.batch_arguments import add_family_arguments, family_of, hands_of
+from crosscheck.commands.tracing_cost import tell_tracing_cost
 from crosscheck.exit_status import ExitStatus
 
 if TYPE_CHECKING:
@@ -94,6 +95,7 @@ def run(arguments: argparse.Namespace) -> int:
         return ExitStatus.BAD_INPUT
     console = Console(highlight=False, markup=False, emoji=False)
     console.print(threshold_screen(found, console.width, arguments.out))
+    tell_tracing_cost(arguments)
     return study_status(found)
 
 

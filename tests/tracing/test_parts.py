@@ -7,18 +7,22 @@ import time
 from pathlib import Path
 
 import pytest
+import shapely
+import shapely.affinity
 from drawn_parts import (
     block,
     bulb_extrusion,
     channel_polygon,
     drawn,
     filleted_extrusion,
+    of_polygon,
     rounded_box_polygon,
     scanned,
     star,
     thick_ring,
 )
 from numpy.testing import assert_allclose
+from shapely.geometry import box
 
 from crosscheck.case_files import case_folder
 from crosscheck.section_file.reader import read_section
@@ -102,3 +106,37 @@ def test_solid_parts_are_said_to_be_no_thin_walls(solid: Solid, number: str) -> 
     assert not found.quality.good
     assert any(number in reason for reason in found.quality.unsuited)
     assert "thin-walled theory has no business here" in found.text
+
+
+def test_webs_close_together_keep_their_places() -> None:
+    """Two webs nearer than a joint on one flange: two joints and the flange between them."""
+    found = found_in(
+        of_polygon(shapely.union_all([box(0, 0, 80, 2), box(30, 0, 32, 40), box(35, 0, 37, 40)]))
+    )
+    assert (len(found.model.walls), len(found.model.points)) == (5, 6)
+    joints = sorted(float(p.place[0]) for p in found.model.points if p.kind == "joint")
+    assert_allclose(joints, [31.0, 36.0], atol=1e-6)
+    assert found.quality.apart is not None
+    assert_allclose(found.quality.apart, 0.0, atol=1e-6)
+
+
+def test_step_of_thickness_is_where_it_is_drawn() -> None:
+    found = found_in(
+        of_polygon(shapely.union_all([box(0, -2, 40, 2), box(40, -1, 90, 1), box(88, -1, 90, 30)]))
+    )
+    assert any(abs(p.place[0] - 40.0) < 1e-6 and abs(p.place[1]) < 1e-6 for p in found.model.points)
+    assert_allclose(thicknesses(found), [2.0, 4.0], rtol=1e-6)
+
+
+def test_walls_off_each_other_s_midline_are_moved_and_said_to_be() -> None:
+    found = found_in(of_polygon(shapely.union_all([box(0, 0, 40, 4), box(40, 0, 90, 2), box(88, 0, 90, 30)])))
+    assert any("moved by 0.5" in remark.text for remark in found.remarks)
+    assert "[1]" in found.text
+
+
+@pytest.mark.parametrize("degrees", [17.0, 33.0, 90.0])
+def test_walls_do_not_depend_on_how_the_drawing_lies(degrees: float) -> None:
+    turned = shapely.affinity.rotate(channel_polygon(), degrees)
+    found = found_in(of_polygon(turned))
+    assert (len(found.model.walls), len(found.model.points)) == (4, 5)
+    assert_allclose(thicknesses(found), 2.4, rtol=1e-6)
