@@ -27,7 +27,7 @@ def suite_checks(side: str | None = None, rows: bool = True, quick: bool = False
     chosen = [job for job in jobs if side is None or _of(job, side)]
     if quick:
         chosen = [job for job in chosen if job.quick or not (isinstance(job, CodeCheck) or job.needs_fe)]
-    chosen.sort(key=lambda job: (not job.quick, not isinstance(job, CodeCheck)))
+    chosen.sort(key=_cost)
     return tuple((_name(job), partial(_passes, job)) for job in chosen)
 
 
@@ -47,6 +47,13 @@ def _passes(job: Job) -> bool:
 def _name(job: Job) -> str:
     """Unique: rows of two files may bear one name."""
     return job.name if isinstance(job, CodeCheck) else f"{job.file}: {job.name}"
+
+
+def _cost(job: Job) -> int:
+    """Quick code checks of one side, then of both, theory's rows, and what takes longer."""
+    if isinstance(job, CodeCheck):
+        return (0 if job.side != "both" else 1) if job.quick else 3
+    return 4 if job.needs_fe else 2
 
 
 def _of(job: Job, side: str) -> bool:

@@ -20,10 +20,16 @@ Array = NDArray[np.float64]
 
 
 @cache
-def solved(name: str) -> tuple[Shape, beam_theory.Solution, fe_models.Solution]:
-    """A shape solved by both sides."""
+def by_theory(name: str) -> tuple[Shape, beam_theory.Solution]:
+    """A shape and what classical theory makes of it."""
     shape = SHAPES[name]()
-    return shape, beam_theory.solve(shape.theory()), fe_models.solve(shape.solid())
+    return shape, beam_theory.solve(shape.theory())
+
+
+@cache
+def by_fe(name: str) -> fe_models.Solution:
+    """What finite elements make of a shape."""
+    return fe_models.solve(SHAPES[name]().solid())
 
 
 def slopes(value: dict[str, float]) -> Array:
@@ -42,7 +48,7 @@ def resultants(name: str) -> Finding:
 
     Units Vx and Vy act through theory's shear centre. The torque of walls in no cell is added to unit T's.
     """
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     pole = np.array([theory.require("shear_centre_x"), theory.require("shear_centre_y")])
     size = float(np.ptp(np.array(list(shape.points.values())), axis=0).max())
     wanted = {
@@ -68,7 +74,7 @@ def resultants(name: str) -> Finding:
 
 def balance(name: str) -> Finding:
     """Along every wall and at every point of theory's midlines: dq/ds = -e t f, booms step q by -e A f."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     value = {n: theory.require(n) for n in MOMENTS}
     centre, slope = np.array([value["centroid_x"], value["centroid_y"]]), slopes(value)
     worst = 0.0
@@ -95,7 +101,7 @@ def balance(name: str) -> Finding:
 
 def static_field(name: str) -> Finding:
     """Static fields of torsion and flexure tested with functions of one order more than their own."""
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     left = fe_models.imbalance(fe.fields)
     told = ", ".join(f"unit {u} {v:.1e}" for u, v in zip(("T", "Vx", "Vy"), left, strict=True))
     return Finding(float(left.max()), ROUND_OFF, f"Left over of one element's part: {told}.")
@@ -107,7 +113,7 @@ FREE = ("a-b", "f-c")
 
 def statics() -> Finding:
     """FE flows in walls with a free start against the load on what lies outside, f from FE's own moments."""
-    shape, _, fe = solved("open section")
+    shape, fe = SHAPES["open section"](), by_fe("open section")
     value = {n: fe.quantities[n].known for n in MOMENTS}
     centre, slope = np.array([value["centroid_x"], value["centroid_y"]]), slopes(value)
     worst = 0.0

@@ -8,7 +8,7 @@ from functools import partial
 import numpy as np
 
 import fe_models
-from crosscheck.verification.code_checks.equilibrium import MOMENTS, slopes, solved
+from crosscheck.verification.code_checks.equilibrium import MOMENTS, by_fe, by_theory, slopes
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
 
@@ -36,7 +36,7 @@ def _load(shape: Shape, wall: Wall, low: float, high: float) -> np.ndarray:
 
 def change(name: str) -> Finding:
     """q changes by minus the integral of e f between, f from FE's own moments; the flow of unit T is even."""
-    shape, _, fe = solved(name)
+    shape, fe = SHAPES[name](), by_fe(name)
     value = {n: fe.quantities[n].known for n in MOMENTS}
     centre, slope = np.array([value["centroid_x"], value["centroid_y"]]), slopes(value)
     worst, peak = np.zeros(3), np.zeros(3)
@@ -60,7 +60,7 @@ def change(name: str) -> Finding:
 
 def level(name: str) -> Finding:
     """Flows in every strip against theory's, over each load's peak: some t/b remains between them."""
-    shape, theory, fe = solved(name)
+    (shape, theory), fe = by_theory(name), by_fe(name)
     units = [theory.unit_flow(n) for n in ("Vx", "Vy", "T")]
     peak, worst = np.zeros(3), np.zeros(3)
     for wall in shape.walls:
@@ -83,7 +83,7 @@ def closing(name: str) -> Finding:
     The flow of a strip is taken for the whole wall, and what the thickness carries by itself is left out:
     a share of some t/b remains.
     """
-    shape, theory, fe = solved(name)
+    (shape, theory), fe = by_theory(name), by_fe(name)
     total = 0.0
     for wall in shape.walls:
         span = fe.strips[wall.name]

@@ -175,6 +175,7 @@ CHECKS = (
             GROUP,
             "both",
             partial(corrected, name),
+            quick=name in ("bent channel", "round tube"),
             features={"bend"} if "bent" in name else (),
         )
         for name in SOLIDS

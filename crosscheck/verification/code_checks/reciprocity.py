@@ -9,7 +9,7 @@ import numpy as np
 
 import beam_theory
 from crosscheck.verification.check import Side
-from crosscheck.verification.code_checks.equilibrium import MOMENTS, slopes, solved
+from crosscheck.verification.code_checks.equilibrium import MOMENTS, by_fe, by_theory, slopes
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES
 
@@ -19,7 +19,7 @@ ROUND_OFF = 1e-9
 
 def flexure_coupling(name: str) -> Finding:
     """Work of unit Vx on the warping of unit Vy and the other way round, and the energy of both together."""
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     fields = fe.fields
     space, section, (x, y) = fields.space, fields.inertia, fields.flexure
     work = []
@@ -39,7 +39,7 @@ def flexure_coupling(name: str) -> Finding:
 
 def shear_centre_of_fe(name: str) -> Finding:
     """Torque of the kinematic flexure field against the work of its load on the warping of torsion."""
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     fields = fe.fields
     space, section = fields.space, fields.inertia
     omega = space.value(fields.torsion.potential)
@@ -57,7 +57,7 @@ def shear_centre_of_theory(name: str) -> Finding:
 
     Integrated along midlines that are worked out anew; the miss is told as a distance over the size.
     """
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     value = {n: theory.require(n) for n in MOMENTS}
     centre = np.array([value["centroid_x"], value["centroid_y"]])
     moment, mean = np.zeros(2), 0.0
@@ -86,7 +86,7 @@ def twist_of_a_line_of_action(name: str) -> Finding:
     Under a torque the section turns about the shear centre, so the centroid moves by twist times its
     distance; and the gap of warping round each cell gives the twist of the flows by itself.
     """
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     centre = (theory.require("centroid_x"), theory.require("centroid_y"))
     arm = np.array(centre) - [theory.require("shear_centre_x"), theory.require("shear_centre_y")]
     j = theory.require("torsion_constant")

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 import beam_theory
 import fe_models
-from crosscheck.verification.code_checks.equilibrium import UNITS, solved
+from crosscheck.verification.code_checks.equilibrium import UNITS, by_fe, by_theory
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES, Shape
 
@@ -25,7 +25,7 @@ def _ratio(one: float, two: float) -> float:
 
 def theory_moments(name: str) -> Finding:
     """Area, centroid and second moments of theory against sums over midlines that are worked out anew."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     rows = [
         np.column_stack([line.place, w.e * w.direct_share * line.thickness * line.weight])
         for w in shape.walls
@@ -54,7 +54,7 @@ def theory_torsion(name: str) -> Finding:
 
     The walls that carry none of the cells' flow share what is left of the torque.
     """
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     flow = theory.unit_flow("T")
     energy, open_stiffness = 0.0, 0.0
     for wall in shape.walls:
@@ -73,7 +73,7 @@ def theory_torsion(name: str) -> Finding:
 
 def theory_shear_areas(name: str) -> Finding:
     """A_Vx, A_Vy against the energy of the unit flows, summed along midlines that are worked out anew."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     worst = 0.0
     for unit, quantity in zip(UNITS, ("shear_area_x", "shear_area_y"), strict=False):
         flow = theory.unit_flow(unit)
@@ -88,7 +88,7 @@ def theory_shear_areas(name: str) -> Finding:
 
 def theory_warping(name: str) -> Finding:
     """omega from d omega/ds = q_T/(g t) - p, and I_w as the integral of its square, both summed anew."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     pole = np.array([theory.require("shear_centre_x"), theory.require("shear_centre_y")])
     flow, j = theory.unit_flow("T"), theory.require("torsion_constant")
     worst, square = 0.0, 0.0
@@ -116,7 +116,7 @@ def theory_warping_by_sectorial_flow() -> Finding:
 
     Summed in small steps with the trapezium rule, which is second order: 2000 steps a wall.
     """
-    shape, _, _ = solved("open section")
+    shape = SHAPES["open section"]()
     chain = [w for w in shape.walls if w.name != "f-c"]
     plain = Shape(shape.points, tuple(chain), {})
     solved_chain = _theory(plain)
@@ -148,7 +148,7 @@ def fe_torsion(name: str) -> Finding:
     Energies and torques agree by Galerkin's equations and by the equilibrium of the static field; the
     interval lies between them.
     """
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     fields, j = fe.fields, fe.quantities["torsion_constant"]
     high, low = (fields.energy(f) for f in (fields.torsion.kinematic, fields.torsion.static))
     above, below = (fields.torque(f) for f in (fields.torsion.kinematic, fields.torsion.static))
@@ -175,7 +175,7 @@ def fe_shear(name: str) -> Finding:
 
     The two torques may differ by no more than the product of both gaps (Cauchy and Schwarz).
     """
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     fields = fe.fields
     worst, told = 0.0, []
     for axis, quantity, sign in ((1, "shear_centre_x", 1.0), (0, "shear_centre_y", -1.0)):
@@ -201,7 +201,7 @@ def fe_shear(name: str) -> Finding:
 
 def fe_moments(name: str) -> Finding:
     """Area and second moments by the divergence theorem round the outline against sums over the elements."""
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     space = fe.fields.space
     area = space.integral(np.ones(space.points.shape[:2]))
     exact = fe.outline.moments(fe.fields.inertia.centroid)
@@ -216,7 +216,7 @@ def fe_warping(name: str) -> Finding:
 
     I_w(S) = I_w(C) - [I_wx I_wy] [Iyy Ixy; Ixy Ixx]^-1 [I_wx I_wy]: the least of all poles.
     """
-    _, _, fe = solved(name)
+    fe = by_fe(name)
     fields, iw = fe.fields, fe.quantities["warping_constant"]
     space, e = fields.space, fields.moduli.e[:, None]
     omega = space.value(fields.torsion.potential)

@@ -11,7 +11,7 @@ import numpy as np
 
 import fe_models
 from beam_theory.checks import checks
-from crosscheck.verification.code_checks.equilibrium import solved
+from crosscheck.verification.code_checks.equilibrium import by_fe, by_theory
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES
 from fe_models.checks import self_checks
@@ -21,7 +21,7 @@ GROUP = "self-checks"
 
 def sound(name: str) -> Finding:
     """Every self-check of both sides on a shape."""
-    _, theory, fe = solved(name)
+    (_, theory), fe = by_theory(name), by_fe(name)
     failed = [c.name for c in theory.checks if not c.passed] + [c.name for c in fe.checks if not c.passed]
     count = len(theory.checks) + len(fe.checks)
     return Finding(
@@ -33,7 +33,7 @@ def sound(name: str) -> Finding:
 
 def theory_can_fail() -> Finding:
     """Each self-check of theory with one number of the solution changed by a thousandth."""
-    _, good, _ = solved("curved nose")
+    _, good = by_theory("curved nose")
     assert good.shear is not None
     assert good.warp is not None
     pole = good.warp.pole
@@ -64,7 +64,7 @@ def theory_can_fail() -> Finding:
 
 def fe_can_fail() -> Finding:
     """Each self-check of finite elements with one field or number changed by 1e-5."""
-    _, _, good = solved("two cells, two materials")
+    good = by_fe("two cells, two materials")
     fields, found = good.fields, dict(good.quantities)
 
     def failing(changed: fe_models.Fields = fields, **numbers: fe_models.Interval) -> set[str]:

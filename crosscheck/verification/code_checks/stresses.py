@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 import beam_theory
-from crosscheck.verification.code_checks.equilibrium import solved
+from crosscheck.verification.code_checks.equilibrium import by_theory
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES, Shape
 
@@ -48,7 +48,7 @@ def _fibres(shape: Shape, theory: beam_theory.Solution) -> Array:
 
 def resultants(name: str) -> Finding:
     """N, Mx, My and B of the direct stress, summed over the fibres, against the loads."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     found = _fibres(shape, theory)
     x, y, omega, area = found[:, :4].T
     worst = 0.0
@@ -70,7 +70,7 @@ def faces(name: str) -> Finding:
 
     The mean shear is q/t; von Mises stress is the root of sigma^2 + 3 tau^2.
     """
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     worst = 0.0
     for load in LOADS:
         case = beam_theory.stress(theory, load)
@@ -100,7 +100,7 @@ def faces(name: str) -> Finding:
 
 def peaks(name: str) -> Finding:
     """Largest stresses, and their envelope over all loads, against a dense search."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     cases = [beam_theory.stress(theory, load) for load in LOADS]
     over = {(r.kind, r.wall): r for r in beam_theory.envelope(theory, LOADS).walls}
     u, worst = np.linspace(0.0, 1.0, PLACES), 0.0
@@ -122,7 +122,7 @@ def peaks(name: str) -> Finding:
 
 def flow_peaks(name: str) -> Finding:
     """Largest flows of unit and other loads, and where they stand still, against a dense search."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     loads = (beam_theory.Load("Vx", (1.0, 0.0)), beam_theory.Load("Vy", (0.0, 1.0)), *LOADS[1:])
     flows = [theory.flow(load) for load in loads]
     u, worst = np.linspace(0.0, 1.0, PLACES), 0.0
@@ -144,7 +144,7 @@ def flow_peaks(name: str) -> Finding:
 
 def numbers_from_faces(name: str) -> Finding:
     """Section moduli, torsion modulus and Wagner coefficients against the real faces and sums over fibres."""
-    shape, theory, _ = solved(name)
+    shape, theory = by_theory(name)
     made = beam_theory.faces.face_quantities(theory)
     centre = np.array([theory.require("centroid_x"), theory.require("centroid_y")])
     pole = np.array([theory.require("shear_centre_x"), theory.require("shear_centre_y")])
@@ -199,7 +199,7 @@ def numbers_from_faces(name: str) -> Finding:
 
 def stiffnesses() -> Finding:
     """Stiffnesses of theory for E = 70, G = 27 against the quantities they are made from."""
-    _, theory, _ = solved("open section")
+    _, theory = by_theory("open section")
     made = beam_theory.stiffness(theory, 70.0, 27.0, (3.0, -2.0))
     q = theory.require
     want = {
