@@ -10,6 +10,7 @@ to the next the flux of (1) is not continuous: phi is given jumps along such edg
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cache
 
 import numpy as np
 
@@ -83,6 +84,12 @@ def boundary_values(on: Contours, slopes: Array) -> Array:
     return values[on.space.nodes] + step
 
 
+@cache
+def _gauss(points: int) -> tuple[Array, Array]:
+    """Gauss points and weights on -1..1; making them costs more than using them."""
+    return np.polynomial.legendre.leggauss(points)
+
+
 def _rises(on: Contours, elements: Index, sides: Index, slopes: Array) -> Array:
     """Integral of (2) with e = 1 from the start of element edges to each of their nodes, (m, p + 1)."""
     order = on.space.element.order
@@ -92,7 +99,7 @@ def _rises(on: Contours, elements: Index, sides: Index, slopes: Array) -> Array:
     lagrange = np.linalg.inv(np.vander(u, increasing=True))
     powers = np.arange(order + 1)
     # exact for the edge's own polynomial: degree 2p of x^2 times p - 1 of dy
-    g, w = np.polynomial.legendre.leggauss((3 * order) // 2 + 1)
+    g, w = _gauss((3 * order) // 2 + 1)
     out = np.zeros(places.shape[:2])
     for n in range(1, order + 1):
         t = 0.5 * u[n] * (g + 1.0)
