@@ -15,7 +15,9 @@ import beam_theory
 import fe_models
 from crosscheck.case_files import case_folder
 from crosscheck.comparison.comparing import compare
-from crosscheck.comparison.result import QuantityResult, Result
+from crosscheck.comparison.quantities import QUANTITIES
+from crosscheck.comparison.result import FeValue, QuantityResult, Result
+from crosscheck.comparison.verdicts import section_yardstick
 from crosscheck.comparison.verdicts import verdict as verdict_of
 from crosscheck.section_file.reader import read_section
 from crosscheck.verification.code_checks.finding import Finding, code_check
@@ -156,6 +158,29 @@ def borders() -> Finding:
     return Finding(
         float(len(wrong)), 0.0, f"{2 * len(table)} verdicts at criterion 0.05; wrong: {wrong or 'none'}."
     )
+
+
+def yardsticks() -> Finding:
+    """What differences are divided by, for numbers by hand: I_w over the larger of itself and J D^2."""
+
+    def fe(**numbers: float) -> dict[str, FeValue]:
+        return {n: FeValue(v, v, v, "exact") for n, v in numbers.items()}
+
+    moments = fe(second_moment_xx=9.0, second_moment_yy=4.0, principal_moment_u=12.0, principal_moment_v=3.0)
+    own = {"principal_moment_u": 12.0, "principal_moment_v": 3.0}
+    table = (
+        ("warping_constant", fe(warping_constant=3.0, torsion_constant=2.0), 200.0),
+        ("warping_constant", fe(warping_constant=300.0, torsion_constant=2.0), 300.0),
+        ("shear_centre_x", fe(shear_centre_x=0.0), 10.0),
+        ("product_moment_xy", moments, 6.0),
+        ("principal_angle", moments, 6.0 / 9.0),
+        ("area", fe(area=-5.0), 5.0),
+    )
+    worst = 0.0
+    for name, numbers, want in table:
+        got = section_yardstick(QUANTITIES[name], own, numbers, 10.0).value
+        worst = max(worst, math.inf if got is None else abs(got / want - 1.0))
+    return Finding(worst, 1e-12, f"{len(table)} yardsticks; largest difference {worst:.1e}.")
 
 
 def loads() -> Finding:
