@@ -6,6 +6,8 @@ import json
 import math
 from pathlib import Path
 
+import meshio
+import numpy as np
 import pytest
 from drawn_parts import block, filleted_extrusion, save_dxf, scanned, star, thick_ring
 from numpy.testing import assert_allclose
@@ -154,3 +156,14 @@ def test_bad_input_in_one_line(
     said = capsys.readouterr().err.strip()
     assert told in said
     assert "\n" not in said
+
+
+def test_a_triangle_mesh_is_a_drawing_too(tmp_path: Path) -> None:
+    places = [[0, 0, 0], [40, 0, 0], [40, 2, 0], [2, 2, 0], [2, 30, 0], [0, 30, 0]]
+    triangles = [[0, 1, 2], [0, 2, 3], [0, 3, 4], [0, 4, 5]]
+    path = tmp_path / "angle.vtu"
+    meshio.Mesh(np.array(places, dtype=float), [("triangle", np.array(triangles))]).write(path)
+    assert main(["idealise", str(path)]) == 0
+    section = read_section(tmp_path / "angle.toml")
+    assert [wall.thickness for wall in section.walls] == [(2.0, 2.0), (2.0, 2.0)]
+    assert main(["compare", str(tmp_path / "angle.toml")]) in (0, 1)
