@@ -231,6 +231,7 @@ def loads() -> Finding:
 CHECKS = (
     code_check("the file's section", GROUP, "both", same_section, quick=True, features={"two materials"}),
     code_check("rows redone", GROUP, "both", verdicts, quick=True),
+    code_check("yardsticks", GROUP, "both", yardsticks, quick=True),
     code_check("borders of the verdicts", GROUP, "both", borders, quick=True),
     code_check(
         "loads redone", GROUP, "both", loads, quick=True, features={"load on a line", "axial and moment"}
