@@ -3,11 +3,14 @@
 With k and s of ``fields`` and gap^2 = integral of |k - s|^2 / g:
 
     J      between  integral |k|^2/g - gap_T^2  and  integral |k|^2/g                            (1)
-    1/A_V  between  integral |s|^2/g - gap_V^2  and  integral |s|^2/g                            (2)
-    L      mean torque of both flexure fields, plus or minus gap_T gap_V / 2                     (3)
+    1/A_V  between  integral |k|^2/g  and  integral |k|^2/g + gap_V^2                            (2)
+    L      integral R.k - (1/2) integral (s - k).(s_T - k_T)/g,  plus or minus gap_T gap_V / 2   (3)
 
-(3) holds since the errors of k and of s are orthogonal to each other and both problems use the same spaces:
-the error of the mean is half the difference of two products, each bounded by Cauchy and Schwarz.
+(2) starts from k, whose energy is a lower bound whatever s is: on curved boundaries the stress function only
+interpolates what frees them of traction, and the energy of s is off by the work of what is left, to first
+order. (3) is half the torque of both fields where s is free of traction; since the errors of k and of s are
+orthogonal to each other and both problems use the same spaces, its error is half the difference of two
+products, each bounded by Cauchy and Schwarz. What is left of traction enters only times the error of k.
 """
 
 from __future__ import annotations
@@ -97,20 +100,22 @@ def torsion_constant(fields: Fields, basis: str) -> Interval:
 def shear_area(fields: Fields, axis: int, basis: str) -> Interval:
     """A_Vx (axis 0) or A_Vy (axis 1) from the energy of unit shear, equation (2) [L^2]."""
     pair = fields.flexure[axis]
-    most = fields.energy(pair.static)
-    gap = float(fields.gap(pair).sum())
-    least = most - gap - ROUND_OFF * most
-    most *= 1.0 + ROUND_OFF
+    energy = fields.energy(pair.kinematic)
+    most = energy + float(fields.gap(pair).sum()) + ROUND_OFF * energy
+    least = (1.0 - ROUND_OFF) * energy
     return Interval(0.5 * (1.0 / most + 1.0 / least), 1.0 / most, 1.0 / least, basis)
 
 
 def shear_centre(fields: Fields, extent: float, basis: str) -> tuple[Interval, Interval]:
     """x_s and y_s in the file's axes from the torque of unit Vy and Vx, equation (3) [L]."""
-    twist = float(fields.gap(fields.torsion).sum())
+    torsion = fields.torsion
+    twist = float(fields.gap(torsion).sum())
+    g = fields.moduli.g[:, None]
     found = []
     for axis, sign in ((1, 1.0), (0, -1.0)):
         pair = fields.flexure[axis]
-        torque = 0.5 * (fields.torque(pair.kinematic) + fields.torque(pair.static))
+        apart = np.sum((pair.static - pair.kinematic) * (torsion.static - torsion.kinematic), axis=-1) / g
+        torque = fields.torque(pair.kinematic) - 0.5 * fields.space.integral(apart)
         half = 0.5 * float(np.sqrt(twist * fields.gap(pair).sum())) + ROUND_OFF * extent
         place = float(fields.inertia.centroid[1 - axis]) + sign * torque
         found.append(around(place, half, basis))

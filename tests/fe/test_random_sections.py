@@ -49,7 +49,7 @@ def test_three_hundred_random_sections():
     assert all("NOT REACHED" in line for line in wrong), wrong
 
 
-@pytest.mark.parametrize("seed", [1, 4, 21])
+@pytest.mark.parametrize("seed", [1, 4, 21, 123, 231, 297])
 def test_intervals_of_coarse_and_fine_solutions_overlap(seed):
     coarse, fine = solve(random_section(seed), 1e-3), solve(random_section(seed), 1e-6)
     for name in BOUNDED:
