@@ -14,6 +14,8 @@ from crosscheck.comparison.result import Result
 from crosscheck.dossier.uncertainty import thickened
 from crosscheck.section_file.model import SectionFile
 
+# What a side raises where it cannot take a section; arithmetic that fails is told and not hidden.
+UNSOLVED = (fe_models.FeError, beam_theory.TheoryError, ArithmeticError)
 FACTORS = (0.25, 0.5, 1.0 / math.sqrt(2.0), 1.0, math.sqrt(2.0), 2.0, 2.0 * math.sqrt(2.0), 4.0)
 
 
@@ -69,7 +71,7 @@ def holding(section: SectionFile, nominal: Result, tell: Callable[[str], None]) 
         reason = ""
         try:
             made = nominal if factor == 1.0 else compare(thickened(section, factor), nominal.accuracy)
-        except (fe_models.FeError, beam_theory.TheoryError) as fault:
+        except UNSOLVED as fault:
             made, reason = None, " ".join(str(fault).split())
         found.append(made)
         reasons.append(reason)

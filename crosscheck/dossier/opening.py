@@ -69,10 +69,10 @@ def outcome(evidence: Sequence[SectionEvidence]) -> tuple[Block, ...]:
 
 
 def failed(result: Result) -> bool:
-    """Whether a verdict is not within or a check failed."""
-    return any(row.verdict not in ("within", None) for row in result.quantities) or not all(
-        check.passed for check in result.checks
-    )
+    """Whether a verdict is not within, of a stated value too, or a check failed."""
+    verdicts = [row.verdict for row in result.quantities] + [stated.verdict for stated in result.stated]
+    held = all(verdict in ("within", None) for verdict in verdicts)
+    return not (held and all(check.passed for check in result.checks))
 
 
 def counts(result: Result) -> tuple[int, int, int, int]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections import Counter
 from collections.abc import Callable, Iterator, Mapping, Sequence
 
 from crosscheck.comparison.result import Result
@@ -49,7 +50,7 @@ from crosscheck.reports.wording import (
 )
 
 MOST_CAUSES = 12
-STANDING_ORDER = ("outside", "at the edge", "inside", "not covered")
+STANDING_ORDER = ("outside", "at the edge", "inside")
 QUIET: Tone = "quiet"
 # Differences smaller than this have no causes told [-].
 LEAST_CAUSE = 5e-4
@@ -334,16 +335,24 @@ def _standings(evidence: SectionEvidence) -> tuple[Block, ...]:
         )
     names = {(row.name, row.load): name_of(row) for row in evidence.result.quantities}
     columns = (Column("standing", "word"), Column("quantity", "text", 1.0), Column("reason", "text", 2.2))
-    found = sorted(evidence.standings, key=lambda each: STANDING_ORDER.index(each.word))
+    told = [each for each in evidence.standings if each.word != "not covered"]
+    told.sort(key=lambda each: STANDING_ORDER.index(each.word))
     tones: dict[str, Tone] = {"outside": "bad", "at the edge": "doubt"}
-    return (
-        Table(
-            "Standing of this section to the envelope attached to the package",
-            columns,
-            tuple((each.word, names[each.name, each.load], each.reason) for each in found),
-            tuple(tones.get(each.word, "plain") for each in found),
-        ),
-    )
+    blocks: list[Block] = []
+    if told:
+        blocks.append(
+            Table(
+                "Standing of this section to the envelope attached to the package",
+                columns,
+                tuple((each.word, names[each.name, each.load], each.reason) for each in told),
+                tuple(tones.get(each.word, "plain") for each in told),
+            )
+        )
+    reasons = Counter(each.reason for each in evidence.standings if each.word == "not covered")
+    for reason, count in reasons.items():
+        words = f"Not covered by the envelope attached to the package, {count} quantities: {reason}."
+        blocks.append(Paragraph(words, "doubt"))
+    return tuple(blocks)
 
 
 def _warnings(evidence: SectionEvidence, figure: Figures) -> Chapter:

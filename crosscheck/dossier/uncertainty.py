@@ -70,7 +70,7 @@ def uncertainty(section: SectionFile, nominal: Result, tell: Callable[[str], Non
         tell(f"uncertainty, {source}")
         try:
             varied[source] = [[compare(each, nominal.accuracy) for each in way] for way in ways]
-        except (fe_models.FeError, beam_theory.TheoryError) as fault:
+        except (fe_models.FeError, beam_theory.TheoryError, ArithmeticError) as fault:
             notes.append(f"{source} was not re-solved: {fault}")
     if section.outline is not None:
         notes.append("the solid is given by its outline, which tolerances of the walls do not move")
