@@ -9,6 +9,9 @@ from .band import WallEnd
 from .boundary import EndKey, Piece, Ring
 from .joint import Joint
 
+# Shortest piece of boundary over the length of its wall.
+ROUND_OFF = 1e-9
+
 
 def rings(
     joints: Mapping[str, Joint], cuts: Mapping[EndKey, float], within: Collection[str]
@@ -64,7 +67,9 @@ def _face(end: WallEnd, sign: float, begin: float, stop: float) -> list[Piece]:
     bounds = [begin, stop]
     if not end.band.straight:
         low, high = min(begin, stop), max(begin, stop)
-        inner = [s for s in (0.0, end.band.length) if low < s < high]
+        # a straight part shorter than round-off is none
+        room = ROUND_OFF * end.band.length
+        inner = [s for s in (0.0, end.band.length) if low + room < s < high - room]
         bounds = [begin, *(inner if begin < stop else inner[::-1]), stop]
     return [
         Piece("face", end.side(a, sign), end.side(b, sign), end.band, side, (end.along(a), end.along(b)))

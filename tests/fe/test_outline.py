@@ -211,3 +211,17 @@ def test_wall_of_two_half_circles_is_a_round_bar():
     assert j.low <= np.pi / 2.0 * 2.5**4 <= j.high
     with pytest.raises(OutlineError, match="radius"):
         outline(Section(bar.points, bar.walls, {"a": Rounding(0.0, 2.6)}))
+
+
+def test_face_that_ends_where_its_arc_begins_to_round_off_is_one_piece():
+    # nose, web and a flange that runs on tangent to the nose: the face ends at the arc's end to 1e-14
+    points = {"low": (0.0, -68.0), "high": (0.0, 68.0), "edge": (32.0, -68.0)}
+    walls = (
+        Wall("nose", "high", "low", (0.6, 0.6), arc_through=(-68.0, 0.0)),
+        Wall("web", "low", "high", (0.9, 0.9)),
+        Wall("flange", "low", "edge", (0.9, 0.9)),
+    )
+    solid = outline(Section(points, walls))
+    pieces = [piece for cluster in solid.parts.clusters for ring in cluster.rings for piece in ring]
+    assert min(piece.length for piece in pieces) > 1e-6
+    assert solve(solid.section, 1e-3).met
