@@ -69,6 +69,20 @@ def quadrature() -> Finding:
     )
 
 
+def on_circles(order: int) -> Finding:
+    """Nodes of curved boundary sides lie on their circles, evenly by angle."""
+    vertices, triangles = trial_meshes.ring(1.0, 2.0, 1, 10)
+    on = fe_models.trial(vertices, triangles, order, circles=[((0.0, 0.0), 1.0), ((0.0, 0.0), 2.0)])
+    worst = 0.0
+    for loop, radius in zip(on.contours.loops, (2.0, 1.0), strict=True):
+        places = on.space.places[loop.elements[:, None], on.contours.edge_nodes[loop.sides]]
+        z = places[..., 0] + 1j * places[..., 1]
+        turn = np.angle(z[:, 1:] / z[:, :-1])
+        worst = max(worst, float(np.abs(np.abs(z) / radius - 1.0).max()))
+        worst = max(worst, float(np.abs(np.abs(turn) - 0.2 * np.pi / order).max()))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
 def triangle() -> Finding:
     """Equilateral triangle: omega is a cubic, J = sqrt(3) a^4/80 (Timoshenko and Goodier, art. 109)."""
     side = 2.0
@@ -112,6 +126,10 @@ CHECKS = (
         for order in (1, 2, 3, 4)
     ),
     code_check("quadrature", GROUP, "fe", quadrature, quick=True),
+    *(
+        code_check(f"nodes on circles, order {p}", GROUP, "fe", partial(on_circles, p), quick=True)
+        for p in (2, 3, 4)
+    ),
     code_check("torsion of an equilateral triangle", GROUP, "fe", triangle, quick=True),
     *(
         code_check(

@@ -33,6 +33,8 @@ LOADS = {
     "battery in a gust": (0.0, -48000.0, 0.0, 0.0, -920.0, (0.0, 0.0)),
     "battery in a turn": (700.0, -21000.0, 9000.0, 260.0, -410.0, (0.0, 31.0)),
 }
+# Loads of the file of two cells: Vx, Vy, and x, y of the line of action, its parameters worked out by hand.
+TAIL_LOADS = {"gust on the tail": (0.0, 3650.0, 77.5, 41.0), "rudder": (1280.0, 0.0, 0.0, 155.8)}
 LONG = ("area", "second_moment_xx", "second_moment_yy", "principal_moment_u", "principal_moment_v",
         "torsion_constant", "shear_area_x", "shear_area_y")  # fmt: skip
 PLACES = ("centroid_x", "centroid_y", "shear_centre_x", "shear_centre_y")
@@ -228,9 +230,31 @@ def loads() -> Finding:
     return Finding(worst, 1e-6, f"Largest difference {worst:.1e} ({where}) over {len(LOADS)} loads.")
 
 
+def combination() -> Finding:
+    """FE's flows of loads on two cells: Vx and Vy times the unit flows and T_sc times unit T's."""
+    result = compare(read_section(case_folder() / "sections" / "two_cell_tail_boom.toml"))
+    centre = [_row(result, f"shear_centre_{axis}").fe.value or 0.0 for axis in "xy"]
+    flows = {(w.load, w.wall): w.probes for w in result.flows}
+    peak, worst, count = 0.0, 0.0, 0
+    for name, (vx, vy, x, y) in TAIL_LOADS.items():
+        torque = (x - centre[0]) * vy - (y - centre[1]) * vx
+        for (load, wall), probes in flows.items():
+            if load != name:
+                continue
+            units = [flows[u, wall] for u in ("unit Vx", "unit Vy", "unit T")]
+            for probe, *unit in zip(probes, *units, strict=True):
+                if probe.fe is None:
+                    continue
+                want = sum(f * (u.fe or 0.0) for f, u in zip((vx, vy, torque), unit, strict=True))
+                worst, peak, count = max(worst, abs(probe.fe - want)), max(peak, abs(want)), count + 1
+    share = worst / peak if count else math.inf
+    return Finding(share, 1e-9, f"Largest difference {share:.1e} of the peak at {count} probes.")
+
+
 CHECKS = (
     code_check("the file's section", GROUP, "both", same_section, quick=True, features={"two materials"}),
     code_check("rows redone", GROUP, "both", verdicts, quick=True),
+    code_check("flows of loads from unit flows", GROUP, "fe", combination, features={"many cells"}),
     code_check("yardsticks", GROUP, "both", yardsticks, quick=True),
     code_check("borders of the verdicts", GROUP, "both", borders, quick=True),
     code_check(

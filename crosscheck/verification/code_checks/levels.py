@@ -83,6 +83,18 @@ def free_ends() -> Finding:
     )
 
 
+def round_tubes() -> Finding:
+    """Round tubes from hair-thin to nearly solid at level corrected: J and I by their closed formulas."""
+    worst, radius = 0.0, 100.0
+    for share in (1e-3, 0.012, 0.019, 0.021, 0.2, 0.8, 1.6):
+        t = share * radius
+        theory = beam_theory.solve(tube(t).theory(), "corrected")
+        inertia = 0.25 * np.pi * ((radius + 0.5 * t) ** 4 - (radius - 0.5 * t) ** 4)
+        for n, v in (("torsion_constant", 2.0), ("second_moment_xx", 1.0), ("second_moment_yy", 1.0)):
+            worst = max(worst, abs(theory.require(n) / (v * inertia) - 1.0))
+    return Finding(float(worst), 1e-11, f"Largest difference {worst:.1e} for t/R from 0.001 to 1.6.")
+
+
 def own_axis() -> Finding:
     """A slanted wall at level corrected: second moments and secondary warping of a rectangle b x t."""
     b, t, angle = 20.0, 1.5, 0.5
@@ -180,6 +192,7 @@ CHECKS = (
         )
         for name in SOLIDS
     ),
+    code_check("corrected, round tubes of any thickness", GROUP, "theory", round_tubes, quick=True),
     code_check("corrected, free ends of rectangles", GROUP, "theory", free_ends, quick=True),
     code_check("corrected, own-axis terms of a slanted wall", GROUP, "theory", own_axis, quick=True),
     code_check("corrected, warping constant comes nearer", GROUP, "both", warping_comes_nearer),

@@ -6,6 +6,47 @@ from fault import Fault
 
 B = "beam_theory/"
 THEORY = (
+    Fault(
+        "own thickness of cell walls",
+        B + "thick_torsion.py",
+        "float(own.sum()) + terms",
+        "0.9 * float(own.sum()) + terms",
+    ),
+    Fault(
+        "area of thick cells",
+        B + "thick_torsion.py",
+        "Torsion(flow, float(twice @ flow),",
+        "Torsion(flow, 1.01 * float(twice @ flow),",
+    ),
+    Fault(
+        "moments about the origin",
+        B + "shear.py",
+        "curves = pieces.curves.moved(-mass.centroid)",
+        "curves = pieces.curves",
+    ),
+    Fault(
+        "arms without a sign",
+        B + "curve.py",
+        "return cross(self.position(u), self.tangent(u))",
+        "return np.abs(cross(self.position(u), self.tangent(u)))",
+    ),
+    Fault(
+        "a length in millimetres inside",
+        B + "warping.py",
+        "largest <= ROUND_OFF * float(",
+        "largest <= 1e-3 + ROUND_OFF * float(",
+    ),
+    Fault("a coefficient of the tee", B + "corner_terms.py", "0.2204 * w +", "0.2304 * w +"),
+    Fault(
+        "a coefficient of the angle", B + "corner_terms.py", "0.076 * fillet / b)\n", "0.086 * fillet / b)\n"
+    ),
+    Fault(
+        "a cell's corner, length",
+        B + "corner_terms.py",
+        "return x1 - c1 + (x2 - c2) / b",
+        "return x1 - c1 + (x2 - c2)",
+    ),
+    Fault("a cell's corner, area", B + "corner_terms.py", "c - 1.25 * tangent", "c - 1.2 * tangent"),
     Fault("sign of the closing flow", B + "shear.py", "closing(graph, -sums)", "closing(graph, sums)"),
     Fault("sign of a boom's step", B + "shear.py", "balance = -graph.boom *", "balance = graph.boom *"),
     Fault("open walls by t^3/2", B + "torsion.py", "cubes / 3.0", "cubes / 2.0"),
