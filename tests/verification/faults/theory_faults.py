@@ -7,6 +7,9 @@ from fault import Fault
 B = "beam_theory/"
 THEORY = (
     Fault(
+        "arc of a bend twice as long", B + "bends.py", "first[1] * abs(turn)", "2.0 * first[1] * abs(turn)"
+    ),
+    Fault(
         "own thickness of cell walls",
         B + "thick_torsion.py",
         "float(own.sum()) + terms",
