@@ -84,7 +84,7 @@ def free_ends() -> Finding:
 
 
 def round_tubes() -> Finding:
-    """Round tubes from hair-thin to nearly solid at level corrected: J and I by their closed formulas."""
+    """Round tubes from hair-thin to nearly solid at level corrected: J, I and I/R by closed formulas."""
     worst, radius = 0.0, 100.0
     for share in (1e-3, 0.012, 0.019, 0.021, 0.2, 0.8, 1.6):
         t = share * radius
@@ -92,6 +92,8 @@ def round_tubes() -> Finding:
         inertia = 0.25 * np.pi * ((radius + 0.5 * t) ** 4 - (radius - 0.5 * t) ** 4)
         for n, v in (("torsion_constant", 2.0), ("second_moment_xx", 1.0), ("second_moment_yy", 1.0)):
             worst = max(worst, abs(theory.require(n) / (v * inertia) - 1.0))
+        modulus = beam_theory.faces.face_quantities(theory)["section_modulus_u_plus"].require("modulus")
+        worst = max(worst, abs(modulus * (radius + 0.5 * t) / inertia - 1.0))
     return Finding(float(worst), 1e-11, f"Largest difference {worst:.1e} for t/R from 0.001 to 1.6.")
 
 
@@ -116,6 +118,26 @@ def own_axis() -> Finding:
     }
     worst = max(abs(theory.require(n) / v - 1.0) for n, v in want.items())
     return Finding(worst, 1e-9, f"Largest difference {worst:.1e} of {len(want)} quantities of a rectangle.")
+
+
+def secondary_bimoment() -> Finding:
+    """Stress of a bimoment at level corrected: B/I_w omega, which changes by -n r_t across a wall."""
+    shape = SHAPES["open section"]()
+    theory = beam_theory.solve(shape.theory(), "corrected")
+    pole = np.array([theory.require("shear_centre_x"), theory.require("shear_centre_y")])
+    case = beam_theory.stress(theory, beam_theory.Load("B", bimoment=7.0))
+    rate = 7.0 / theory.require("warping_constant")
+    worst, peak = 0.0, 0.0
+    for wall in shape.walls:
+        line = shape.line(wall)
+        sigma = case.direct(wall.name, line.fraction)
+        tangent = line.step / np.hypot(*line.step.T)[:, None]
+        along = ((line.place - pole) * tangent).sum(axis=1)
+        omega = theory.warping_at(wall.name, line.fraction)
+        peak = max(peak, float(np.abs(sigma).max()))
+        worst = max(worst, float(np.abs(sigma.mean(axis=1) - rate * omega).max()))
+        worst = max(worst, float(np.abs(sigma[:, 0] - sigma[:, 1] + rate * line.thickness * along).max()))
+    return Finding(worst / peak, 1e-9, f"Largest difference {worst / peak:.1e} of the peak.")
 
 
 def warping_comes_nearer() -> Finding:
@@ -194,6 +216,7 @@ CHECKS = (
     ),
     code_check("corrected, round tubes of any thickness", GROUP, "theory", round_tubes, quick=True),
     code_check("corrected, free ends of rectangles", GROUP, "theory", free_ends, quick=True),
+    code_check("corrected, bimoment at both faces", GROUP, "theory", secondary_bimoment, quick=True),
     code_check("corrected, own-axis terms of a slanted wall", GROUP, "theory", own_axis, quick=True),
     code_check("corrected, warping constant comes nearer", GROUP, "both", warping_comes_nearer),
     *(code_check(f"lumped, {n}", GROUP, "theory", partial(lumped, n), quick=True) for n in SHAPES),
