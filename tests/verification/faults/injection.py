@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import ast
 import importlib
-import json
 import os
 import signal
 import sys
@@ -52,21 +51,23 @@ def turned_red(fault: Fault, first: Sequence[Check], then: Iterable[Check] = ())
         os.dup2(null, 2)
         warnings.simplefilter("ignore")
         signal.alarm(SECONDS)
-        try:
-            forget()
-            transplant(
-                importlib.import_module(fault.path.removesuffix(".py").replace("/", ".")), altered(fault)
-            )
-            red = [name for name, passes in first if not passes()]
-            if not red:
-                red = next(([name] for name, passes in then if not passes()), [])
-        except BaseException as broken:
-            red = [f"broke down: {type(broken).__name__}: {broken}"]
-        with os.fdopen(write, "w") as out:
-            json.dump(red, out)
+        with os.fdopen(write, "w", buffering=1) as out:
+            try:
+                forget()
+                module = importlib.import_module(fault.path.removesuffix(".py").replace("/", "."))
+                transplant(module, altered(fault))
+                red = 0
+                for name, passes in first:
+                    if not passes():
+                        red += 1
+                        out.write(f"{name}\n")
+                if not red:
+                    out.writelines(f"{n}\n" for n in [next((n for n, ok in then if not ok()), "")] if n)
+            except BaseException as broken:
+                out.write(f"broke down: {type(broken).__name__}: {broken}\n")
         os._exit(0)
     os.close(write)
     with os.fdopen(read) as told:
-        text = told.read()
-    os.waitpid(child, 0)
-    return json.loads(text) if text else ["no end within the time limit"]
+        red_names = told.read().splitlines()
+    _, status = os.waitpid(child, 0)
+    return red_names if status == 0 else [*red_names, "no end within the time limit"]
