@@ -133,10 +133,10 @@ def _check_versions(client: Any) -> None:
 
 
 def own_version() -> str:
-    """Version of this package where the call runs."""
-    from crosscheck.comparison.provenance import installed_version
+    """Version of this package and of its sources where the call runs."""
+    from crosscheck.comparison.provenance import code_digest, installed_version
 
-    return installed_version("crosscheck")
+    return f"{installed_version('crosscheck')} ({code_digest()[:12]})"
 
 
 def solve_on_cluster(content: bytes, point: Point) -> str:

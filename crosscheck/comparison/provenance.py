@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import hashlib
 import importlib.metadata
 import platform
 from collections.abc import Mapping
 from functools import cache
+from pathlib import Path
 
 from crosscheck.comparison.result import Provenance
 
@@ -19,6 +21,18 @@ def installed_version(package: str) -> str:
         return importlib.metadata.version(package)
     except importlib.metadata.PackageNotFoundError:
         return "not installed"
+
+
+@cache
+def code_digest() -> str:
+    """SHA-256 of the sources of both sides and of the comparison: a version that no one forgets to raise."""
+    root = Path(__file__).resolve().parents[2]
+    digest = hashlib.sha256()
+    for package in ("beam_theory", "crosscheck", "fe_models"):
+        for path in sorted((root / package).rglob("*.py")):
+            digest.update(f"{path.relative_to(root).as_posix()}\n".encode())
+            digest.update(path.read_bytes())
+    return digest.hexdigest()
 
 
 def provenance(

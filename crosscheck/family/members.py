@@ -10,7 +10,7 @@ from math import prod
 from typing import TYPE_CHECKING, Any, NamedTuple
 
 from crosscheck.batch.task import Outcome, Point, Task
-from crosscheck.comparison.provenance import PACKAGES, installed_version
+from crosscheck.comparison.provenance import PACKAGES, code_digest, installed_version
 from crosscheck.comparison.result import LEVELS, QuantityResult, Verdict
 from crosscheck.family.ranges import Range
 from crosscheck.faults import ExpressionError, Fault, SectionFaults, quoted
@@ -150,6 +150,7 @@ class Family:
             "accuracy": self.accuracy,
             "ratio": self.ratio,
             "version": installed_version("crosscheck"),
+            "code": code_digest(),
             "packages": {name: installed_version(name) for name in PACKAGES if name not in _NO_INFLUENCE},
             "python": platform.python_version(),
         }
