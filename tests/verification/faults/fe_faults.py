@@ -74,7 +74,12 @@ FE = (
         "around(high, 0.0 * gap",
     ),
     Fault("x_s and y_s exchanged", F + "intervals.py", "((1, 1.0), (0, -1.0))", "((1, 1.0), (0, 1.0))"),
-    Fault("gap added for the shear area", F + "intervals.py", "least = most - gap", "least = most + gap"),
+    Fault(
+        "gap taken off for the shear area",
+        F + "intervals.py",
+        "most = energy + float(fields.gap",
+        "most = energy - float(fields.gap",
+    ),
     Fault(
         "pole of the warping function", F + "intervals.py", "potential - (y_s * on", "potential + (y_s * on"
     ),

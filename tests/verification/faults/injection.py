@@ -56,13 +56,11 @@ def turned_red(fault: Fault, first: Sequence[Check], then: Iterable[Check] = ())
                 forget()
                 module = importlib.import_module(fault.path.removesuffix(".py").replace("/", "."))
                 transplant(module, altered(fault))
-                red = 0
-                for name, passes in first:
+                red = [out.write(f"{name}\n") for name, passes in first if not passes()]
+                for name, passes in () if red else then:
                     if not passes():
-                        red += 1
                         out.write(f"{name}\n")
-                if not red:
-                    out.writelines(f"{n}\n" for n in [next((n for n, ok in then if not ok()), "")] if n)
+                        break
             except BaseException as broken:
                 out.write(f"broke down: {type(broken).__name__}: {broken}\n")
         os._exit(0)
