@@ -168,7 +168,7 @@ def _notes(at: dict[str, Joint], parts: Partition) -> tuple[str, ...]:
             if chain.kind == "bevel":
                 made.append(f"sharp turn bevelled: {pair}")
             if chain.kind == "step":
-                made.append(f"step left between {pair}")
+                made.append(f"step in the faces where walls of unequal thickness meet nearly in line: {pair}")
     for cluster in parts.clusters:
         if cluster.walls:
             made.append(f"meshed as part of its joint, without a strip: {', '.join(cluster.walls)}")

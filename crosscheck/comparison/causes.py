@@ -1,10 +1,11 @@
 """Where a difference comes from: steps between the midline theory and the solid, one assumption at a time.
 
     midline [-> midline theory of the real walls, where the file gives each side its own]
-            -> own thickness, free ends and joints -> bends and fillets by theory
-            -> FE with sharp corners, nu = 0 -> FE as drawn, nu = 0
+            -> own thickness, free ends and joints -> bends and fillets by theory -> FE as drawn, nu = 0
             -> FE of the given outline, nu = 0, where the file gives one beside its walls
 
+Where theory has no corrected value the corners' share is FE's: midline -> FE with sharp corners -> FE as
+drawn. FE with sharp corners after theory's bends would only put back what they took away.
 The steps of a quantity add up to its difference. The order is fixed, and the split depends on it. A step that
 cannot be made is merged into the next one, which says so. Poisson's ratio stands beside.
 """
@@ -24,7 +25,8 @@ from crosscheck.section_file.model import SectionFile
 MODELS = "theory's idealised model in place of the real walls"
 OWN_THICKNESS = "own thickness, free ends and joints, published"
 BENDS = "bends and fillets, by theory"
-SOLID = "FE in place of theory, corners sharp"
+SOLID = "FE in place of theory"
+SHARP = "FE in place of theory, corners sharp"
 GIVEN = "FE of the given outline in place of theory"
 ROUNDING = "FE as drawn, corners rounded"
 TRACED = "the given outline in place of the walls' own solid"
@@ -44,7 +46,7 @@ class Stations:
     unrounded : mapping of name to beam_theory.Quantity, optional
         Level corrected with sharp corners; None where the section has no rounding.
     sharp : mapping of name to fe_models.Interval, optional
-        FE with sharp corners; None where the section has no rounding or its sharp solid cannot be built.
+        FE with sharp corners; None where no quantity needs it or the sharp solid cannot be built.
     drawn : mapping of name to fe_models.Interval
         FE as drawn; of the walls' own solid where the file gives an outline beside them.
     given : mapping of name to fe_models.Interval, optional
@@ -95,7 +97,9 @@ def stations(
             drawn = fe_models.solve(solid, accuracy).quantities
         except fe_models.OutlineError:
             built = False
-    if solid.corners and built:
+    # Theory's own bends make the step of the corners wherever its corrected level has a value.
+    lacking = any(value.value is not None and _missing(corrected, name) for name, value in midline.items())
+    if solid.corners and built and lacking:
         try:
             sharp = fe_models.solve(replace(solid, corners={}), accuracy).quantities
         except fe_models.OutlineError:
@@ -137,18 +141,24 @@ def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
         beside = NU.format(change=(last.with_nu - last.value) / scale)
     traced = last is not end and last.value is not None
     own = None if traced else beside
-    sharp = None if at.sharp is None else at.sharp.get(row.name)
+    sharp = at.sharp.get(row.name) if at.sharp is not None and _missing(at.corrected, row.name) else None
     if sharp is None or sharp.value is None:
         step, merged = (SOLID, None) if at.built else (GIVEN, UNDRAWN)
         change, doubt = (value - end.value) / scale, end.half_width / scale
         yield CauseStep(row.name, None, step, change, doubt, _both(note, merged, own))
     else:
-        yield CauseStep(row.name, None, SOLID, (value - sharp.value) / scale, sharp.half_width / scale, note)
+        yield CauseStep(row.name, None, SHARP, (value - sharp.value) / scale, sharp.half_width / scale, note)
         doubt = (sharp.half_width + end.half_width) / scale
         yield CauseStep(row.name, None, ROUNDING, (sharp.value - end.value) / scale, doubt, own)
     if traced and last.value is not None:
         doubt = (end.half_width + last.half_width) / scale
         yield CauseStep(row.name, None, TRACED, (end.value - last.value) / scale, doubt, beside)
+
+
+def _missing(level: Mapping[str, beam_theory.Quantity], name: str) -> bool:
+    """Whether a level of theory has no value of a quantity."""
+    found = level.get(name)
+    return found is None or found.value is None
 
 
 def _both(*notes: str | None) -> str | None:

@@ -9,6 +9,8 @@ from pathlib import Path
 from tempfile import TemporaryDirectory
 from typing import TYPE_CHECKING
 
+import numpy as np
+
 import beam_theory
 import fe_models
 from crosscheck.comparison import models
@@ -141,7 +143,7 @@ def join(
         quantities=tuple(rows),
         flows=loads.flows,
         theory_peaks=loads.theory_peaks,
-        stated=judge_stated(section, rows),
+        stated=judge_stated(section, rows, loads.flows),
         causes=causes(stations(section, levels.solutions, fe, accuracy, real), rows),
         working=sheets,
         mesh=MeshResult(fe.mesh.order, fe.mesh.unknowns, fe.mesh.elements, fe.mesh.strips, fe.mesh.joints),
@@ -166,12 +168,19 @@ def join(
         named_probes=loads.named_probes,
         load_kinds={load.name: load.kind for load in section.loads if load.kind is not None},
         models=two_models(section),
+        overall=_overall(fe),
         outline_alone=not levels.solutions,
         nu=None if fe.poisson is None else fe.poisson.nu,
         nu_reason=nu_reason,
         shear_coefficients=shear_coefficient_rows(levels, fe, values),
         field_files=field_files(fe, fields, section.length_unit),
     )
+
+
+def _overall(fe: fe_models.Solution) -> tuple[float, float]:
+    """Width and height of FE's solid [L]."""
+    width, height = np.ptp(fe.outline.loops[0], axis=0)
+    return float(width), float(height)
 
 
 def field_files(fe: fe_models.Solution, formats: Sequence[str], length_unit: str) -> dict[str, bytes]:

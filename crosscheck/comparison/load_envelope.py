@@ -95,7 +95,7 @@ def _stress_fields(kind: str, stresses: Sequence[LoadStress], judged: str) -> It
     for walls in zip(*(found.walls for found in stresses), strict=True):
         nothing = np.full((2, len(walls[0].s)), np.nan)
         # Of walls that carry direct stress on one side only there is no such stress to compare.
-        told = kind == "shear" or walls[0].same_share
+        told = kind == "shear" or walls[0].shear_only is None
         theory = [
             measure(kind, wall.theory[judged]) if told and judged in wall.theory else nothing
             for wall in walls

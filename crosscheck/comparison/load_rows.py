@@ -154,7 +154,7 @@ def stress_rows(
         rows.append(_surface_row(section, found, walls, levels, unit_walls, torque, extent))
     if case.unit:
         return rows
-    alike = tuple(wall for wall in found.walls if wall.both_sides and wall.same_share)
+    alike = tuple(wall for wall in found.walls if wall.both_sides and wall.shear_only is None)
     if case.has_direct and alike:
         rows.append(_peak_row(section, "direct_stress", "direct", found, alike))
     elif case.has_direct:

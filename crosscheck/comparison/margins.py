@@ -11,6 +11,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from crosscheck.comparison.load_results import Governing, Margin, WallEnvelope
 from crosscheck.comparison.panels import Panel
 from crosscheck.comparison.result import Effect
+from crosscheck.comparison.stress_comparison import SHEAR_ONLY
 from crosscheck.comparison.verdicts import ROUND_OFF
 from crosscheck.section_file.model import AllowableSpec
 
@@ -66,8 +67,8 @@ def _margin(allowable: AllowableSpec, kind: str, envelope: WallEnvelope, panel: 
     """Margin of one wall."""
     theory, fe = envelope.theory, envelope.fe
     reason = panel.reason
-    if kind in ("direct_stress", "von_mises_stress") and panel.seen_by == "both" and not panel.same_share:
-        theory, reason = None, "theory's wall carries shear only: its direct stress is in the booms"
+    if kind in ("direct_stress", "von_mises_stress") and panel.shear_only is not None:
+        theory, reason = None, SHEAR_ONLY.format(side=panel.shear_only)
     low = high = None
     if fe is not None and fe.value != 0.0:
         error = fe.error or 0.0

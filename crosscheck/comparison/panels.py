@@ -105,11 +105,12 @@ class Panel:
         return stretch.wall
 
     @property
-    def same_share(self) -> bool:
-        """Whether both sides let it carry direct stress, or both do not."""
+    def shear_only(self) -> str | None:
+        """The side whose wall alone carries no direct stress, "theory" or "FE"; None where both are alike."""
         if self.theory is None or self.fe is None:
-            return False
-        return (self.theory.wall.share_in_theory > 0.0) == (self.fe.wall.direct_share > 0.0)
+            return None
+        theory, fe = self.theory.wall.share_in_theory > 0.0, self.fe.wall.direct_share > 0.0
+        return None if theory == fe else "FE" if theory else "theory"
 
     @property
     def slenderness(self) -> float:

@@ -119,6 +119,8 @@ QUANTITIES: dict[str, QuantityKind] = {
     kind.name: kind for kind in (*SECTION_QUANTITIES, *MODULI, TORSION_MODULUS, *LOAD_QUANTITIES)
 }
 
+# The one that may be stated at a named probe.
+AT_PROBES = "flow_at_probes"
 # Quantities that belong to a load, by name.
 OF_A_LOAD = frozenset(kind.name for kind in LOAD_QUANTITIES)
 

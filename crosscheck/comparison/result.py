@@ -172,7 +172,8 @@ class StatedJudgement:
     ``measured_from``: datum of a position in words. ``difference_fe``, ``difference_theory``: stated minus
     FE and minus theory at ``level``, over the normaliser; ``level`` is the one that the file holds it to,
     else the nearest; ``near``: levels so near that the value may well come from them. ``place``: where a
-    stated position lies, in the file's axes [L].
+    stated position lies, in the file's axes [L]. ``probe``: the named place of a stated flow, whose
+    normaliser is FE's flow there.
     """
 
     quantity: str
@@ -197,6 +198,7 @@ class StatedJudgement:
     effect: Mapping[str, Effect] | None
     reason: str | None
     place: tuple[float, float] | None
+    probe: str | None = None
 
 
 @dataclass(frozen=True)
@@ -254,7 +256,8 @@ class Result:
     of values with nu, ``nu_reason``: why there are none; ``shear_coefficients``: A_V/A by two definitions.
     ``field_files``: mesh and fields of FE by file name, where asked for. ``walls_by_loads``: worst first.
     ``models``: what each side is made of, where the file gives them models of their own.
-    ``load_kinds``: "limit" or "ultimate" by load, as the file labels them.
+    ``load_kinds``: "limit" or "ultimate" by load, as the file labels them. ``overall``: width and height of
+    FE's solid [L].
     """
 
     title: str
@@ -295,6 +298,7 @@ class Result:
     named_probes: tuple[NamedProbe, ...] = ()
     load_kinds: Mapping[str, str] = field(default_factory=dict)
     models: TwoModels | None = None
+    overall: tuple[float, float] | None = None
 
     def require_drawing(self) -> Drawing:
         """The drawing; ValueError where the comparison was made without."""

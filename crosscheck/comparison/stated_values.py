@@ -2,7 +2,7 @@
 
 A stated value is judged like theory's: its difference from FE over the quantity's own normaliser, with the
 FE error, against its own tolerance. Positions are turned into the terms of their datum: coordinates from a
-place, or the distance from a wall's line.
+place, or the distance from a wall's midline.
 """
 
 from __future__ import annotations
@@ -13,17 +13,22 @@ from collections.abc import Mapping, Sequence
 import numpy as np
 
 from crosscheck.comparison import verdicts
+from crosscheck.comparison.named_probes import IN_JOINT
 from crosscheck.comparison.panels import line_of
 from crosscheck.comparison.quantities import OF_A_LOAD, QUANTITIES, QuantityKind
-from crosscheck.comparison.result import LEVELS, FeValue, QuantityResult, StatedJudgement
+from crosscheck.comparison.result import LEVELS, FeValue, QuantityResult, StatedJudgement, WallFlow
 from crosscheck.section_file.model import Place, SectionFile, StatedSpec
 
 # A stated value this near to a level of theory [share of the normaliser] comes from that method: half a unit
 # of the third digit, as handbooks print.
 NEAR = 5e-3
+# Behind the name of a wall that a position is measured from, whichever line of it the file gives.
+ITS_MIDLINE = "its midline"
 
 
-def judge_stated(section: SectionFile, rows: Sequence[QuantityResult]) -> tuple[StatedJudgement, ...]:
+def judge_stated(
+    section: SectionFile, rows: Sequence[QuantityResult], flows: Sequence[WallFlow] = ()
+) -> tuple[StatedJudgement, ...]:
     """Judgement of every stated value, in file order.
 
     Parameters
@@ -32,15 +37,18 @@ def judge_stated(section: SectionFile, rows: Sequence[QuantityResult]) -> tuple[
         Stated values, points and walls.
     rows : sequence of QuantityResult
         Every row of the comparison.
+    flows : sequence of WallFlow
+        Every wall under every load, for flows stated at named probes.
     """
     by_name = {(row.name, row.load): row for row in rows}
-    return tuple(_judge(section, stated, by_name) for stated in section.stated)
+    return tuple(_judge(section, stated, by_name, flows) for stated in section.stated)
 
 
 def _judge(
     section: SectionFile,
     stated: StatedSpec,
     rows: Mapping[tuple[str, str | None], QuantityResult],
+    flows: Sequence[WallFlow],
 ) -> StatedJudgement:
     """Judgement of one stated value."""
     kind = QUANTITIES[stated.quantity]
@@ -49,12 +57,35 @@ def _judge(
         return _unjudged(section, stated, kind, None, "the result has no such quantity for this load")
     if kind.axis is not None and stated.measured_from is not None:
         return _position(section, stated, kind, row, rows)
+    if stated.probe is not None:
+        return _at_probe(section, stated, kind, row, flows)
     scale = math.degrees(1.0) if row.unit == "rad" else 1.0
     theory = {level: None if value is None else scale * value for level, value in row.theory.items()}
     fe = _scaled(row.fe, scale)
     normaliser = None if row.normaliser is None else scale * row.normaliser
     place = _plain_place(stated, kind, rows)
     return _judgement(section, stated, kind, row, theory, fe, normaliser, None, place)
+
+
+def _at_probe(
+    section: SectionFile,
+    stated: StatedSpec,
+    kind: QuantityKind,
+    row: QuantityResult,
+    flows: Sequence[WallFlow],
+) -> StatedJudgement:
+    """Judgement of a flow at a named probe, over FE's flow there."""
+    wall, found = next(
+        (wall, probe)
+        for wall in flows
+        for probe in wall.probes
+        if wall.load == row.load and probe.label == stated.probe
+    )
+    if not found.fe or found.fe_error is None:
+        reason = wall.reason or (IN_JOINT if found.fe is None else "FE has no flow there")
+        return _unjudged(section, stated, kind, row, reason)
+    fe = FeValue(found.fe, found.fe - found.fe_error, found.fe + found.fe_error, "estimate")
+    return _judgement(section, stated, kind, row, found.levels, fe, abs(found.fe), None, None)
 
 
 def _load_of(section: SectionFile, stated: StatedSpec) -> str | None:
@@ -126,7 +157,7 @@ def _from_wall(
     row: QuantityResult,
     rows: Mapping[tuple[str, str | None], QuantityResult],
 ) -> StatedJudgement:
-    """Judgement of a distance from a wall's line: on either side; negative: on the left (x) or below (y)."""
+    """Judgement of a distance from a wall's midline, either side; negative: on the left (x), below (y)."""
     assert isinstance(stated.measured_from, str)
     wall = section.wall(stated.measured_from)
     line = line_of(section, wall)
@@ -137,7 +168,7 @@ def _from_wall(
     along = 0 if kind.axis == "right" else 1
     if abs(normal[along]) < 1e-9:
         axis = "x" if along == 0 else "y"
-        reason = f"wall {wall.name} runs along {axis}: no {axis} can be measured from its line"
+        reason = f"wall {wall.name} runs along {axis}: no {axis} can be measured from its midline"
         return _unjudged(section, stated, kind, row, reason)
     # Positive to the right, or up.
     normal = normal * math.copysign(1.0, normal[along])
@@ -166,7 +197,7 @@ def _from_wall(
         x, y = (entry.fe.value or 0.0 for entry in pair)
         move = side * stated.value - centre
         place = (float(x + move * normal[0]), float(y + move * normal[1]))
-    words = f"{wall.name} (its line)"
+    words = f"{wall.name} ({ITS_MIDLINE})"
     return _judgement(section, stated, kind, row, theory, fe, row.normaliser, words, place)
 
 
@@ -225,6 +256,7 @@ def _judgement(
         effect=verdicts.effect(kind, stated.value, fe.value, difference, uncertainty),
         reason=None,
         place=place,
+        probe=stated.probe,
     )
 
 
@@ -265,4 +297,5 @@ def _unjudged(
         effect=None,
         reason=reason,
         place=None,
+        probe=stated.probe,
     )

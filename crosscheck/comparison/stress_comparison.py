@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 FACES = ("left", "right")
 # Factor on the estimated error of a largest stress, see fe_peak.
 MAXIMUM_FACTOR = 2.0
+SHEAR_ONLY = "{side}'s wall carries shear only: its direct stress is in the booms"
 
 
 @dataclass(frozen=True)
@@ -47,7 +48,8 @@ class WallFaces:
     """Stress of one load in one wall: theory by level and FE, each (2, 2, n) as direct and shear by face.
 
     ``fe_error`` (2, 2, n). Theory's levels that have none are absent; FE is NaN outside the strip.
-    ``same_share``: both sides let the wall carry direct stress, or both do not.
+    ``shear_only``: the side whose wall alone carries no direct stress, so that neither that nor von Mises
+    stress can be compared.
     """
 
     wall: str
@@ -56,7 +58,7 @@ class WallFaces:
     theory: Mapping[str, Array]
     fe: Array
     fe_error: Array
-    same_share: bool = True
+    shear_only: str | None = None
 
     @property
     def both_sides(self) -> bool:
@@ -177,8 +179,7 @@ def load_stress(
         }
         fe, error = _fe_faces(case, torque, units[name])
         s = at * panel.line.length
-        same = panel.same_share or panel.seen_by != "both"
-        walls.append(WallFaces(name, tuple(probes[name]), s, by_level, fe, error, same))
+        walls.append(WallFaces(name, tuple(probes[name]), s, by_level, fe, error, panel.shear_only))
     return LoadStress(case, tuple(walls), reasons, reason)
 
 
@@ -293,11 +294,11 @@ def wall_stresses(found: LoadStress, judged: str, unit: str) -> tuple[WallStress
         theory = wall.theory.get(judged)
         faces = {face: _face_series(theory, wall, i) for i, face in enumerate(FACES)}
         labels = tuple(probe.label for probe in wall.probes)
-        made.append(
-            WallStress(
-                found.case.name, wall.wall, unit, tuple(float(s) for s in wall.s), labels, faces, found.reason
-            )
-        )
+        reason = found.reason
+        if reason is None and wall.shear_only is not None:
+            reason = SHEAR_ONLY.format(side=wall.shear_only)
+        s = tuple(float(s) for s in wall.s)
+        made.append(WallStress(found.case.name, wall.wall, unit, s, labels, faces, reason))
     return tuple(made)
 
 
@@ -307,13 +308,16 @@ def _face_series(theory: Array | None, wall: WallFaces, face: int) -> FaceSeries
     def of(kind: str, stress: Array | None) -> Series:
         return _series(None if stress is None else measure(kind, stress)[face])
 
+    # The direct stress of a wall that carries none is in its neighbours: it is not zero there but not told.
+    full = None if wall.shear_only == "theory" else theory
+    fe_full = None if wall.shear_only == "FE" else wall.fe
     return FaceSeries(
-        direct=of("direct", theory),
+        direct=of("direct", full),
         shear=of("shear", theory),
-        von_mises=of("von_mises", theory),
-        fe_direct=of("direct", wall.fe),
+        von_mises=of("von_mises", full),
+        fe_direct=of("direct", fe_full),
         fe_shear=of("shear", wall.fe),
-        fe_von_mises=of("von_mises", wall.fe),
+        fe_von_mises=of("von_mises", fe_full),
         fe_error=_series(wall.fe_error[1][face]),
     )
 

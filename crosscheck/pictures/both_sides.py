@@ -58,7 +58,8 @@ def both_sides_picture(result: Result, width_mm: int = 160) -> Figure | None:
         "thickness; they overlap on the inside of a corner and leave its outside open. Dashed: midlines."
     )
     if drawing.booms:
-        caption += " Round marks: booms, larger for more area."
+        caption += " Round marks: booms, larger for more area"
+        caption += "; open: FE alone sees it." if any(b.seen_by == "fe" for b in drawing.booms) else "."
     joints = joint_places(drawing, 1)
     extent = drawing.extent
     frame = frame_of([drawing.loops[0]]).grown(0.05 * extent)
@@ -102,8 +103,10 @@ def _draw_models(axes: Axes, result: Result) -> None:
     largest = max((boom.area for boom in drawing.booms), default=0.0)
     for boom in drawing.booms:
         size = 2.5 + 3.5 * (boom.area / largest) ** 0.5
-        colour = FE if boom.seen_by == "fe" else HAND
-        axes.plot(boom.x, boom.y, marker="o", ms=size, color=colour, mec="white", mew=0.4, zorder=6)
+        if boom.seen_by == "fe":
+            axes.plot(boom.x, boom.y, marker="o", ms=size, mfc="none", mec=FE, mew=1.0, zorder=7)
+        else:
+            axes.plot(boom.x, boom.y, marker="o", ms=size, color=HAND, mec="white", mew=0.4, zorder=6)
 
 
 def hatches(walls: Sequence[WallShape]) -> list[tuple[WallShape, str]]:

@@ -95,7 +95,7 @@ def _draw_group(axes: Axes, place: int, row: QuantityResult, steps: list[CauseSt
     axes.text(-0.02, place, one_line(name_of(row), letters), ha="right", va="center", fontsize=FONT,
               fontweight="bold", transform=beside)  # fmt: skip
     total = 100.0 * sum(c.change for c in steps)
-    axes.text(1.02, place, f"{total:+.2g} %", va="center", fontsize=FONT, fontweight="bold", transform=beside)
+    axes.text(1.02, place, _percent(total), va="center", fontsize=FONT, fontweight="bold", transform=beside)
     reached = total
     for step in steps:
         place += 1
@@ -106,5 +106,10 @@ def _draw_group(axes: Axes, place: int, row: QuantityResult, steps: list[CauseSt
         axes.plot((reached - error, reached + error), (place, place), color=FE, lw=1.3, marker="|", ms=5)
         axes.text(-0.02, place, one_line(step.step, letters), ha="right", va="center", fontsize=FONT - 0.5,
                   color=SOFT, transform=beside)  # fmt: skip
-        axes.text(1.02, place, f"{change:+.2g} %", va="center", fontsize=FONT - 0.5, transform=beside)
+        axes.text(1.02, place, _percent(change), va="center", fontsize=FONT - 0.5, transform=beside)
     return place + 1
+
+
+def _percent(share: float) -> str:
+    """A step in per cent; round-off is none."""
+    return "0 %" if abs(share) < 1e-8 else f"{share:+.2g} %"

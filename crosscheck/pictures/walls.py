@@ -100,6 +100,8 @@ def draw_dimension(
         fontsize=FONT - 0.5,
         color=SOFT,
         zorder=3,
+        # A line of action may cross it.
+        bbox={"facecolor": "white", "edgecolor": "none", "pad": 0.6},
     )
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from crosscheck.comparison.load_results import Governing
+from crosscheck.comparison.panels import ONLY_FE, ONLY_THEORY
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import LEVELS, Result
 from crosscheck.reports.result_table import Cell, ResultTable
@@ -24,7 +25,9 @@ def walls_table(result: Result) -> ResultTable:
         "other causes", "remark",
     )  # fmt: skip
     rows: list[tuple[Cell, ...]] = []
-    for row in result.walls_by_loads:
+    one_sided = [row for row in result.walls_by_loads if row.reason in (ONLY_FE, ONLY_THEORY)]
+    told = [row for row in result.walls_by_loads if row not in one_sided]
+    for row in (*told, *one_sided):
         cause = row.cause
         others = "; ".join(f"{s.step} {100 * s.change:+.2g} %" for s in row.steps if s is not cause) or None
         rows.append(
@@ -41,8 +44,10 @@ def walls_table(result: Result) -> ResultTable:
         "Walls by loads: shear flow where hand and FE are farthest apart, in per cent of the wall's own peak "
         "(hand high +, low -), worst first"
     )
+    if one_sided:
+        title += f"; walls that only one side sees ({len({row.wall for row in one_sided})}) are in the CSV"
     shown = ("wall", "load", "hand", "FE", "hand is [%]", "mean is [%]", "verdict", "largest cause", "remark")
-    return ResultTable("walls", title, columns, tuple(rows), shown)
+    return ResultTable("walls", title, columns, tuple(rows), shown, len(told))
 
 
 def margins_table(result: Result) -> ResultTable:

@@ -59,6 +59,7 @@ def document(result: Result) -> dict[str, Any]:
         "margins": _records(result.margins),
         "named_probes": _records(result.named_probes),
         "load_kinds": dict(result.load_kinds),
+        "overall": None if result.overall is None else list(result.overall),
         "models": None if result.models is None else asdict(result.models),
         "stiffness": [_property(row) for row in result.stiffness],
         "indicators": [_property(row) for row in result.indicators],

@@ -24,7 +24,8 @@ FORMATS = ("csv", "md", "html")
 class ResultTable:
     """Rows of words and numbers under their headings; None is an empty cell.
 
-    ``shown``: the columns that a screen, or a page, has room for; CSV has all.
+    ``shown``: the columns that a screen, or a page, has room for; CSV has all. ``told``: how many of the
+    rows, from the first, readers see; None for all.
     """
 
     name: str
@@ -32,6 +33,7 @@ class ResultTable:
     columns: tuple[str, ...]
     rows: tuple[tuple[Cell, ...], ...]
     shown: tuple[str, ...]
+    told: int | None = None
 
 
 @dataclass(frozen=True)
@@ -54,17 +56,18 @@ def cell_text(cell: Cell, column: str = "") -> str:
 
 
 def table_text(table: ResultTable) -> TableText:
-    """The columns shown, without those that are empty throughout."""
+    """The rows and columns shown, without columns that are empty throughout."""
+    rows = table.rows[: table.told]
     places = [
         table.columns.index(name)
         for name in table.shown
-        if any(row[table.columns.index(name)] is not None for row in table.rows)
+        if any(row[table.columns.index(name)] is not None for row in rows)
     ]
     return TableText(
         table.title,
         tuple(table.columns[i] for i in places),
-        tuple(tuple(cell_text(row[i], table.columns[i]) for i in places) for row in table.rows),
-        tuple(any(isinstance(row[i], float) for row in table.rows) for i in places),
+        tuple(tuple(cell_text(row[i], table.columns[i]) for i in places) for row in rows),
+        tuple(any(isinstance(row[i], float) for row in rows) for i in places),
     )
 
 

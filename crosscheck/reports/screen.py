@@ -325,15 +325,23 @@ def _notes(
     if not result.outline_alone:
         yield criteria_note(result), "dim"
     yield (
-        f"Checks: {passed} of {len(result.checks)} passed. FE: order {result.mesh.order}, "
-        f"{result.mesh.unknowns:,} unknowns, accuracy {one_line(result.accuracy_note, 200)}. "
-        f"{seconds:.2f} s.",
+        f"Checks: {passed} of {len(result.checks)} passed. FE: {_overall_text(result)}"
+        f"order {result.mesh.order}, {result.mesh.unknowns:,} unknowns, "
+        f"accuracy {one_line(result.accuracy_note, 200)}. {seconds:.2f} s.",
         "dim",
     )
     yield from ((line, "dim") for line in (restrained_line(result), poisson_line(result)) if line)
     yield (f"Pictures and result: {pictures}" if pictures else "Pictures: add --out FOLDER."), ""
     shared = FE_ASSUMPTIONS if result.outline_alone else SHARED_ASSUMPTIONS
     yield f"{shared} {SAFETY}", "dim"
+
+
+def _overall_text(result: Result) -> str:
+    """Overall size of the solid: it tells a face on the wrong side, or a slip in a coordinate."""
+    if result.overall is None:
+        return ""
+    width, height = result.overall
+    return f"solid {width:.4g} x {height:.4g} {result.length_unit}, "
 
 
 def _factor_notes(rows: Sequence[QuantityResult]) -> Iterator[tuple[str, str]]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
+from collections.abc import Set as AbstractSet
 from dataclasses import replace
 from typing import Literal
 
@@ -10,7 +11,7 @@ from rich.console import Group, RenderableType
 from rich.table import Table
 from rich.text import Text
 
-from crosscheck.comparison.load_results import NamedProbe, WallEnvelope
+from crosscheck.comparison.load_results import BoomFibre, Governing, NamedProbe, WallEnvelope
 from crosscheck.comparison.quantities import UNIT_LOADS
 from crosscheck.comparison.result import LEVELS, QuantityResult, Result
 from crosscheck.faults import one_line
@@ -26,6 +27,8 @@ WORTH_A_CAUSE = 0.5
 MOST_CAUSES = 3
 KIND_WORDS = {"flow": "flow", "direct": "direct stress", "von_mises": "von Mises stress"}
 NAMED = 3
+# Walls whose flows are off, told by name.
+MOST_NAMED = 8
 
 
 def levels_block(result: Result) -> Table | None:
@@ -109,6 +112,21 @@ def governing_lines(result: Result) -> Iterator[str]:
         entries = [entry for entry in result.wall_envelopes if entry.kind == kind and _counts(entry)]
         if entries:
             yield one_line(f"Governs, {words}: {_governs(entries)}", 400)
+        elif kind == "direct" and (booms := list(_at_booms(result))):
+            yield one_line(f"Governs, {words} at theory's booms: {_governs(booms, 'booms')}", 400)
+
+
+def _at_booms(result: Result) -> Iterator[WallEnvelope]:
+    """Largest direct stress of both sides at every boom of theory that both have one at."""
+    booms: dict[int, list[BoomFibre]] = {}
+    for fibre in result.boom_fibres:
+        if fibre.theory is not None and fibre.fe is not None:
+            booms.setdefault(fibre.boom, []).append(fibre)
+    for fibres in booms.values():
+        hand = max(fibres, key=lambda fibre: abs(fibre.theory or 0.0))
+        fe = max(fibres, key=lambda fibre: abs(fibre.fe or 0.0))
+        governing = Governing(hand.theory or 0.0, hand.load, 0.0), Governing(fe.fe or 0.0, fe.load, 0.0)
+        yield WallEnvelope("direct", hand.place, hand.unit, *governing, difference=None)
 
 
 def probe_lines(result: Result) -> Iterator[str]:
@@ -129,7 +147,7 @@ def probe_lines(result: Result) -> Iterator[str]:
             loads = [row for row in (hand.theory_fastener, fe.fe_fastener) if row is not None]
             values = ", FE ".join(number_text(abs(value)) for value in loads)
             only = "" if hand.theory_fastener is not None else "FE "
-            told += f"; one fastener, pitch {number_text(hand.pitch)}: {only}{values} {hand.fastener_unit}"
+            told += f"; one fastener, pitch {hand.pitch:g}: {only}{values} {hand.fastener_unit}"
         yield one_line(f"{label}: {told}", 300)
 
 
@@ -139,15 +157,25 @@ def wall_line(result: Result) -> str | None:
     over = [row for row in known if row.verdict == "outside"]
     if not over:
         return None
-    worst, walls, of = over[0], {row.wall for row in over}, {row.wall for row in known}
+    worst, of = over[0], {row.wall for row in known}
     way = "high" if (worst.difference or 0.0) > 0 else "low"
     cause = "" if worst.cause is None else f", mostly {worst.cause.step}"
     line = (
-        f"Walls: flow off by more than {100 * worst.criterion:g} % of the wall's own peak in {len(walls)} of "
-        f"{len(of)}; most: {worst.wall}, {worst.load}: {percent_text(worst.difference or 0.0)} {way}{cause}"
+        f"Walls: flow off by more than {100 * worst.criterion:g} % of the wall's own peak in "
+        f"{_which({row.wall for row in over}, of)}; most: {worst.wall}, {worst.load}: "
+        f"{percent_text(worst.difference or 0.0)} {way}{cause}"
     )
     means = {row.wall for row in known if abs(row.mean_difference or 0.0) > row.criterion}
-    return one_line(f"{line}. Mean flow off by more: in {len(means)}. --table walls", 400)
+    return one_line(f"{line}. Mean flow off by more: in {_which(means, of)}. --table walls", 600)
+
+
+def _which(walls: AbstractSet[str], of: AbstractSet[str]) -> str:
+    """How many of the walls, and which: by name those that are, or are not, as long as they are few."""
+    rest = of - walls
+    number = f"{len(walls)} of {len(of)}"
+    if walls and rest and len(rest) <= min(len(walls), MOST_NAMED):
+        return f"{number} (all but {', '.join(sorted(rest))})"
+    return f"{number} ({', '.join(sorted(walls))})" if 0 < len(walls) <= MOST_NAMED else number
 
 
 def model_lines(result: Result) -> Iterator[str]:
@@ -199,8 +227,8 @@ def _counts(entry: WallEnvelope) -> bool:
     return entry.theory is not None and entry.fe is not None and entry.fe.value != 0.0
 
 
-def _governs(entries: Sequence[WallEnvelope]) -> str:
-    """Loads with the walls they govern; where the sides name different loads, both."""
+def _governs(entries: Sequence[WallEnvelope], noun: str = "walls") -> str:
+    """Loads with the walls or booms they govern; where the sides name different loads, both."""
     groups: dict[str, list[str]] = {}
     for entry in entries:
         assert entry.theory is not None
@@ -210,7 +238,7 @@ def _governs(entries: Sequence[WallEnvelope]) -> str:
     told = []
     for load, walls in groups.items():
         if len(groups) == 1:
-            told.append(f"{load} (all {len(walls)} walls)" if len(walls) > 1 else load)
+            told.append(f"{load} (all {len(walls)} {noun})" if len(walls) > 1 else load)
             continue
         more = f" and {len(walls) - NAMED} more" if len(walls) > NAMED else ""
         told.append(f"{load} ({', '.join(walls[:NAMED])}{more})")

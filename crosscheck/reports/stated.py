@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import LEVELS, QuantityResult, Result, StatedJudgement, Verdict
+from crosscheck.comparison.stated_values import ITS_MIDLINE
 from crosscheck.faults import one_line
 from crosscheck.reports.wording import (
     effect_text,
@@ -36,6 +37,7 @@ def stated_row(result: Result, stated: StatedJudgement) -> QuantityResult | None
         difference={"stated": stated.difference_fe},
         judged="stated",
         fe=stated.fe if row.unit != "rad" else row.fe,
+        normaliser=row.normaliser if stated.probe is None else stated.normaliser,
         uncertainty=stated.uncertainty,
         criterion=stated.tolerance,
         verdict=stated.verdict,
@@ -46,8 +48,10 @@ def stated_row(result: Result, stated: StatedJudgement) -> QuantityResult | None
 
 
 def stated_name(stated: StatedJudgement) -> str:
-    """What was stated, with its load."""
+    """What was stated, with its probe and its load."""
     words = QUANTITIES[stated.quantity].words
+    if stated.probe is not None:
+        words = f"flow at {stated.probe}"
     return words if stated.load is None else f"{words}, {stated.load}"
 
 
@@ -73,12 +77,25 @@ def stated_difference(result: Result, stated: StatedJudgement) -> str:
     row = stated_row(result, stated)
     if row is None or row.normaliser is None:
         return ""
-    if stated.measured_from is not None and stated.measured_from.endswith("(its line)"):
+    if stated.measured_from is not None and stated.measured_from.endswith(f"({ITS_MIDLINE})"):
         distance = (stated.difference_fe or 0.0) * row.normaliser
         if abs(stated.difference_fe or 0.0) > (stated.uncertainty or 0.0):
             way = "too far" if abs(stated.value) > abs(stated.fe.value or 0.0) else "too near"
             return f"{number_text(abs(distance), 3)} {result.length_unit} {way}"
     return full_difference_text(row, result.length_unit)
+
+
+def _instead(stated: StatedJudgement) -> str:
+    """What to use in place of a value that does not stand: FE's, and the level of theory nearest to it."""
+    assert stated.fe.value is not None
+    gaps = {
+        level: abs(value - stated.fe.value) for level, value in stated.theory.items() if value is not None
+    }
+    best = min(gaps, key=lambda level: gaps[level], default=None)
+    beside = [] if best is None else [f"level {best}: {number_text(stated.theory[best])}"]
+    if QUANTITIES[stated.quantity].axis is None and stated.value:
+        beside.insert(0, f"stated x {number_text(stated.fe.value / stated.value, 4)}")
+    return f"use FE's {number_text(stated.fe.value)} ({'; '.join(beside)})" if beside else "use FE's value"
 
 
 def method_text(stated: StatedJudgement) -> str:
@@ -115,5 +132,7 @@ def _line(result: Result, stated: StatedJudgement, unicode: bool) -> str:
         effect = effect_text(judged)
     difference, method = stated_difference(result, stated), method_text(stated)
     parts = [f"FE {number_text(stated.fe.value)}{error}", difference, effect, allowed, method]
+    if stated.verdict == "outside":
+        parts.append(_instead(stated))
     verdict = STANDS[stated.verdict].partition(":")[0]
     return f"{head} {verdict}: {'; '.join(part for part in parts if part)}"

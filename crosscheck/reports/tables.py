@@ -118,10 +118,20 @@ def stresses_table(result: Result) -> ResultTable:
             columns = [getattr(series, name) or (None,) * len(wall.s) for name in names]
             for i, s in enumerate(wall.s):
                 values = (column[i] for column in columns)
-                rows.append((wall.load, wall.wall, face, s, wall.labels[i], wall.unit, *values))
-    all_columns = ("load", "wall", "face", "s", "label", "unit", *heads)
+                rows.append((wall.load, wall.wall, face, s, wall.labels[i], wall.unit, *values, wall.reason))
+    all_columns = ("load", "wall", "face", "s", "label", "unit", *heads, "remark")
     title = "Stress at the real faces, at the probes"
-    shown = ("load", "wall", "face", "s", "hand direct", "FE direct", "hand von Mises", "FE von Mises")
+    shown = (
+        "load",
+        "wall",
+        "face",
+        "s",
+        "hand direct",
+        "FE direct",
+        "hand von Mises",
+        "FE von Mises",
+        "remark",
+    )
     return ResultTable("stresses", title, all_columns, tuple(rows), shown)
 
 

@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Collection, Mapping
+from collections.abc import Collection, Mapping, Sequence
 from itertools import chain
 from typing import Any
 
-from crosscheck.comparison.quantities import OF_A_LOAD, QUANTITIES, UNIT_LOADS
+from crosscheck.comparison.quantities import AT_PROBES, OF_A_LOAD, QUANTITIES, UNIT_LOADS
 from crosscheck.faults import FaultList, KeyPath, quoted
 from crosscheck.section_file.graph import SAME, WallGraph
 from crosscheck.section_file.model import (
@@ -190,8 +190,8 @@ class AttachmentReader:
             corners.append(CornerSpec(point, inner or 0.0, outer))
         return tuple(corners)
 
-    def stated(self) -> tuple[StatedSpec, ...]:
-        """Stated values in file order."""
+    def stated(self, probes: Sequence[ProbeSpec] = ()) -> tuple[StatedSpec, ...]:
+        """Stated values in file order; ``probes``: those that they may belong to."""
         stated = []
         loads = [table["name"] for table in self.document.get("loads", []) if "name" in table]
         for index, table in enumerate(self.document.get("stated", [])):
@@ -219,11 +219,22 @@ class AttachmentReader:
             if load is None and quantity in OF_A_LOAD and len(loads) != 1:
                 words = f"given for {quantity}, a quantity of a load"
                 self.faults.add((*path, "load"), "no load", words)
-            source, level = table.get("source", ""), table.get("level")
+            source, level, probe = table.get("source", ""), table.get("level"), table.get("probe")
+            if probe is not None:
+                self._stated_probe((*path, "probe"), probe, quantity, probes)
             if isinstance(datum, str) and datum in self.pieces:
                 datum = self.pieces[datum][0].name
-            stated.append(StatedSpec(quantity, value or 0.0, source, tolerance, datum, load, level))
+            stated.append(StatedSpec(quantity, value or 0.0, source, tolerance, datum, load, level, probe))
         return tuple(stated)
+
+    def _stated_probe(self, path: KeyPath, label: str, quantity: str, probes: Sequence[ProbeSpec]) -> None:
+        """Judge the probe of a stated value: it must exist, and the quantity be a flow at probes."""
+        labels = [table["label"] for table in self.document.get("probes", []) if "label" in table]
+        labels += [probe.label for probe in probes if probe.label not in labels]
+        if quantity in QUANTITIES and quantity != AT_PROBES:
+            self.faults.add(path, f"a probe for {quantity}", f"left out, or given for {AT_PROBES}")
+        elif label not in labels:
+            self.faults.add(path, quoted(label), "the label of a probe of [[probes]]", near=(label, labels))
 
     def criteria(self, notes: list[str]) -> dict[str, float]:
         """Largest accepted differences by quantity name [-]."""

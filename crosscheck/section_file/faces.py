@@ -250,7 +250,8 @@ class _Offset:
                 continue
             notes.append(
                 f"point {quoted(name)}: the midlines beside the faces do not meet in one point; it is put at "
-                f"the place nearest to them all, and faces there are up to {miss:.3g} off"
+                f"the place nearest to them all, and faces there are up to {miss:.3g} off, as where walls of "
+                "two thicknesses are flush; draw the solid under [outline] where FE must have them exactly"
             )
         return notes
 

@@ -118,10 +118,12 @@ def _note(
     context = details.get("ctx", {})
     if kind == "extra_forbidden":
         where = key_place(path[:-1])
+        top = len(path) > 1 and path[-1] in _TABLES and isinstance(_value_at(document, path), list)
         faults.add(
             path,
             quoted(str(path[-1])),
             f"a known key of {where}",
+            f"a list {path[-1]} = [...] of the file stands above its first [table]" if top else "",
             near=(str(path[-1]), known_keys(path[:-1])),
         )
         return

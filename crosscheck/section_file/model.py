@@ -145,6 +145,7 @@ class StatedSpec:
     measured_from : datum of a position: a place [L], the name of a point or wall, or None
     load : the load or unit load it belongs to; None for a quantity of the section
     level : level of theory that it is held to; None for the nearest
+    probe : label of the probe that a flow_at_probes belongs to; None for the worst of all
     """
 
     quantity: str
@@ -154,6 +155,7 @@ class StatedSpec:
     measured_from: Place | str | None = None
     load: str | None = None
     level: str | None = None
+    probe: str | None = None
 
 
 @dataclass(frozen=True)

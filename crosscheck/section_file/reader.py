@@ -136,12 +136,13 @@ def section_from(
     )
     cuts, probes, corners = attachments.cuts(), attachments.probes(), attachments.corners()
     booms = (*attachments.booms(), *placer.booms)
-    stated, criteria = attachments.stated(), attachments.criteria(notes)
+    criteria = attachments.criteria(notes)
     allowables = read_allowables(document, numbers, graph if complete else None)
     for mirror in mirrors:
         booms, corners = mirror.booms(booms, graph), mirror.corners(corners)
         allowables = mirror.allowables(allowables)
         cuts, probes = mirror.cuts(cuts, seen_by(graph.walls, "theory")), mirror.probes(probes, faults)
+    stated = attachments.stated(probes)
     load_points = [load.through_point for load in loads if load.through_point is not None]
     notes += GeometryCheck(graph.walls, graph.named, points, faults).run(
         cuts, complete, load_points, outlined="outline" in document

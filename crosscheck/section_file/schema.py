@@ -223,6 +223,7 @@ class StatedTable(_Table):
         default=ABSENT, description="datum of a position: coordinates, point or wall"
     )
     load: Name = Field(default=ABSENT, description="the load or unit load that it belongs to")
+    probe: Name = Field(default=ABSENT, description="label of the probe that a flow_at_probes belongs to")
     level: Level = Field(default=ABSENT, description="level of theory that it is held to; the nearest")
 
 

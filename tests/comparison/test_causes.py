@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
 from numpy.testing import assert_allclose
 
-from crosscheck.comparison.causes import BENDS, OWN_THICKNESS, ROUNDING, SOLID
+from crosscheck.comparison.causes import BENDS, OWN_THICKNESS, ROUNDING, SHARP, SOLID
 from crosscheck.comparison.comparing import compare
+from crosscheck.section_file.model import CornerSpec
 from crosscheck.section_file.reader import read_section
 
 CASES = Path(__file__).resolve().parents[2] / "cases" / "sections"
@@ -37,12 +39,23 @@ def test_steps_add_up_to_the_difference(name):
     assert told >= 10
 
 
-def test_rounded_section_has_all_four_steps():
+def test_bends_of_theory_are_one_step_and_leave_nothing_to_fe():
     steps = [c for c in compared("bent_zed_seat_rail").causes if c.quantity == "second_moment_xx"]
-    assert [c.step for c in steps] == [OWN_THICKNESS, BENDS, SOLID, ROUNDING]
-    # theory's bends and the solid's take the same material away
+    assert [c.step for c in steps] == [OWN_THICKNESS, BENDS, SOLID]
     by_name = {c.step: c.change for c in steps}
-    assert_allclose(by_name[BENDS], by_name[ROUNDING], rtol=0.05, atol=0)
+    assert by_name[BENDS] > 0.01
+    assert abs(by_name[SOLID]) < 0.05 * by_name[BENDS]
+
+
+def test_corners_that_theory_cannot_correct_are_a_step_of_fe():
+    filleted = replace(
+        read_section(CASES / "cruciform_winch_post.toml"), corners=(CornerSpec("centre", 3.0),)
+    )
+    steps = [c for c in compare(filleted).causes if c.quantity == "torsion_constant"]
+    assert [c.step for c in steps] == [SHARP, ROUNDING]
+    assert "not available here" in steps[0].note
+    # More material at the joint: the hand value is the lower for it.
+    assert steps[1].change < -steps[1].uncertainty
 
 
 def test_missing_step_is_merged_and_says_so():

@@ -323,7 +323,8 @@ def test_flush_walls_of_two_thicknesses_meet_half_way() -> None:
     (note,) = section.notes
     assert note == (
         'point "o": the midlines beside the faces do not meet in one point; it is put at the place '
-        "nearest to them all, and faces there are up to 0.25 off"
+        "nearest to them all, and faces there are up to 0.25 off, as where walls of two thicknesses are "
+        "flush; draw the solid under [outline] where FE must have them exactly"
     )
 
 

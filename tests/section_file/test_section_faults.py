@@ -50,6 +50,27 @@ ONE_FAULT = [
         'must be a known key of [[walls]], got "thicknes"; did you mean "thickness"?',
     ),
     (
+        "list of the file below a table",
+        GOOD + 'walls = [{ path = ["c", "d"], thickness = 2 }]\n',
+        "walls[0].walls",
+        'must be a known key of [[walls]], got "walls"; a list walls = [...] of the file stands '
+        "above its first [table]",
+    ),
+    (
+        "stated at no probe",
+        GOOD
+        + '[[probes]]\nlabel = "rivets"\nwall = "b-c"\nat = 0.5\n[[stated]]\nquantity = "flow_at_probes"\n'
+        'value = 2\nload = "unit Vy"\nprobe = "rivet"\n',
+        "stated[0].probe",
+        'must be the label of a probe of [[probes]], got "rivet"; did you mean "rivets"?',
+    ),
+    (
+        "another quantity stated at a probe",
+        GOOD + '[[stated]]\nquantity = "peak_flow"\nvalue = 2\nload = "unit Vy"\nprobe = "rivets"\n',
+        "stated[0].probe",
+        "must be left out, or given for flow_at_probes, got a probe for peak_flow",
+    ),
+    (
         "unknown table",
         GOOD + "[point]\nz = [0, 0]\n",
         "point",
