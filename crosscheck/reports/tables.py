@@ -121,6 +121,8 @@ def stresses_table(result: Result) -> ResultTable:
                 rows.append((wall.load, wall.wall, face, s, wall.labels[i], wall.unit, *values, wall.reason))
     all_columns = ("load", "wall", "face", "s", "label", "unit", *heads, "remark")
     title = "Stress at the real faces, at the probes"
+    if any(wall.reason for wall in result.stresses):
+        title += "; empty where a side has none, as in walls that carry shear only: the CSV says why"
     shown = (
         "load",
         "wall",
@@ -130,7 +132,6 @@ def stresses_table(result: Result) -> ResultTable:
         "FE direct",
         "hand von Mises",
         "FE von Mises",
-        "remark",
     )
     return ResultTable("stresses", title, all_columns, tuple(rows), shown)
 
