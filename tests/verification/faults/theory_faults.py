@@ -140,4 +140,15 @@ THEORY = (
         '"wagner_x": Quantity(bending(mass.slope(0.0, 1.0)))',
         '"wagner_x": Quantity(bending(mass.slope(1.0, 0.0)))',
     ),
+    Fault(
+        "thickness at a boom inside a taper",
+        B + "network.py",
+        "t0, t1 = t[:, 0] + rise * u0",
+        "t0, t1 = t[:, 0] + 0.9 * rise * u0",
+    ),
+    Fault("limit of a small stress in booms", B + "lumps.py", "_LOW = 0.1", "_LOW = 0.6"),
+    Fault("parts of an arc not divided again", B + "lumps.py", "_DEPTH = 6", "_DEPTH = 0"),
+    Fault("range of fillets", B + "joints.py", "and 0.5 * thick <= radius", "and 0.4 * thick <= radius"),
+    Fault("range of tees", B + "corner_terms.py", "TEE_RANGE = (0.5,", "TEE_RANGE = (0.45,"),
+    Fault("range of a cell's corners", B + "corner_terms.py", "(1.0, 160.0, 3.0)", "(1.0, 165.0, 3.0)"),
 )

@@ -1,0 +1,98 @@
+"""A boom inside a wall against the same wall written as two, with the boom at the point between them."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from functools import partial
+
+import numpy as np
+
+import beam_theory
+from crosscheck.verification.code_checks.finding import Finding, code_check
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
+
+GROUP = "invariances"
+ROUND_OFF = 1e-9
+# Where a wall is divided, how its thickness changes along it, and the booms' e and area.
+AT, TAPER, STIFFNESS, AREA = 0.37, 0.7, 1.6, 25.0
+
+
+def tapered(name: str) -> Shape:
+    """A shape with every wall tapered, straight ones and arcs."""
+    shape = SHAPES[name]()
+    walls = tuple(replace(w, thickness=(w.thickness[0], TAPER * w.thickness[1])) for w in shape.walls)
+    return Shape(shape.points, walls, shape.booms)
+
+
+def _part(shape: Shape, wall: Wall, low: float, high: float) -> Wall:
+    """A stretch of a wall between two new points."""
+    t, middle = wall.thickness, 0.5 * (low + high)
+    z = complex(shape.curve(wall, np.array([middle]))[0][0])
+    return replace(
+        wall,
+        start=wall.start if low == 0.0 else f"{wall.name} {low}",
+        end=wall.end if high == 1.0 else f"{wall.name} {high}",
+        thickness=(t[0] + low * (t[1] - t[0]), t[0] + high * (t[1] - t[0])),
+        through=None if wall.through is None else (z.real, z.imag),
+    )
+
+
+def in_two(shape: Shape) -> Shape:
+    """Every wall as two walls that meet at AT."""
+    points, walls = dict(shape.points), []
+    for wall in shape.walls:
+        z = complex(shape.curve(wall, np.array([AT]))[0][0])
+        points[f"{wall.name} {AT}"] = (z.real, z.imag)
+        walls += [_part(shape, wall, 0.0, AT), _part(shape, wall, AT, 1.0)]
+    return Shape(points, tuple(walls), shape.booms)
+
+
+def divided(name: str, level: str) -> Finding:
+    """Quantities, flows, warping and stresses of a load: one wall with a boom inside, or two walls."""
+    shape = tapered(name)
+    two = in_two(shape)
+    inside = tuple(beam_theory.Boom(AREA, wall=w.name, at=AT, e=STIFFNESS) for w in shape.walls)
+    between = tuple(beam_theory.Boom(AREA, point=f"{w.name} {AT}", e=STIFFNESS) for w in shape.walls)
+    one_section, two_section = shape.theory(), two.theory()
+    one = beam_theory.solve(replace(one_section, booms=(*one_section.booms, *inside)), level)
+    other = beam_theory.solve(replace(two_section, booms=(*two_section.booms, *between)), level)
+    size = one.require("area") ** 0.5 * 10.0
+    worst = 0.0
+    for n, q in one.quantities.items():
+        if q.value is None:
+            worst = max(worst, 0.0 if other.quantities[n].value is None else np.inf)
+            continue
+        scale = size if "centre" in n or "centroid" in n else abs(q.value) or 1.0
+        worst = max(worst, abs(q.value - other.require(n)) / scale)
+    load = beam_theory.Load("gust", (0.8, -1.2), (3.0, 7.0), 40.0, axial=9.0, moment=(50.0, -80.0))
+    cases = beam_theory.stress(one, load), beam_theory.stress(other, load)
+    u = np.array([0.02, 0.41, 0.98])
+    for wall, (low, first), (high, second) in zip(
+        shape.walls,
+        ((0.0, w) for w in two.walls[::2]),
+        ((AT, w) for w in two.walls[1::2]),
+        strict=True,
+    ):
+        for start, part, span in ((low, first, AT), (high, second, 1.0 - AT)):
+            pairs = [
+                (one.flow(load).at(wall.name, start + span * u), other.flow(load).at(part.name, u)),
+                (one.warping_at(wall.name, start + span * u), other.warping_at(part.name, u)),
+                (cases[0].direct(wall.name, start + span * u), cases[1].direct(part.name, u)),
+                (cases[0].shear(wall.name, start + span * u), cases[1].shear(part.name, u)),
+            ]
+            worst = max(worst, *(float(np.abs(a - b).max() / (np.abs(a).max() + 1e-6)) for a, b in pairs))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
+CHECKS = tuple(
+    code_check(
+        f"boom inside a wall, {name}, {level}",
+        GROUP,
+        "theory",
+        partial(divided, name, level),
+        quick=True,
+        features={"boom", "taper"},
+    )
+    for name in SHAPES
+    for level in ("midline", "corrected")
+)
