@@ -97,6 +97,7 @@ def _argument_faults(arguments: argparse.Namespace) -> list[str]:
 
 def _write(arguments: argparse.Namespace) -> int:
     """Solve everything, then write the whole package at once."""
+    from crosscheck.batch.task import BatchError
     from crosscheck.dossier.package import MANIFEST, package_files
     from crosscheck.faults import SectionFaults
     from crosscheck.whole_files import write_tree
@@ -123,7 +124,11 @@ def _write(arguments: argparse.Namespace) -> int:
         if unknown:
             complain(unknown)
             return ExitStatus.BAD_INPUT
-        files = package_files(evidence, suite, arguments.hand_sheets, tell, envelope)
+        try:
+            files = package_files(evidence, suite, arguments.hand_sheets, tell, envelope)
+        except BatchError as fault:
+            complain([str(fault)])
+            return ExitStatus.FAILED
         try:
             write_tree(out, files)
         except OSError as fault:
@@ -157,6 +162,7 @@ def _gathered(
     """Evidence of every section; faults of all of them are told, and then nothing is written."""
     import beam_theory
     import fe_models
+    from crosscheck.batch.task import BatchError
     from crosscheck.dossier.evidence import gather
     from crosscheck.faults import SectionFaults
     from crosscheck.section_file.reader import read_section
@@ -180,7 +186,7 @@ def _gathered(
             complain(f"{path}: {line}" for line in fault.faults)
             status = max(status, ExitStatus.BAD_INPUT)
             continue
-        except (fe_models.FeError, beam_theory.TheoryError) as fault:
+        except (fe_models.FeError, beam_theory.TheoryError, BatchError) as fault:
             complain([f"{path}: {fault}"])
             status = max(status, ExitStatus.FAILED)
             continue
@@ -219,6 +225,7 @@ def _check(folder: Path) -> int:
     """Check a package; a line for each finding."""
     import beam_theory
     import fe_models
+    from crosscheck.batch.task import BatchError
     from crosscheck.dossier.checking import check_package
     from crosscheck.faults import SectionFaults
 
@@ -231,7 +238,7 @@ def _check(folder: Path) -> int:
         except SectionFaults as faults:
             complain(faults.lines)
             return ExitStatus.NOT_WITHIN
-        except (fe_models.FeError, beam_theory.TheoryError) as fault:
+        except (fe_models.FeError, beam_theory.TheoryError, BatchError) as fault:
             complain([f"{folder}: {fault}"])
             return ExitStatus.FAILED
     sys.stdout.write("".join(f"{line}\n" for line in outcome.found))

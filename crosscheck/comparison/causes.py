@@ -32,7 +32,7 @@ ROUNDING = "FE as drawn, corners rounded"
 TRACED = "the given outline in place of the walls' own solid"
 UNDRAWN = "includes what the walls' own solid would show: it cannot be built"
 MERGED = "includes what the level corrected would show: {reason}"
-NU = "with the material's nu FE would change by {change:+.2g}"
+NU = "with the material's nu FE would change by {change:+.2g} %"
 
 
 @dataclass(frozen=True)
@@ -138,7 +138,7 @@ def _steps(at: Stations, row: QuantityResult) -> Iterator[CauseStep]:
     last = end if at.given is None or not at.built else at.given.get(row.name, end)
     beside = None
     if last.with_nu is not None and last.value is not None:
-        beside = NU.format(change=(last.with_nu - last.value) / scale)
+        beside = NU.format(change=100.0 * (last.with_nu - last.value) / scale)
     traced = last is not end and last.value is not None
     own = None if traced else beside
     sharp = at.sharp.get(row.name) if at.sharp is not None and _missing(at.corrected, row.name) else None

@@ -60,7 +60,7 @@ def _of_the_part(section: SectionFile, result: Result) -> Iterator[Assumption]:
     yield Assumption(
         "No shear lag",
         "assumed",
-        f"Widest wall: {_widest(section)}; compare with the span and the distance to the load introduction.",
+        f"{_widest(section)} Compare with the span and the distance to the load introduction.",
         "Direct stress concentrates near the webs: its peak is understated and bending stiffness overstated.",
     )
     yield from _gross(section, result)
@@ -101,9 +101,9 @@ def _warping(result: Result) -> Assumption:
 
 def _widest(section: SectionFile) -> str:
     if not section.walls:
-        return "none, the solid is given by its outline"
+        return "The solid is given by its outline and has no named walls."
     wall, length = max(_lengths(section).items(), key=lambda item: item[1])
-    return f"{wall}, {number_text(length, 4)} {section.length_unit}"
+    return f"Widest wall: {wall}, {number_text(length, 4)} {section.length_unit}."
 
 
 def _lengths(section: SectionFile) -> dict[str, float]:
@@ -171,7 +171,7 @@ def _attachment(section: SectionFile) -> Assumption:
 
 def _of_the_model(section: SectionFile, result: Result, convergence: Convergence) -> Iterator[Assumption]:
     """Assumptions of theory or FE that this section shows to matter or not."""
-    if section.walls:
+    if any(wall.seen_by != "fe" for wall in section.walls):
         yield _thin(section)
     yield _poisson(result)
     yield from _idealised(section)
@@ -180,26 +180,34 @@ def _of_the_model(section: SectionFile, result: Result, convergence: Convergence
 
 def _thin(section: SectionFile) -> Assumption:
     lengths = _lengths(section)
-    wall = min(section.walls, key=lambda wall: lengths[wall.name] / max(wall.thickness))
+    seen = [wall for wall in section.walls if wall.seen_by != "fe"]
+    wall = min(seen, key=lambda wall: lengths[wall.name] / max(wall.thickness))
     ratio = lengths[wall.name] / max(wall.thickness)
     return Assumption(
         "Thin walls (theory)",
         "holds" if ratio >= THIN else "stout wall",
-        f"Least length over thickness: {wall.name}, {number_text(ratio, 3)}. FE has no such "
-        "assumption, so its effect is in every difference of this dossier.",
+        f"Least length over thickness of the walls that theory sees: {wall.name}, {number_text(ratio, 3)}. "
+        "FE has no such assumption, so its effect is in every difference of this dossier.",
         "Own thickness, corners and ends count: torsion constant and positions are off.",
     )
 
 
 def _idealised(section: SectionFile) -> Iterator[Assumption]:
     """Idealisations that the file makes."""
-    skins = [wall.name for wall in section.walls if wall.direct_share < 1.0]
-    if section.booms or skins:
+    booms = [boom for boom in section.booms if boom.seen_by != "fe"]
+    skins = [wall for wall in section.walls if wall.seen_by != "fe" and wall.share_in_theory < 1.0]
+    if booms or skins:
+        alike = all(boom.seen_by == "both" for boom in booms) and all(
+            wall.seen_by == "both" and wall.share_in_theory == wall.direct_share for wall in skins
+        )
         yield Assumption(
-            "Booms and shear-only skins",
+            "Booms and shear-only skins (theory)",
             "applies",
-            f"{len(section.booms)} booms, {len(skins)} walls that carry less than their full direct stress.",
-            "Both sides take the same idealisation: its error against the real part is in neither.",
+            f"{len(booms)} booms, {len(skins)} walls that carry less than their full direct stress.",
+            "Both sides take the same idealisation: its error against the real part is in neither."
+            if alike
+            else "FE sees other walls, shares or booms: as far as those are the part's own, the error of the "
+            "idealisation is in the differences.",
         )
     one_sided = [wall.name for wall in section.walls if wall.seen_by != "both"]
     if one_sided:

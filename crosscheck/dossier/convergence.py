@@ -17,9 +17,10 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from crosscheck.comparison.comparing import compare
+import fe_models
 from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.result import FeValue, Result
+from crosscheck.dossier.bench import Bench
 from crosscheck.section_file.model import SectionFile
 
 ACCURACIES = (1e-3, 1e-4, 1e-5, 1e-6, 1e-7)
@@ -79,7 +80,7 @@ class Convergence:
     indices: tuple[Index, ...]
 
 
-def converge(section: SectionFile, nominal: Result, tell: Callable[[str], None]) -> Convergence:
+def converge(section: SectionFile, nominal: Result, bench: Bench, tell: Callable[[str], None]) -> Convergence:
     """Solve the section at every accuracy and follow its intervals.
 
     Parameters
@@ -88,15 +89,24 @@ def converge(section: SectionFile, nominal: Result, tell: Callable[[str], None])
         As read.
     nominal : Result
         The comparison at hand, with its drawing; gives normalisers and the outline.
+    bench : Bench
+        Compares.
     tell : callable
         Told in words what is being done.
+
+    Raises
+    ------
+    fe_models.FeError
+        Where the section cannot be solved at one of them.
     """
-    found: list[tuple[float, Result]] = []
-    for accuracy in ACCURACIES:
-        tell(f"solution verification at {accuracy:g}")
-        same = accuracy == nominal.accuracy
-        found.append((accuracy, nominal if same else compare(section, accuracy)))
-    runs = _distinct(found)
+    others = [accuracy for accuracy in ACCURACIES if accuracy != nominal.accuracy]
+    solved = bench.work([(section, accuracy) for accuracy in others], "solution verification", tell)
+    results = {nominal.accuracy: nominal}
+    for accuracy, result in zip(others, solved, strict=True):
+        if isinstance(result, str):
+            raise fe_models.FeError(f"solution verification at {accuracy:g}: {result}")
+        results[accuracy] = result
+    runs = _distinct([(accuracy, results[accuracy]) for accuracy in ACCURACIES])
     angle = sharpest_corner(nominal.require_drawing().loops)
     order = None if angle is None else 2.0 * math.pi / angle
     scales = {row.name: row.normaliser for row in nominal.quantities if row.load is None}
@@ -154,8 +164,9 @@ def convergence_index(
 ) -> Index:
     """Index of one quantity from the finest runs of one element order.
 
-    Three grids whose changes shrink give the observed order and a factor of 1.25; two grids take the order
-    that the corners allow and a factor of 3.
+    Three grids whose changes shrink give the observed order, at most that of energies on smooth solutions
+    (twice the element's), and a factor of 1.25; two grids take the order that the corners allow, or two
+    without corners, and a factor of 3.
     """
     known = [run for run in runs if run.values[name].value is not None]
     shrinking = _interval_order(name, known)
@@ -176,6 +187,7 @@ def convergence_index(
     if len(grids) == 3:
         order = observed_order(values, [run.unknowns for run in grids])
         if order is not None:
+            order = min(order, 2.0 * best)
             index = THREE_GRIDS * fine / normaliser / (ratio**order - 1.0)
             return Index(name, shrinking, index, order, ratio, THREE_GRIDS, 3)
     order = corner_order or 2.0

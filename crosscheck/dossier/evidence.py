@@ -9,6 +9,7 @@ from typing import Any
 
 from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.result import Result
+from crosscheck.dossier.bench import Bench, comparison_of, is_large
 from crosscheck.dossier.convergence import Convergence, converge
 from crosscheck.dossier.holding import Holding, holding
 from crosscheck.dossier.uncertainty import Uncertainty, uncertainty
@@ -83,9 +84,10 @@ def gather(
     files = {path.name: path.read_bytes()}
     files |= {name: (path.parent / name).read_bytes() for name in section.tables}
     result = compare(section, accuracy, tell, pictures=True, working=True)
-    convergence = converge(section, result, tell)
-    budget = uncertainty(section, result, tell)
-    reach = holding(section, result, tell)
+    with Bench(comparison_of, None, is_large(result)) as bench:
+        convergence = converge(section, result, bench, tell)
+        budget = uncertainty(section, result, bench, tell)
+        reach = holding(section, result, bench, tell)
     found = None
     if envelope is not None:
         found = tuple(standings(envelope.document, read_source(section.path), section, result))

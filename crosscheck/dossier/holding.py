@@ -7,15 +7,11 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from itertools import pairwise
 
-import beam_theory
-import fe_models
-from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.result import Result
+from crosscheck.dossier.bench import Bench
 from crosscheck.dossier.uncertainty import thickened
 from crosscheck.section_file.model import SectionFile
 
-# What a side raises where it cannot take a section; arithmetic that fails is told and not hidden.
-UNSOLVED = (fe_models.FeError, beam_theory.TheoryError, ArithmeticError)
 FACTORS = (0.25, 0.5, 1.0 / math.sqrt(2.0), 1.0, math.sqrt(2.0), 2.0, 2.0 * math.sqrt(2.0), 4.0)
 
 
@@ -50,7 +46,9 @@ class Holding:
     crossings: tuple[Crossing, ...]
 
 
-def holding(section: SectionFile, nominal: Result, tell: Callable[[str], None]) -> Holding | None:
+def holding(
+    section: SectionFile, nominal: Result, bench: Bench, tell: Callable[[str], None]
+) -> Holding | None:
     """Solve the section at every factor; None where its solid is not made of its walls.
 
     Parameters
@@ -59,22 +57,18 @@ def holding(section: SectionFile, nominal: Result, tell: Callable[[str], None]) 
         As read.
     nominal : Result
         Its comparison, which stands for the factor 1.
+    bench : Bench
+        Compares.
     tell : callable
         Told in words what is being done.
     """
     if section.outline is not None:
         return None
-    found: list[Result | None] = []
-    reasons: list[str] = []
-    for factor in FACTORS:
-        tell(f"thicknesses times {factor:.3g}")
-        reason = ""
-        try:
-            made = nominal if factor == 1.0 else compare(thickened(section, factor), nominal.accuracy)
-        except UNSOLVED as fault:
-            made, reason = None, " ".join(str(fault).split())
-        found.append(made)
-        reasons.append(reason)
+    others = [factor for factor in FACTORS if factor != 1.0]
+    trials = [(thickened(section, factor), nominal.accuracy) for factor in others]
+    solved = {1.0: nominal, **dict(zip(others, bench.work(trials, "thicknesses", tell), strict=True))}
+    found = [None if isinstance(solved[factor], str) else solved[factor] for factor in FACTORS]
+    reasons = [solved[factor] if isinstance(solved[factor], str) else "" for factor in FACTORS]
     judged = [(row.name, row.load) for row in nominal.quantities if row.verdict is not None]
     tracks = tuple(
         Track(name, load, tuple(_used(made, name, load) for made in found)) for name, load in judged

@@ -46,7 +46,8 @@ def walls_by_loads_chapter(result: Result, figure: Figures) -> Chapter:
     if result.walls_by_loads:
         blocks.append(block_of(walls_table(result), MOST_ROWS))
     if not rows:
-        blocks.append(Paragraph("The file has no loads, so no load governs a wall."))
+        words = "No load has a flow that both sides report, so none governs a wall."
+        blocks.append(Paragraph(words))
         return Chapter("walls", title, tuple(blocks))
     columns = (
         Column("kind"),
@@ -75,11 +76,15 @@ def flows_chapter(result: Result, figure: Figures) -> Chapter:
         Column("unit"),
     )
     unit, worst = [], []
+    alone: dict[str, None] = {}
     for flow in result.flows:
         for probe in flow.probes:
             if probe.label is not None and flow.load in UNIT_LOADS:
                 unit.append(_row(flow, probe, f"{probe.label} ({flow.wall})"))
         if flow.load not in UNIT_LOADS and (most := _largest(flow)) is not None:
+            if most.theory is None:
+                alone[flow.wall] = None
+                continue
             worst.append(_row(flow, most, flow.wall))
     blocks: list[Block] = [figure("unit_flows")]
     if result.named_probes:
@@ -93,9 +98,10 @@ def flows_chapter(result: Result, figure: Figures) -> Chapter:
             Table("Shear flow of every load where FE's is largest in each wall", columns, tuple(worst))
         )
     else:
-        blocks.append(
-            Paragraph("No load of the file makes a flow; those of the unit loads are in the figure.")
-        )
+        blocks.append(Paragraph("No load of the file has a flow that both sides report."))
+    if alone:
+        words = f"Flows of {len(alone)} walls that only FE sees are in result.json."
+        blocks.append(Paragraph(words, "quiet"))
     return Chapter("flows", "Shear flows at probes", tuple(blocks))
 
 

@@ -9,12 +9,12 @@ from crosscheck.pictures.signs import signs_picture
 THEORY_SOURCES = (
     "Shear flow by basic and closing flows, direct stress with a product moment: T. H. G. Megson, Aircraft "
     "Structures for Engineering Students (common practice).",
-    "Torsion of cells: R. Bredt, Zeitschrift des VDI 40, 1896; S. B. Batho, Engineering, 1916 (common "
-    "practice).",
+    "Torsion of cells: R. Bredt, Zeitschrift des VDI 40, 1896 (from memory); of several cells, Bredt-Batho "
+    "(common practice).",
     "Warping, bimoment, shear centre from sectorial moments: V. Z. Vlasov, Thin-Walled Elastic Beams, "
     "2nd ed., 1961 (from memory).",
-    "End and joint terms of the level corrected: G. W. Trayer and H. W. March, NACA report 334, 1930, "
-    "and the sources named in the level's notes.",
+    "End and joint terms of the level corrected: G. W. Trayer and H. W. March, NACA report 334, 1930 "
+    "(as handbooks quote it), and the sources named in the level's notes.",
 )
 FE_SOURCES = (
     "Saint-Venant torsion and flexure of the solid section: S. P. Timoshenko and J. N. Goodier, Theory of "
@@ -22,7 +22,7 @@ FE_SOURCES = (
     "Two-sided bounds from a kinematic and a static field: W. Prager and J. L. Synge, Quarterly of Applied "
     "Mathematics 5, 1947 (from memory).",
     "Shear centre as the point about which flexure does no work on twist: E. Trefftz, Zeitschrift für "
-    "angewandte Mathematik und Mechanik 15, 1935.",
+    "angewandte Mathematik und Mechanik 15, 1935 (from memory).",
 )
 
 
@@ -134,8 +134,8 @@ def _definitions() -> tuple[Block, ...]:
         Heading("Shear centre and torque"),
         Paragraph(
             "Theory's shear centre makes the moment of the shear flow without twist vanish; FE's is "
-            "the energy (Trefftz) one. A load acts on one physical line; each side takes its torque "
-            "about its own centre:"
+            "the energy (Trefftz) one. A load acts on one physical line through (x_p, y_p); each side takes "
+            "its torque about its own centre, p now the arm about the centroid:"
         ),
         Equation("centre"),
         Equation("torque"),

@@ -85,17 +85,20 @@ def counts(result: Result) -> tuple[int, int, int, int]:
 def _of_one(evidence: SectionEvidence) -> tuple[Block, ...]:
     result = evidence.result
     outside, undecided, within, bad = counts(result)
+    passed = f"Self-checks: {len(result.checks) - bad} of {len(result.checks)} passed."
+    judged = outside + undecided + within
     changed = sum(b.verdict != b.total_verdict for b in evidence.uncertainty.budgets)
     blocks: list[Block] = [
         Paragraph(
             verdict_sentence(result),
-            "bad" if outside or bad else "doubt" if undecided else "good",
+            "bad" if outside or bad else "doubt" if undecided or not judged else "good",
             strong=True,
         ),
         Paragraph(
-            f"Of {outside + undecided + within} judged values {within} are within their criterion, {outside} "
-            f"outside, {undecided} inconclusive. Self-checks of both sides: {len(result.checks) - bad} of "
-            f"{len(result.checks)} passed. {_total_words(changed)}"
+            f"Of {judged} judged values, each of a kind counted, {within} are within their criterion, "
+            f"{outside} outside, {undecided} inconclusive. {passed} {_total_words(changed)}"
+            if judged
+            else f"Nothing is judged. {passed}"
         ),
     ]
     blocks += [
@@ -105,7 +108,7 @@ def _of_one(evidence: SectionEvidence) -> tuple[Block, ...]:
     ]
     if result.stated and all(stated.verdict == "within" for stated in result.stated):
         blocks.append(Paragraph((stated_heading(result) or "").rstrip(":") + ".", "good"))
-    blocks.append(nearest_table(result))
+    blocks.append(nearest_table(result) if judged else fe_table(result))
     blocks += [
         Paragraph(
             f"Self-check failed: {check.name}, {check.value:.3g}, allowed {check.allowed:.3g}.", "bad", True
@@ -157,17 +160,36 @@ def nearest_table(result: Result) -> Table:
     return Table(f"{heading}.{more}", columns, cells, tones)
 
 
+def fe_table(result: Result) -> Table:
+    """FE's values with their error, where there is nothing to compare them with."""
+    columns = (
+        Column("quantity", "text", 1.4),
+        Column("FE", "number"),
+        Column("error", "number"),
+        Column("unit"),
+        Column("basis", "text", 1.4),
+    )
+    rows = tuple(
+        (name_of(row), bare_value(row, row.fe.value), fe_error(row), unit_of(row), row.fe.basis)
+        for row in result.quantities
+        if row.fe.value is not None
+    )
+    return Table("FE's values and half of their intervals (± bound, ~ estimate)", columns, rows)
+
+
 def _sentence_of_all(evidence: Sequence[SectionEvidence]) -> Paragraph:
     bad = [each.result.title for each in evidence if failed(each.result)]
-    if not bad:
-        return Paragraph(
-            f"Hand methods hold for every quantity of all {len(evidence)} sections.", "good", True
+    alone = [each.result.title for each in evidence if each.result.outline_alone]
+    beside = f" No hand method to judge: {'; '.join(alone)}." if alone else ""
+    if bad:
+        words = (
+            f"Hand methods do not hold throughout for {len(bad)} of {len(evidence)} sections: "
+            f"{'; '.join(bad)}."
         )
-    return Paragraph(
-        f"Hand methods do not hold throughout for {len(bad)} of {len(evidence)} sections: {'; '.join(bad)}.",
-        "bad",
-        True,
-    )
+        return Paragraph(words + beside, "bad", True)
+    compared = len(evidence) - len(alone)
+    words = f"Hand methods hold for every quantity compared, of {compared} of {len(evidence)} sections."
+    return Paragraph(words + beside, "doubt" if alone else "good", True)
 
 
 def _matrix(evidence: Sequence[SectionEvidence]) -> Table:
@@ -190,7 +212,9 @@ def _matrix(evidence: Sequence[SectionEvidence]) -> Table:
             (
                 each.result.title, str(within), str(outside), str(undecided), str(bad),
                 {0: "no verdict changes", 1: "1 verdict changes"}.get(changed, f"{changed} verdicts change"),
-                f"{name_of(worst)}: {difference_text(worst, each.result.length_unit)}",
+                f"{name_of(worst)}: {difference_text(worst, each.result.length_unit)}"
+                if worst.verdict is not None
+                else "nothing compared",
             )
         )  # fmt: skip
         tones.append(TONES["outside" if outside or bad else "inconclusive" if undecided else "within"])

@@ -11,13 +11,14 @@ from collections.abc import Callable, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
+from crosscheck.dossier.bench import Bench, is_large
 from crosscheck.dossier.composing import compose, plate_extras, run_id
 from crosscheck.dossier.evidence import Envelope, SectionEvidence, evidence_record
 from crosscheck.dossier.page import page_bytes
 from crosscheck.dossier.paper import equation_pictures, pdf_bytes
 from crosscheck.dossier.suite import SuiteEvidence
 from crosscheck.file_names import free_name
-from crosscheck.pictures.plates import Plate, plates
+from crosscheck.pictures.plates import PLATES, Plate, plate
 from crosscheck.reports.result_json import json_text
 
 SCHEMA = "crosscheck.package/1"
@@ -61,9 +62,9 @@ def package_files(
     drawn: list[Mapping[str, Plate]] = []
     files: dict[str, bytes] = {}
     for folder, each in zip(folders, evidence, strict=True):
-        tell(f"{each.result.title}: plates")
-        own = plates(each.result, plate_extras(each, suite), number)
-        drawn.append({plate.name: plate for plate in own})
+        with Bench(plate, (each.result, plate_extras(each, suite), number), is_large(each.result)) as bench:
+            own = bench.work(list(PLATES), f"{each.result.title}: plates", tell)
+        drawn.append({each.name: each for each in own})
         files |= _section_files(folder, each, own)
     if suite is not None:
         files[SUITE] = suite.content
@@ -89,9 +90,9 @@ def _section_files(folder: str, evidence: SectionEvidence, own: Sequence[Plate])
     files[f"{folder}/result.json"] = json_text([evidence.result]).encode()
     record = json.dumps(evidence_record(evidence), ensure_ascii=False, allow_nan=False, indent=1)
     files[f"{folder}/verification.json"] = f"{record}\n".encode()
-    for plate in own:
-        for kind, data in plate.files.items():
-            files[f"{folder}/plates/{plate.number:02d}_{plate.name}.{kind}"] = data
+    for each in own:
+        for kind, data in each.files.items():
+            files[f"{folder}/plates/{each.number:02d}_{each.name}.{kind}"] = data
     return files
 
 

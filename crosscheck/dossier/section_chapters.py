@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import math
-from collections import Counter
 from collections.abc import Callable, Iterator, Mapping, Sequence
 
 from crosscheck.comparison.result import Result
@@ -21,8 +19,10 @@ from crosscheck.dossier.content import (
 )
 from crosscheck.dossier.evidence import SectionEvidence
 from crosscheck.dossier.hand_sheets import sheet_blocks
+from crosscheck.dossier.holding_chapter import holding_chapter
 from crosscheck.dossier.input_chapters import inputs_chapter
 from crosscheck.dossier.load_chapters import flows_chapter, margins_chapter, walls_by_loads_chapter
+from crosscheck.dossier.opening import fe_table
 from crosscheck.dossier.texts import (
     TONES,
     bare_value,
@@ -46,11 +46,11 @@ from crosscheck.reports.wording import (
     name_of,
     number_text,
     one_row_a_family,
+    verdict_sentence,
     worst_first,
 )
 
 MOST_CAUSES = 12
-STANDING_ORDER = ("outside", "at the edge", "inside")
 QUIET: Tone = "quiet"
 # Differences smaller than this have no causes told [-].
 LEAST_CAUSE = 5e-4
@@ -82,7 +82,7 @@ def section_chapters(
         walls_by_loads_chapter(evidence.result, figure),
         flows_chapter(evidence.result, figure),
         _stated(evidence.result),
-        _holding(evidence, figure),
+        holding_chapter(evidence, figure),
         uncertainty_chapter(evidence),
         margins_chapter(evidence.result),
         _warnings(evidence, figure),
@@ -131,6 +131,9 @@ def _comparison(result: Result, figure: Figures, diagram: Diagram) -> Chapter:
         Column("effect", "text", 1.5),
     )
     judged = [row for row in worst_first(result.quantities) if row.verdict is not None]
+    if not judged:
+        alone = (diagram, Paragraph(verdict_sentence(result)), fe_table(result), *_undefined(result))
+        return Chapter("comparison", "Comparison", (*alone, figure("both_sides"), figure("criteria")))
     rows = tuple(
         (
             row.verdict or "",
@@ -157,7 +160,9 @@ def _comparison(result: Result, figure: Figures, diagram: Diagram) -> Chapter:
     ]
     if any(has_own_normaliser(row) for row in judged):
         blocks.append(Paragraph(STARRED, "quiet"))
-    blocks += [*_undefined(result), _levels(result), figure("both_sides"), figure("criteria")]
+    if any(row.load is None for row in judged):
+        blocks.append(_levels(result))
+    blocks += [*_undefined(result), figure("both_sides"), figure("criteria")]
     return Chapter("comparison", "Comparison", tuple(blocks))
 
 
@@ -182,7 +187,7 @@ def _levels(result: Result) -> Table:
     columns = (
         Column("quantity", "text", 1.4),
         *(Column(f"{level}{' (judged)' if level == result.judged else ''}") for level in rows[0].theory),
-    ) if rows else (Column("quantity", "text"),)  # fmt: skip
+    )
     return Table(
         "Levels of theory: how far each is from FE",
         columns,
@@ -212,9 +217,13 @@ def _causes(result: Result, figure: Figures) -> Chapter:
         if sum(1 for entry in rows if entry[0]) >= MOST_CAUSES:
             break
     if not rows:
-        return Chapter(
-            "causes", "Causes", (Paragraph("No difference reaches 0.05 %, so no causes are told apart."),)
+        judged = any(row.verdict is not None for row in result.quantities)
+        words = (
+            "No difference reaches 0.05 %, so no causes are told apart."
+            if judged
+            else "Nothing is compared here, so no difference has causes."
         )
+        return Chapter("causes", "Causes of the differences", (Paragraph(words),))
     columns = (
         Column("quantity", "text", 1.2),
         Column("step", "text", 2.0),
@@ -282,77 +291,6 @@ def _stated(result: Result) -> Chapter:
             Table("Stated values", columns, rows, tuple(TONES[s.verdict] for s in result.stated)),
         ),
     )
-
-
-def _holding(evidence: SectionEvidence, figure: Figures) -> Chapter:
-    """The reach of the hand method around this section, and where each quantity crosses its criterion."""
-    title = "Where the hand method stops holding"
-    found = evidence.holding
-    if found is None:
-        words = "The solid is given by its outline, so its thicknesses were not varied."
-        return Chapter("holding", title, (Paragraph(words), figure("holding")))
-    names = {(row.name, row.load): name_of(row) for row in evidence.result.quantities}
-    blocks: list[Block] = [
-        Paragraph(
-            "All thicknesses of the section were multiplied by one factor, and the section solved "
-            "again on both sides. Between two factors the place of a crossing is interpolated, an estimate."
-        ),
-        figure("holding"),
-    ]
-    if found.crossings:
-        columns = (
-            Column("quantity", "text", 1.6),
-            Column("crosses between", "word"),
-            Column("about", "number"),
-            Column("holds", "word"),
-        )
-        rows = tuple(
-            (
-                names[c.quantity, c.load],
-                f"{c.low:.3g} and {c.high:.3g}",
-                f"{c.about:.2g}",
-                "below" if c.within_below else "above",
-            )
-            for c in sorted(found.crossings, key=lambda c: abs(math.log(c.about)))
-        )
-        caption = "Factors on all thicknesses at which a quantity crosses its criterion, nearest first"
-        blocks.append(Table(caption, columns, rows))
-    else:
-        blocks.append(Paragraph("No quantity crosses its criterion within the factors solved."))
-    blocks += [
-        Paragraph(f"At {factor:.3g} times the thickness there is no comparison: {reason}", "doubt")
-        for factor, reason in zip(found.factors, found.reasons, strict=True)
-        if reason
-    ]
-    return Chapter("holding", title, (*blocks, *_standings(evidence)))
-
-
-def _standings(evidence: SectionEvidence) -> tuple[Block, ...]:
-    """Where the section stands to the envelope given with the run."""
-    if evidence.standings is None:
-        return (
-            Paragraph("No envelope of a family of sections was given with this run (--envelope).", "quiet"),
-        )
-    names = {(row.name, row.load): name_of(row) for row in evidence.result.quantities}
-    columns = (Column("standing", "word"), Column("quantity", "text", 1.0), Column("reason", "text", 2.2))
-    told = [each for each in evidence.standings if each.word != "not covered"]
-    told.sort(key=lambda each: STANDING_ORDER.index(each.word))
-    tones: dict[str, Tone] = {"outside": "bad", "at the edge": "doubt"}
-    blocks: list[Block] = []
-    if told:
-        blocks.append(
-            Table(
-                "Standing of this section to the envelope attached to the package",
-                columns,
-                tuple((each.word, names[each.name, each.load], each.reason) for each in told),
-                tuple(tones.get(each.word, "plain") for each in told),
-            )
-        )
-    reasons = Counter(each.reason for each in evidence.standings if each.word == "not covered")
-    for reason, count in reasons.items():
-        words = f"Not covered by the envelope attached to the package, {count} quantities: {reason}."
-        blocks.append(Paragraph(words, "doubt"))
-    return tuple(blocks)
 
 
 def _warnings(evidence: SectionEvidence, figure: Figures) -> Chapter:

@@ -78,10 +78,11 @@ def conclusion(row: QuantityResult, length_unit: str) -> str:
     """A row in one sentence."""
     name = name_of(row)
     name = name[0].upper() + name[1:]
-    if row.verdict is None:
-        return f"{name}: not compared, {row.reason or 'undefined on a side'}."
     unit = unit_of(row)
     hand, fe, error = bare_value(row, row.judged_theory), bare_value(row, row.fe.value), fe_error(row)
+    if row.verdict is None:
+        alone = "" if row.fe.value is None else f" FE {fe} {unit}, {error}."
+        return f"{name}: not compared, {row.reason or 'undefined on a side'}.{alone}"
     words = difference_text(row, length_unit).rstrip("*")
     words = {"equal": "equals FE", "in FE error": "is within FE's error"}.get(words, f"is {words}")
     criterion = f"{100 * row.criterion:g} %"

@@ -10,11 +10,9 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 
-import beam_theory
-import fe_models
-from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.result import QuantityResult, Result, Verdict
 from crosscheck.comparison.verdicts import verdict
+from crosscheck.dossier.bench import Bench
 from crosscheck.section_file.model import SectionFile
 
 CURVES = "bound on the interpolated outline"
@@ -51,7 +49,9 @@ class Uncertainty:
     notes: tuple[str, ...]
 
 
-def uncertainty(section: SectionFile, nominal: Result, tell: Callable[[str], None]) -> Uncertainty:
+def uncertainty(
+    section: SectionFile, nominal: Result, bench: Bench, tell: Callable[[str], None]
+) -> Uncertainty:
     """Re-solve the section at the ends of its tolerances and budget every judged row.
 
     Parameters
@@ -60,6 +60,8 @@ def uncertainty(section: SectionFile, nominal: Result, tell: Callable[[str], Non
         As read.
     nominal : Result
         Its comparison.
+    bench : Bench
+        Compares.
     tell : callable
         Told in words what is being done.
     """
@@ -67,10 +69,12 @@ def uncertainty(section: SectionFile, nominal: Result, tell: Callable[[str], Non
     varied: dict[str, list[list[Result]]] = {}
     notes: list[str] = []
     for source, ways in variations(section, tolerances).items():
-        tell(f"uncertainty, {source}")
-        try:
-            varied[source] = [[compare(each, nominal.accuracy) for each in way] for way in ways]
-        except (fe_models.FeError, beam_theory.TheoryError, ArithmeticError) as fault:
+        trials = [(each, nominal.accuracy) for way in ways for each in way]
+        solved = bench.work(trials, f"uncertainty, {source}", tell)
+        fault = next((each for each in solved if isinstance(each, str)), None)
+        if fault is None:
+            varied[source] = [solved[at : at + 2] for at in range(0, len(solved), 2)]
+        else:
             notes.append(f"{source} was not re-solved: {fault}")
     if section.outline is not None:
         notes.append("the solid is given by its outline, which tolerances of the walls do not move")

@@ -24,6 +24,10 @@ from crosscheck.dossier.texts import TONES, interval_text, plain_unit, share_tex
 from crosscheck.dossier.uncertainty import Budget
 from crosscheck.reports.wording import name_of, number_text, one_row_a_family, worst_first
 
+NOTHING_JUDGED = (
+    "Nothing is judged here, so no difference has a budget; FE's own error stands beside its values in the "
+    "comparison."
+)
 SHORT = {"thickness": "thickness", "dimension": "dimensions", "material": "material"}
 
 
@@ -50,8 +54,9 @@ def solution_chapter(evidence: SectionEvidence, figure: Callable[[str], Figure])
         Equation("index"),
         Paragraph(
             "f_1 is the value on the finest mesh of one element order, f_2 that on the next, N their "
-            "unknowns, p the order: observed with F_s = 1.25 where three meshes show it, else the "
-            "order that the sharpest corner allows with F_s = 3. P. J. Roache, Verification and "
+            "unknowns, p the order: observed with F_s = 1.25 where three meshes show it (at most twice the "
+            "element's order), else the order that the sharpest corner allows, or two without corners, with "
+            "F_s = 3. P. J. Roache, Verification and "
             "Validation in Computational Science and Engineering, 1998; ASME V&V 20, 2009, with the "
             "effective ratio r for meshes that are not similar. The interval of the run at hand, where "
             "it is a bound, is the stronger statement."
@@ -96,15 +101,17 @@ def _indices(evidence: SectionEvidence) -> Table:
         Column("GCI", "number"),
         Column("remark", "text", 1.4),
     )
+    cornered = evidence.convergence.corner_order is not None
     return Table(
         "Orders in h and index, over each normaliser",
         columns,
-        tuple(map(_index, evidence.convergence.indices)),
+        tuple(_index(index, cornered) for index in evidence.convergence.indices),
     )
 
 
-def _index(index: Index) -> tuple[str, ...]:
-    remark = index.reason or ("order observed" if index.grids == 3 else "order of the corner, not observed")
+def _index(index: Index, cornered: bool) -> tuple[str, ...]:
+    assumed = "order that the corner allows, not observed" if cornered else "order two assumed, not observed"
+    remark = index.reason or ("order observed" if index.grids == 3 else assumed)
     return (
         QUANTITIES[index.quantity].words,
         number_text(index.interval_order, 2),
@@ -135,6 +142,8 @@ def _checks(result: Result) -> Table:
 def uncertainty_chapter(evidence: SectionEvidence) -> Chapter:
     """The budget row by row, and both verdicts."""
     found, result = evidence.uncertainty, evidence.result
+    if not found.budgets:
+        return Chapter("uncertainty", "Uncertainty budget", (Paragraph(NOTHING_JUDGED),))
     budgets = {(b.quantity, b.load): b for b in found.budgets}
     rows = [
         row for row in one_row_a_family(worst_first(result.quantities)) if (row.name, row.load) in budgets

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import matplotlib as mpl
@@ -54,69 +54,95 @@ class Extras:
     holding_words: str
 
 
-def plates(result: Result, extras: Extras, run_id: str) -> tuple[Plate, ...]:
-    """All ten plates of one section, in order."""
-    made: list[Plate] = []
-    for number, (name, message, figure) in enumerate(_drawn(result, extras), start=1):
-        shown = figure or words_picture(message, WIDTH)
-        units = f"Units {result.length_unit}, {result.force_unit}"
-        if result.per_modulus:
-            units += ", per unit modulus"
-        stamp(shown, f"Plate {number} of 10, {one_line(result.title, 60)}. {units}. Run {run_id}.")
-        files = {kind: picture_bytes(shown, kind, PNG_DPI) for kind in ("svg", "pdf", "png")}
-        made.append(Plate(number, name, message, files))
-    return tuple(made)
+def plate(context: tuple[Result, Extras, str], name: str) -> Plate:
+    """A plate of one section; ``context`` has result, extras and run number, the same for all plates."""
+    result, extras, run_id = context
+    number = list(PLATES).index(name) + 1
+    message, figure = PLATES[name](result, extras)
+    shown = figure or words_picture(message, WIDTH)
+    units = f"Units {result.length_unit}, {result.force_unit}"
+    if result.per_modulus:
+        units += ", per unit modulus"
+    stamp(shown, f"Plate {number} of {len(PLATES)}, {one_line(result.title, 60)}. {units}. Run {run_id}.")
+    files = {kind: picture_bytes(shown, kind, PNG_DPI) for kind in ("svg", "pdf", "png")}
+    return Plate(number, name, message, files)
 
 
-def _drawn(result: Result, extras: Extras) -> list[tuple[str, str, Figure | None]]:
-    """Name, message and figure of every plate; without a figure the message says why."""
+# Message of a plate and its figure; without a figure the message says why.
+Drawn = tuple[str, Figure | None]
+
+
+def _section(result: Result, _: Extras) -> Drawn:
+    message = "The section with its axes, signs, loads and both shear centres."
+    return message, section_picture(result, WIDTH)
+
+
+def _both_sides(result: Result, _: Extras) -> Drawn:
+    figure = both_sides_picture(result, WIDTH)
+    if figure is None:
+        return "The section has no walls: only FE sees it.", None
+    return "What each side sees: midlines of theory over the solid of FE.", figure
+
+
+def _unit_flows(result: Result, _: Extras) -> Drawn:
+    figure = unit_flows_picture(result, WIDTH)
+    message = "Shear flow of the unit loads on both sides." if figure else "No unit load makes a flow here."
+    return message, figure
+
+
+def _governing_load(result: Result, _: Extras) -> Drawn:
     governing, words = governing_load(result)
-    causes = causes_picture(result, WIDTH)
-    no_causes = "No difference is large enough for its causes to be told apart."
-    flows = walls_by_loads_picture(result, WIDTH)
-    unit_flows = unit_flows_picture(result, WIDTH)
-    criteria = criteria_picture(result, WIDTH)
-    intervals = intervals_picture(extras.intervals, extras.corner_order, WIDTH)
-    reach = holding_picture(extras.factors, extras.curves, extras.holding_words, WIDTH)
-    suite = shares_picture(extras.suite, extras.suite_words, WIDTH) if extras.suite else None
-    return [
-        (
-            "section",
-            "The section with its axes, signs, loads and both shear centres.",
-            section_picture(result, WIDTH),
-        ),
-        (
-            "both_sides",
-            "What each side sees: midlines of theory over the solid of FE.",
-            both_sides_picture(result, WIDTH),
-        ),
-        (
-            "unit_flows",
-            "Shear flow of the unit loads on both sides."
-            if unit_flows
-            else "No unit load makes a flow here.",
-            unit_flows,
-        ),
-        ("governing_load", words, None if governing is None else flow_picture(result, governing, WIDTH)),
-        (
-            "walls_by_loads",
-            "How far the hand flow is from FE's, wall by wall and load by load."
-            if flows
-            else "No wall has a flow that both sides report.",
-            flows,
-        ),
-        ("criteria", verdict_sentence(result), criteria),
-        ("causes", "Where the largest differences come from." if causes else no_causes, causes),
-        (
-            "numerical_error",
-            "How the FE interval shrinks as unknowns are added."
-            if intervals
-            else "Every FE value is exact or has one mesh only, so there is no error to follow.",
-            intervals,
-        ),
-        ("holding", extras.holding_words, reach),
-        ("suite", extras.suite_words, suite),
-    ]
+    return words, None if governing is None else flow_picture(result, governing, WIDTH)
+
+
+def _walls_by_loads(result: Result, _: Extras) -> Drawn:
+    figure = walls_by_loads_picture(result, WIDTH)
+    if figure is None:
+        return "No wall has a flow that both sides report.", None
+    return "How far the hand flow is from FE's, wall by wall and load by load.", figure
+
+
+def _criteria(result: Result, _: Extras) -> Drawn:
+    return verdict_sentence(result), criteria_picture(result, WIDTH)
+
+
+def _causes(result: Result, _: Extras) -> Drawn:
+    figure = causes_picture(result, WIDTH)
+    if figure is None:
+        return "No difference is large enough for its causes to be told apart.", None
+    return "Where the largest differences come from.", figure
+
+
+def _numerical_error(_: Result, extras: Extras) -> Drawn:
+    figure = intervals_picture(extras.intervals, extras.corner_order, WIDTH)
+    if figure is None:
+        return "Every FE value is exact or has one mesh only, so there is no error to follow.", None
+    return "How the FE interval shrinks as unknowns are added.", figure
+
+
+def _holding(_: Result, extras: Extras) -> Drawn:
+    words = extras.holding_words
+    return words, holding_picture(extras.factors, extras.curves, words, WIDTH)
+
+
+def _suite(_: Result, extras: Extras) -> Drawn:
+    figure = shares_picture(extras.suite, extras.suite_words, WIDTH) if extras.suite else None
+    return extras.suite_words, figure
+
+
+# The ten plates in order.
+PLATES: dict[str, Callable[[Result, Extras], Drawn]] = {
+    "section": _section,
+    "both_sides": _both_sides,
+    "unit_flows": _unit_flows,
+    "governing_load": _governing_load,
+    "walls_by_loads": _walls_by_loads,
+    "criteria": _criteria,
+    "causes": _causes,
+    "numerical_error": _numerical_error,
+    "holding": _holding,
+    "suite": _suite,
+}
 
 
 def governing_load(result: Result) -> tuple[str | None, str]:

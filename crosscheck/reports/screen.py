@@ -151,7 +151,8 @@ def _sentence(result: Result) -> Text:
     found = {row.verdict for row in result.quantities}
     order: tuple[Verdict | None, ...] = ("outside", "inconclusive", "within", None)
     worst = next(verdict for verdict in order if verdict in found | {None})
-    return Text(one_line(verdict_sentence(result), 1000), style=STYLES[worst])
+    follows = " FE's values:" if result.outline_alone else ""
+    return Text(one_line(verdict_sentence(result), 1000) + follows, style=STYLES[worst])
 
 
 def _groups(

@@ -221,7 +221,7 @@ def verdict_sentence(result: Result) -> str:
         unconservative for twist.``
     """
     if result.outline_alone:
-        return "No hand method: the section is given by its outline alone. FE's values:"
+        return "No hand method: the section is given by its outline alone."
     rows = one_row_a_family(worst_first(result.quantities))
     judged = [row for row in rows if row.verdict is not None]
     held = [row for row in judged if row.verdict == "within"]
