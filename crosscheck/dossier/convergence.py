@@ -99,19 +99,31 @@ def converge(section: SectionFile, nominal: Result, bench: Bench, tell: Callable
     fe_models.FeError
         Where the section cannot be solved at one of them.
     """
-    others = [accuracy for accuracy in ACCURACIES if accuracy != nominal.accuracy]
-    solved = bench.work([(section, accuracy) for accuracy in others], "solution verification", tell)
     results = {nominal.accuracy: nominal}
-    for accuracy, result in zip(others, solved, strict=True):
-        if isinstance(result, str):
-            raise fe_models.FeError(f"solution verification at {accuracy:g}: {result}")
-        results[accuracy] = result
+    *coarser, finest = ACCURACIES
+    for wanted in (coarser, [finest]):
+        others = [accuracy for accuracy in wanted if accuracy not in results]
+        trials = [(section, accuracy) for accuracy in others]
+        for accuracy, result in zip(others, bench.work(trials, "solution verification", tell), strict=True):
+            if isinstance(result, str):
+                raise fe_models.FeError(f"solution verification at {accuracy:g}: {result}")
+            results[accuracy] = result
+        if answers(results[coarser[-1]], finest):
+            # The finest mesh costs most and need not be solved twice.
+            results.setdefault(finest, results[coarser[-1]])
     runs = _distinct([(accuracy, results[accuracy]) for accuracy in ACCURACIES])
     angle = sharpest_corner(nominal.require_drawing().loops)
     order = None if angle is None else 2.0 * math.pi / angle
     scales = {row.name: row.normaliser for row in nominal.quantities if row.load is None}
     indices = tuple(convergence_index(name, runs, scales.get(name), order) for name in FOLLOWED)
     return Convergence(runs, angle, order, indices)
+
+
+def answers(result: Result, accuracy: float) -> bool:
+    """Whether the intervals of a result are narrow enough for an accuracy that was not asked of it."""
+    rows = [result.quantity(name) for name in ("torsion_constant", "shear_centre_x", "shear_centre_y")]
+    halves = [(row.fe.half_width, row.normaliser) for row in rows]
+    return all(half is not None and scale and half <= accuracy * scale for half, scale in halves)
 
 
 def _distinct(found: Sequence[tuple[float, Result]]) -> tuple[Run, ...]:

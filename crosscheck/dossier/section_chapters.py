@@ -132,7 +132,8 @@ def _comparison(result: Result, figure: Figures, diagram: Diagram) -> Chapter:
     )
     judged = [row for row in worst_first(result.quantities) if row.verdict is not None]
     if not judged:
-        alone = (diagram, Paragraph(verdict_sentence(result)), fe_table(result), *_undefined(result))
+        told = () if result.outline_alone else _undefined(result)
+        alone = (diagram, Paragraph(verdict_sentence(result)), fe_table(result), *told)
         return Chapter("comparison", "Comparison", (*alone, figure("both_sides"), figure("criteria")))
     rows = tuple(
         (
