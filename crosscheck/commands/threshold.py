@@ -115,15 +115,17 @@ def write_study(found: Study, folder: Path) -> None:
 
 
 def study_status(found: Study) -> ExitStatus:
-    """0 when everything asked for holds for the file as it stands, at the level judged."""
+    """0 when everything asked for holds for the file as it stands, at the level judged; no less is shown."""
+    from crosscheck.family.validity import level_shown_first, levels_of
+
     if found.failed:
         return ExitStatus.FAILED
-    if not found.solved:
+    if not levels_of(found):
         return ExitStatus.BAD_INPUT
-    rows = [each for line in found.lines for each in line.thresholds if each.level == found.judged]
     if len(found.lines) > 1:
         return ExitStatus.WITHIN
-    held = all(each.holds_today is True for each in rows if each.today is not None)
+    today = [each for each in found.lines[0].of_level(level_shown_first(found)) if each.today is not None]
+    held = bool(today) and all(each.holds_today for each in today)
     return ExitStatus.WITHIN if held else ExitStatus.NOT_WITHIN
 
 

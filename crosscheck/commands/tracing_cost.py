@@ -5,7 +5,10 @@ from __future__ import annotations
 import argparse
 from collections.abc import Sequence
 
-COST = "The drawing is of the file's own walls; where a parameter changes them FE takes the solid they make. "
+COST = (
+    "The drawing is of the file's own walls; where a parameter changes them, FE of every member takes the "
+    "solid they make. "
+)
 
 
 def tell_tracing_cost(arguments: argparse.Namespace) -> None:

@@ -39,7 +39,10 @@ class Crossing:
 
 @dataclass(frozen=True)
 class Piece:
-    """A stretch of the range in which the criterion holds, and the thresholds at its ends (None: none)."""
+    """A stretch of the range in which the criterion holds, or fails, and the thresholds at its ends.
+
+    None where it ends otherwise: with the range, at a gap, or where verdicts become inconclusive.
+    """
 
     start: float
     end: float
@@ -153,25 +156,61 @@ def _brackets(samples: Sequence[Sample], criterion: float) -> Iterator[_Bracket]
                 yield _Bracket(low, high, beside and (beside[0], beside[1]), inside)
 
 
-def pieces(samples: Sequence[Sample], criterion: float) -> tuple[Piece, ...]:
-    """Stretches in which the criterion holds, gaps left out."""
+def pieces(samples: Sequence[Sample], criterion: float, holding: bool = True) -> tuple[Piece, ...]:
+    """Stretches in which the criterion holds (or fails), as far as definite samples show it.
+
+    What lies in neither kind is undecided: nothing is known there, or the FE error is too large to say.
+    """
     found: list[Piece] = []
     for known, row in groupby(samples, key=lambda each: each.difference is not None):
         if not known:
             continue
         group = list(row)
-        holds = abs(group[0].difference or 0.0) <= criterion
-        start: tuple[float, Crossing | None] = group[0].at, None
-        own = crossings(group, criterion)
-        if own:
-            # The first definite change says what was before it, where the first sample itself is unsure.
-            holds = own[0].outside_above
-        for each in own:
-            if each.outside_above and holds:
-                found.append(Piece(start[0], each.value, start[1], each))
-            elif not each.outside_above:
-                start = each.value, each
-            holds = not each.outside_above
-        if holds:
-            found.append(Piece(start[0], group[-1].at, start[1], None))
+        ends: list[Crossing | None] = [None, *crossings(group, criterion), None]
+        for start, end in pairwise(ends):
+            side = start.outside_above if start is not None else end is not None and not end.outside_above
+            if (start is not None or end is not None) and side == holding:
+                continue
+            found += _shown(group, criterion, holding, start, end)
     return tuple(found)
+
+
+def _shown(
+    group: Sequence[Sample], criterion: float, holding: bool, start: Crossing | None, end: Crossing | None
+) -> Iterator[Piece]:
+    """What of the stretch between two thresholds is shown by definite samples."""
+    if start is not None and end is not None and start.high >= end.low:
+        # The difference leaps over the whole stretch from one sample to the next.
+        yield Piece(start.value, end.value, start, end)
+        return
+    low = group[0].at if start is None else start.high
+    high = group[-1].at if end is None else end.low
+    inside = [each for each in group if low <= each.at <= high]
+    for shown, row in groupby(inside, key=lambda each: _definite(each, criterion) is holding):
+        if not shown:
+            continue
+        run = [each.at for each in row]
+        begins = start if start is not None and run[0] == low else None
+        stops = end if end is not None and run[-1] == high else None
+        first, last = begins.value if begins else run[0], stops.value if stops else run[-1]
+        if first < last or len(group) == 1:
+            yield Piece(first, last, begins, stops)
+
+
+def undecided(samples: Sequence[Sample], criterion: float) -> bool:
+    """Whether verdicts hang on the FE error beyond what the intervals of the thresholds say."""
+    told = [(each.low, each.high) for each in crossings(samples, criterion)]
+    return any(
+        each.difference is not None
+        and _definite(each, criterion) is None
+        and not any(low <= each.at <= high for low, high in told)
+        for each in samples
+    )
+
+
+def _definite(sample: Sample, criterion: float) -> bool | None:
+    """Whether the criterion holds at a sample; None where that hangs on the FE error."""
+    size = abs(sample.difference or 0.0)
+    if size + sample.uncertainty <= criterion:
+        return True
+    return False if size - sample.uncertainty > criterion else None

@@ -117,10 +117,30 @@ class Family:
         SectionFaults
             Where it cannot be read so.
         """
+        from crosscheck.section_file.reader import with_own_solid
+
+        if values is None:
+            return self._as_read()
+        section = self._as_read(values)
+        if section.outline is not None and section.walls and self._leaves_outline():
+            return with_own_solid(section, "the outline is of one member only")
+        return section
+
+    def _as_read(self, values: Sequence[float] | None = None) -> SectionFile:
         from crosscheck.section_file.reader import section_from
 
         own = zip(self.names, values, strict=True) if values is not None else ()
         return section_from(self.source, (*self.overrides, *(f"{name} = {value!r}" for name, value in own)))
+
+    def _leaves_outline(self) -> bool:
+        """Whether members have walls that the file's outline is not of, so that all take their own solid."""
+        for values in product(*((each.low, each.high) for each in self.ranges)):
+            try:
+                if self._as_read(values).outline is None:
+                    return True
+            except SectionFaults:
+                continue
+        return False
 
     def ratio_of(self, parameters: Mapping[str, float]) -> float | None:
         """The ratio told beside a member.

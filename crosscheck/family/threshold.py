@@ -14,7 +14,7 @@ from itertools import count, pairwise
 from crosscheck.batch.running import Hands
 from crosscheck.batch.task import Point
 from crosscheck.comparison.result import LEVELS
-from crosscheck.family.crossings import Crossing, Piece, Sample, crossings, pieces, wanted
+from crosscheck.family.crossings import Crossing, Piece, Sample, crossings, pieces, undecided, wanted
 from crosscheck.family.members import Family, Member, Row, member_of
 from crosscheck.family.ranges import Range
 
@@ -45,6 +45,7 @@ class Choice:
 class Threshold:
     """One quantity at one level along one line: where it holds, and the thresholds.
 
+    ``pieces`` and ``fails``: where it is shown to hold and to fail; ``scanned``: first and last value tried;
     ``today``: difference and uncertainty of the file as it stands [-]; ``reason``: why nothing is compared.
     """
 
@@ -55,8 +56,11 @@ class Threshold:
     basis: str
     crossings: tuple[Crossing, ...]
     pieces: tuple[Piece, ...]
+    fails: tuple[Piece, ...]
     known: tuple[float, float] | None
     complete: bool
+    inconclusive: bool
+    scanned: tuple[float, float]
     today_value: float | None
     today: tuple[float, float] | None
     reason: str | None
@@ -96,8 +100,8 @@ class Threshold:
 
     @property
     def throughout(self) -> bool:
-        """Whether it holds wherever it is known."""
-        return bool(self.pieces) and not self.crossings
+        """Whether it is shown to hold wherever it is known."""
+        return bool(self.pieces) and not self.crossings and not self.inconclusive
 
     @property
     def order(self) -> tuple[int, float]:
@@ -286,8 +290,11 @@ def _finished(line: _Line, choice: Choice, today: float | None) -> Line:
                 "estimate" if "estimate" in bases else next(iter(sorted(bases)), "estimate"),
                 crossings(samples, criterion),
                 pieces(samples, criterion),
+                pieces(samples, criterion, holding=False),
                 (known[0].at, known[-1].at) if known else None,
                 len(known) == len(samples),
+                undecided(samples, criterion),
+                (samples[0].at, samples[-1].at),
                 today,
                 None if own is None else (own.difference or 0.0, own.uncertainty),
                 None if known else (reasons[0] if reasons else "not available at this level"),

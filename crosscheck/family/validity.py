@@ -9,6 +9,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, Literal
 
 from crosscheck.comparison.result import LEVELS
+from crosscheck.family.crossings import Piece
 from crosscheck.family.threshold import Key, Line, Study, Threshold
 from crosscheck.faults import Fault, SectionFaults
 from crosscheck.section_file.source import SectionSource
@@ -120,15 +121,8 @@ def _threshold(each: Threshold) -> dict[str, Any]:
         "criterion": each.criterion,
         "basis": each.basis,
         "known": each.known,
-        "holds": [
-            {
-                "from": piece.start,
-                "to": piece.end,
-                "from_is": "threshold" if piece.start_crossing else "end of what was solved",
-                "to_is": "threshold" if piece.end_crossing else "end of what was solved",
-            }
-            for piece in each.pieces
-        ],
+        "holds": [_piece(piece) for piece in each.pieces],
+        "fails": [_piece(piece) for piece in each.fails],
         "thresholds": [
             {
                 "value": crossing.value,
@@ -140,6 +134,16 @@ def _threshold(each: Threshold) -> dict[str, Any]:
         ],
         "today": None if each.today is None else {"difference": each.today[0], "uncertainty": each.today[1]},
         "reason": each.reason,
+    }
+
+
+def _piece(piece: Piece) -> dict[str, Any]:
+    """What lies in no piece is not known: nothing was solved, or verdicts were inconclusive."""
+    return {
+        "from": piece.start,
+        "to": piece.end,
+        "from_is": "threshold" if piece.start_crossing else "end of what is known",
+        "to_is": "threshold" if piece.end_crossing else "end of what is known",
     }
 
 
@@ -257,28 +261,35 @@ def _standing(
         if row["criterion"] != criterion:
             told = f"the envelope is for a criterion of {row['criterion']:g}, here it is {criterion:g}"
             return Standing(*key, "not covered", told)
-        word = _word(row, line["gaps"], value, envelope["edge"])
+        word = _word(row, value, envelope["edge"])
         if word == "not covered":
-            return Standing(*key, word, "no section was solved there")
+            return Standing(*key, word, "no section was solved there, or its verdict was inconclusive")
         words.append(word)
     if len(set(words)) == 1:
         return Standing(*key, words[0], "")
     return Standing(*key, "at the edge", "inside on one neighbouring line of the envelope only")
 
 
-def _word(row: Mapping[str, Any], gaps: Sequence[Mapping[str, Any]], value: float, edge: float) -> Word:
+def _word(row: Mapping[str, Any], value: float, edge: float) -> Word:
     """Where a value stands on one line."""
-    low, high = row["known"]
-    if not low <= value <= high or any(gap["value"] == value for gap in gaps):
-        return "not covered"
     for each in row["thresholds"]:
         margin = edge * abs(each["value"])
         if each["low"] - margin <= value <= each["high"] + margin:
             return "at the edge"
-    return "inside" if any(piece["from"] <= value <= piece["to"] for piece in row["holds"]) else "outside"
+    if any(piece["from"] <= value <= piece["to"] for piece in row["holds"]):
+        return "inside"
+    return (
+        "outside" if any(piece["from"] <= value <= piece["to"] for piece in row["fails"]) else "not covered"
+    )
 
 
 def levels_of(study: Study) -> list[str]:
     """Levels that a study has, in their order."""
     found = {each.level for line in study.lines for each in line.thresholds}
     return [level for level in LEVELS if level in found]
+
+
+def level_shown_first(study: Study) -> str:
+    """The level judged, or the first of those asked for where it is none of them."""
+    levels = levels_of(study)
+    return study.judged if study.judged in levels or not levels else levels[0]

@@ -11,7 +11,7 @@ from matplotlib.figure import Figure
 
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.family.threshold import Study, Threshold
-from crosscheck.family.validity import common_stretches, levels_of
+from crosscheck.family.validity import common_stretches, level_shown_first, levels_of
 from crosscheck.faults import one_line
 from crosscheck.pictures.canvas import (
     FE,
@@ -66,7 +66,7 @@ def _rows_picture(study: Study, width_mm: int) -> Figure:
     """A row a quantity, governing first, a bar a level where the criterion holds."""
     (line,) = study.lines
     levels = levels_of(study)
-    judged = study.judged if study.judged in levels else levels[0]
+    judged = level_shown_first(study)
     by_key = {(each.key, each.level): each for each in line.thresholds}
     known = [each for each in line.of_level(judged) if each.known is not None]
     # What never fails is counted: rows of full bars tell nothing.
@@ -75,8 +75,8 @@ def _rows_picture(study: Study, width_mm: int) -> Figure:
     first = study.family.ranges[0]
     caption = (
         f"Bars: where the criterion holds at the levels {', '.join(levels)}, from the top; no bar: it "
-        f"does not, or nothing is compared. Upright: the file as it stands, {first.name} = "
-        f"{size_text(study.today[0])}."
+        f"does not, nothing is compared, or FE's error leaves it open. Upright: "
+        f"the file as it stands, {first.name} = {size_text(study.today[0])}."
     )
     if failing and len(failing) < len(known):
         caption += f" {len(known) - len(failing)} more quantities hold throughout at all of these levels."

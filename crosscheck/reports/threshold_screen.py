@@ -10,14 +10,17 @@ from rich.text import Text
 
 from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.family.crossings import Piece
+from crosscheck.family.ranges import Range
 from crosscheck.family.threshold import Key, Line, Study, Threshold
-from crosscheck.family.validity import Stretch, common_stretches, levels_of
+from crosscheck.family.validity import Stretch, common_stretches, level_shown_first, levels_of
 from crosscheck.faults import one_line
 from crosscheck.reports.family_screen import name_of
 from crosscheck.reports.result_table import Cell, csv_line
 from crosscheck.reports.wording import SAFETY, SHARED_ASSUMPTIONS, number_text
 
 ROWS_SHOWN = 24
+# Behind where a criterion holds, when verdicts elsewhere hang on the FE error.
+UNDECIDED = " (?)"
 LINES_SHOWN = 12
 
 
@@ -38,6 +41,8 @@ def threshold_screen(study: Study, width: int = 80, folder: str | None = None) -
     if len(study.lines) == 1:
         line = study.lines[0]
         parts += [Text(one_line(sentence(study, line, level), 400)) for level in levels_of(study)]
+        if not line.thresholds:
+            parts.append(Text("Nothing of what is asked for is compared in any section solved."))
         parts += [Text(), _table(study, line)]
     else:
         second = study.family.ranges[1].name
@@ -70,10 +75,14 @@ def sentence(study: Study, line: Line, level: str) -> str:
     told = (here or common)[:1]
     if not told:
         nowhere = next((each for each in compared if not each.pieces), compared[0])
-        return f"{start}holds nowhere for {quantities} at once; governs: {name_of(*nowhere.key)}."
-    text = f"{start}holds for {quantities} {_stretch(told[0], name)}"
+        if nowhere.pieces or nowhere.fails:
+            return f"{start}holds nowhere for {quantities} at once; governs: {name_of(*nowhere.key)}."
+        words = f"is shown to hold nowhere for {quantities} at once; inconclusive"
+        return f"{start}{words}: {name_of(*nowhere.key)}."
+    text = f"{start}holds for {quantities} {_stretch(told[0], study.family.ranges[0])}"
     if len(common) > 1:
-        text += f" (and in {len(common) - 1} more stretches)"
+        noun = "stretch" if len(common) == 2 else "stretches"
+        text += f" (and in {len(common) - 1} more {noun})"
     if today is not None:
         fails = [each for each in compared if each.holds_today is False]
         text += f"; today's {name} = {number_text(today, 4)} is {'inside' if here else 'not inside'}"
@@ -82,27 +91,26 @@ def sentence(study: Study, line: Line, level: str) -> str:
     return f"{text}."
 
 
-def _stretch(stretch: Stretch, name: str) -> str:
+def _stretch(stretch: Stretch, first: Range) -> str:
     """Such as ``up to t = 3.21 (shear centre, x)``."""
-    start = None if stretch.start_key is None else _end(stretch.start, stretch.start_key)
-    end = None if stretch.end_key is None else _end(stretch.end, stretch.end_key)
-    if start is None and end is None:
-        return f"over {name} {number_text(stretch.start, 4)} to {number_text(stretch.end, 4)}"
-    if start is None:
-        return f"up to {name} = {end}"
-    if end is None:
-        return f"from {name} = {start} on"
-    return f"from {name} = {start} to {end}"
+    start, end = _end(stretch.start, stretch.start_key), _end(stretch.end, stretch.end_key)
+    if stretch.start_key is None and stretch.end_key is None:
+        return f"over {first.name} {start} to {end}"
+    if stretch.start == first.low:
+        return f"up to {first.name} = {end}"
+    if stretch.end == first.high:
+        return f"from {first.name} = {start} on"
+    return f"from {first.name} = {start} to {end}"
 
 
-def _end(value: float, key: Key) -> str:
-    return f"{number_text(value, 4)} ({name_of(*key)})"
+def _end(value: float, key: Key | None) -> str:
+    return number_text(value, 4) + (f" ({name_of(*key)})" if key else "")
 
 
 def _table(study: Study, line: Line) -> Table:
     """A row a quantity, governing first; where each level holds, and today's value over the threshold."""
     levels = levels_of(study)
-    judged = study.judged if study.judged in levels else levels[0]
+    judged = level_shown_first(study)
     table = Table(box=None, padding=(0, 2, 0, 0), header_style="dim", pad_edge=False)
     table.add_column("quantity", max_width=26)
     for level in levels:
@@ -129,19 +137,22 @@ def holds_text(each: Threshold) -> str:
     if each.known is None:
         return "not compared"
     if not each.pieces:
-        return "nowhere"
+        if not each.inconclusive:
+            return "nowhere"
+        return f"nowhere{UNDECIDED}" if each.fails else "inconclusive"
     if each.throughout:
         return "throughout" if each.complete else "where solved"
-    return "; ".join(_piece(piece, each.basis) for piece in each.pieces)
+    told = "; ".join(_piece(piece, each) for piece in each.pieces)
+    return told + (UNDECIDED if each.inconclusive else "")
 
 
-def _piece(piece: Piece, basis: str) -> str:
-    mark = "~" if basis == "estimate" else ""
-    start = f"{mark}{number_text(piece.start, 4)}"
-    end = f"{mark}{number_text(piece.end, 4)}"
-    if piece.start_crossing is None:
+def _piece(piece: Piece, each: Threshold) -> str:
+    mark = "~" if each.basis == "estimate" else ""
+    start = f"{mark if piece.start_crossing else ''}{number_text(piece.start, 4)}"
+    end = f"{mark if piece.end_crossing else ''}{number_text(piece.end, 4)}"
+    if piece.start == each.scanned[0]:
         return f"up to {end}"
-    return f"from {start}" if piece.end_crossing is None else f"{start} to {end}"
+    return f"from {start}" if piece.end == each.scanned[1] else f"{start} to {end}"
 
 
 def _notes(study: Study, folder: str | None) -> Iterator[tuple[str, str]]:
@@ -154,6 +165,9 @@ def _notes(study: Study, folder: str | None) -> Iterator[tuple[str, str]]:
         "the level judged. ~: the FE side is an estimate, not a bound.",
         "dim",
     )
+    if any(each.inconclusive for line in study.lines for each in line.thresholds):
+        words = f"{UNDECIDED.strip()}: elsewhere verdicts are inconclusive, at least in part: the FE error is"
+        yield f"{words} too large to say, ask for a finer --accuracy.", "dim"
     yield (
         f"Scanned at {len(first.values)} values from {first.low:g} to {first.high:g}, largest step "
         f"{study.step:.3g}; each threshold refined on sections solved anew ({study.solved} solved). Two "

@@ -203,8 +203,18 @@ def _with_outline_that_applies(section: SectionFile, source: SectionSource) -> S
     )
     if same_walls or plain.outline != section.outline:
         return section
-    note = "the outline is of other walls than these: FE takes the solid that the walls make"
-    return replace(section, outline=None, notes=(*section.notes, note))
+    return with_own_solid(section, "the outline is of other walls than these")
+
+
+def with_own_solid(section: SectionFile, why: str) -> SectionFile:
+    """The section without its outline; FE sees the walls and booms that only theory had beside it."""
+    return replace(
+        section,
+        outline=None,
+        walls=tuple(replace(wall, seen_by="both") for wall in section.walls),
+        booms=tuple(replace(boom, seen_by="both") for boom in section.booms),
+        notes=(*section.notes, f"{why}: FE takes the solid that the walls make"),
+    )
 
 
 def _units(document: Mapping[str, Any], faults: FaultList) -> tuple[str, str]:

@@ -103,14 +103,29 @@ class _Writer:
 
     def _corners(self) -> list[str]:
         lines = []
-        for name, point in zip(self.names.points, self.model.points, strict=True):
+        for number, (name, point) in enumerate(zip(self.names.points, self.model.points, strict=True)):
             if point.inner is None:
                 continue
             keys = f"inner_radius = {number_text(self._round(point.inner))}"
             if point.outer is not None:
-                keys += f", outer_radius = {number_text(self._round(point.outer))}"
+                keys += f", outer_radius = {self._outer_radius(number, point.outer)}"
             lines.append(f"{name} = {{ {keys} }}")
         return ["", "[corners]", *lines] if lines else []
+
+    def _outer_radius(self, point: int, radius: float) -> str:
+        """That of a free end follows the thickness, since a thinner wall has no room for it as it is."""
+        ends = [
+            self.names.thickness_of[i][place]
+            for i, wall in enumerate(self.model.walls)
+            for place, end in enumerate((wall.start, wall.end))
+            if end == point
+        ]
+        if len(ends) != 1:
+            return number_text(self._round(radius))
+        # Rounded down: half the thickness is the most that an end has room for.
+        share = math.floor(1e6 * radius / self.values[ends[0]]) / 1e6
+        name = self.names.thicknesses[ends[0]].name
+        return quoted(f"{name} / 2" if share >= 0.499 else f"{number_text(share)} * {name}")
 
     def _boom(self, lump: Lump) -> list[str]:
         x, y = (self._round(v) for v in lump.place)

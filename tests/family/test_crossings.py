@@ -8,7 +8,7 @@ from bisect import insort
 import numpy as np
 import pytest
 
-from crosscheck.family.crossings import Sample, crossings, pieces, wanted
+from crosscheck.family.crossings import Sample, crossings, pieces, undecided, wanted
 
 
 def refined(function, criterion, low, high, scan=25, error=0.0, most=40):
@@ -98,3 +98,40 @@ def test_throughout_and_nowhere():
     outside, _ = refined(lambda p: -0.1, 0.05, 0, 1)
     assert [(piece.start, piece.end) for piece in pieces(inside, 0.05)] == [(0, 1)]
     assert pieces(outside, 0.05) == ()
+
+
+def verdicts(samples, criterion):
+    """Ends of where it is shown to hold, of where it is shown to fail, and whether anything else is open."""
+    holds, fails = (
+        [(piece.start, piece.end) for piece in pieces(samples, criterion, holding)]
+        for holding in (True, False)
+    )
+    return holds, fails, undecided(samples, criterion)
+
+
+def test_an_unsure_end_decides_nothing():
+    """An inconclusive first member beyond the criterion does not speak for the definite ones after it."""
+    rows = [(0.5, 0.06, 0.05), (1.0, 0.01, 0.01), (1.5, 0.02, 0.01), (2.0, 0.04, 0.03)]
+    samples = [Sample(*row) for row in rows]
+    assert verdicts(samples, 0.05) == ([(1.0, 1.5)], [], True)
+    assert verdicts(samples[1:3], 0.05) == ([(1.0, 1.5)], [], False)
+
+
+def test_inconclusive_all_over_is_neither_throughout_nor_nowhere():
+    for difference in (0.01, -0.06):
+        samples = [Sample(at, difference, 0.1) for at in (0.0, 1.0, 2.0)]
+        assert verdicts(samples, 0.05) == ([], [], True)
+
+
+def test_what_fails_is_shown_as_well():
+    samples, _ = refined(lambda p: None if p > 0.8 else p / 10, 0.05, 0, 1, error=1e-6)
+    holds, fails, still_open = verdicts(samples, 0.05)
+    (threshold,) = crossings(samples, 0.05)
+    assert holds == [(0.0, threshold.value)]
+    assert fails == [(threshold.value, pytest.approx(0.7917, abs=1e-4))]
+    assert not still_open
+
+
+def test_an_inconclusive_stretch_between_definite_ones_is_left_out():
+    rows = [(0.0, 0.01, 0.0), (1.0, 0.01, 0.0), (2.0, 0.049, 0.01), (3.0, 0.01, 0.0), (4.0, 0.01, 0.0)]
+    assert verdicts([Sample(*row) for row in rows], 0.05) == ([(0.0, 1.0), (3.0, 4.0)], [], True)

@@ -9,6 +9,7 @@ from xml.etree import ElementTree
 import pytest
 
 from crosscheck import compare, read_section
+from crosscheck.family.validity import _word as standing_word
 from crosscheck.family.validity import read_envelope, standings
 from crosscheck.section_file.source import read_source
 
@@ -115,3 +116,38 @@ def test_two_parameters(run, channel, tmp_path):
         words.append({each.name: each.word for each in found}["shear_centre_x"])
     assert words == ["inside", "at the edge", "outside"]
     ElementTree.parse(out / "validity.svg")
+
+
+def test_nothing_is_said_where_nothing_is_known():
+    """Between a gap and what was solved, and where verdicts hang on the FE error."""
+    piece = {"from_is": "end of what is known", "to_is": "end of what is known"}
+    row = {
+        "thresholds": [],
+        "holds": [{"from": 1, "to": 2, **piece}],
+        "fails": [{"from": 3, "to": 4, **piece}],
+    }
+    words = {at: standing_word(row, at, 0.01) for at in (1.5, 2.5, 3.5, 4.5)}
+    assert words == {1.5: "inside", 2.5: "not covered", 3.5: "outside", 4.5: "not covered"}
+
+
+def test_a_quantity_that_the_file_does_not_have(run, channel, tmp_path):
+    """No load, no direct stress: an answer in words, not a fault of ours."""
+    channel.write_text(channel.read_text().partition("[[loads]]")[0])
+    status, out, err = run(
+        "threshold",
+        channel,
+        "--vary",
+        "t from 2 to 3 in 2",
+        "--quantity",
+        "direct_stress",
+        "--out",
+        tmp_path / "o",
+    )
+    assert (status, err) == (2, "")
+    assert "Nothing of what is asked for is compared" in out
+
+
+def test_the_file_as_it_stands_is_not_judged_outside_the_range(run, channel):
+    status, out, _ = run("threshold", channel, "--vary", "t from 3 to 4 in 2", "--quantity", "area")
+    assert status == 1
+    assert "throughout" in out

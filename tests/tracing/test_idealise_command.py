@@ -20,14 +20,17 @@ from drawn_parts import (
     thick_ring,
 )
 from numpy.testing import assert_allclose
-from shapely.geometry import box
+from shapely.geometry import LineString, box
 
 import fe_models
 from crosscheck.command_line import main
 from crosscheck.comparison.causes import TRACED
 from crosscheck.comparison.comparing import compare
 from crosscheck.comparison.models import fe_section
+from crosscheck.family.members import Family
+from crosscheck.family.ranges import ranges_of
 from crosscheck.section_file.reader import read_section
+from crosscheck.section_file.source import read_source
 from fe_models import Solid
 
 
@@ -78,7 +81,25 @@ def test_sweep_says_what_the_tracing_costs(channel: Path, capsys: pytest.Capture
     vary = "thickness_factor in 1, 1.2"
     assert main(["sweep", path, "--vary", vary, "--workers", "1", "--accuracy", "1e-2"]) in (0, 1)
     out = " ".join(capsys.readouterr().out.split())
-    assert "FE takes the solid they make. For the file as it stands that changes FE by at most" in out
+    assert "takes the solid they make. For the file as it stands that changes FE by at most" in out
+
+
+def test_every_member_of_a_family_takes_the_solid_of_its_walls(channel: Path) -> None:
+    """The file's own value among others would else be the only one on the drawing."""
+    assert main(["idealise", str(channel)]) == 0
+    source = read_source(channel.with_suffix(".toml"))
+    for text, drawn_at_one in (("thickness_factor from 0.5 to 2", False), ("thickness_factor in 1", True)):
+        family = Family(source, (), ranges_of([text], source), 1e-2)
+        assert (family.section([1.0]).outline is not None) == drawn_at_one
+
+
+def test_thinner_walls_have_room_for_their_round_ends(tmp_path: Path) -> None:
+    bar = LineString([(0, 0), (0, 60), (40, 60)]).buffer(1.5, quad_segs=64, join_style="mitre")
+    path = save_dxf(of_polygon(bar), tmp_path / "hook.dxf")
+    assert main(["idealise", str(path)]) == 0
+    assert "outer_radius" in path.with_suffix(".toml").read_text()
+    for factor in (0.3, 1.0, 2.0):
+        read_section(path.with_suffix(".toml"), {"thickness_factor": factor})
 
 
 def test_a_section_file_that_is_there_stays(extrusion: Path, capsys: pytest.CaptureFixture[str]) -> None:
