@@ -132,8 +132,9 @@ def _comparison(result: Result, figure: Figures, diagram: Diagram) -> Chapter:
     )
     judged = [row for row in worst_first(result.quantities) if row.verdict is not None]
     if not judged:
-        told = () if result.outline_alone else _undefined(result)
-        alone = (diagram, Paragraph(verdict_sentence(result)), fe_table(result), *told)
+        # Without walls there is nothing to point at, and the sentence has the one reason of every row.
+        pointed, told = ((), ()) if result.outline_alone else ((diagram,), _undefined(result))
+        alone = (*pointed, Paragraph(verdict_sentence(result)), fe_table(result), *told)
         return Chapter("comparison", "Comparison", (*alone, figure("both_sides"), figure("criteria")))
     rows = tuple(
         (

@@ -87,4 +87,8 @@ def hostile_file() -> str:
     text = text.replace('"pull"', quoted(TEX)).replace('"jerk"', quoted(f"jerk {RIGHT_TO_LEFT}"), 1)
     text = text.replace('"rivets"', quoted(QUOTES)).replace('"data sheet"', quoted(MARKUP))
     text = text.replace('"WR-17"', quoted(LONG)).replace('"A. Nother"', quoted(TYPESET))
+    text = text.replace(
+        'issue = "A", date = "1 March"', f"issue = {quoted(LONG)}, date = {quoted(MARKUP + LONG)}"
+    )
+    text = text.replace('part = "winch rail"', f"part = {quoted(QUOTES)}\nrequirement = {quoted(LONG * 5)}")
     return text.replace('"first issue"', quoted(f"{MARKUP} {TYPESET} {LONG}"))

@@ -10,7 +10,7 @@ from crosscheck.batch.task import BatchError
 from crosscheck.dossier.assumptions import register
 from crosscheck.dossier.bench import Bench, comparison_of
 from crosscheck.dossier.composing import compose
-from crosscheck.dossier.content import Paragraph, Table
+from crosscheck.dossier.content import Diagram, Paragraph, Table
 from crosscheck.dossier.convergence import answers
 from crosscheck.dossier.evidence import gather
 from crosscheck.section_file.reader import read_section
@@ -29,6 +29,7 @@ def test_a_section_without_walls_shows_the_values_of_fe_and_no_empty_table(knuck
     document = compose([knuckle], [plain_plates()], None, "2026-01-01", "crosscheck dossier")
     for chapter in chapters(document):
         assert all_words(chapter), chapter.title
+        assert not any(isinstance(block, Diagram) for block in chapter.blocks), "no wall to point at"
     tables = [block for block in document.outcome if isinstance(block, Table)]
     shown = {row[0] for row in tables[0].rows}
     assert {"area", "torsion constant", "shear centre, x"} <= shown
