@@ -8,7 +8,7 @@ import sys
 from collections.abc import Sequence
 
 from crosscheck.commands import compare, dossier, draw, idealise, sweep, template, threshold, verify
-from crosscheck.commands.arguments import OneLineParser
+from crosscheck.commands.arguments import OneLineParser, plain_line
 from crosscheck.exit_status import ExitStatus
 
 DESCRIPTION = """\
@@ -85,5 +85,4 @@ def _run(argv: Sequence[str] | None) -> int:
 
 def _complain(text: str) -> None:
     """One line on the error stream."""
-    line = " ".join(text.split())
-    sys.stderr.write("".join(c if c.isprintable() else "?" for c in line)[:1000] + "\n")
+    sys.stderr.write(f"{plain_line(text)}\n")

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from crosscheck.case_files import case_folder
-from crosscheck.faults import CrosscheckError, quoted
+from crosscheck.faults import CrosscheckError, nearest, quoted
 
 N_CELL_BOX = "n_cell_box"
 MOST_CELLS = 200
@@ -64,7 +64,9 @@ def template_text(name: str, cells: int | None = None) -> str:
     known = template_names()
     plain = name.strip().lower().replace(" ", "_").replace("-", "_")
     if plain not in known:
-        raise CrosscheckError(f"template: must be one of {', '.join(known)}, got {quoted(name)}")
+        near = nearest(plain, known)
+        hint = f"; did you mean {quoted(near)}?" if near else ""
+        raise CrosscheckError(f"template: must be one of {', '.join(known)}, got {quoted(name)}{hint}")
     if plain != N_CELL_BOX:
         if cells is not None:
             raise CrosscheckError(f"cells: must be left out except for {N_CELL_BOX}, got {cells}")

@@ -1,5 +1,6 @@
 """Finite-element side of the cross-check: the real outline, two-sided warping solutions, error bars."""
 
+from .apart import rings_apart
 from .checks import Check
 from .edges import Chained, Edge, circle_edges, closed_lines, fitted_edges
 from .errors import FeError, LibraryError, OutlineError, SolveError
@@ -64,6 +65,7 @@ __all__ = [
     "outline_of_solid",
     "outline_of_walls",
     "require_mesh_library",
+    "rings_apart",
     "rings_of_mesh",
     "rings_of_step",
     "solve",

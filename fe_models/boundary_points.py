@@ -11,11 +11,14 @@ from numpy.typing import NDArray
 from .band import Array
 from .boundary import EndKey, Piece
 from .density import Density
+from .errors import OutlineError
 from .fill import Region
 from .grading import corner_size, graded
 from .partition import Cluster
 from .seams import Seam
 
+# On all rings of one cluster: the mesh generator's time grows with their square.
+MOST_POINTS = 40_000
 # Length of elements over the width of the solid between pieces that face each other all along.
 CALM = 8.0
 # Rise of an element's arc over the width of the solid.
@@ -44,7 +47,13 @@ class BoundaryPoints:
 def boundary_points(
     cluster: Cluster, scale: float, density: Density, seams: Sequence[Seam] = ()
 ) -> BoundaryPoints:
-    """Points on a cluster's rings and seams; ``scale`` is the least thickness of its walls [L]."""
+    """Points on a cluster's rings and seams; ``scale`` is the least thickness of its walls [L].
+
+    Raises
+    ------
+    OutlineError
+        More points than the mesh generator can take.
+    """
     loops, corners, cuts, bends = [], [], {}, []
     base, largest = 0, density.largest * scale
     for ring in cluster.rings:
@@ -67,6 +76,9 @@ def boundary_points(
             first += len(u) - 1
         loops.append(np.concatenate([p.at(u[:-1]) for p, u in zip(ring, fractions, strict=True)]))
         base += total
+        if base > MOST_POINTS:
+            where = f"the joint at {cluster.points[0]}" if cluster.points else "the outline"
+            raise OutlineError("points", cluster.walls, f"{base} points or more round {where}")
     inner, lines = _seam_points(np.concatenate(loops), dict(corners), seams, scale, density)
     region = Region(tuple(loops), inner, lines, tuple(corners), largest, density.slope)
     return BoundaryPoints(region, cuts, bends)

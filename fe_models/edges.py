@@ -19,6 +19,8 @@ from .solid import ClosedLine, Place
 MOST_ARCS = 4096
 # Gaps below this share of the coordinates are none.
 ROUND_OFF = 1e-12
+# Largest coordinate [L].
+FARTHEST = 1e30
 PLACES = np.array([0.1, 0.25, 0.4, 0.6, 0.75, 0.9])
 
 
@@ -123,6 +125,8 @@ def closed_lines(edges: Sequence[Edge], gap: float) -> Chained:
     ends = np.array([p for e in edges for p in (e.start, e.end)], dtype=float).reshape(-1, 2)
     if not len(ends):
         raise OutlineError("gap", (), "no edge")
+    if not np.isfinite(ends).all() or np.abs(ends).max() > FARTHEST:
+        raise OutlineError("ring", (), "an end that is not a finite number, or is beyond 1e30")
     point = _points(ends, gap)
     number = point.reshape(-1, 2)
     loose = [number[i, 0] == number[i, 1] and _is_short(e, gap) for i, e in enumerate(edges)]
@@ -132,6 +136,8 @@ def closed_lines(edges: Sequence[Edge], gap: float) -> Chained:
             a, b = sorted(number[i].tolist())
             kept.setdefault((a, b, *_middle(e, gap)), i)
     chosen = sorted(kept.values())
+    if not chosen:
+        raise OutlineError("gap", (), f"no edge longer than the gap of {gap:.4g}")
     at: dict[int, list[int]] = {}
     for i in chosen:
         for n in number[i].tolist():

@@ -8,6 +8,7 @@ from __future__ import annotations
 import contextlib
 import io
 import os
+import re
 import tempfile
 import warnings
 from collections.abc import Mapping
@@ -40,6 +41,8 @@ READ_FORMATS = {
 WRITE_FORMATS = {".vtu": "vtu", ".msh": "gmsh22"}
 # Vertices this close over the overall dimension are one; as much is allowed out of the plane or off a line.
 SAME_PLACE = 1e-7
+# Vertices of one file.
+MOST_PLACES = 1_000_000
 
 
 def require_mesh_library() -> None:
@@ -81,6 +84,8 @@ def rings_of_mesh(path: Path) -> tuple[ClosedLine, ...]:
         allowed = ", ".join(READ_FORMATS)
         raise OutlineError("mesh", (path.name,), f"an ending other than {allowed}")
     library = _library()
+    if kind == "abaqus" and re.search(rb"^\s*\*\s*include", path.read_bytes(), re.I | re.M):
+        raise OutlineError("mesh", (path.name,), "a file that brings in another one (*INCLUDE)")
     said = io.StringIO()
     try:
         # the library prints what it does not like, and may leave by SystemExit
@@ -110,7 +115,13 @@ def _sheet(read: Any, path: Path) -> tuple[Array, Index]:
         raise OutlineError("mesh", (path.name,), f"cells of the kind {', '.join(sorted(others)) or 'none'}")
     points = np.asarray(read.points, dtype=float)
     triangles = np.concatenate(blocks).astype(np.int64)
+    if len(points) > MOST_PLACES:
+        raise OutlineError("mesh", (path.name,), f"{len(points)} places, more than {MOST_PLACES}")
+    if triangles.min() < 0 or triangles.max() >= len(points):
+        raise OutlineError("mesh", (path.name,), "a triangle with a corner that is not there")
     used = points[np.unique(triangles)]
+    if not np.isfinite(used).all():
+        raise OutlineError("mesh", (path.name,), "a place that is not finite")
     size = float(np.ptp(used[:, :2], axis=0).max())
     if points.shape[1] == 3 and np.ptp(used[:, 2]) > SAME_PLACE * size:
         raise OutlineError("mesh", (path.name,), "a sheet that is not flat across z")
@@ -122,6 +133,8 @@ def _sheet(read: Any, path: Path) -> tuple[Array, Index]:
     a, b, c = (places[triangles[:, i]] for i in range(3))
     area = (b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0]
     triangles = triangles[np.abs(area) > (SAME_PLACE * size) ** 2]
+    if not len(triangles):
+        raise OutlineError("mesh", (path.name,), "no triangle with an area")
     turned = area[np.abs(area) > (SAME_PLACE * size) ** 2] < 0.0
     triangles[turned] = triangles[turned][:, [0, 2, 1]]
     return places, triangles

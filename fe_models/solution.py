@@ -13,7 +13,7 @@ from .band import Array, Band, band
 from .bridges import open_walls
 from .checks import Check, self_checks
 from .density import Density
-from .errors import SolveError
+from .errors import OutlineError, SolveError
 from .faces import Actions, FaceStress, Peak, boundary_peaks, face_stress, sampled_faces
 from .fields import Fields, Moduli, inertia
 from .fields import solve as solve_fields
@@ -33,7 +33,7 @@ from .space import space
 DEFAULT_ACCURACY = 1e-5
 # Accuracies that may be asked for: finer ones drown in round-off, coarser ones are no reference.
 ACCURACY_RANGE = (1e-8, 1e-2)
-MOST_UNKNOWNS = 400_000
+MOST_UNKNOWNS = 500_000
 MOST_PASSES = 8
 # Mean length over thickness of the walls below which the first mesh is made finer.
 STOUT = 12.0
@@ -269,9 +269,8 @@ def _refinement(
     solid: Outline, accuracy: float, progress: Progress | None
 ) -> tuple[Fields, dict[str, Interval], int]:
     """Last fields, the intersection of all passes' intervals, and the number of passes."""
-    density = _start(solid, accuracy)
     levels: dict[str, float] = {}
-    solved = _fields(solid, density, levels)
+    density, solved = _first(solid, accuracy)
     found = quantities(solved, solid)
     for passes in range(1, MOST_PASSES + 1):
         worst = _excess(found, solid.extent, accuracy)
@@ -287,11 +286,23 @@ def _refinement(
             density = replace(density, layers=2 * density.layers, first=0.5 * density.first)
         try:
             solved = _fields(solid, density, levels)
-        except SolveError:
+        except (OutlineError, SolveError):
             # a mesh that grew too fine to be made leaves the last good answer standing
             break
         found = {n: q.meet(found[n]) for n, q in quantities(solved, solid).items()}
     return solved, found, passes
+
+
+def _first(solid: Outline, accuracy: float) -> tuple[Density, Fields]:
+    """The first density and its fields; coarser than the accuracy asks for where that mesh were too large."""
+    density = _start(solid, accuracy)
+    try:
+        return density, _fields(solid, density, {})
+    except OutlineError as fault:
+        if fault.kind != "unknowns":
+            raise
+    density = _start(solid, ACCURACY_RANGE[1])
+    return density, _fields(solid, density, {})
 
 
 def _with_nu(found: Mapping[str, Interval], poisson: PoissonFlexure | None) -> dict[str, Interval]:
@@ -336,6 +347,9 @@ def _start(solid: Outline, accuracy: float) -> Density:
 
 def _fields(solid: Outline, density: Density, levels: Mapping[str, float]) -> Fields:
     made = mesh(solid, density, levels)
+    unknowns = len(made.triangles) * density.order**2 // 2
+    if unknowns > MOST_UNKNOWNS:
+        raise OutlineError("unknowns", (), f"some {unknowns} unknowns")
     own = np.array(list(solid.moduli.values()))[made.owner]
     moduli = Moduli(own[:, 1], own[:, 0] + made.boom)
     rough = made.vertices.mean(axis=0)

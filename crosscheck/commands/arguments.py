@@ -22,7 +22,7 @@ class OneLineParser(argparse.ArgumentParser):
     """Parser that tells a bad argument in one line, without the usage block; ``-h`` has that."""
 
     def error(self, message: str) -> NoReturn:
-        self.exit(2, f"{self.prog}: {' '.join(message.split())}\n")
+        self.exit(2, f"{self.prog}: {plain_line(message)}\n")
 
 
 def accuracy(text: str) -> float:
@@ -69,7 +69,13 @@ def add_model_arguments(command: argparse.ArgumentParser) -> None:
 def complain(lines: Iterable[str]) -> None:
     """Faults, one line each, on the error stream."""
     for line in lines:
-        sys.stderr.write(" ".join(str(line).split()) + "\n")
+        sys.stderr.write(plain_line(str(line)) + "\n")
+
+
+def plain_line(text: str) -> str:
+    """Text on one line of bounded length that sends nothing but letters to a terminal."""
+    line = " ".join(text.split())[:1900]
+    return "".join(c if c.isprintable() else c.encode("unicode_escape").decode("ascii") for c in line)
 
 
 @contextmanager

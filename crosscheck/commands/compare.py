@@ -314,7 +314,7 @@ def outline_fault(path: str, section: SectionFile, fault: fe_models.OutlineError
     known = {wall.name: wall for wall in section.walls}
     named = [name for name in fault.walls if name in known]
     key = {"radius": "corners", "limit": "walls", "agreement": "outline"}.get(fault.kind) or (
-        known[named[0]].key if named else "walls"
+        known[named[0]].key if named else "walls" if section.walls else "outline"
     )
     shown = ", ".join(f'"{name}"' for name in named[:4]) + (" and more" if len(named) > 4 else "")
     found = fault.found if fault.kind == "limit" or not shown else f"{fault.found} (walls {shown})"

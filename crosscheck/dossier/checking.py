@@ -13,12 +13,15 @@ from typing import Any
 from crosscheck.comparison.provenance import provenance
 from crosscheck.dossier.evidence import evidence_record, gather, read_envelope_file
 from crosscheck.dossier.package import MANIFEST, SCHEMA, sealed
-from crosscheck.faults import one_line
+from crosscheck.faults import FaultList, SectionFaults, one_line
 from crosscheck.reports.result_json import document
 from crosscheck.section_file.reader import read_section
+from crosscheck.section_file.source import plain_content
+from fe_models import ACCURACY_RANGE
 
 # Numbers that agree to this share of their scale are the same numbers [-].
 SAME = 1e-9
+MANIFEST_LIMIT = 10_000_000  # bytes
 # What differs between two runs of one file, and residuals, of which only the outcome counts.
 LEFT_OUT = {"provenance", "working", "seconds"}
 # Keys that have no dimension: their scale is one.
@@ -82,9 +85,9 @@ def read_manifest(folder: Path) -> tuple[dict[str, Any] | None, list[str]]:
     """The manifest of a package, or what is wrong with it."""
     path = folder / MANIFEST
     try:
-        data = path.read_bytes()
-    except OSError as fault:
-        return None, [f"{path}: must be the manifest of a dossier, got: {fault.strerror or fault}"]
+        data = plain_content(str(path), FaultList(str(path)), "the manifest of a dossier", MANIFEST_LIMIT)
+    except SectionFaults as faults:
+        return None, list(faults.lines)
     try:
         content = json.loads(data)
         seal = content.pop("seal")
@@ -93,7 +96,34 @@ def read_manifest(folder: Path) -> tuple[dict[str, Any] | None, list[str]]:
         right = False
     if not right:
         return None, [f"{path}: altered: its seal does not fit its content"]
+    if not _complete(content):
+        return None, [f"{path}: must have the entries that 'crosscheck dossier' writes, got others"]
     return content, []
+
+
+def _complete(content: Mapping[str, Any]) -> bool:
+    """Whether a manifest has every entry in its form, and names no place outside the package."""
+    files, options = content.get("files"), content.get("options")
+    if not (isinstance(files, dict) and isinstance(options, dict) and isinstance(content.get("run"), str)):
+        return False
+    sections, overrides = options.get("sections"), options.get("overrides")
+    packages, accuracy = options.get("packages"), options.get("accuracy")
+    if not (isinstance(sections, list) and sections and isinstance(overrides, list)):
+        return False
+    if not (isinstance(packages, dict) and isinstance(options.get("version"), str)):
+        return False
+    low, high = ACCURACY_RANGE
+    if isinstance(accuracy, bool) or not isinstance(accuracy, (int, float)) or not low <= accuracy <= high:
+        return False
+    if not all(isinstance(text, str) for text in overrides):
+        return False
+    return all(
+        isinstance(section, dict)
+        and isinstance(section.get("file"), str)
+        and section["file"] in files
+        and {f"{section.get('folder')}/{name}" for name in ("result.json", "verification.json")} <= set(files)
+        for section in sections
+    )
 
 
 def _altered(folder: Path, manifest: Mapping[str, Any]) -> Iterator[str]:
@@ -102,11 +132,17 @@ def _altered(folder: Path, manifest: Mapping[str, Any]) -> Iterator[str]:
     for name, digest in files.items():
         path = folder / name
         try:
-            data = path.read_bytes()
-        except OSError as fault:
-            yield f"{path}: missing or unreadable: {fault.strerror or fault}"
+            # a name that leads out of the package, and what is no plain file, is not opened
+            inside = path.resolve().is_relative_to(folder.resolve()) and path.is_file()
+            if not inside and (path.exists() or ".." in path.parts):
+                yield f"{path}: must be a file of the package, got another place"
+                continue
+            with path.open("rb") as stream:
+                found = hashlib.file_digest(stream, "sha256").hexdigest()
+        except (OSError, ValueError, RuntimeError) as fault:
+            yield f"{path}: missing or unreadable: {getattr(fault, 'strerror', None) or fault}"
             continue
-        if hashlib.sha256(data).hexdigest() != digest:
+        if found != digest:
             yield f"{path}: altered: its SHA-256 is not that of the manifest"
     for where, _, names in os.walk(folder):
         for name in names:

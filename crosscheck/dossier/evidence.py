@@ -82,7 +82,7 @@ def gather(
     """
     path = Path(section.path)
     files = {path.name: path.read_bytes()}
-    files |= {name: (path.parent / name).read_bytes() for name in section.tables}
+    files |= {Path(name).as_posix(): (path.parent / name).read_bytes() for name in section.tables}
     result = compare(section, accuracy, tell, pictures=True, working=True)
     with Bench(comparison_of, None, is_large(result)) as bench:
         convergence = converge(section, result, bench, tell)

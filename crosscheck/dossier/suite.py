@@ -9,8 +9,9 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from crosscheck.faults import Fault, SectionFaults
+from crosscheck.faults import Fault, FaultList, SectionFaults
 from crosscheck.reports.wording import percent_text
+from crosscheck.section_file.source import plain_content
 
 LIMIT = 50_000_000
 
@@ -72,12 +73,7 @@ def read_suite(path: str) -> SuiteEvidence:
         Where the file cannot be read or holds no checks.
     """
     allowed = "evidence that 'crosscheck verify --json PATH' wrote"
-    try:
-        content = Path(path).read_bytes()
-    except OSError as fault:
-        raise SectionFaults([Fault(path, "", fault.strerror or str(fault), allowed)]) from None
-    if len(content) > LIMIT:
-        raise SectionFaults([Fault(path, "", "a larger file", f"at most {LIMIT / 1e6:g} MB")])
+    content = plain_content(path, FaultList(path), allowed, LIMIT)
     try:
         data = json.loads(content)
         checks = tuple(_check(entry) for entry in data["outcomes"])

@@ -38,6 +38,8 @@ PASSED_OVER = frozenset(
 GAP_SHARE = 1e-6
 CHORD_SHARE = 1e-5
 ENTITY_LIMIT = 50_000
+# Entities looked at, in blocks and on layers that are left out too.
+VISIT_LIMIT = 100_000
 NESTING_LIMIT = 16
 # Extrusions off the view direction by less than this keep a flat drawing flat.
 FLAT = 1e-9
@@ -109,24 +111,38 @@ def dxf_outline(
         Not readable, without unit, without closed outline, or with entities that are not understood.
     """
     document = _document(path)
-    unit, notes = _unit(document, drawing_unit)
-    scale = MILLIMETRES[unit] / MILLIMETRES[length_unit]
+    try:
+        unit, notes = _unit(document, drawing_unit)
+        scale = MILLIMETRES[unit] / MILLIMETRES[length_unit]
+        found = _collected(document, layers)
+        return _outline(found, scale, length_unit, gap, chord_error, notes)
+    except DrawingRefused:
+        raise
+    except Exception as fault:  # the library looks at an entity only when it is asked for
+        raise DrawingRefused(f"a drawing with a faulty entity ({fault})", "a DXF drawing") from None
+
+
+def _collected(document: Any, layers: Sequence[str]) -> _Collected:
+    """What the wanted layers of model space hold."""
     found = _Collected()
     wanted = _wanted_layers(document, layers)
     hidden = {layer.dxf.name.casefold() for layer in document.layers if layer.is_off() or layer.is_frozen()}
-    for entity, layer in _entities(document.modelspace(), None, 0):
+    for number, (entity, layer) in enumerate(_entities(document.modelspace(), None, 0)):
+        if number > VISIT_LIMIT:
+            raise DrawingRefused(f"more than {VISIT_LIMIT} entities and blocks", "a drawing of one section")
         key = layer.casefold()
+        if entity is None:
+            continue
         if key in wanted if wanted else key not in hidden:
             _collect(entity, layer, found)
         else:
             found.hidden[layer] += 1
-    return _outline(found, scale, length_unit, gap, chord_error, notes)
+    return found
 
 
 def _document(path: Path) -> Any:
     try:
         from ezdxf.filemanagement import readfile
-        from ezdxf.lldxf.const import DXFError
     except ImportError:
         raise DrawingRefused(
             "a DXF file without the library that reads it", "readable", 'pip install "crosscheck[dxf]"'
@@ -135,7 +151,7 @@ def _document(path: Path) -> Any:
     try:
         with redirect_stdout(said), redirect_stderr(said):
             return readfile(path)
-    except (OSError, DXFError, ValueError, KeyError, IndexError, RecursionError) as fault:
+    except Exception as fault:  # besides its own errors, whatever a bad file makes of its parts
         raise DrawingRefused(f"a file that cannot be read ({fault})", "a DXF drawing") from None
 
 
@@ -165,7 +181,10 @@ def _wanted_layers(document: Any, layers: Sequence[str]) -> set[str]:
 
 
 def _entities(entities: Iterable[Any], outer_layer: str | None, depth: int) -> Iterator[tuple[Any, str]]:
-    """All entities with their layer, blocks taken apart: layer 0 in a block is the layer of its insert."""
+    """All entities with their layer, blocks taken apart: layer 0 in a block is the layer of its insert.
+
+    Every insert comes as None first, so that blocks of nothing but blocks are counted.
+    """
     for entity in entities:
         layer = str(entity.dxf.layer)
         if layer == "0" and outer_layer is not None:
@@ -175,6 +194,7 @@ def _entities(entities: Iterable[Any], outer_layer: str | None, depth: int) -> I
                 raise DrawingRefused(f"blocks nested more than {NESTING_LIMIT} deep", "a plain drawing")
             parts = entity.multi_insert() if entity.mcount > 1 else [entity]
             for part in parts:
+                yield None, layer
                 yield from _entities(part.virtual_entities(), layer, depth + 1)
         elif entity.dxftype() in ("LWPOLYLINE", "POLYLINE") and not _is_surface(entity):
             for part in entity.virtual_entities():

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Collection, Mapping, Sequence
 from itertools import chain
 from typing import Any
@@ -9,6 +10,7 @@ from typing import Any
 from crosscheck.comparison.quantities import AT_PROBES, OF_A_LOAD, QUANTITIES, UNIT_LOADS
 from crosscheck.faults import FaultList, KeyPath, quoted
 from crosscheck.section_file.graph import SAME, WallGraph
+from crosscheck.section_file.keys import ENTRY_LIMITS
 from crosscheck.section_file.model import (
     EVERY_BEND,
     BoomSpec,
@@ -52,6 +54,8 @@ class AttachmentReader:
         self.declared_points = declared_points
         self.pieces = {} if graph is None else graph.pieces
         self.walls: dict[str, list[WallSpec]] | None = None
+        # walls that meet at each point that has any
+        self.meeting = Counter(p for w in (graph.walls if graph else ()) for p in (w.start, w.end))
         if graph is not None:
             self.walls = {}
             for wall in graph.walls:
@@ -119,6 +123,10 @@ class AttachmentReader:
         """Booms in file order, lists and counts taken apart: count = n puts them at k/(n+1), k = 1..n."""
         booms: list[BoomSpec] = []
         for index, table in enumerate(self.document.get("booms", [])):
+            if len(booms) > ENTRY_LIMITS["booms"]:
+                words = f"at most {ENTRY_LIMITS['booms']} booms"
+                self.faults.add(("booms",), f"{len(booms)} booms or more in all", words)
+                break
             path: KeyPath = ("booms", index)
             area = self.numbers.number((*path, "area"), table.get("area"), POSITIVE) or 0.0
             material = table.get("material", self.base_material)
@@ -185,6 +193,9 @@ class AttachmentReader:
             if point != EVERY_BEND and point not in self.declared_points:
                 near = (point, (*self.declared_points, EVERY_BEND))
                 self.faults.add(path, quoted(point), f"a point of [points] or {EVERY_BEND}", near=near)
+            elif self.meeting.get(point, 2) < 2:
+                words = "a point where walls meet: a free end is square"
+                self.faults.add(path, f"{quoted(point)}, at the end of a single wall", words, "leave it out")
             inner = self.numbers.number((*path, "inner_radius"), table.get("inner_radius"), NOT_NEGATIVE)
             outer = self.numbers.number((*path, "outer_radius"), table.get("outer_radius"), NOT_NEGATIVE)
             corners.append(CornerSpec(point, inner or 0.0, outer))

@@ -29,14 +29,17 @@ import numpy as np
 import fe_models
 from crosscheck.drawings.dxf import MILLIMETRES, DrawingRefused, dxf_outline
 from crosscheck.faults import FaultList, KeyPath, quoted, shown
+from crosscheck.section_file.keys import OFFSET_LIMIT
 from crosscheck.section_file.numbers import POSITIVE, Numbers
 
 KEYS = ("boundary", "openings", "file", "drawing_unit", "layers", "gap", "chord_error")
 FILE_KEYS = ("drawing_unit", "layers", "gap", "chord_error")
 STEP_ENDINGS = (".step", ".stp")
 MESH_ENDINGS = (".msh", ".vtu", ".vtk", ".stl", ".obj", ".off", ".ply", ".inp", ".bdf", ".mesh")
-PLACE_LIMIT = 20_000
-FILE_LIMIT = 100_000_000  # bytes
+# Of all rings together: the width of a solid is sought from every place to every edge.
+PLACE_LIMIT = 8_000
+RING_LIMIT = 500
+DRAWING_LIMIT = 20_000_000  # bytes
 PLACE_WORDS = "a place [x, y]"
 RING_WORDS = "a list of places [x, y] and arcs { through, to }, or { centre, radius }"
 
@@ -119,6 +122,19 @@ def _judged(
     solid: fe_models.Solid, keys: list[KeyPath], faults: FaultList, made: ReadOutline
 ) -> ReadOutline | None:
     """What was read, if its rings bound one solid."""
+    places = sum(len(ring.points) for ring in solid.rings)
+    if places > PLACE_LIMIT or len(solid.rings) > RING_LIMIT:
+        words = f"an outline of at most {PLACE_LIMIT} places on at most {RING_LIMIT} rings"
+        remedy = "leave out what is smaller than the accuracy needs"
+        faults.add(keys[0], f"{places} places on {len(solid.rings)} rings", words, remedy)
+        return None
+    corners = np.array([place for ring in solid.rings for place in ring.points])
+    size, far = float(np.ptp(corners, axis=0).max()), float(np.abs(corners).max())
+    if far > OFFSET_LIMIT * size:
+        found = f"an outline {size:.4g} wide or high at a distance of {far:.4g}"
+        words = f"within {OFFSET_LIMIT:g} times the section's size from the origin"
+        faults.add(keys[0], found, words, "move the origin to the section")
+        return None
     try:
         fe_models.loops_of_solid(solid)
     except fe_models.OutlineError as fault:
@@ -251,7 +267,7 @@ def _from_file(
     if len(faults) + faults.left_out > before:
         return None
     solid = fe_models.Solid(rings, nu=nu)
-    made = ReadOutline(solid, notes, path.name, hashlib.sha256(content).hexdigest())
+    made = ReadOutline(solid, notes, path.relative_to(folder).as_posix(), hashlib.sha256(content).hexdigest())
     return _judged(solid, [key] * len(rings), faults, made)
 
 
@@ -261,18 +277,22 @@ def _path(raw: Any, folder: Path, faults: FaultList) -> Path | None:
     if not isinstance(raw, str) or not raw.isprintable() or len(raw) > 300:
         faults.add(key, shown(raw), "the name of a drawing in quotes")
         return None
-    if Path(raw).is_absolute() or ".." in Path(raw).parts:
+    path = folder / raw
+    try:
+        inside = path.resolve().is_relative_to(folder.resolve())
+    except (OSError, RuntimeError):  # a link to itself
+        inside = False
+    if Path(raw).is_absolute() or ".." in Path(raw).parts or not inside:
         faults.add(key, quoted(raw), "a file in the section file's folder or below it")
         return None
-    path = folder / raw
     if path.suffix.lower() not in endings:
         faults.add(key, quoted(raw), f"a file that ends in {', '.join(endings)}")
         return None
     if not path.is_file():
         faults.add(key, quoted(raw), "a file that is there", f"looked in {quoted(str(folder))}")
         return None
-    if path.stat().st_size > FILE_LIMIT:
-        faults.add(key, f"{path.stat().st_size / 1e6:.0f} MB", f"at most {FILE_LIMIT / 1e6:.0f} MB")
+    if path.stat().st_size > DRAWING_LIMIT:
+        faults.add(key, f"{path.stat().st_size / 1e6:.0f} MB", f"at most {DRAWING_LIMIT / 1e6:.0f} MB")
         return None
     return path
 
@@ -312,10 +332,10 @@ def _drawn(
             drawn = dxf_outline(path, length_unit, **options)
             return drawn.rings, drawn.notes
         if ending in STEP_ENDINGS:
-            rings = fe_models.rings_of_step(path, length_unit, error)
+            rings = fe_models.rings_apart(path, length_unit, error)
             return rings, (f"STEP face in {length_unit}; circles exact, other curves as arcs",)
         factor = MILLIMETRES[options["drawing_unit"] or length_unit] / MILLIMETRES[length_unit]
-        rings = tuple(_times(r, factor) for r in fe_models.rings_of_mesh(path))
+        rings = tuple(_times(r, factor) for r in fe_models.rings_apart(path))
         edges = sum(len(r.points) for r in rings)
         return rings, (f"boundary of a triangle mesh: {edges} straight edges",)
     except DrawingRefused as fault:

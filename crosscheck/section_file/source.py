@@ -71,10 +71,10 @@ def read_source(path: str | os.PathLike[str]) -> SectionSource:
     """
     name = os.fspath(path)
     faults = FaultList(name)
-    content = _content(name, faults)
-    text = _text(content, faults)
-    _check_key_lengths(text, faults)
-    document = _document(text, faults)
+    content = plain_content(name, faults)
+    text = plain_text(content, faults)
+    check_key_lengths(text, faults)
+    document = toml_document(text, faults)
     return SectionSource(name, hashlib.sha256(content).hexdigest(), document, _tables(name, document))
 
 
@@ -91,10 +91,10 @@ def _table(folder: Path, name: str) -> TableSource:
     faults = FaultList(name)
     try:
         inside = (folder / name).resolve().is_relative_to(folder.resolve())
-        if not name.isprintable() or not inside or Path(name).is_absolute():
+        if not name.isprintable() or not inside or Path(name).is_absolute() or ".." in Path(name).parts:
             return TableSource(name, fault=(quoted(name), allowed, "name it from there, as in loads.csv"))
-        content = _content(str(folder / name), faults, allowed)
-        text = _text(content, faults, "a first line with the names of the columns")
+        content = plain_content(str(folder / name), faults, allowed)
+        text = plain_text(content, faults, "a first line with the names of the columns")
     except SectionFaults as error:
         (first, *_) = error.faults
         return TableSource(name, fault=(f"{quoted(name)}: {first.found}", first.allowed, first.remedy))
@@ -103,8 +103,10 @@ def _table(folder: Path, name: str) -> TableSource:
     return TableSource(name, hashlib.sha256(content).hexdigest(), text)
 
 
-def _content(name: str, faults: FaultList, allowed: str = "a section file") -> bytes:
-    """Bytes of a plain file of bounded size."""
+def plain_content(
+    name: str, faults: FaultList, allowed: str = "a section file", limit: int = FILE_LIMIT
+) -> bytes:
+    """Bytes of a plain file of bounded size; faults are raised."""
     found, remedy = "", ""
     content = b""
     try:
@@ -116,7 +118,7 @@ def _content(name: str, faults: FaultList, allowed: str = "a section file") -> b
             found = "a pipe or device"
         else:
             with open(name, "rb") as file:
-                content = file.read(FILE_LIMIT + 1)
+                content = file.read(limit + 1)
     except FileNotFoundError:
         found, remedy = "no such file", "check the path"
     except NotADirectoryError:
@@ -127,16 +129,21 @@ def _content(name: str, faults: FaultList, allowed: str = "a section file") -> b
         found = f"a file that cannot be read ({getattr(error, 'strerror', None) or error})"
     if found:
         faults.add((), found, allowed, remedy)
-    elif len(content) > FILE_LIMIT:
-        faults.add((), "a larger file", f"at most {FILE_LIMIT / 1e6:g} MB")
+    elif len(content) > limit:
+        faults.add((), "a larger file", f"at most {limit / 1e6:g} MB")
     elif b"\0" in content:
         faults.add((), f"a binary file (byte 0 at offset {content.index(0)})", "UTF-8 text")
     faults.raise_any()
     return content
 
 
-def _text(content: bytes, faults: FaultList, start: str = 'units = "mm N", [points] and [[walls]]') -> str:
-    """The text, without a byte order mark and with plain line ends."""
+def plain_text(
+    content: bytes,
+    faults: FaultList,
+    start: str = 'units = "mm N", [points] and [[walls]]',
+    allowed: str = "a section file",
+) -> str:
+    """The text, without a byte order mark and with plain line ends; faults are raised."""
     try:
         text = content.decode("utf-8-sig")
     except UnicodeDecodeError as error:
@@ -145,12 +152,12 @@ def _text(content: bytes, faults: FaultList, start: str = 'units = "mm N", [poin
         faults.raise_any()
         raise  # unreachable: the fault was raised
     if not text.strip():
-        faults.add((), "an empty file", "a section file", f"start with {start}")
+        faults.add((), "an empty file", allowed, f"start with {start}")
         faults.raise_any()
     return text.replace("\r\n", "\n")
 
 
-def _check_key_lengths(text: str, faults: FaultList) -> None:
+def check_key_lengths(text: str, faults: FaultList) -> None:
     """Refuse keys of very many dotted parts: the parser's time grows with their square."""
     blank = _STRINGS_AND_COMMENTS.sub(lambda m: "\n" if m[0].startswith("#") else "s", text)
     if any(piece.count(".") >= KEY_PARTS_LIMIT for piece in _BETWEEN_KEYS.split(blank)):
@@ -158,7 +165,7 @@ def _check_key_lengths(text: str, faults: FaultList) -> None:
         faults.raise_any()
 
 
-def _document(text: str, faults: FaultList) -> dict[str, Any]:
+def toml_document(text: str, faults: FaultList) -> dict[str, Any]:
     """The parsed document."""
     try:
         document = tomllib.loads(text)

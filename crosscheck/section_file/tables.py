@@ -22,6 +22,7 @@ from crosscheck.units import UNIT_SYSTEMS, UnitSystem, unit_powers
 
 _DECIMAL_COMMA = re.compile(r"[+-]?\d*,\d+(?:[eE][+-]?\d+)?\Z|[+-]?\d+,\Z")
 _DECIMAL_POINT = re.compile(r"[+-]?\d*\.\d+(?:[eE][+-]?\d+)?\Z|[+-]?\d+\.\Z")
+_PLAIN_NUMBER = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?\Z")
 _WITH_UNIT = re.compile(r"(?P<name>[^\[(]*?)\s*[\[(](?P<unit>[^\])]*)[\])]\Z")
 
 
@@ -238,7 +239,5 @@ class _Reading:
     def _number(self, cell: str) -> float | str:
         """The number in a cell, or the text for arithmetic."""
         text = cell.replace(",", ".") if self.comma and _DECIMAL_COMMA.match(cell) else cell
-        try:
-            return float(text)
-        except ValueError:
-            return text
+        # float() alone would take digits of other scripts and 1_000 as well
+        return float(text) if _PLAIN_NUMBER.match(text) else text

@@ -26,15 +26,16 @@ side = "theory"                       # theory, fe, both
 from __future__ import annotations
 
 import re
-import tomllib
 from collections.abc import Mapping
 from pathlib import Path
-from typing import Any
+from typing import Any, TypeGuard
 
 from crosscheck.faults import ExpressionError, FaultList, KeyPath, SectionFaults, quoted, shown
 from crosscheck.section_file.arithmetic import evaluate, names_in
+from crosscheck.section_file.keys import FILE_LIMIT
 from crosscheck.section_file.model import SectionFile
 from crosscheck.section_file.reader import read_section, read_source
+from crosscheck.section_file.source import check_key_lengths, plain_content, plain_text, toml_document
 from crosscheck.verification.reference import (
     KINDS,
     NAMES,
@@ -102,7 +103,9 @@ def row_files(given: Path) -> tuple[Path, ...]:
     return tuple(
         path
         for path in sorted(given.glob("*.toml"))
-        if re.search(r"^\s*\[\[\s*cases\s*\]\]", path.read_text(encoding="utf-8", errors="replace"), re.M)
+        if path.is_file()
+        and path.stat().st_size <= FILE_LIMIT
+        and re.search(r"^\s*\[\[\s*cases\s*\]\]", path.read_text(encoding="utf-8", errors="replace"), re.M)
     )
 
 
@@ -116,14 +119,9 @@ def printed_half_unit(text: str) -> float | None:
 
 
 def _document(path: Path, faults: FaultList) -> dict[str, Any]:
-    try:
-        return tomllib.loads(path.read_text(encoding="utf-8-sig"))
-    except OSError as fault:
-        faults.add((), fault.strerror or str(fault), "a row file that can be read")
-    except (UnicodeDecodeError, tomllib.TOMLDecodeError, RecursionError) as fault:
-        faults.add((), f"an error: {fault}", "a row file in TOML")
-    faults.raise_any()
-    raise AssertionError("a fault was raised above")
+    text = plain_text(plain_content(str(path), faults, "a row file"), faults, "[[cases]]", "a row file")
+    check_key_lengths(text, faults)
+    return toml_document(text, faults)
 
 
 def _sources(path: Path, document: Mapping[str, Any], faults: FaultList) -> dict[str, Source]:
@@ -135,11 +133,16 @@ def _sources(path: Path, document: Mapping[str, Any], faults: FaultList) -> dict
         for key, raw in table.items() if isinstance(table, dict) else ():
             work = raw.get("work") if isinstance(raw, dict) else None
             edition = raw.get("edition", "") if isinstance(raw, dict) else ""
-            if not isinstance(work, str) or not work.strip() or not isinstance(edition, str):
+            if not _is_text(work) or not isinstance(edition, str) or not edition.isprintable():
                 faults.add(("sources", key), shown(raw), 'a table with work = "author, title" and edition')
                 continue
             found[key] = Source(key, work, edition)
     return found
+
+
+def _is_text(raw: Any) -> TypeGuard[str]:
+    """Whether a value is text that a screen can show on one line."""
+    return isinstance(raw, str) and bool(raw.strip()) and raw.isprintable()
 
 
 class _Reader:
@@ -156,7 +159,7 @@ class _Reader:
             if key not in known:
                 self.faults.add((*at, key), quoted(key), "a known key of a case", near=(key, known))
         name = raw.get("name")
-        if not isinstance(name, str) or not name:
+        if not _is_text(name):
             self.faults.add((*at, "name"), shown(name), "the name of the case in quotes")
         section, overrides, smooth = self._section(at, raw)
         rows = raw.get("rows")
@@ -208,7 +211,7 @@ class _Reader:
                 self.faults.add((*at, key), quoted(key), "a known key of a row", near=(key, ROW_KEYS))
         keys = {**self._from_table(at, keys), **keys}
         for key in ROW_TEXTS:
-            if key in keys and (not isinstance(keys[key], str) or not keys[key]):
+            if key in keys and not _is_text(keys[key]):
                 if key == "value" and isinstance(keys[key], (int, float)) and not isinstance(keys[key], bool):
                     keys[key] = repr(keys[key])
                 elif key not in ("note", "unit"):
@@ -325,6 +328,8 @@ class _Reader:
             if kind in ("relative", "absolute") and number:
                 if not why:
                     self.faults.add((*at, "why"), "nothing", "given: why this tolerance")
+                if kind == "relative" and size >= 1.0:
+                    self.faults.add((*at, "tolerance"), shown(raw), "below 1, or zero would pass")
                 if kind == "relative" and value == 0.0:
                     self.faults.add((*at, "tolerance"), "relative, of zero", "absolute where the value is 0")
                 return Tolerance(kind, float(size), str(why))

@@ -137,8 +137,8 @@ def test_two_rows_of_one_name(tmp_path: Path) -> None:
 @pytest.mark.parametrize(
     ("text", "words"),
     [
-        ("", "a list of cases"),
-        ("cases = [", "a row file in TOML"),
+        ("", "a row file, got an empty file"),
+        ("cases = [", "valid TOML"),
         ("[[cases]]\nname = 1", "name of the case"),
     ],
 )
@@ -147,7 +147,7 @@ def test_files_that_are_none(tmp_path: Path, text: str, words: str) -> None:
 
 
 def test_missing_file(tmp_path: Path) -> None:
-    with pytest.raises(SectionFaults, match="a row file that can be read"):
+    with pytest.raises(SectionFaults, match="a row file, got no such file"):
         read_rows(tmp_path / "none.toml")
 
 
