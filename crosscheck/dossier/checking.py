@@ -112,6 +112,8 @@ def _complete(content: Mapping[str, Any]) -> bool:
         return False
     if not (isinstance(packages, dict) and isinstance(options.get("version"), str)):
         return False
+    if options.get("envelope", "") not in (None, *files):
+        return False
     low, high = ACCURACY_RANGE
     if isinstance(accuracy, bool) or not isinstance(accuracy, (int, float)) or not low <= accuracy <= high:
         return False

@@ -10,15 +10,17 @@ from typing import TYPE_CHECKING, Any, Literal
 
 from crosscheck.comparison.result import LEVELS
 from crosscheck.family.crossings import Piece
+from crosscheck.family.envelope_form import form_fault
 from crosscheck.family.threshold import Key, Line, Study, Threshold
-from crosscheck.faults import Fault, SectionFaults
-from crosscheck.section_file.source import SectionSource
+from crosscheck.faults import Fault, FaultList, SectionFaults
+from crosscheck.section_file.source import SectionSource, plain_content
 
 if TYPE_CHECKING:
     from crosscheck.comparison.result import Result
     from crosscheck.section_file.model import SectionFile
 
 SCHEMA = "crosscheck.envelope/1"
+LIMIT = 50_000_000  # bytes
 # A value nearer than this to a threshold is at the edge [-], of the threshold.
 EDGE = 0.01
 # Keys of a section file that change no number of the comparison.
@@ -165,15 +167,15 @@ def read_envelope(path: str) -> dict[str, Any]:
     SectionFaults
         Where it is none.
     """
+    content = plain_content(path, FaultList(path), f"an envelope ({SCHEMA})", LIMIT)
     try:
-        with open(path, encoding="utf-8") as stream:
-            document = json.load(stream)
-    except OSError as fault:
-        raise _no_envelope(path, fault.strerror or str(fault)) from None
-    except ValueError as fault:
+        document = json.loads(content)
+    except (ValueError, RecursionError) as fault:
         raise _no_envelope(path, f"no JSON ({fault})") from None
     if not isinstance(document, dict) or document.get("schema") != SCHEMA:
         raise _no_envelope(path, "another document")
+    if (found := form_fault(document)) is not None:
+        raise _no_envelope(path, found)
     return document
 
 
@@ -234,8 +236,12 @@ def _lines_round(envelope: Mapping[str, Any], values: Sequence[float]) -> Iterat
     if exact:
         yield exact[0]
         return
-    yield max((line for line in lines if line["second"] < values[1]), key=lambda line: line["second"])
-    yield min((line for line in lines if line["second"] > values[1]), key=lambda line: line["second"])
+    seconds = [line["second"] for line in lines if line["second"] is not None]
+    below = [second for second in seconds if second < values[1]]
+    above = [second for second in seconds if second > values[1]]
+    if below and above:
+        yield next(line for line in lines if line["second"] == max(below))
+        yield next(line for line in lines if line["second"] == min(above))
 
 
 def _standing(
@@ -247,6 +253,8 @@ def _standing(
     judged: str,
 ) -> Standing:
     words: list[Word] = []
+    if not lines:
+        return Standing(*key, "not covered", "no section was solved on both sides of it")
     for line in lines:
         row = next(
             (

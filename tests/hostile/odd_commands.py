@@ -5,7 +5,6 @@ from __future__ import annotations
 import hashlib
 import json
 import os
-from pathlib import Path
 from typing import Any
 
 from trial import CHANNEL, Content, Trial
@@ -67,9 +66,8 @@ def evidence(name: str, content: Content, *words: str) -> Trial:
 
 def _options(**changes: Any) -> dict[str, Any]:
     sections = [{"folder": "s", "file": "s/inputs/a.toml"}]
-    return {
-        "sections": sections, "accuracy": 1e-2, "overrides": [], "version": "0", "packages": {}, **changes
-    }  # fmt: skip
+    versions = {"version": "0", "packages": {}}
+    return {"sections": sections, "accuracy": 1e-2, "overrides": [], "envelope": None, **versions, **changes}
 
 
 ROWS = (
@@ -150,6 +148,7 @@ PACKAGES = (
     package("manifest of a device", 1, "must be a file of the package", files={"/dev/zero": "0" * 64}),
     package("manifest of a section above", 1, "manifest.json",
             options=_options(sections=[{"folder": "..", "file": "../given.toml"}])),
+    package("manifest of an envelope above", 1, "manifest.json", options=_options(envelope="../given.json")),
     package("manifest with folders of numbers", 1, "manifest.json", options=_options(sections=[{"folder": 1, "file": [2]}])),
     package("manifest with a wild accuracy", 1, "manifest.json", options=_options(accuracy="1e-400")),
     evidence("evidence of no JSON", "{", "outcomes"),
@@ -163,8 +162,36 @@ PACKAGES = (
 )  # fmt: skip
 
 
-def _read_only(path: Path) -> None:
-    path.mkdir(mode=0o500)
+def envelope(name: str, content: Content, *words: str) -> Trial:
+    """An envelope that a section is held against."""
+    command = ("compare", "given.toml", "--accuracy", "1e-2", "--envelope", "e.json")
+    return Trial(name, {"given.toml": CHANNEL, "e.json": content}, 2, words, command)
+
+
+def enveloped(**changes: Any) -> str:
+    """An envelope of another shape, with some of it changed."""
+    made = {
+        "schema": "crosscheck.envelope/1",
+        "shape": {"shape_sha256": "0", "set": []},
+        "parameters": [{"name": "t", "from": 1, "to": 5}],
+        "edge": 0.01,
+        "lines": [{"second": None, "gaps": [], "quantities": []}],
+    }
+    return json.dumps({**made, **changes})
+
+
+ENVELOPES = (
+    Trial("envelope of another shape", {"given.toml": CHANNEL, "e.json": enveloped()}, 0, ("another shape",),
+          ("compare", "given.toml", "--accuracy", "1e-2", "--envelope", "e.json")),
+    envelope("envelope of no JSON", "{", "no JSON"),
+    envelope("envelope of deep lists", "[" * 100_000, "no JSON"),
+    envelope("envelope of another schema", '{"schema": "x"}', "another document"),
+    envelope("envelope that is a device", lambda path: path.symlink_to("/dev/zero"), "a pipe or device"),
+    envelope("envelope without lines", enveloped(lines=[]), "lines"),
+    envelope("envelope without shape", enveloped(shape={}), "shape.shape_sha256"),
+    envelope("envelope with text for a number", enveloped(edge="x"), "edge"),
+    envelope("envelope of three parameters", enveloped(parameters=[{"name": "t", "from": 1, "to": 5}] * 3), "parameters"),
+)  # fmt: skip
 
 
 OUTPUTS = (
@@ -182,4 +209,4 @@ OUTPUTS = (
     Trial("template of a million cells", {}, 2, ("cells",), ("template", "box", "--cells", "1000000")),
 )  # fmt: skip
 
-COMMANDS = (*ROWS, *RANGES, *PACKAGES, *OUTPUTS)
+COMMANDS = (*ROWS, *RANGES, *PACKAGES, *ENVELOPES, *OUTPUTS)
