@@ -44,6 +44,7 @@ class Row(BaseModel):
     criterion: float
     known: tuple[float, float] | None
     holds: list[Span]
+    fails: list[Span]
     thresholds: list[Crossing]
 
 
