@@ -15,6 +15,7 @@ from crosscheck.dossier.package import MANIFEST, manifest_bytes, sealed
 from crosscheck.whole_files import write_tree
 
 from .conftest import DAY
+from .test_writers import pdf_text
 
 
 def quiet(_: str) -> None:
@@ -92,6 +93,9 @@ def test_two_days_differ_in_date_and_provenance_only(package, tmp_path, monkeypa
     assert changed
     for a, b in changed:
         assert a.replace("2026-01-01", "DAY") == b.replace("2026-01-02", "DAY")
+    first, second = (pdf_text((folder / "dossier.pdf").read_bytes()) for folder in (package.folder, other))
+    assert "2026-01-01" in first
+    assert first.replace("2026-01-01", "DAY") == second.replace("2026-01-02", "DAY")
     results = [json.loads((folder / "rail/result.json").read_text()) for folder in (package.folder, other)]
     for result in results:
         result.pop("provenance")
