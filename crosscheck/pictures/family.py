@@ -33,6 +33,7 @@ from crosscheck.pictures.canvas import (
     sheet,
     size_text,
     title_in_lines,
+    wrapped,
     write_caption,
     write_title,
 )
@@ -118,8 +119,9 @@ def difference_picture(sweep: Sweep, series: Series, width_mm: int = 160) -> Fig
     ratio = sweep.family.ratio if np.isfinite(series.ratios).sum() > 1 else None
     above = 4.0 + 4.2 * len(title_lines) + (9.0 if ratio else 0.0)
     below = 11.0 + 3.2 * len(caption_lines)
-    left, right = 15.0, 19.0 if width_mm >= WIDE_PAPER else 15.0
     tall = 0.5 * width_mm if width_mm >= WIDE_PAPER else 0.62 * width_mm
+    label = wrapped(f"theory minus FE [% {OF[QUANTITIES[series.name].normaliser]}]", tall, FONT + 0.5)
+    left, right = 11.5 + 3.5 * len(label), 19.0 if width_mm >= WIDE_PAPER else 15.0
     height = above + tall + below
     with mpl.rc_context(STYLE):
         figure = sheet(width_mm, height)
@@ -129,7 +131,7 @@ def difference_picture(sweep: Sweep, series: Series, width_mm: int = 160) -> Fig
         scale_axis(axes, varied, "x")
         axes.set_ylim(100 * frame[0], 100 * frame[1])
         axes.set_xlabel(one_line(f"{varied.name}"), labelpad=1)
-        axes.set_ylabel(f"theory minus FE [% {OF[QUANTITIES[series.name].normaliser]}]", labelpad=2)
+        axes.set_ylabel("\n".join(label), labelpad=2, linespacing=1.05)
         axes.yaxis.set_major_locator(MaxNLocator(6, steps=[1, 2, 5, 10]))
         axes.yaxis.set_major_formatter(FuncFormatter(lambda value, _: f"{value:g}"))
         for side in ("top", "right"):

@@ -7,6 +7,7 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.contour import QuadContourSet
 from matplotlib.figure import Figure
+from matplotlib.patches import Rectangle
 
 from crosscheck.comparison.drawn import Array
 from crosscheck.comparison.quantities import QUANTITIES
@@ -65,7 +66,7 @@ def map_picture(sweep: Sweep, series: Series, width_mm: int = 160) -> Figure | N
     )
     gaps = ~np.isfinite(grid)
     if gaps.any():
-        caption += " Crosses: no result, the section cannot be built or was not solved."
+        caption += " Hatched, crosses: no result, the section cannot be built or was not solved."
     title_lines = title_in_lines(one_line(title, 200), width_mm)
     caption_lines = caption_in_lines(one_line(caption, 600), width_mm)
     above, below = 5.0 + 4.2 * len(title_lines), 11.0 + 3.2 * len(caption_lines)
@@ -85,6 +86,12 @@ def map_picture(sweep: Sweep, series: Series, width_mm: int = 160) -> Figure | N
         lettering = Lettering(axes)
         _draw_contours(axes, lettering, x, y, grid, 100 * series.criterion)
         if gaps.any():
+            # Shows wherever no shade lies over it: white alone would read as the smallest differences.
+            axes.add_patch(
+                Rectangle(
+                    (0, 0), 1, 1, transform=axes.transAxes, fc="none", ec=SOFT, lw=0, hatch="////", zorder=0
+                )
+            )
             at_y, at_x = np.nonzero(gaps)
             axes.plot(x[at_x], y[at_y], "x", color=INK, ms=3.2, mew=0.7, clip_on=False, zorder=4)
         today = (sweep.today[0], sweep.today[1])

@@ -75,11 +75,15 @@ def _rows_picture(study: Study, width_mm: int) -> Figure:
     first = study.family.ranges[0]
     caption = (
         f"Bars: where the criterion holds at the levels {', '.join(levels)}, from the top; no bar: it "
-        f"does not, nothing is compared, or FE's error leaves it open. Upright: "
-        f"the file as it stands, {first.name} = {size_text(study.today[0])}."
+        f"does not, or nothing is compared. Upright: the file as it stands, {first.name} = "
+        f"{size_text(study.today[0])}."
     )
+    if any(each.inconclusive for each in line.thresholds):
+        caption += " Where FE's error leaves it open there is no bar either."
     if failing and len(failing) < len(known):
-        caption += f" {len(known) - len(failing)} more quantities hold throughout at all of these levels."
+        more = len(known) - len(failing)
+        words = "more quantity holds" if more == 1 else "more quantities hold"
+        caption += f" {more} {words} throughout at all of these levels."
     left = 46.0 if width_mm >= WIDE_PAPER else 31.0
     names = [wrapped(one_line(_name(each), 60), left - 4) for each in rows]
     pitch = [max(5.0, 3.0 * len(name) + 1.0) for name in names]

@@ -29,5 +29,6 @@ def standing_lines(path: str, found: Sequence[Standing]) -> Iterator[Text]:
                 yield Text(one_line(f"  not covered ({len(names)}): {reason}", 300), style=style)
         elif those:
             names = [name_of(each.name, each.load) for each in those]
-            told = ", ".join(names) if word != "inside" else f"{len(names)} quantities"
+            number = "1 quantity" if len(names) == 1 else f"{len(names)} quantities"
+            told = ", ".join(names) if word != "inside" else number
             yield Text(one_line(f"  {word}: {told}", 500), style=style)

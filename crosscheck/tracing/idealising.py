@@ -70,7 +70,9 @@ def idealise(source: DrawingSource, tolerance: float | None = None, *, even: boo
     if found.refused:
         remarks.append(Remark(f"the walls make no outline of their own: {found.refused}"))
     if model.cells != model.holes:
-        text = f"the drawing has {model.holes} openings, the walls make {model.cells} cells"
+        openings = "1 opening" if model.holes == 1 else f"{model.holes} openings"
+        cells = "1 cell" if model.cells == 1 else f"{model.cells} cells"
+        text = f"the drawing has {openings}, the walls make {cells}"
         remarks.append(Remark(text))
     model = replace(model, remarks=tuple(remarks))
     text = section_text(model, source, _sentences(model, found), apart=not found.agrees)

@@ -9,9 +9,15 @@ import signal
 import time
 from xml.etree import ElementTree
 
+import numpy as np
 import pytest
 
 from crosscheck import compare, read_section
+from crosscheck.family.members import Family
+from crosscheck.family.ranges import ranges_of
+from crosscheck.family.sweep import Series, Sweep
+from crosscheck.pictures.family import difference_picture
+from crosscheck.section_file.source import read_source
 
 TABLES = ("sweep.csv", "sweep.json")
 
@@ -177,3 +183,20 @@ def test_ctrl_c_stops_at_once_and_says_how_to_go_on(process, angle, tmp_path):
     assert "of 5000 members; go on with --resume" in err
     assert err.splitlines()[-1] == "crosscheck: stopped"
     assert err.count("\n") == 2
+
+
+@pytest.mark.parametrize("width", [80, 160])
+def test_long_axis_labels_stay_clear_of_the_title(angle, width):
+    source = read_source(angle)
+    family = Family(source, (), ranges_of(["t in 1, 2"], source), 1e-2)
+    sweep = Sweep(family, "Hatch edge, angle", "mm", "N", "midline", (2.0,), None, 2, (), {}, 0, 0)
+    off = np.array([[0.01, 0.01, 0.01], [0.02, 0.02, 0.02]])
+    series = Series(
+        "surface_shear", "gust", 0.05, np.array([[1.0], [2.0]]), np.full(2, np.nan), off, np.zeros(2)
+    )
+    figure = difference_picture(sweep, series, width)
+    figure.draw_without_rendering()
+    (axes,) = figure.axes
+    label, area = axes.yaxis.label.get_window_extent(), axes.get_window_extent()
+    assert label.y0 >= area.y0 - 1
+    assert label.y1 <= area.y1 + 1
