@@ -111,6 +111,9 @@ def test_numbers_are_told_apart_beyond_round_off_only():
     far = {"a": [{"fe": 2.0 + 1e-6, "fe_error": 0.1}, {"fe": 1e-17, "fe_error": 0.1}], "provenance": 1}
     assert not [told for _, told, _ in compared(old, near) if told]
     assert [where for where, told, _ in compared(old, far) if told] == ["a[0].fe"]
+    orders = [{"indices": [{"interval_order": order}]} for order in (7.0, 7.0 + 1e-7, 7.001)]
+    assert not [told for _, told, _ in compared(orders[0], orders[1]) if told]
+    assert [told for _, told, _ in compared(orders[0], orders[2]) if told]
     assert [told for _, told, _ in compared({"v": "within"}, {"v": "outside"}) if told]
 
 
