@@ -10,6 +10,7 @@ from crosscheck.dossier.evidence import SectionEvidence
 from crosscheck.dossier.texts import TONES, bare_value, fe_error, share_text, unit_of
 from crosscheck.reports.stated import stated_heading, stated_lines
 from crosscheck.reports.wording import (
+    STARRED,
     difference_text,
     effect_text,
     name_of,
@@ -108,7 +109,10 @@ def _of_one(evidence: SectionEvidence) -> tuple[Block, ...]:
     ]
     if result.stated and all(stated.verdict == "within" for stated in result.stated):
         blocks.append(Paragraph((stated_heading(result) or "").rstrip(":") + ".", "good"))
-    blocks.append(nearest_table(result) if judged else fe_table(result))
+    table = nearest_table(result) if judged else fe_table(result)
+    blocks.append(table)
+    if any(str(cell).endswith("*") for row in table.rows for cell in row):
+        blocks.append(Paragraph(STARRED, "quiet"))
     blocks += [
         Paragraph(
             f"Self-check failed: {check.name}, {check.value:.3g}, allowed {check.allowed:.3g}.", "bad", True

@@ -316,7 +316,8 @@ def _conclusion(result: Result) -> Chapter:
         Paragraph(conclusion(row, result.length_unit), TONES[row.verdict], row.verdict == "outside")
         for row in rows
     )
-    return Chapter("conclusion", "Conclusion, one sentence for every quantity", blocks)
+    note = (Paragraph(STARRED, "quiet"),) if any("*" in block.text for block in blocks) else ()
+    return Chapter("conclusion", "Conclusion, one sentence for every quantity", (*blocks, *note))
 
 
 def _hand_sheets(result: Result, asked: Sequence[str]) -> Iterator[Chapter]:

@@ -9,10 +9,10 @@ from crosscheck.comparison.quantities import QUANTITIES
 from crosscheck.comparison.result import FeValue, QuantityResult, Verdict
 from crosscheck.dossier.content import Tone
 from crosscheck.reports.wording import (
-    difference_text,
     effect_text,
     error_mark,
     error_text,
+    full_difference_text,
     name_of,
     number_text,
     value_text,
@@ -81,9 +81,11 @@ def conclusion(row: QuantityResult, length_unit: str) -> str:
     unit = unit_of(row)
     hand, fe, error = bare_value(row, row.judged_theory), bare_value(row, row.fe.value), fe_error(row)
     if row.verdict is None:
-        alone = "" if row.fe.value is None else f" FE {fe} {unit}, {error}."
+        # A value within its own error is nothing, and no number of it is worth printing.
+        known = row.fe.value is not None and abs(row.fe.value) > (row.fe.half_width or 0.0)
+        alone = f" FE {fe} {unit}, {error}." if known else ""
         return f"{name}: not compared, {row.reason or 'undefined on a side'}.{alone}"
-    words = difference_text(row, length_unit).rstrip("*")
+    words = full_difference_text(row, length_unit)
     words = {"equal": "equals FE", "in FE error": "is within FE's error"}.get(words, f"is {words}")
     criterion = f"{100 * row.criterion:g} %"
     verdict = {

@@ -13,6 +13,8 @@ from crosscheck.dossier.composing import compose
 from crosscheck.dossier.content import Diagram, Paragraph, Table
 from crosscheck.dossier.convergence import answers
 from crosscheck.dossier.evidence import gather
+from crosscheck.dossier.texts import conclusion
+from crosscheck.reports.wording import difference_text
 from crosscheck.section_file.reader import read_section
 
 from .test_writers import all_words, chapters, plain_plates
@@ -44,6 +46,14 @@ def test_a_section_without_walls_counts_neither_as_held_nor_as_failed(knuckle, r
     first = document.outcome[0]
     assert isinstance(first, Paragraph)
     assert f"No hand method to judge: {knuckle.result.title}" in first.text
+
+
+def test_per_cent_of_something_else_than_the_value_say_of_what(rail):
+    starred = [row for row in rail.result.quantities if difference_text(row, "mm").endswith("*")]
+    assert starred
+    for row in starred:
+        told = conclusion(row, "mm")
+        assert "(of " in told or "*" in told, told
 
 
 def test_no_order_of_a_corner_where_there_is_none(knuckle):
