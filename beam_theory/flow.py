@@ -162,7 +162,7 @@ class Flow:
         )
 
     def _zeros(self, piece: int) -> list[float]:
-        """Fractions within a piece where f = 0 with a change of sign, found between its extremes."""
+        """Fractions within a piece where f = 0 with a change of sign: between its extremes, never at one."""
         p = self.graph.pieces
         k = self.slope
         if k == 0.0 or p.e[piece] == 0.0:
@@ -183,8 +183,6 @@ class Flow:
         for i in range(len(u) - 1):
             if f[i] * f[i + 1] < 0.0:
                 out.append(_root(curve, k, float(u[i]), float(u[i + 1]), float(f[i]), float(f[i + 1])))
-            elif i > 0 and f[i] == 0.0 and f[i - 1] * f[i + 1] < 0.0:
-                out.append(float(u[i]))
         return out
 
 

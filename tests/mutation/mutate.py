@@ -1,7 +1,7 @@
 """How many small changes of the formulas does the verification suite miss? Run by hand; prints survivors.
 
     python tests/mutation/mutate.py --sample 400 --seed 1 [--processes 2] [--only beam_theory/flow.py ...]
-                                    [--at beam_theory/flow.py:100 ...]
+                                    [--again FILE]
 
 What counts as a formula, and what is left out and why, stands in `mutants.py`; the files are all of
 beam_theory but its plain data and the finding of input faults (LEFT_OUT), and the modules of fe_models that
@@ -13,7 +13,7 @@ then lives in a process forked from that one, which runs the checks that come by
 until one fails. It is found when a check fails or the code breaks down, or when a check needs more than its
 limit of processor time (told apart). What was kept from before the change is forgotten, but for what finite
 elements gave where theory is changed, in which no line of theory has a part. A survivor has passed the whole
-suite.
+suite. With --again only those that survive in an earlier print are tried.
 """
 
 from __future__ import annotations
@@ -211,11 +211,12 @@ def main(arguments: Sequence[str]) -> int:
     parser.add_argument("--seed", type=int, default=1)
     parser.add_argument("--processes", type=int, default=1)
     parser.add_argument("--only", nargs="*", default=None)
-    parser.add_argument("--at", nargs="*", default=None)
+    parser.add_argument("--again", type=Path, default=None)
     asked = parser.parse_args(arguments)
     every = [m for path in asked.only or formula_files() for m in mutants(path)]
-    if asked.at:
-        every = [m for m in every if f"{m.path}:{m.line}" in asked.at]
+    if asked.again:
+        before = {line.rsplit("  (", 1)[0] for line in asked.again.read_text().splitlines()}
+        every = [m for m in every if f"{m.path}:{m.line}: {m.told}" in before]
     chosen = random.Random(asked.seed).sample(every, min(asked.sample, len(every)))
     memory = Memory()
     told: dict[str, list[Mutant]] = {"S": [], "F": [], "T": []}

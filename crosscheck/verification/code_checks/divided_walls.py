@@ -73,6 +73,16 @@ def divided(name: str, level: str) -> Finding:
         ((AT, w) for w in two.walls[1::2]),
         strict=True,
     ):
+        zeros = one.flow(load).stationary(wall.name)
+        apart = [AT * v for v in other.flow(load).stationary(first.name)]
+        apart += [AT + (1.0 - AT) * v for v in other.flow(load).stationary(second.name)]
+        worst = max(worst, np.inf if len(zeros) != len(apart) else float(np.abs(zeros - apart).sum()))
+        peaks = [other.flow(load).peak(part.name).flow for part in (first, second)]
+        peak = one.flow(load).peak(wall.name)
+        worst = max(worst, abs(abs(peak.flow) / max(np.abs(peaks)) - 1.0))
+        there = other.flow(load).peak((first if abs(peaks[0]) > abs(peaks[1]) else second).name).at
+        place = AT * there if abs(peaks[0]) > abs(peaks[1]) else AT + (1.0 - AT) * there
+        worst = max(worst, abs(peak.at - place) if abs(abs(peaks[0]) / abs(peaks[1]) - 1.0) > 1e-9 else 0.0)
         for start, part, span in ((low, first, AT), (high, second, 1.0 - AT)):
             pairs = [
                 (one.flow(load).at(wall.name, start + span * u), other.flow(load).at(part.name, u)),

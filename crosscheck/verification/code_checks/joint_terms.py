@@ -212,6 +212,8 @@ def open_tees() -> Finding:
 CELLS: dict[tuple[float, float, float, float], tuple[bool, bool]] = {
     (3.0, 3.0, 90.0, 0.0): (True, True),
     (3.0, 3.0, 72.0, 0.0): (True, True),
+    (3.0, 3.0, 1.05, 0.0): (True, False),
+    (3.0, 3.0, 0.95, 0.0): (False, False),
     (3.0, 3.0, 159.0, 0.0): (True, True),
     (3.0, 3.0, 161.0, 0.0): (False, True),
     (3.0, 2.0, 31.0, 0.0): (True, True),

@@ -23,6 +23,12 @@ def _tee() -> Shape:
     return Shape(points, (Wall("l", "m", t), Wall("m", "r", t), Wall("m", "s", t)), {})
 
 
+def _rhombus() -> Shape:
+    z = (60.0 * float(np.cos(1.1)), 60.0 * float(np.sin(1.1)))
+    points = {"a": (0.0, 0.0), "b": (60.0, 0.0), "c": (60.0 + z[0], z[1]), "d": z}
+    return Shape(points, tuple(Wall(p, q, (1.0, 1.0)) for p, q in ("ab", "bc", "cd", "da")), {})
+
+
 # Shape, bends by point, quantities and the largest relative difference from FE, with its reason.
 SOLIDS: dict[str, tuple[Shape, dict[str, float], dict[str, float], str]] = {
     "sharp channel": (
@@ -31,6 +37,10 @@ SOLIDS: dict[str, tuple[Shape, dict[str, float], dict[str, float], str]] = {
     ),
     "sharp box": (
         symmetric_box(100.0, 8.0), {}, {"torsion_constant": 2e-8, "area": 1e-10}, "corner terms are exact",
+    ),
+    "sharp rhombus": (
+        _rhombus(), {}, {"torsion_constant": 5e-6, "area": 1e-10},
+        "length and area of a cell's corner are exact; its own t^4/10 is left out where it is not square",
     ),
     "round tube": (
         tube(20.0), {}, {"torsion_constant": 1e-8, "area": 1e-8, "second_moment_xx": 1e-8},

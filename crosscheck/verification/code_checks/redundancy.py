@@ -34,11 +34,14 @@ def theory_moments(name: str) -> Finding:
     rows += [np.array([[*shape.points[p], a]]) for p, a in shape.booms.items()]
     x, y, m = np.concatenate(rows).T
     area = m.sum()
+    plain = sum(float(line.thickness @ line.weight) for line in map(shape.line, shape.walls))
+    plain += sum(shape.booms.values())
     x_c, y_c = (x * m).sum() / area, (y * m).sum() / area
     x, y = x - x_c, y - y_c
     size = float(np.ptp(x) + np.ptp(y))
     want = {
         "area": (area, area),
+        "plain_area": (plain, plain),
         "centroid_x": (x_c, size),
         "centroid_y": (y_c, size),
         "second_moment_xx": (y * y @ m, y * y @ m),

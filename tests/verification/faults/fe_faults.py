@@ -122,4 +122,16 @@ FE = (
     ),
     Fault("boom lost", F + "mesh.py", "cluster.boom / area", "0.0 * area"),
     Fault("lost corners", F + "chain.py", "MITRE_LIMIT = 4.0", "MITRE_LIMIT = 0.5"),
+    Fault(
+        "half an error bar of I_w",
+        F + "intervals.py",
+        "around(value, abs(value - lower)",
+        "around(value, 0.5 * abs(value - lower)",
+    ),
+    Fault(
+        "bounds met the wrong way",
+        F + "intervals.py",
+        "max(self.low, other.low)",
+        "min(self.low, other.low)",
+    ),
 )
