@@ -179,7 +179,7 @@ def flat() -> Finding:
 
 
 def long_arc() -> Finding:
-    """Places where the flow stands still on arcs of 300 and 140 degrees: where the radius is normal to (a, b)."""
+    """Places where the flow stands still on arcs of 300 and 140 degrees against a search for f = 0."""
     radius, worst = 30.0, 0.0
     for start, sweep in ((0.3, math.radians(300.0)), (2.1, math.radians(140.0))):
         a, m, b = (cmath.rect(radius, start + k * sweep) for k in (0.0, 0.5, 1.0))
@@ -229,7 +229,7 @@ def fin_inside() -> Finding:
     want = 2.0 * (b * h) ** 2 * t / (b + h) + fin * t**3 / 3.0
     worst = 0.0
     for order in permutations(("ab", "bc", "cd", "da", "ae")):
-        shape = Shape(points, tuple(Wall(p, q, (t, t)) for p, q in order), {})
+        shape = Shape(points, tuple(Wall(w[0], w[1], (t, t)) for w in order), {})
         solved = beam_theory.solve(shape.theory())
         worst = max(worst, abs(solved.require("torsion_constant") / want - 1.0))
     return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e} of 120 orders.")
