@@ -22,7 +22,6 @@ import argparse
 import importlib
 import math
 import os
-import pickle
 import random
 import resource
 import signal
@@ -39,10 +38,9 @@ from typing import Any
 sys.path[:0] = [str(Path(__file__).parents[2]), str(Path(__file__).parent)]
 
 from checks import Check, forget, suite_checks
+from memory import Memory
 from mutants import ROOT, Mutant, mutants, mutated
 from transplant import transplant
-
-import fe_models
 
 FE_FORMULAS = (
     "element", "space", "poisson", "stress_function", "jumps", "intervals", "quantities", "contour", "fields",
@@ -63,28 +61,6 @@ class Judge:
     passes: Callable[[], bool]
     seconds: float
     lines: Lines
-
-
-class Memory:
-    """What the solver of finite elements gave, to be given again where no line of it was changed."""
-
-    def __init__(self) -> None:
-        self.kept: dict[tuple[str, bytes], Any] = {}
-        self.replay = False
-        for name in ("solve", "solve_solid"):
-            setattr(fe_models, name, self._kept(name, getattr(fe_models, name)))
-
-    def _kept(self, name: str, solve: Callable[..., Any]) -> Callable[..., Any]:
-        def solved(*arguments: Any, **named: Any) -> Any:
-            # whom it tells of its progress has no part in what comes of it
-            told = [value for value in (*arguments, *named.values()) if not callable(value)]
-            key = (name, pickle.dumps(told))
-            if self.replay and key in self.kept:
-                return self.kept[key]
-            self.kept[key] = solve(*arguments, **named)
-            return self.kept[key]
-
-        return solved
 
 
 def formula_files() -> list[str]:

@@ -9,6 +9,7 @@ from functools import partial
 from itertools import permutations
 
 import numpy as np
+from numpy.polynomial import Polynomial
 
 import beam_theory
 from crosscheck.verification.code_checks.divided_walls import tapered
@@ -178,6 +179,31 @@ def flat() -> Finding:
     return Finding(float(len(missed)), 0.0, f"Three strips; wrong: {missed or 'none'}.")
 
 
+def tapered_strip() -> Finding:
+    """A strip of two tapered walls at level corrected: centre weighted with e t^3 (Trefftz), I_w about it.
+
+    I_w = integral of e t^3/12 (s - s_0)^2 ds, by polynomials.
+    """
+    heading, start = cmath.rect(1.0, 0.7), 12.0 - 5.0j
+    lengths, taper, e = (30.0, 18.0), ((1.0, 3.0), (3.0, 1.5)), (1.0, 2.2)
+    at = np.concatenate([[0.0], np.cumsum(lengths)])
+    points = {
+        n: ((start + s * heading).real, (start + s * heading).imag) for n, s in zip("abc", at, strict=True)
+    }
+    walls = tuple(Wall(n[0], n[1], t, e=k) for n, t, k in zip(("ab", "bc"), taper, e, strict=True))
+    sums = np.zeros(3)
+    for low, length, (first, last), k in zip(at, lengths, taper, e, strict=False):
+        t = Polynomial((first, (last - first) / length))
+        s = Polynomial((low, 1.0))
+        sums += [k * float((t**3 * s**n).integ()(length)) for n in range(3)]
+    centre = start + heading * sums[1] / sums[0]
+    warping = (sums[2] - sums[1] ** 2 / sums[0]) / 12.0
+    solved = beam_theory.solve(Shape(points, walls, {}).theory(), "corrected")
+    got = complex(solved.require("shear_centre_x"), solved.require("shear_centre_y"))
+    worst = max(abs(got - centre) / at[-1], abs(solved.require("warping_constant") / warping - 1.0))
+    return Finding(float(worst), ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
 def long_arc() -> Finding:
     """Places where the flow stands still on arcs of 300 and 140 degrees against a search for f = 0."""
     radius, worst = 30.0, 0.0
@@ -245,6 +271,7 @@ CHECKS = (
         for n in SHAPES
     ),
     code_check("lumped, with booms", GROUP, "theory", with_booms, quick=True, features={"boom"}),
+    code_check("tapered strip", GROUP, "theory", tapered_strip, quick=True, features={"taper"}),
     code_check("flat strips", GROUP, "theory", flat, quick=True),
     code_check("flow stands still on an arc", GROUP, "theory", long_arc, quick=True, features={"arc"}),
     code_check(

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 import beam_theory
 from crosscheck.verification.code_checks.equilibrium import by_theory
 from crosscheck.verification.code_checks.finding import Finding, code_check
-from crosscheck.verification.code_checks.shapes import SHAPES, Shape
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
 
 GROUP = "stresses of theory"
 ROUND_OFF = 1e-9
@@ -211,6 +211,29 @@ def numbers_from_faces(name: str) -> Finding:
     )
 
 
+def peak_near_an_end() -> Finding:
+    """Channel under Vy, its web divided a little below mid-height: tau = V S/(I t) at the neutral axis.
+
+    The place is within a hundredth of one end of the upper part of the web, whichever way that runs.
+    """
+    b, half, t, below = 40.0, 50.0, 2.0, 0.5
+    points = {"a": (b, half), "b": (0.0, half), "m": (0.0, -below), "c": (0.0, -half), "d": (b, -half)}
+    inertia = 2.0 * t * b * half**2 + t * (2.0 * half) ** 3 / 12.0
+    want = (t * b * half + 0.5 * t * half**2) / (inertia * t)
+    place, worst = below / (half + below), 0.0
+    for start, end, at in (("m", "b", place), ("b", "m", 1.0 - place)):
+        walls = [Wall(p[0], p[1], (t, t)) for p in ("ab", "mc", "cd")]
+        theory = beam_theory.solve(Shape(points, (*walls, Wall(start, end, (t, t))), {}).theory())
+        case = beam_theory.stress(theory, beam_theory.Load("Vy", (0.0, 1.0)))
+        found = case.largest("shear")
+        off = abs(abs(found.stress) / want - 1.0)
+        # a largest value is known to round-off, its place to the root of that
+        worst = max(
+            worst, off, 1e-4 * abs(found.at - at), abs(case.largest("shear", f"{start}-{end}").at - found.at)
+        )
+    return Finding(worst, 1e-11, f"Largest difference {worst:.1e} of the stress (1e-4 times of the place).")
+
+
 def stiffnesses() -> Finding:
     """Stiffnesses of theory for E = 70, G = 27 against the quantities they are made from."""
     _, theory = by_theory("open section")
@@ -244,5 +267,6 @@ CHECKS = (
         )
         for name in SHAPES
     ),
+    code_check("largest stress near an end", GROUP, "theory", peak_near_an_end, quick=True),
     code_check("stiffnesses", GROUP, "theory", stiffnesses, quick=True),
 )

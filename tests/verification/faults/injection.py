@@ -19,7 +19,8 @@ from theory_faults import THEORY
 ROOT = Path(__file__).resolve().parents[3]
 sys.path.insert(0, str(ROOT / "tests" / "mutation"))
 
-from checks import Check, forget
+from checks import Check, forget, suite_checks
+from memory import Memory
 from transplant import transplant
 
 # A fault that makes refinement run on and on is seen as well.
@@ -40,8 +41,21 @@ def altered(fault: Fault) -> ast.Module:
     return ast.parse(text.replace(fault.old, fault.new))
 
 
-def turned_red(fault: Fault, first: Sequence[Check], then: Iterable[Check] = ()) -> list[str]:
-    """Names of the checks in ``first`` that fail with a fault; where none does, one of ``then``."""
+def without_faults() -> Memory:
+    """Every check passes without a fault; returns what finite elements gave."""
+    memory = Memory()
+    failing = [name for name, passes in suite_checks() if not passes()]
+    assert not failing, f"fail without any fault: {failing}"
+    return memory
+
+
+def turned_red(
+    fault: Fault, first: Sequence[Check], then: Iterable[Check] = (), memory: Memory | None = None
+) -> list[str]:
+    """Names of the checks in ``first`` that fail with a fault; where none does, one of ``then``.
+
+    memory: solutions of finite elements, taken as they are for a fault that is not in them.
+    """
     read, write = os.pipe()
     child = os.fork()
     if child == 0:
@@ -54,6 +68,8 @@ def turned_red(fault: Fault, first: Sequence[Check], then: Iterable[Check] = ())
         with os.fdopen(write, "w", buffering=1) as out:
             try:
                 forget()
+                if memory is not None:
+                    memory.replay = side(fault) != "fe"
                 module = importlib.import_module(fault.path.removesuffix(".py").replace("/", "."))
                 transplant(module, altered(fault))
                 red = [out.write(f"{name}\n") for name, passes in first if not passes()]

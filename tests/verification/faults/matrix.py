@@ -25,13 +25,14 @@ def main(arguments: Sequence[str]) -> int:
     wanted = [a for a in arguments if not a.startswith("--")]
     unseen = {name for name, _ in suite_checks(quick=quick)}
     silent = []
+    memory = injection.without_faults() if covering and not quick else None
     for fault in injection.CATALOGUE:
         if wanted and not any(w in fault.name for w in wanted):
             continue
         start = time.time()
         checks = suite_checks(injection.side(fault), quick=quick)
         first = [c for c in checks if c[0] in unseen] if covering else checks
-        red = injection.turned_red(fault, first, [c for c in checks if c not in first])
+        red = injection.turned_red(fault, first, [c for c in checks if c not in first], memory)
         unseen -= set(red)
         if not red:
             silent.append(fault.name)

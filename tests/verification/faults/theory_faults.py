@@ -169,4 +169,11 @@ THEORY = (
     ),
     Fault("first guess taken for the zero", B + "lumps.py", "if there == 0.0 or", "if there != 0.0 or"),
     Fault("a wall skipped at the first point", B + "cells.py", "= [(first, -1, 0)]", "= [(first, 1, 0)]"),
+    Fault("search of a largest stress", B + "stress.py", "at[max(row - 1, 0)]", "at[max(row - 1, 1)]"),
+    Fault(
+        "centre of a tapered strip",
+        B + "own_axis.py",
+        "p.e[:, None] * p.t**3 * p.ds\n    origin",
+        "p.e[:, None] * p.t**2 * p.ds\n    origin",
+    ),
 )
