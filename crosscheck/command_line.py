@@ -10,6 +10,7 @@ from collections.abc import Sequence
 from crosscheck.commands import compare, dossier, draw, idealise, sweep, template, threshold, verify
 from crosscheck.commands.arguments import OneLineParser, plain_line
 from crosscheck.exit_status import ExitStatus
+from crosscheck.stopping import prompt_stop
 
 DESCRIPTION = """\
 Classical thin-walled beam theory beside a warping finite-element model of the real outline: every difference
@@ -50,7 +51,8 @@ def main(argv: Sequence[str] | None = None) -> int:
         Exit status, see :class:`crosscheck.exit_status.ExitStatus`.
     """
     try:
-        return _run(argv)
+        with prompt_stop():
+            return _run(argv)
     except BrokenPipeError:
         # The reader of a pipe went away (head, less): what is left has nowhere to go.
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())

@@ -5,7 +5,8 @@ from __future__ import annotations
 import os
 import shutil
 import tempfile
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Iterator, Mapping
+from contextlib import contextmanager, suppress
 from pathlib import Path
 
 
@@ -42,6 +43,8 @@ def write_whole(path: Path, content: bytes | Iterable[bytes]) -> None:
 def write_folder(folder: Path, files: Mapping[str, bytes]) -> tuple[Path, ...]:
     """Write files into a folder, made where missing; each appears whole, in the given order.
 
+    Another run that writes into the folder waits, so that all files of the same names are of one run.
+
     Parameters
     ----------
     folder : Path
@@ -66,10 +69,29 @@ def write_folder(folder: Path, files: Mapping[str, bytes]) -> tuple[Path, ...]:
             raise ValueError(f"{name!r} is not a plain file name")
     folder.mkdir(parents=True, exist_ok=True)
     written = []
-    for name, content in files.items():
-        write_whole(folder / name, content)
-        written.append(folder / name)
+    with _held(folder):
+        for name, content in files.items():
+            write_whole(folder / name, content)
+            written.append(folder / name)
     return tuple(written)
+
+
+@contextmanager
+def _held(folder: Path) -> Iterator[None]:
+    """Keep others who ask from a folder; where the system has no such lock, none is taken."""
+    try:
+        import fcntl
+    except ImportError:
+        yield
+        return
+    descriptor = os.open(folder, os.O_RDONLY)
+    try:
+        # some network folders know no locks
+        with suppress(OSError):
+            fcntl.flock(descriptor, fcntl.LOCK_EX)
+        yield
+    finally:
+        os.close(descriptor)
 
 
 def _umask() -> int:

@@ -19,6 +19,7 @@ ALLOWED = {
     "lost cell": "thin enough to leave every cell open",
     "radius": "a radius that the walls at the point have room for",
     "limit": "a section of at most 2000 walls",
+    "direct": "a section with a wall or boom that carries direct stress",
     "points": "of sizes that one mesh can have: at most 40000 points round a joint or an outline",
     "unknowns": "a section that a mesh of at most 500000 unknowns stands for",
     "ring": "closed by at least three lines, or two edges of which one is an arc, at finite places",

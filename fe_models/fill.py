@@ -91,7 +91,7 @@ def generator() -> Iterator[Any]:
     Raises
     ------
     SolveError
-        When it is missing.
+        When it is missing or does not work.
     """
     try:
         import gmsh
@@ -102,7 +102,11 @@ def generator() -> Iterator[Any]:
     started = bool(gmsh.isInitialized())
     if not started:
         gmsh.initialize(readConfigFiles=False, interruptible=False)
-        _settle(gmsh)
+        try:
+            _settle(gmsh)
+        except Exception as fault:  # the generator raises bare Exception
+            gmsh.finalize()
+            raise SolveError(f"the mesh generator cannot mesh one triangle: {fault}") from None
     try:
         gmsh.option.setNumber("General.Terminal", 0)
         gmsh.option.setNumber("General.NumThreads", 1)

@@ -95,7 +95,8 @@ def add(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
         "--workers",
         type=worker_count,
         metavar="N",
-        help="compare several sections in N worker processes, one numerical thread each",
+        help="several sections are compared in N worker processes, one numerical thread each (default: one "
+        "for each core)",
     )
     add_model_arguments(command)
     command.set_defaults(run=run)
@@ -114,7 +115,7 @@ def run(arguments: argparse.Namespace) -> int:
     folders = output_folders(paths, arguments.out)
     from crosscheck.commands.several import reported_by_workers, show_summary
 
-    if len(paths) > 1 and arguments.workers is not None:
+    if len(paths) > 1:
         from crosscheck.batch.task import BatchError
 
         try:

@@ -15,6 +15,9 @@ from typing import Any
 from crosscheck.commands.arguments import complain, told_progress
 from crosscheck.exit_status import ExitStatus
 
+# Longest time for one section with its pictures [s]; what takes longer hangs.
+TIME_LIMIT = 1800.0
+
 
 @dataclass(frozen=True)
 class Reported:
@@ -43,7 +46,7 @@ def reported_by_workers(
     ]
     waiting: dict[int, Outcome] = {}
     following = 0
-    with Hands(arguments.workers).ready_for(Task(report_in_worker, context)) as crew:
+    with Hands(arguments.workers, time_limit=TIME_LIMIT).ready_for(Task(report_in_worker, context)) as crew:
         outcomes = crew.solve(points)
         while following < len(points):
             with told_progress() as tell:

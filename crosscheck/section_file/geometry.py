@@ -44,7 +44,10 @@ class GeometryCheck:
         self.faults = faults
         self.used = {name for wall in walls for name in (wall.start, wall.end)}
         placed = [points[name] for name in self.used if name in points]
-        placed += [wall.arc_through for wall in walls if wall.arc_through is not None]
+        for wall in walls:
+            if wall.arc_through is not None and wall.start in points and wall.end in points:
+                # an arc may reach far beyond its three places
+                placed += _arc_places(points[wall.start], wall.arc_through, points[wall.end])
         self.places: Floats = np.array(placed, dtype=float).reshape(-1, 2)
         self.extent = float(np.ptp(self.places, axis=0).max()) if len(placed) else 0.0
         thicknesses = [t for wall in walls for t in wall.thickness if not math.isnan(t)]
