@@ -137,8 +137,7 @@ def outline(section: Section) -> Outline:
         swallowed wall.
     """
     if len(section.walls) > WALL_LIMIT:
-        names = (section.walls[0].name,)
-        raise OutlineError("limit", names, f"{len(section.walls)} walls")
+        raise OutlineError("limit", (section.walls[0].name,), f"{len(section.walls)} walls")
     if not section.booms and all(w.direct_share == 0.0 for w in section.walls):
         names = tuple(w.name for w in section.walls)
         raise OutlineError("direct", names, "a direct_share of 0 in every wall, and no boom")
