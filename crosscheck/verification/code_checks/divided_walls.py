@@ -9,19 +9,12 @@ import numpy as np
 
 import beam_theory
 from crosscheck.verification.code_checks.finding import Finding, code_check
-from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall, tapered
 
 GROUP = "invariances"
 ROUND_OFF = 1e-9
-# Where a wall is divided, how its thickness changes along it, and the booms' e and area.
-AT, TAPER, STIFFNESS, AREA = 0.37, 0.7, 1.6, 25.0
-
-
-def tapered(name: str) -> Shape:
-    """A shape with every wall tapered, straight ones and arcs."""
-    shape = SHAPES[name]()
-    walls = tuple(replace(w, thickness=(w.thickness[0], TAPER * w.thickness[1])) for w in shape.walls)
-    return Shape(shape.points, walls, shape.booms)
+# Where a wall is divided, and the booms' e and area.
+AT, STIFFNESS, AREA = 0.37, 1.6, 25.0
 
 
 def _part(shape: Shape, wall: Wall, low: float, high: float) -> Wall:
@@ -49,7 +42,7 @@ def in_two(shape: Shape) -> Shape:
 
 def divided(name: str, level: str) -> Finding:
     """Quantities, flows, warping and stresses of a load: one wall with a boom inside, or two walls."""
-    shape = tapered(name)
+    shape = tapered(SHAPES[name]())
     two = in_two(shape)
     inside = tuple(beam_theory.Boom(AREA, wall=w.name, at=AT, e=STIFFNESS) for w in shape.walls)
     between = tuple(beam_theory.Boom(AREA, point=f"{w.name} {AT}", e=STIFFNESS) for w in shape.walls)
@@ -98,15 +91,39 @@ def divided(name: str, level: str) -> Finding:
     return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
 
 
-CHECKS = tuple(
-    code_check(
-        f"boom inside a wall, {name}, {level}",
-        GROUP,
-        "theory",
-        partial(divided, name, level),
-        quick=level == "midline",
-        features={"boom", "taper"},
-    )
-    for name in SHAPES
-    for level in ("midline", "corrected")
+def cuts() -> Finding:
+    """Cuts on both sides of a boom inside a wall come back where they were made, and change no flow."""
+    section = SHAPES["two cells, two materials"]().theory()
+    section = replace(section, booms=(beam_theory.Boom(AREA, wall="b-c", at=AT),))
+    load = beam_theory.Load("gust", (0.8, -1.2), (3.0, 7.0), 40.0)
+    u, worst = np.linspace(0.01, 0.99, 9), 0.0
+    want = beam_theory.solve(section).flow(load)
+    for at in (0.2, AT, 0.6, 1.0):
+        made = (beam_theory.Cut("b-c", at), beam_theory.Cut("f-a", 0.3))
+        solved = beam_theory.solve(replace(section, cuts=made))
+        rows = {row.wall: row for row in beam_theory.working(solved, load).cuts}
+        worst = max(worst, abs(rows["b-c"].at - at), abs(rows["f-a"].at - 0.3))
+        if any(row.chosen for row in rows.values()):
+            worst = float("inf")
+        peak = abs(want.peak().flow)
+        for wall in section.walls:
+            off = solved.flow(load).at(wall.name, u) - want.at(wall.name, u)
+            worst = max(worst, float(np.abs(off).max()) / peak)
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e} of four places.")
+
+
+CHECKS = (
+    *(
+        code_check(
+            f"boom inside a wall, {name}, {level}",
+            GROUP,
+            "theory",
+            partial(divided, name, level),
+            quick=level == "midline",
+            features={"boom", "taper"},
+        )
+        for name in SHAPES
+        for level in ("midline", "corrected")
+    ),
+    code_check("cuts beside a boom", GROUP, "theory", cuts, quick=True, features={"boom", "cut choice"}),
 )

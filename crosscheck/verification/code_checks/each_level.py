@@ -5,6 +5,7 @@ from __future__ import annotations
 import cmath
 import math
 from dataclasses import replace
+from decimal import Decimal, localcontext
 from functools import partial
 from itertools import permutations
 
@@ -12,9 +13,9 @@ import numpy as np
 from numpy.polynomial import Polynomial
 
 import beam_theory
-from crosscheck.verification.code_checks.divided_walls import tapered
+from beam_theory.corner_terms import FREE_END
 from crosscheck.verification.code_checks.finding import Finding, code_check
-from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall, tapered
 
 GROUP = "levels of theory"
 ROUND_OFF = 1e-9
@@ -29,7 +30,7 @@ LOADS = (
 def resultants(name: str) -> Finding:
     """Resultants of flows at every level; without a place, the torque is that about the shear centre."""
     worst = 0.0
-    section = tapered(name).theory()
+    section = tapered(SHAPES[name]()).theory()
     for level in beam_theory.LEVELS:
         solved = beam_theory.solve(section, level)
         for load in LOADS:
@@ -248,6 +249,63 @@ def cells_of_arcs() -> Finding:
     return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}, 12 ways to write it.")
 
 
+def one_tangent() -> Finding:
+    """Two arcs and a straight wall that leave a point along one tangent, closed by two walls: both cells.
+
+    Areas by the trapezoid formula over the curves themselves, in every order of the walls.
+    """
+
+    def on(radius: float, angle: float) -> complex:
+        return 1j * radius + cmath.rect(radius, angle - 0.5 * math.pi)
+
+    ends = {"p": (20.0, 1.2), "q": (45.0, 0.8)}
+    places = {n: on(r, a) for n, (r, a) in ends.items()} | {"o": 0.0j, "s": 40.0 + 0.0j}
+    points = {n: (z.real, z.imag) for n, z in places.items()}
+    walls = []
+    for n, (r, a) in ends.items():
+        middle = on(r, 0.5 * a)
+        walls.append(Wall("o", n, (1.0, 1.0), through=(middle.real, middle.imag)))
+    walls += [Wall("o", "s", (1.0, 1.0)), Wall("p", "q", (1.0, 1.0)), Wall("q", "s", (1.0, 1.0))]
+
+    def twice(z: np.ndarray) -> float:
+        return float((z[:-1].real * z[1:].imag - z[1:].real * z[:-1].imag).sum())
+
+    curves = {n: np.array([on(r, a * u) for u in np.linspace(0.0, 1.0, 4001)]) for n, (r, a) in ends.items()}
+    loops = (
+        np.concatenate([[0.0], [places["s"]], curves["q"][::-1]]),
+        np.concatenate([curves["q"], curves["p"][::-1]]),
+    )
+    want, worst = sorted(0.5 * twice(z) for z in loops), 0.0
+    for order in permutations(walls):
+        shape = Shape(points, order, {})
+        for way in (shape, shape.rewritten()):
+            got = sorted(beam_theory.solve(way.theory()).cell_areas.tolist())
+            pairs = zip(got, want, strict=True)
+            worst = max(worst, *(abs(g / w - 1.0) for g, w in pairs))
+    return Finding(worst, 1e-6, f"Largest difference {worst:.1e} of 240 ways to write it.")
+
+
+def thick_arcs() -> Finding:
+    """J of an open arc at level corrected: R theta t^3/3 times 3/(4 x^2) (1 + x^2 - x/artanh x), x = t/(2 R).
+
+    By forty digits, on both sides of where theory changes to a series; ends as of straight walls.
+    """
+    worst, theta, radius = 0.0, 2.0, 10.0
+    with localcontext() as exact:
+        exact.prec = 40
+        for x in (0.004, 0.015, 0.0199, 0.0201, 0.1, 0.4):
+            t, y = 2.0 * radius * x, Decimal(x)
+            over = 1 / sum((y ** (2 * k) / (2 * k + 1) for k in range(60)), Decimal(0))
+            factor = float(3 / (4 * y**2) * (1 + y**2 - over))
+            want = radius * theta * t**3 / 3.0 * factor - 2.0 * FREE_END * t**4
+            a, m, b = (cmath.rect(radius, k * theta) for k in (0.0, 0.5, 1.0))
+            wall = Wall("a", "b", (t, t), through=(m.real, m.imag))
+            shape = Shape({"a": (a.real, a.imag), "b": (b.real, b.imag)}, (wall,), {})
+            got = beam_theory.solve(shape.theory(), "corrected").require("torsion_constant")
+            worst = max(worst, abs(got / want - 1.0))
+    return Finding(worst, 1e-11, f"Largest difference {worst:.1e} of six arcs.")
+
+
 def fin_inside() -> Finding:
     """J of a box with a fin inside, in every order of its walls: Bredt's cell and b t^3/3 of the fin."""
     t, b, h, fin = 2.0, 50.0, 30.0, 12.0
@@ -277,6 +335,8 @@ CHECKS = (
     code_check(
         "cells of arcs alone", GROUP, "theory", cells_of_arcs, quick=True, features={"arc", "many cells"}
     ),
+    code_check("walls along one tangent", GROUP, "theory", one_tangent, features={"arc", "many cells"}),
+    code_check("corrected, thick arcs", GROUP, "theory", thick_arcs, quick=True, features={"arc"}),
     code_check("fin inside a cell", GROUP, "theory", fin_inside, features={"fins"}),
     code_check("bends of any turn as arcs", GROUP, "theory", bends, quick=True, features={"bend"}),
 )

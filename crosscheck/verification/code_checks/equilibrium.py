@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 import beam_theory
 import fe_models
 from crosscheck.verification.code_checks.finding import Finding, code_check
-from crosscheck.verification.code_checks.shapes import SHAPES, Shape
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, tapered
 
 GROUP = "equilibrium"
 ROUND_OFF = 1e-9
@@ -21,8 +21,9 @@ Array = NDArray[np.float64]
 
 @cache
 def by_theory(name: str) -> tuple[Shape, beam_theory.Solution]:
-    """A shape and what classical theory makes of it."""
-    shape = SHAPES[name]()
+    """A shape, as it is or "tapered", and what classical theory makes of it."""
+    plain = name.removeprefix("tapered ")
+    shape = SHAPES[plain]() if plain == name else tapered(SHAPES[plain]())
     return shape, beam_theory.solve(shape.theory())
 
 

@@ -11,6 +11,7 @@ import fe_models
 from crosscheck.verification.code_checks.equilibrium import MOMENTS, by_fe, by_theory, slopes
 from crosscheck.verification.code_checks.finding import Finding, code_check
 from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall
+from fe_models.recovery import flows, strip_chords
 
 GROUP = "flows of finite elements"
 # Gauss points along and across a wall.
@@ -111,6 +112,23 @@ def errors(name: str) -> Finding:
     return Finding(worst, 1.0, f"Largest difference {worst:.2g} of both error bars.")
 
 
+def kinematic_flow(name: str) -> Finding:
+    """Kinematic less static flow of unit T over section lines: of its mean the error bars of cells are made.
+
+    400 lines a strip against the integral over the strip's area; within a factor of two, since it is small.
+    """
+    fe, most = by_fe(name), 0.0
+    for wall, strip in fe.fields.space.mesh.strips.items():
+        if wall in fe.open_walls:
+            continue
+        s = strip.s[0] + (strip.s[-1] - strip.s[0]) * (np.arange(400) + 0.5) / 400.0
+        static, kinematic = flows(fe.fields, strip_chords(strip, s), len(s))
+        most = max(most, abs(float((kinematic - static)[2].mean())))
+    ratio = most / float(fe.closing_error[2])
+    away = abs(float(np.log2(ratio))) if ratio > 0.0 else float("inf")
+    return Finding(away, 1.0, f"Largest mean {most:.2e}, {ratio:.2f} of the closing error.")
+
+
 def rectangle_with_nu() -> Finding:
     """Cowper's coefficient 10 (1 + nu)/(12 + 11 nu) of a rectangle, and A_V = 5/6 A at nu = 0 by energy."""
     corners = ((0.0, 0.0), (1.0, 0.0), (1.0, 2.0), (0.0, 2.0))
@@ -178,6 +196,10 @@ CHECKS = (
     *(
         code_check(f"error bars of flows, {name}", GROUP, "fe", partial(errors, name))
         for name in ("open section", "two cells, two materials")
+    ),
+    *(
+        code_check(f"kinematic flow over section lines, {n}", GROUP, "fe", partial(kinematic_flow, n))
+        for n in ("two cells, two materials", "curved nose")
     ),
     code_check(
         "rectangle with nu", GROUP, "fe", rectangle_with_nu, quick=True, features={"nu", "outline solid"}

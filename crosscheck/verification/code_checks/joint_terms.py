@@ -187,8 +187,8 @@ def open_tees() -> Finding:
     missed, worst, b, g = [], 0.0, 60.0, 1.3
     for case, has in TEES.items():
         t_1, t_2, t_3, r, angle = case
-        z = b * cmath.rect(1.0, math.radians(angle))
-        points = {"o": (0.0, 0.0), "l": (-b, 0.0), "r": (b, 0.0), "s": (z.real, z.imag)}
+        z, x = cmath.rect(b, 0.3 + math.radians(angle)), cmath.rect(b, 0.3)
+        points = {"o": (0.0, 0.0), "l": (-x.real, -x.imag), "r": (x.real, x.imag), "s": (z.real, z.imag)}
         walls = (
             Wall("l", "o", (t_1, t_1), g=g), Wall("o", "r", (t_2, t_2), g=g), Wall("s", "o", (t_3, t_3), g=g),
         )  # fmt: skip

@@ -287,7 +287,7 @@ CHECKS = (
             ("shear areas from their energy", theory_shear_areas),
             ("warping function and constant", theory_warping),
         )
-        for name in SHAPES
+        for name in (*SHAPES, "tapered two cells, two materials", "tapered curved nose")
     ),
     code_check(
         "warping constant by sectorial flow, theory",

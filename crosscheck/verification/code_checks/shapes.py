@@ -183,6 +183,12 @@ def nose_cell() -> Shape:
     return Shape(points, walls, {"b": 30.0})
 
 
+def tapered(shape: Shape) -> Shape:
+    """A shape with every wall tapered, straight ones and arcs."""
+    walls = tuple(replace(w, thickness=(w.thickness[0], 0.7 * w.thickness[1])) for w in shape.walls)
+    return Shape(shape.points, walls, shape.booms)
+
+
 SHAPES = {"open section": open_branched, "two cells, two materials": two_cells, "curved nose": nose_cell}
 
 # A motion without any special angle.

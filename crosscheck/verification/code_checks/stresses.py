@@ -252,6 +252,12 @@ def stiffnesses() -> Finding:
         "characteristic_length": np.sqrt(70.0 * q("warping_constant") / (27.0 * q("torsion_constant"))),
     }  # fmt: skip
     worst = max(abs(getattr(made, n).require(n) / v - 1.0) for n, v in want.items())
+    plain = beam_theory.stiffness(theory, 70.0, 27.0)
+    worst = max(
+        worst,
+        abs(plain.centroid_x.require("x") - q("centroid_x")),
+        abs(plain.centroid_y.require("y") - q("centroid_y")),
+    )
     return Finding(worst, 1e-12, f"Largest difference {worst:.1e} of {len(want)} numbers.")
 
 

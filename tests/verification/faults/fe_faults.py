@@ -134,4 +134,11 @@ FE = (
         "max(self.low, other.low)",
         "min(self.low, other.low)",
     ),
+    Fault("no kinematic flow", F + "recovery.py", "return made[0], made[1]", "return made[0], made[0]"),
+    Fault(
+        "centroid of the mesh taken for the outline's",
+        F + "quantities.py",
+        "section.centroid + shift, 0.0",
+        "section.centroid - shift, 0.0",
+    ),
 )

@@ -176,4 +176,18 @@ THEORY = (
         "p.e[:, None] * p.t**3 * p.ds\n    origin",
         "p.e[:, None] * p.t**2 * p.ds\n    origin",
     ),
+    Fault(
+        "place of a cut beside a boom",
+        B + "working.py",
+        "first + (last - first) * at, wall",
+        "first + last * at, wall",
+    ),
+    Fault("series of a thick arc", B + "thick_torsion.py", "11.0 * x**4 / 315.0", "11.0 * x**4 / 305.0"),
+    Fault(
+        "circle in which walls leave",
+        B + "cells.py",
+        "0.25 * near[start] * curvature",
+        "0.0 * near[start] * curvature",
+    ),
+    Fault("flexibility along a taper", B + "network.py", "/ np.log1p(safe))", "* np.log1p(safe))"),
 )
