@@ -77,6 +77,7 @@ def test_other_numbers_under_a_fresh_seal_are_found(package, tmp_path):
     assert "fe.value" in faults[0]
 
 
+@pytest.mark.long
 def test_two_days_differ_in_date_and_provenance_only(package, tmp_path, monkeypatch):
     monkeypatch.setenv("SOURCE_DATE_EPOCH", str(DAY + 86_400))
     other = tmp_path / "package"

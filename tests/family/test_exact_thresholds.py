@@ -109,6 +109,7 @@ def square_tube_rows():
     return sorted((float(row["title"].split("=")[1].split(":")[0]), row["value"]) for row in found)
 
 
+@pytest.mark.long
 def test_square_tube_by_bredt_batho_at_the_rows(tmp_path):
     """With a row's own difference as the criterion its thickness is the threshold.
 

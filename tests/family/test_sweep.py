@@ -61,6 +61,7 @@ def test_every_quantity_at_every_level_on_both_sides(run, channel, tmp_path):
     ElementTree.parse(out / f"{stem}.svg")
 
 
+@pytest.mark.long
 def test_the_number_of_workers_changes_nothing(run, angle, tmp_path):
     for workers in (1, 2, 3):
         run(
