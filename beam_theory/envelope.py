@@ -18,7 +18,15 @@ __all__ = ["Envelope", "PlaceEnvelope", "WallEnvelope", "envelope"]
 
 @dataclass(frozen=True)
 class WallEnvelope:
-    """Largest value in magnitude of a wall over all loads, with its sign, place and governing load."""
+    """Largest value in magnitude of a wall over all loads, with its sign, place and governing load.
+
+    Attributes
+    ----------
+    kind : "flow", "direct", "shear" or "von_mises"
+    wall, at : the wall, and the fraction of its length [-]
+    value : flow [F/L], stresses [F/L^2]
+    load : name of the load that gives it
+    """
 
     kind: str
     wall: str
@@ -29,7 +37,15 @@ class WallEnvelope:
 
 @dataclass(frozen=True)
 class PlaceEnvelope:
-    """Lowest and highest value at one place over all loads (both faces), each with its load."""
+    """Lowest and highest value at one place over all loads and both faces, each with its load.
+
+    Attributes
+    ----------
+    kind : "flow", "direct", "shear" or "von_mises"
+    wall, at : the wall, and the fraction of its length [-]
+    low, high : values; flow [F/L], stresses [F/L^2]
+    low_load, high_load : names of the loads that give them
+    """
 
     kind: str
     wall: str
@@ -42,7 +58,13 @@ class PlaceEnvelope:
 
 @dataclass(frozen=True)
 class Envelope:
-    """Rows for kinds "flow" [F/L], "direct", "shear", "von_mises" [F/L^2]; walls, and places asked for."""
+    """Rows for kinds "flow" [F/L], "direct", "shear", "von_mises" [F/L^2].
+
+    Attributes
+    ----------
+    walls : a row for each wall and kind
+    places : a row for each place asked for and kind
+    """
 
     walls: tuple[WallEnvelope, ...]
     places: tuple[PlaceEnvelope, ...]
@@ -60,6 +82,11 @@ def envelope(
         At least one; names tell them apart.
     places : mapping of wall to fractions (n,), optional
         Places for the second half of the result.
+
+    Returns
+    -------
+    Envelope
+        Flows [F/L] and stresses [F/L^2], largest of each wall and extremes at each place.
 
     Raises
     ------

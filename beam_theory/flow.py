@@ -18,7 +18,13 @@ _NEUTRAL = 1e-11
 
 @dataclass(frozen=True)
 class FlowPeak:
-    """Largest flow [F/L] of a set of walls, with its sign, and where."""
+    """Largest flow of a set of walls, with its sign, and where.
+
+    Attributes
+    ----------
+    wall, at : the wall, and the fraction of its length [-]
+    flow : [F/L]
+    """
 
     wall: str
     at: float
@@ -29,7 +35,10 @@ class FlowPeak:
 class FlowPolynomial:
     """Flow of a straight piece between two wall fractions: q = sum of coefficients[k] v^k.
 
-    v runs 0..1 from `first` to `last`; coefficients (4,) [F/L], constant first.
+    Attributes
+    ----------
+    first, last : fractions of the wall; v runs from 0 to 1 between them [-]
+    coefficients : (4,), constant first [F/L]
     """
 
     first: float
@@ -43,6 +52,10 @@ class Flow:
 
     Parameters
     ----------
+    graph : Network
+        The walls in pieces.
+    centroid : complex
+        x + i y in the file's axes [L].
     slope : complex
         a + i b of f = a x + b y [F/L^4], x and y from the centroid.
     shear_start : (m,) [F/L]

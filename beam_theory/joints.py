@@ -43,9 +43,14 @@ class WallEnd:
 class Joint:
     """A point with what is added for it.
 
-    term [L^4]: addend of J, weighted with g; None where no term applies.
-    length [-], area [L^2]: addends of a cell's integral of ds/(g t) and of the area of the cell inside.
-    source: what stands behind it, or why there is nothing.
+    Attributes
+    ----------
+    point : its name
+    ends : the wall ends that meet there
+    term : addend of J, weighted with g [L^4]; None where no term applies
+    source : what stands behind it, or why there is nothing
+    length, area : addends of a cell's integral of ds/(g t) [-] and of the area of the cell inside [L^2]
+    turn : angle by which the midline turns there [rad]
     """
 
     point: str

@@ -31,6 +31,7 @@ def solve(section: Section, level: str = "midline", parts: int = 1) -> Solution:
     Returns
     -------
     Solution
+        Lengths in the unit of the points [L]; moduli are ratios [-].
 
     Raises
     ------

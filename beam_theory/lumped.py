@@ -21,7 +21,14 @@ __all__ = ["LumpedSolution", "lumped"]
 
 @dataclass(frozen=True)
 class LumpedSolution(Solution):
-    """Boom and skin theory: every load has its own booms, `lumps_of(load)`; torsion is that of the skins."""
+    """Boom and skin theory: every load has its own booms, `lumps_of(load)`; torsion is that of the skins.
+
+    Attributes, besides those of Solution
+    -------------------------------------
+    parts : parts of each wall that booms are made from
+    walls : the solution at level "midline", with lengths in [L] as there
+    made : solutions made so far by the slope of their load's stress
+    """
 
     parts: int = field(default=1)
     walls: Solution | None = field(default=None, repr=False)

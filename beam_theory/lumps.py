@@ -24,7 +24,14 @@ _Z, _W = 0.5 * (_Z + 1.0), 0.5 * _W
 
 @dataclass(frozen=True)
 class Lump:
-    """Part of a wall's direct-stress area [L^2] put at a fraction of it, for a stress f there."""
+    """Part of a wall's direct-stress area put at a fraction of it.
+
+    Attributes
+    ----------
+    wall, at : the wall, and the fraction of its length [-]
+    area : [L^2]
+    stress : f there of the load that the lumps are made for [F/L^2]
+    """
 
     wall: str
     at: float

@@ -11,7 +11,13 @@ __all__ = ["Check", "Quantity"]
 
 @dataclass(frozen=True)
 class Quantity:
-    """A value, or None with the reason why classical theory does not define it here."""
+    """A value, or None with the reason why classical theory does not define it here.
+
+    Attributes
+    ----------
+    value : in the unit that its name has in the nomenclature: area [L^2], torsion constant [L^4] ...
+    reason : why there is none
+    """
 
     value: float | None
     reason: str | None = None
@@ -25,7 +31,14 @@ class Quantity:
 
 @dataclass(frozen=True)
 class Check:
-    """A self-check of a solution: a dimensionless value that must not exceed `allowed`."""
+    """A self-check of a solution.
+
+    Attributes
+    ----------
+    name : what is checked
+    value : what is left over, without dimension [-]
+    allowed : largest value that passes [-]
+    """
 
     name: str
     value: float

@@ -45,7 +45,15 @@ class Wall:
 
 @dataclass(frozen=True)
 class Boom:
-    """An area [L^2] that carries direct stress only, at a point or on a wall at a fraction 0..1."""
+    """An area that carries direct stress only, at a point or on a wall.
+
+    Parameters
+    ----------
+    area : its area [L^2]
+    point : name of the point where it is, or
+    wall, at : the wall, and the fraction of its length where it is, 0 to 1 [-]
+    e : Young's modulus over that of the base material [-]
+    """
 
     area: float
     point: str | None = None
@@ -56,7 +64,13 @@ class Boom:
 
 @dataclass(frozen=True)
 class Cut:
-    """Where the hand method cuts a cell: a wall and a fraction 0..1 of its length."""
+    """Where the hand method cuts a cell.
+
+    Parameters
+    ----------
+    wall : name of the wall
+    at : fraction of its length, 0 to 1 [-]
+    """
 
     wall: str
     at: float = 0.0
@@ -64,7 +78,14 @@ class Cut:
 
 @dataclass(frozen=True)
 class Corner:
-    """A rounded corner at a point: inner radius [L]; outer radius is inner plus thickness unless given."""
+    """A rounded corner.
+
+    Parameters
+    ----------
+    point : name of the point
+    inner_radius : radius of the inner face [L]
+    outer_radius : radius of the outer face [L]; inner plus thickness where None
+    """
 
     point: str
     inner_radius: float
@@ -106,6 +127,12 @@ class Section:
     """A connected graph of walls between named points, with booms, cuts and rounded corners.
 
     Corners matter to the level `corrected` only; the midline of the other levels has sharp corners.
+
+    Parameters
+    ----------
+    points : place (x, y) of each point by its name [L]
+    walls : at least one
+    booms, cuts, corners : as many as there are
     """
 
     points: Mapping[str, Position]

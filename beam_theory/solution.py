@@ -31,9 +31,13 @@ class Solution:
     ----------
     level : str
         "midline", "corrected" or "lumped".
+    graph, mass, twist, shear, warp : Network, Inertia, Torsion, Shear, Warping
+        What the quantities come from; no shear and warp where theory has none.
+    shear_centre : complex or None
+        x + i y in the file's axes [L].
     quantities : mapping of name to Quantity
-        Positions in the file's axes, second moments about the centroid, e-weighted; J and shear areas for
-        G_base = 1.
+        Positions in the file's axes [L], second moments about the centroid, e-weighted [L^4]; J [L^4] and
+        shear areas [L^2] for G_base = 1.
     checks : tuple of Check
     notes : tuple of str
         What a reader has to know about this level for this section.

@@ -15,10 +15,17 @@ __all__ = ["Stiffness", "stiffness"]
 class Stiffness:
     """Beam stiffnesses; each a Quantity, None with a reason where theory defines none.
 
-    EA [F]; EIxx, EIyy, EIxy, EIu, EIv [F L^2] about the centroid; angle of u [rad]; GJ [F L^2]; EIw [F L^4];
-    GA_Vx, GA_Vy [F]; coupling [1/F]: shear strain across x per Vy and the other way round; centroid and shear
-    centre as offsets from the datum [L]; characteristic_length = sqrt(E I_w/(G J)) [L]: restrained warping
-    matters over a length of that order from where it is restrained.
+    Attributes
+    ----------
+    datum : where offsets are measured from [L]
+    EA : [F]
+    EIxx, EIyy, EIxy, EIu, EIv : about the centroid [F L^2]
+    angle : of the principal axis u from x [rad]
+    GJ, EIw : [F L^2], [F L^4]
+    GA_Vx, GA_Vy, coupling : [F], and shear strain across x per Vy and the other way round [1/F]
+    centroid_x, centroid_y, shear_centre_x, shear_centre_y : offsets from the datum [L]
+    characteristic_length : sqrt(E I_w/(G J)) [L]; restrained warping matters over a length of that order from
+        where it is restrained
     """
 
     datum: tuple[float, float]
@@ -51,6 +58,11 @@ def stiffness(solution: Solution, E: float, G: float, datum: tuple[float, float]
         Moduli of the base material (e = g = 1).
     datum : (float, float) [L]
         Where offsets are measured from.
+
+    Returns
+    -------
+    Stiffness
+        In the units of E and G, [F], and of the section, [L].
     """
     q = solution.quantities
 

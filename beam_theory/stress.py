@@ -22,7 +22,15 @@ _GOLDEN = 0.6180339887498949
 
 @dataclass(frozen=True)
 class StressPeak:
-    """Largest stress [F/L^2] in magnitude, with its sign; face "left" or "right" of the wall's direction."""
+    """Largest stress of a kind in magnitude, with its sign.
+
+    Attributes
+    ----------
+    kind : "direct", "shear" or "von_mises"
+    wall, at : the wall, and the fraction of its length [-]
+    face : "left" or "right" of the wall's direction
+    stress : [F/L^2]
+    """
 
     kind: str
     wall: str
@@ -33,7 +41,13 @@ class StressPeak:
 
 @dataclass(frozen=True)
 class BoomStress:
-    """Direct stress of a boom [F/L^2], by its number in the section."""
+    """Direct stress of a boom.
+
+    Attributes
+    ----------
+    boom : its number in the section, from 0
+    stress : its direct stress, tension positive [F/L^2]
+    """
 
     boom: int
     stress: float
@@ -45,6 +59,8 @@ class Stress:
 
     Parameters
     ----------
+    solution, load : Solution, Load
+        What it is of.
     slope : complex
         a + i b of the bending stress e (a x + b y) [F/L^3].
     axial : float
@@ -185,6 +201,16 @@ def stress(solution: Solution, load: Load) -> Stress:
     """Stress of N, Mx, My, Vx, Vy on a line, T and B.
 
     [Iyy Ixy; Ixy Ixx][a b] = [My Mx] with the second moments of the solution's level.
+
+    Parameters
+    ----------
+    solution : Solution
+    load : Load
+
+    Returns
+    -------
+    Stress
+        [F/L^2] at any place of any wall.
 
     Raises
     ------

@@ -14,11 +14,18 @@ __all__ = ["WallFlow", "wall_flows"]
 
 @dataclass(frozen=True)
 class WallFlow:
-    """Flow between two booms [F/L], v running 0..1 from `first` to `last`.
+    """Flow between two booms, v running 0..1 from `first` to `last`.
 
     Straight: q = sum of polynomial[k] v^k. Arc: on top of that trigonometric = (c, s, vc, vs) adds
     (c + vc v) cos(phi) + (s + vs v) sin(phi), phi = phi_start + sweep v the polar angle seen from the centre
-    of the arc; empty for a straight wall. start, middle, end: values there.
+    of the arc; empty for a straight wall.
+
+    Attributes
+    ----------
+    wall, first, last : the wall, and fractions of its length [-]
+    start, middle, end : values there [F/L]
+    polynomial, trigonometric : coefficients [F/L]
+    phi_start, sweep : of an arc [rad]
     """
 
     wall: str

@@ -142,12 +142,22 @@ class ShearCentreRow:
 class Working:
     """The whole calculation of one load at one level.
 
-    area to product: e-weighted section properties; determinant = Ixx Iyy - Ixy^2; a, b from
-    [Iyy Ixy; Ixy Ixx][a b] = [Vx Vy]. basic, shear, total: flow of every stretch with the cells cut, closed
-    at zero twist, and with the torque. resultant: sums of `forces`, the torque about the origin of the file's
-    axes with what open walls carry. basic_torque: moment of the basic flow about the centroid.
-    closing_by_moments: of a single cell, (moment of the load about the centroid - basic_torque - what open
-    walls carry)/(2 A), to be compared with closing + torque_flow of the cell; None for other sections.
+    Attributes
+    ----------
+    load, level : what it is of
+    area, centroid : e-weighted [L^2], [L]
+    second_moment_xx, second_moment_yy, product_moment_xy : about the centroid [L^4]
+    determinant : Ixx Iyy - Ixy^2 [L^8]
+    a, b : from [Iyy Ixy; Ixy Ixx][a b] = [Vx Vy] [F/L^4]
+    walls, booms, cuts, cells : a row for each
+    basic, shear, total : flow of every stretch with the cells cut, closed at zero twist, and with the torque
+    shear_centre, torque : a row for each coordinate; how the torque is shared
+    forces : a row for each stretch
+    resultant, applied : (Vx, Vy, T) of `forces` and of the load [F], [F], [F L]; T about the origin of the
+        file's axes, with what open walls carry
+    basic_torque : moment of the basic flow about the centroid [F L]
+    closing_by_moments : of a single cell, (moment of the load about the centroid - basic_torque - what open
+        walls carry)/(2 A) [F/L], to be compared with closing + torque_flow; None for other sections
     """
 
     load: Load
@@ -184,6 +194,11 @@ def working(solution: Solution, load: Load) -> Working:
     solution : Solution
     load : Load
         Shear and torque count here; N, M and B make no flow.
+
+    Returns
+    -------
+    Working
+        Flows [F/L] and all that they come from.
 
     Raises
     ------

@@ -39,6 +39,11 @@ def rings_apart(
     chord_error : float, optional
         STEP: largest distance of arcs from curves that are neither lines nor circles [L].
 
+    Returns
+    -------
+    tuple of ClosedLine
+        Places in ``length_unit``, or as the mesh file has them [L].
+
     Raises
     ------
     OutlineError

@@ -15,7 +15,14 @@ from .quantities import geometry_error
 
 @dataclass(frozen=True)
 class Check:
-    """One self-check: passed where value <= allowed."""
+    """One self-check: passed where value <= allowed.
+
+    Attributes
+    ----------
+    name : what is checked
+    value, allowed : what is left over, and how much may be [-]
+    passed : the outcome
+    """
 
     name: str
     value: float

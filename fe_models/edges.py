@@ -26,7 +26,13 @@ PLACES = np.array([0.1, 0.25, 0.4, 0.6, 0.75, 0.9])
 
 @dataclass(frozen=True)
 class Edge:
-    """A line from ``start`` to ``end``, or the arc between them through a third point [L]."""
+    """A line, or an arc.
+
+    Parameters
+    ----------
+    start, end : its ends [L]
+    through : a third place of the arc [L]; None for a line
+    """
 
     start: Place
     end: Place
@@ -35,7 +41,14 @@ class Edge:
 
 @dataclass(frozen=True)
 class Chained:
-    """Closed lines, edges left out as shorter than the gap or drawn twice, and the widest gap [L]."""
+    """Closed lines, and what was done to chain them.
+
+    Attributes
+    ----------
+    lines : the closed lines
+    short, twice : edges left out as shorter than the gap, and as drawn twice
+    widest_gap : widest gap that was closed [L]
+    """
 
     lines: tuple[ClosedLine, ...]
     short: int
@@ -44,7 +57,16 @@ class Chained:
 
 
 def circle_edges(centre: Place, radius: float) -> list[Edge]:
-    """A full circle as two arcs [L]."""
+    """A full circle as two arcs.
+
+    Parameters
+    ----------
+    centre, radius : [L]
+
+    Returns
+    -------
+    list of Edge
+    """
     line = ClosedLine.circle(centre, radius)
     (a, b), (top, bottom) = line.points, line.through
     return [Edge(a, b, top), Edge(b, a, bottom)]
@@ -65,6 +87,11 @@ def fitted_edges(
         Largest distance between curve and arcs, looked at in six places of each arc [L].
     pieces : int
         Pieces to begin with; each is halved until it is near enough.
+
+    Returns
+    -------
+    list of Edge
+        In the order of the parameter [L].
 
     Raises
     ------
@@ -116,6 +143,11 @@ def closed_lines(edges: Sequence[Edge], gap: float) -> Chained:
     edges : sequence of Edge
     gap : float
         Ends that lie apart by no more than this are one point [L].
+
+    Returns
+    -------
+    Chained
+        Lines with their places in the edges' unit [L].
 
     Raises
     ------

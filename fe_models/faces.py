@@ -27,9 +27,15 @@ EDGE_POINTS = 9
 
 @dataclass(frozen=True)
 class Actions:
-    """Stress resultants: shear and the torque about the shear centre, axial force, moments and bimoment.
+    """Stress resultants on the face whose outward normal points at the viewer.
 
-    ``moment`` is (Mx, My): Mx > 0 puts +y in tension, My > 0 puts +x in tension.
+    Parameters
+    ----------
+    shear : (Vx, Vy) [F]
+    torque : about the shear centre, anticlockwise positive [F L]
+    axial : tension positive [F]
+    moment : (Mx, My): Mx > 0 puts +y in tension, My > 0 puts +x in tension [F L]
+    bimoment : tension where the warping function is positive [F L^2]
     """
 
     shear: tuple[float, float] = (0.0, 0.0)

@@ -69,7 +69,16 @@ class Pair:
 
 @dataclass(frozen=True)
 class Fields:
-    """Torsion and the flexure of unit Vx and Vy on one mesh."""
+    """Torsion and the flexure of unit Vx and Vy on one mesh.
+
+    Attributes
+    ----------
+    space, moduli, inertia, contours : mesh with its basis, ratios of the elements, e-weighted second moments
+        [L^4], boundary values of the stress function
+    torsion, flexure : kinematic and static field of unit rate of twist [L], and of unit Vx and Vy [1/L^2]
+    residual : largest residual of the equations over their largest load [-]
+    above, below : factorized equations of the kinematic and of the static fields
+    """
 
     space: Space
     moduli: Moduli

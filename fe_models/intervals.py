@@ -34,7 +34,8 @@ class Interval:
     Parameters
     ----------
     value, low, high : float or None
-        Low <= value <= high; None where the quantity is not defined.
+        Low <= value <= high; None where the quantity is not defined. In the unit that its name has in the
+        nomenclature: area [L^2], torsion constant [L^4] ...
     basis : str
         ``exact`` (of the outline), ``bound``, ``bound on the interpolated outline`` or ``estimate``.
     reason : str, optional

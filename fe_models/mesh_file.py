@@ -72,6 +72,11 @@ def rings_of_mesh(path: Path) -> tuple[ClosedLine, ...]:
     path : Path
         Its ending tells the format.
 
+    Returns
+    -------
+    tuple of ClosedLine
+        Places as the file has them [L].
+
     Raises
     ------
     OutlineError

@@ -130,11 +130,20 @@ class Outline:
 def outline(section: Section) -> Outline:
     """Build and check the solid of a section.
 
+    Parameters
+    ----------
+    section : Section
+
+    Returns
+    -------
+    Outline
+        Places as in the section [L].
+
     Raises
     ------
     OutlineError
         Too many walls, unconnected walls, bands that overlap away from a shared point, a lost cell, a
-        swallowed wall.
+        swallowed wall, no direct stress anywhere.
     """
     if len(section.walls) > WALL_LIMIT:
         raise OutlineError("limit", (section.walls[0].name,), f"{len(section.walls)} walls")

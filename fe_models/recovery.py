@@ -30,7 +30,7 @@ class FlowSamples:
     Parameters
     ----------
     values, errors : (3, n) arrays
-        [1/L for shear, 1/L^2 for torque], positive from start to end of the wall; errors are estimates.
+        Of shear [1/L], of torque [1/L^2], positive from start to end of the wall; errors are estimates.
     """
 
     values: Array

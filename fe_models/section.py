@@ -74,9 +74,15 @@ class Rounding:
 
 @dataclass(frozen=True)
 class Section:
-    """Points [L] and the walls that join them, one connected graph.
+    """Points and the walls that join them, one connected graph.
 
-    ``corners`` holds rounding by point name; ``nu`` is Poisson's ratio where all walls share it.
+    Parameters
+    ----------
+    points : place (x, y) of each point by its name [L]
+    walls : at least one
+    corners : rounding by point name
+    booms : areas that carry direct stress only
+    nu : Poisson's ratio where all walls share it [-]
     """
 
     points: Mapping[str, tuple[float, float]]

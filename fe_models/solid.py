@@ -75,6 +75,15 @@ class Solid:
 def outline_of_solid(solid: Solid) -> Outline:
     """Check a solid and prepare it for the mesh: one part without strips.
 
+    Parameters
+    ----------
+    solid : Solid
+
+    Returns
+    -------
+    Outline
+        Places as in the solid [L].
+
     Raises
     ------
     OutlineError
@@ -90,7 +99,17 @@ def outline_of_solid(solid: Solid) -> Outline:
 
 
 def loops_of_solid(solid: Solid) -> tuple[Array, ...]:
-    """Check a solid as ``outline_of_solid`` does; closed polygons (n, 2), the outer one first [L]."""
+    """Check a solid as ``outline_of_solid`` does.
+
+    Parameters
+    ----------
+    solid : Solid
+
+    Returns
+    -------
+    tuple of (n, 2) arrays
+        Closed polygons, the outer one first [L].
+    """
     return tuple(polyline(r) for r in _oriented(solid))
 
 

@@ -43,7 +43,13 @@ Progress = Callable[[str], None]
 
 @dataclass(frozen=True)
 class MeshSummary:
-    """What was solved: order, unknowns of the larger field, elements, strips, joints, refinement passes."""
+    """What was solved.
+
+    Attributes
+    ----------
+    order, unknowns, elements : order of the elements, unknowns of the larger field, number of elements [-]
+    strips, joints, passes : numbers of strips, joints and refinement passes [-]
+    """
 
     order: int
     unknowns: int
@@ -60,9 +66,9 @@ class Solution:
     Parameters
     ----------
     quantities : mapping of name to Interval
-        Names as in the comparison's list; positions in the file's axes.
+        Names as in the comparison's list; positions in the file's axes [L].
     strips : mapping of wall name to (from, to) or None
-        Fractions of each wall between which flows can be asked for.
+        Fractions of each wall between which flows can be asked for [-].
     checks : tuple of Check
     mesh : MeshSummary
     outline : Outline
@@ -70,8 +76,9 @@ class Solution:
         True where the asked accuracy was reached for J and both shear-centre coordinates.
     accuracy_note : str
         What was asked and what was reached.
+    fields, open_walls : what the quantities come from; walls in no cell
     poisson : PoissonFlexure or None
-        Flexure with Poisson's ratio; None where the section has none that all walls share.
+        Flexure with Poisson's ratio; None where walls share none.
     solid_walls : mapping of wall name to SolidWall or None
         Walls drawn over a solid that is given by its outline.
     """
@@ -180,10 +187,14 @@ def solve(section: Section, accuracy: float = DEFAULT_ACCURACY, progress: Progre
     ----------
     section : Section
     accuracy : float
-        Largest half-width of J over J, and of a shear-centre coordinate over the
-        larger overall dimension [-].
+        Largest half-width of J over J, and of a shear-centre coordinate over the larger dimension [-].
     progress : callable, optional
         Told each pass in a few words.
+
+    Returns
+    -------
+    Solution
+        Intervals with lengths in the unit of the points [L].
 
     Raises
     ------
@@ -208,9 +219,14 @@ def solve_solid(
 
     Parameters
     ----------
-    walls : Section, optional
-        Walls drawn over the solid, where flows and stresses can be asked for. Their strips are where the
-        solid is as thick as they are; without walls ``Solution.strips`` is empty.
+    solid, accuracy, progress : as in ``solve``
+    walls : walls drawn over the solid, where flows and stresses can be asked for: their strips are where the
+        solid is as thick as they are; without walls ``Solution.strips`` is empty
+
+    Returns
+    -------
+    Solution
+        Intervals with lengths in the unit of the outline [L].
     """
     _check_accuracy(accuracy)
     made = _solution(outline_of_solid(solid), accuracy, progress)

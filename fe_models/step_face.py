@@ -35,6 +35,11 @@ def rings_of_step(path: Path, length_unit: str, chord_error: float | None = None
         Largest distance of arcs from curves that are neither lines nor circles [L]; CHORD_ERROR times the
         overall dimension without.
 
+    Returns
+    -------
+    tuple of ClosedLine
+        Places in ``length_unit`` [L].
+
     Raises
     ------
     OutlineError

@@ -37,7 +37,7 @@ class Trial:
     order : int
         1 to 6.
     moduli : Moduli
-        Ratios of each element.
+        Ratios of each element [-].
     """
 
     mesh: Mesh
@@ -51,6 +51,7 @@ class Trial:
 
     @cached_property
     def contours(self) -> Contours:
+        """Boundary values of the stress function."""
         return contours(self.space, self.moduli.e)
 
     @cached_property
@@ -107,6 +108,11 @@ def trial(
         Moduli of each triangle [-].
     circles : sequence of (centre, radius)
         Boundary edges with both ends on one of these circles follow it [L].
+
+    Returns
+    -------
+    Trial
+        Places as given [L].
     """
     cells = np.asarray(triangles, dtype=np.int64)
     n = len(cells)
@@ -120,7 +126,22 @@ def trial(
 def strip_trial(
     section: Section, wall: Wall, columns: int, layers: int, order: int, *, e: ArrayLike = 1.0
 ) -> Trial:
-    """A trial on one wall of a section alone, as strips are meshed: ``columns`` by ``layers`` by two."""
+    """A trial on one wall of a section alone, as strips are meshed: ``columns`` by ``layers`` by two.
+
+    Parameters
+    ----------
+    section, wall : Section, Wall
+    columns, layers : int
+        Along and across the wall.
+    order : int
+        Of the elements, 1 to 6.
+    e : float or (n,) array
+        Young's modulus of each triangle over that of the base material [-].
+
+    Returns
+    -------
+    Trial
+    """
     line = band(wall, section)
     s, n = np.linspace(0.0, line.length, columns + 1), np.linspace(-1.0, 1.0, layers + 1)
     at_s, at_n = np.meshgrid(s, n, indexing="ij")
@@ -155,11 +176,20 @@ def _bends(mesh: Mesh, centre: Array, radius: float) -> list[Bend]:
 
 
 def imbalance(fields: Fields) -> Array:
-    """What the static fields of torsion, unit Vx and unit Vy leave unbalanced, (3,) [-].
+    """What the static fields of torsion, unit Vx and unit Vy leave unbalanced.
 
     The largest  integral of s . grad v - e f v  of all basis functions v of one order more than the fields',
     over the largest contribution of one element. It vanishes only for a field in equilibrium point by point,
     from element to element and on every boundary, holes included.
+
+    Parameters
+    ----------
+    fields : Fields
+
+    Returns
+    -------
+    (3,) array
+        [-]
     """
     on, el = fields.space, fields.space.element
     more, at = el.order + 1, el.points

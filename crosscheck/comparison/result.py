@@ -248,16 +248,35 @@ class Provenance:
 
 @dataclass(frozen=True)
 class Result:
-    """Everything one comparison found; ``drawing`` only where pictures were asked for.
+    """Everything one comparison found, in the file's units of length [L] and force [F].
 
-    ``working``: the hand sheet of each load as Markdown, where asked for. ``theory_notes``: remarks of each
-    level of theory; ``section_notes``: those made on reading the file. ``outline_alone``: the
-    section has no walls, so theory says nothing and nothing is judged. ``nu``: Poisson's ratio
-    of values with nu, ``nu_reason``: why there are none; ``shear_coefficients``: A_V/A by two definitions.
-    ``field_files``: mesh and fields of FE by file name, where asked for. ``walls_by_loads``: worst first.
-    ``models``: what each side is made of, where the file gives them models of their own.
-    ``load_kinds``: "limit" or "ultimate" by load, as the file labels them. ``overall``: width and height of
-    FE's solid [L].
+    Attributes
+    ----------
+    title, length_unit, force_unit, judged : as in the file
+    per_modulus : True where it names no material, so that what hangs on E and G is over them
+    quantities : every quantity of the section and of each load: theory at all levels, FE's interval,
+        verdict
+    flows, stresses, boom_fibres : both sides at the probes of each wall [F/L], at its faces and at
+        booms [F/L^2]
+    theory_peaks, fillet_peaks : theory's own largest values; FE's on rounded boundaries [F/L^2]
+    stated, causes : the user's numbers judged; the largest differences in steps [-]
+    walls_by_loads, margins, named_probes, wall_envelopes, probe_envelopes : worst first; allowable over
+        stress
+        minus one [-]; flow [F/L] and fastener load [F]; extremes over all loads
+    stiffness, indicators, shear_coefficients : EA, EI, GJ ...; lengths and Wagner coefficients; A_V/A
+        by two
+        definitions [-]
+    mesh, checks, accuracy, accuracy_met, accuracy_note : what FE solved, self-checks of both sides,
+        half-width
+        asked and whether it was reached [-]
+    working, drawing, field_files : hand sheets as Markdown, geometry for pictures, FE's fields; where
+        asked for
+    theory_notes, section_notes, outline_notes : remarks of each level, made on reading, and on the solid
+    outline_alone : the section has no walls, so theory says nothing and nothing is judged
+    nu, nu_reason : Poisson's ratio of values with nu [-], or why there are none
+    load_kinds, models : "limit" or "ultimate" by load; what each side is made of where the file says
+    overall : width and height of FE's solid [L]
+    provenance : versions, hashes, time
     """
 
     title: str

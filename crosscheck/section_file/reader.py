@@ -62,6 +62,7 @@ def read_section(
     Returns
     -------
     SectionFile
+        Numbers in the file's own units of length [L] and force [F].
 
     Raises
     ------
