@@ -117,6 +117,7 @@ def test_it_prints(visit):
     assert len(paper) > 100_000
 
 
+@pytest.mark.long
 def test_hostile_words_do_not_run(browser, hostile_evidence, tmp_path):
     document = compose([hostile_evidence], [plain_plates()], None, "2026-01-01", "crosscheck dossier")
     path = tmp_path / "dossier.html"

@@ -72,6 +72,7 @@ def test_a_hole_with_sharp_corners_counts_and_a_round_outline_does_not():
     assert_allclose(sharpest_corner([ring, hole]), 1.5 * math.pi, rtol=1e-12)
 
 
+@pytest.mark.long
 def test_intervals_shrink_with_unknowns(rail):
     halves = [run.values["torsion_constant"].half_width for run in rail.convergence.runs]
     assert len(halves) > 1

@@ -59,6 +59,7 @@ def test_missing_and_added_files_are_found(package, tmp_path):
     assert "more.txt: not in the manifest" in faults
 
 
+@pytest.mark.long
 def test_other_numbers_under_a_fresh_seal_are_found(package, tmp_path):
     copy = tmp_path / "copy"
     shutil.copytree(package.folder, copy)

@@ -122,6 +122,7 @@ def test_square_tube_by_bredt_batho_at_the_rows(tmp_path):
         assert crossing.value == pytest.approx(10 * ratio, rel=5e-4 if ratio > 0.05 else 4e-3), ratio
 
 
+@pytest.mark.long
 @pytest.mark.parametrize("criterion", CRITERIA)
 def test_square_tube_at_five_and_ten_per_cent(tmp_path, criterion):
     """Rows joined by the polynomial through them and through 1 at no thickness."""

@@ -26,6 +26,7 @@ def tables(folder):
     return [(folder / name).read_bytes() for name in TABLES]
 
 
+@pytest.mark.long
 def test_every_quantity_at_every_level_on_both_sides(run, channel, tmp_path):
     out = tmp_path / "out"
     status, screen, err = run(
@@ -85,6 +86,7 @@ def test_a_section_that_cannot_be_built_is_a_member_with_its_reason(run, channel
     assert all(member["reason"] for member in members[1:3])
 
 
+@pytest.mark.long
 def test_two_parameters_make_a_map(run, angle, tmp_path):
     out = tmp_path / "out"
     status, screen, _ = run(
