@@ -193,9 +193,10 @@ class AttachmentReader:
             if point != EVERY_BEND and point not in self.declared_points:
                 near = (point, (*self.declared_points, EVERY_BEND))
                 self.faults.add(path, quoted(point), f"a point of [points] or {EVERY_BEND}", near=near)
-            elif self.meeting.get(point, 2) < 2:
-                words = "a point where walls meet: a free end is square"
-                self.faults.add(path, f"{quoted(point)}, at the end of a single wall", words, "leave it out")
+            elif self.meeting.get(point, 2) < 2 and "outer_radius" not in table:
+                words = "a point where walls meet: a free end has no inner side"
+                remedy = "leave it out, or give outer_radius to round the free end"
+                self.faults.add(path, f"{quoted(point)}, at the end of a single wall", words, remedy)
             inner = self.numbers.number((*path, "inner_radius"), table.get("inner_radius"), NOT_NEGATIVE)
             outer = self.numbers.number((*path, "outer_radius"), table.get("outer_radius"), NOT_NEGATIVE)
             corners.append(CornerSpec(point, inner or 0.0, outer))
