@@ -37,11 +37,6 @@ class Inertia:
     frame: tuple[complex, float, float, float] | None = None
 
     @property
-    def radius(self) -> float:
-        """Half the difference of the principal second moments [L^4]."""
-        return math.hypot(0.5 * (self.xx - self.yy), self.xy)
-
-    @property
     def principal(self) -> tuple[float, float]:
         """Largest and smallest second moment [L^4]."""
         _, xx, yy, xy = self._axes

@@ -49,6 +49,7 @@ FE_FORMULAS = (
 LEFT_OUT = {"__init__.py", "arrays.py", "errors.py", "quantity.py", "section.py"}
 # Processor time of a check with a change in it: so many times its own, and so many seconds more.
 TIMES, SECONDS = 4.0, 10.0
+# Memory that a mutant may take beside what its parent has [bytes].
 MEMORY = 8 * 2**30
 Lines = frozenset[tuple[str, int]]
 
@@ -121,7 +122,8 @@ def _live(mutant: Mutant, among: Sequence[Judge], memory: Memory, write: int) ->
     os.dup2(null, 1)
     os.dup2(null, 2)
     warnings.simplefilter("ignore")
-    resource.setrlimit(resource.RLIMIT_AS, (MEMORY, MEMORY))
+    has = int(Path("/proc/self/statm").read_text().split()[0]) * resource.getpagesize()
+    resource.setrlimit(resource.RLIMIT_AS, (has + MEMORY, has + MEMORY))
     forget()
     memory.replay = mutant.path.startswith("beam_theory")
     try:

@@ -15,7 +15,7 @@ from numpy.polynomial import Polynomial
 import beam_theory
 from beam_theory.corner_terms import FREE_END
 from crosscheck.verification.code_checks.finding import Finding, code_check
-from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall, tapered
+from crosscheck.verification.code_checks.shapes import SHAPES, Shape, Wall, symmetric_channel, tapered
 
 GROUP = "levels of theory"
 ROUND_OFF = 1e-9
@@ -180,6 +180,31 @@ def flat() -> Finding:
     return Finding(float(len(missed)), 0.0, f"Three strips; wrong: {missed or 'none'}.")
 
 
+def shear_only() -> Finding:
+    """A box of skins that carry shear only: no area and no bending, which is said; J by Bredt."""
+    b, h, t = 50.0, 30.0, 2.0
+    points = {"a": (0.0, 0.0), "b": (b, 0.0), "c": (b, h), "d": (0.0, h)}
+    walls = tuple(Wall(w[0], w[1], (t, t), direct_share=0.0) for w in ("ab", "bc", "cd", "da"))
+    q = beam_theory.solve(Shape(points, walls, {}).theory()).quantities
+    none = (*KEPT[:-2], "centroid_x", *NOT_FLAT)
+    wrong = [n for n in none if q[n].value is not None or "carries direct stress" not in (q[n].reason or "")]
+    off = abs(q["torsion_constant"].require("J") / (2.0 * (b * h) ** 2 * t / (b + h)) - 1.0)
+    return Finding(
+        math.inf if wrong else off, ROUND_OFF, f"J {off:.1e}; without a reason: {wrong or 'none'}."
+    )
+
+
+def symmetric_axes() -> Finding:
+    """Principal angle of a section symmetric about an axis: 0 where Ixx is larger, pi/2 where Iyy is."""
+    worst = 0.0
+    for b, h in ((20.0, 100.0), (100.0, 20.0)):
+        solved = beam_theory.solve(symmetric_channel(b, h, 2.0).theory())
+        xx, yy = solved.require("second_moment_xx"), solved.require("second_moment_yy")
+        worst = max(worst, abs(solved.require("principal_angle") - (0.0 if xx > yy else 0.5 * math.pi)))
+        worst = max(worst, abs(solved.require("principal_moment_u") / max(xx, yy) - 1.0))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
 def tapered_strip() -> Finding:
     """A strip of two tapered walls at level corrected: centre weighted with e t^3 (Trefftz), I_w about it.
 
@@ -329,6 +354,8 @@ CHECKS = (
         for n in SHAPES
     ),
     code_check("lumped, with booms", GROUP, "theory", with_booms, quick=True, features={"boom"}),
+    code_check("skins alone", GROUP, "theory", shear_only, quick=True, features={"shear-only skin"}),
+    code_check("principal axes of symmetry", GROUP, "theory", symmetric_axes, quick=True),
     code_check("tapered strip", GROUP, "theory", tapered_strip, quick=True, features={"taper"}),
     code_check("flat strips", GROUP, "theory", flat, quick=True),
     code_check("flow stands still on an arc", GROUP, "theory", long_arc, quick=True, features={"arc"}),

@@ -169,6 +169,21 @@ def open_corners() -> Finding:
     return Finding(math.inf if missed else worst, ROUND_OFF, detail)
 
 
+def tapered_corner() -> Finding:
+    """Two tapered walls at a right angle: ends and corner by the thickness there, both ways to write them."""
+    b, free, joint, worst = 60.0, (2.0, 3.0), 4.0, 0.0
+    points = {"a": (-b, 0.0), "o": (0.0, 0.0), "b": (0.0, b)}
+    walls = (Wall("a", "o", (free[0], joint)), Wall("o", "b", (joint, free[1])))
+    want = SHARP_CORNER * joint**4
+    for t in free:
+        # integral of t^3 of a linear taper
+        want += b * (joint + t) * (joint**2 + t**2) / 12.0 - FREE_END * t**4
+    for shape in (Shape(points, walls, {}), Shape(points, walls, {}).rewritten()):
+        got = beam_theory.solve(shape.theory(), "corrected").require("torsion_constant")
+        worst = max(worst, abs(got / want - 1.0))
+    return Finding(worst, ROUND_OFF, f"Largest difference {worst:.1e}.")
+
+
 # Tee: thickness of the flange's halves and the stem, radius, angle between flange and stem, whether a term.
 TEES: dict[Angle, bool] = {
     (4.0, 4.0, 2.05, 0.0, 90.0): True,
@@ -282,6 +297,7 @@ CHECKS = (
     code_check("corner of a cell, area", GROUP, "theory", cell_corner_square, quick=True),
     code_check("corner of a cell, walls exchanged", GROUP, "theory", cell_corner_exchange, quick=True),
     code_check("open corners and their ranges", GROUP, "theory", open_corners, quick=True),
+    code_check("corner of tapered walls", GROUP, "theory", tapered_corner, quick=True, features={"taper"}),
     code_check("tees and their ranges", GROUP, "theory", open_tees, quick=True),
     code_check("cells of any corners and their ranges", GROUP, "theory", cell_corners, quick=True),
     code_check("free end and sharp corner", GROUP, "both", constants),

@@ -190,4 +190,17 @@ THEORY = (
         "0.0 * near[start] * curvature",
     ),
     Fault("flexibility along a taper", B + "network.py", "/ np.log1p(safe))", "* np.log1p(safe))"),
+    Fault(
+        "thickness at the end of a taper",
+        B + "joints.py",
+        "leaving), wall.thickness[1]",
+        "leaving), wall.thickness[0]",
+    ),
+    Fault(
+        "major axis of symmetry",
+        B + "inertia.py",
+        "self.xx > self.yy else math.pi / 2",
+        "self.xx < self.yy else math.pi / 2",
+    ),
+    Fault("inertia of nothing", B + "inertia.py", "origin, 0.0, 0.0, 0.0,", "origin, 1.0, 1.0, 0.0,"),
 )
