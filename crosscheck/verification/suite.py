@@ -9,6 +9,8 @@ from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
+import numpy as np
+
 from crosscheck.batch.task import Point, Task
 from crosscheck.batch.workers import Crew
 from crosscheck.case_files import case_folder
@@ -201,12 +203,14 @@ def _packed(jobs: tuple[Job, ...], number: int) -> str:
 
 
 def run_job(job: Job) -> tuple[CheckOutcome, ...]:
-    """Outcomes of one job; an exception becomes a failed outcome."""
+    """Outcomes of one job; an exception becomes a failed outcome, and so does a number that is none."""
     start = time.perf_counter()
     try:
-        if isinstance(job, ReferenceCase):
-            return run_case(job)
-        outcome = job.run()
+        # the largest of some numbers may hide one that is none
+        with np.errstate(divide="raise", invalid="raise", over="raise"):
+            if isinstance(job, ReferenceCase):
+                return run_case(job)
+            outcome = job.run()
     except Exception as fault:  # whatever goes wrong in a check is its failure
         return (_broken(job, f"{type(fault).__name__}: {fault}"),)
     return (replace(outcome, seconds=time.perf_counter() - start, features=outcome.features | job.features),)
